@@ -1,0 +1,5 @@
+export * from './api.js';
+export * from './errors.js';
+export * from './paths.js';
+export * from './roles.js';
+export * from './samples.js';

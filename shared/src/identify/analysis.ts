@@ -1,0 +1,146 @@
+import type { Frame } from '../spectrum/index.js';
+import type { Family } from '../linelist/index.js';
+
+/** What a person may set for a run. Everything has a default; the whole object is stored with the analysis. */
+export interface AnalysisSettings {
+  /** expected number of false features in the whole spectrum */
+  readonly falseFeatures: number;
+  /** visual extinction A_V in mag to apply to the Planck model; null: none */
+  readonly extinctionAv: number | null;
+  /** use the local continuum even where a Planck fit is possible */
+  readonly localContinuum: boolean;
+  /** systems are looked for within +- this velocity, km/s */
+  readonly velocityRangeKmPerS: number;
+}
+
+export const DEFAULT_SETTINGS: AnalysisSettings = { falseFeatures: 0.5, extinctionAv: null, localContinuum: false, velocityRangeKmPerS: 300 };
+
+/** Continuum under a spectrum, and what it tells of the temperature. Arrays sample the model for drawing. */
+export interface Continuum {
+  readonly model: 'planck' | 'local';
+  /** colour temperature, K; null when no Planck model was fitted */
+  readonly temperatureK: number | null;
+  /** 1 sigma, statistical and systematic together, K */
+  readonly temperatureSigmaK: number | null;
+  readonly constrained: boolean;
+  /** why not, and the bound that holds; complete sentences */
+  readonly statement: string;
+  readonly lowerBoundK: number | null;
+  readonly upperBoundK: number | null;
+  readonly wienPeakNm: number | null;
+  readonly chi2PerDegree: number | null;
+  readonly clippedFraction: number;
+  /** vacuum nm and the continuum flux there, in the spectrum's flux unit; at most a few thousand samples */
+  readonly sampleNm: readonly number[];
+  readonly sampleFlux: readonly number[];
+}
+
+/** A velocity at which a family of lines shows. */
+export interface VelocitySystem {
+  readonly id: string;
+  readonly family: Family;
+  readonly velocityKmPerS: number;
+  readonly velocitySigmaKmPerS: number;
+  /** in sigma-like units */
+  readonly significance: number;
+  /** features whose first candidate is in this system */
+  readonly members: number;
+  /** typical FWHM of its lines, km/s */
+  readonly fwhmKmPerS: number;
+}
+
+export type FeatureFlag = 'cosmic' | 'blend' | 'saturated' | 'edge' | 'band' | 'sky';
+
+/** Another line of the species that should be visible in the same system. */
+export interface Companion {
+  readonly species: string;
+  readonly restNm: number;
+  readonly outcome: 'seen' | 'missing' | 'not_covered' | 'below_limit';
+  /** nm, positive in absorption */
+  readonly expectedNm: number;
+  readonly expectedSigmaNm: number;
+  readonly measuredNm: number | null;
+  readonly measuredSigmaNm: number | null;
+}
+
+/** One part of the argument: a factor on the odds (natural log) and the words for it. */
+export interface EvidencePart {
+  readonly part: 'position' | 'strength' | 'companions' | 'width' | 'chance';
+  readonly logOdds: number;
+  /** numbers and units in one sentence */
+  readonly sentence: string;
+}
+
+/** A ranked reading of a feature. The five parts' log odds add to ln(p / (1 - p)). */
+export interface Candidate {
+  readonly lineId: string;
+  readonly species: string;
+  readonly restNm: number;
+  readonly family: Family;
+  readonly systemId: string;
+  readonly velocityKmPerS: number;
+  readonly velocitySigmaKmPerS: number;
+  /** chance that the line makes at least 30 % of the feature's equivalent width */
+  readonly probability: number;
+  /** expected share of the feature's equivalent width, 0 to 1 */
+  readonly share: number;
+  readonly expectedNm: number | null;
+  readonly expectedSigmaNm: number | null;
+  readonly evidence: readonly EvidencePart[];
+  readonly companions: readonly Companion[];
+  /** one sentence: why it ranks where it does */
+  readonly sentence: string;
+}
+
+/** A dip or a peak with its measurements. */
+export interface Feature {
+  readonly index: number;
+  readonly kind: 'dip' | 'peak';
+  readonly wavelengthNm: number;
+  readonly wavelengthSigmaNm: number;
+  /** positive in absorption, negative in emission */
+  readonly equivalentWidthNm: number;
+  readonly equivalentWidthSigmaNm: number;
+  /** by direct summation over the profile's range, beside the fitted one */
+  readonly directEquivalentWidthNm: number;
+  readonly directEquivalentWidthSigmaNm: number;
+  readonly fwhmNm: number;
+  readonly fwhmSigmaNm: number;
+  /** 1 - F/Fc at the centre of the fitted profile; negative for peaks */
+  readonly depth: number;
+  readonly depthSigma: number;
+  /** shape of the fitted profile: for drawing */
+  readonly shape: 'gaussian' | 'voigt' | 'rotation' | 'band';
+  /** matched-filter significance, sigma */
+  readonly significance: number;
+  /** local continuum signal to noise per pixel */
+  readonly snr: number;
+  readonly flags: readonly FeatureFlag[];
+  readonly candidates: readonly Candidate[];
+  readonly unidentifiedProbability: number;
+}
+
+/** One run of the pipeline on a spectrum. Same bytes in, same settings, list and program: same bytes out. */
+export interface Analysis {
+  readonly programVersion: string;
+  readonly lineListName: string;
+  readonly lineListVersion: string;
+  readonly settings: AnalysisSettings;
+  readonly points: number;
+  readonly fromNm: number;
+  readonly toNm: number;
+  readonly frame: Frame;
+  readonly resolvingPower: number;
+  readonly resolvingPowerHow: 'stated' | 'estimated';
+  /** median continuum signal to noise per pixel */
+  readonly snr: number;
+  readonly noiseHow: 'stated' | 'estimated' | 'stated_rescaled';
+  readonly continuum: Continuum;
+  readonly systems: readonly VelocitySystem[];
+  readonly features: readonly Feature[];
+  /** complete sentences a person should read before trusting the numbers */
+  readonly cautions: readonly string[];
+}
+
+export const ANALYSIS_STEPS = ['continuum', 'noise', 'detection', 'measurement', 'systems', 'identification'] as const;
+export type AnalysisStep = (typeof ANALYSIS_STEPS)[number];

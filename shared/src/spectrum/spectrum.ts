@@ -1,0 +1,24 @@
+/** What the flux column of a spectrum is. Planck work needs flux per wavelength; per frequency is converted on reading. */
+export type FluxKind = 'per_wavelength' | 'per_frequency' | 'normalised' | 'counts' | 'unknown';
+
+/** Velocity frame in which the wavelengths stand. */
+export type Frame = 'topocentric' | 'geocentric' | 'heliocentric' | 'barycentric' | 'lsrk' | 'lsrd' | 'source' | 'unknown';
+
+/**
+ * One reduced 1-D spectrum as the analysis sees it. Columns of equal length; never an array of objects.
+ * Bad samples stay in place with `bad[i] = 1` and carry zero weight.
+ */
+export interface Spectrum {
+  /** vacuum nm, ascending; within a segment strictly ascending */
+  readonly wavelength: Float64Array;
+  /** in the file's own flux unit (F_lambda when `fluxKind` is per_wavelength); NaN where missing */
+  readonly flux: Float64Array;
+  /** 1 sigma in the unit of the flux, NaN where unknown; null when the file gives none */
+  readonly sigma: Float64Array | null;
+  /** 1 where the sample must not be used (masked, NaN, zero inverse variance, non-positive sigma) */
+  readonly bad: Uint8Array;
+  readonly fluxKind: FluxKind;
+  /** lambda / FWHM of the instrument profile; null when not stated */
+  readonly resolvingPower: number | null;
+  readonly frame: Frame;
+}
