@@ -1,1 +1,2 @@
-export {};
+export * from './ionisation.js';
+export * from './photosphere.js';

@@ -1,1 +1,2 @@
 export * from './line.js';
+export * from './parse-default.js';
