@@ -7,12 +7,16 @@ const common = {
   moduleNameMapper: { '^(\\.{1,2}/.*)\\.js$': '$1' },
   transform: { '^.+\\.ts$': ['ts-jest', { useESM: true, tsconfig: '<rootDir>/tsconfig.jest.json' }] },
 };
+// starts the PostgreSQL of the tests when DATABASE_URL does not name another one
+const withDatabase = { globalSetup: '<rootDir>/test/support/postgres-up.mjs', globalTeardown: '<rootDir>/test/support/postgres-down.mjs' };
+
 /** @type {import('jest').Config} */
 export default {
-  testTimeout: 30_000,
+  testTimeout: 60_000,
   projects: [
     { ...common, displayName: 'unit', testMatch: ['<rootDir>/shared/src/**/*.spec.ts', '<rootDir>/server/src/**/*.spec.ts'] },
-    { ...common, displayName: 'api', testMatch: ['<rootDir>/test/api/**/*.spec.ts'] },
-    { ...common, displayName: 'ui', testMatch: ['<rootDir>/test/ui/**/*.spec.ts'] },
+    { ...common, displayName: 'reference', testMatch: ['<rootDir>/test/reference/**/*.spec.ts'] },
+    { ...common, ...withDatabase, displayName: 'api', testMatch: ['<rootDir>/test/api/**/*.spec.ts'] },
+    { ...common, ...withDatabase, displayName: 'browser', testMatch: ['<rootDir>/test/browser/**/*.spec.ts'] },
   ],
 };
