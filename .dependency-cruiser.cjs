@@ -22,6 +22,7 @@ const SHARED = {
 
 /** Only the shapes, for they describe what travels; no code comes along. */
 const SHARED_TYPES_TOO = {
+  continuum: ['identify'],
   atoms: ['linelist'],
   identify: ['continuum', 'detection', 'noise'],
   review: ['contract'],

@@ -1,1 +1,3 @@
-export {};
+export * from './planck.js';
+export * from './extinction.js';
+export { fitContinuum, type ContinuumFit } from './fit.js';

@@ -1,1 +1,3 @@
-export {};
+export * from './model.js';
+export * from './der-snr.js';
+export * from './estimate.js';

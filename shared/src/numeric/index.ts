@@ -1,1 +1,3 @@
-export {};
+export * from './select.js';
+export * from './chebyshev.js';
+export * from './linear.js';
