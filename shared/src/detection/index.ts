@@ -1,1 +1,4 @@
-export {};
+export * from './threshold.js';
+export * from './scale-space.js';
+export * from './model.js';
+export * from './detect.js';

@@ -1,1 +1,3 @@
-export {};
+export * from './shapes.js';
+export * from './component.js';
+export * from './blend.js';

@@ -1,0 +1,135 @@
+import { newComponent, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
+import { LineModel } from './model.js';
+import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
+import { mergeShreds, pruneWeak, splitBlends, trySpecialShapes } from './refine.js';
+
+export interface DetectionInput {
+  /** flux over continuum, inverse variances */
+  readonly data: NormalisedSamples;
+  readonly resolvingPower: number;
+  /** autocorrelation of the noise at lags 0, 1, ... pixels */
+  readonly correlation: readonly number[];
+  readonly falseFeatures: number;
+  /** relative 1-sigma error of the continuum's placement */
+  readonly continuumSigma: number;
+}
+
+export interface Detection {
+  readonly model: LineModel;
+  readonly threshold: number;
+}
+
+const FWHM_PER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
+const ROUNDS = 5;
+/** Relative misfit of profiles allowed for: a few per cent of the light that the model takes or adds beside strong neighbours. */
+const PROFILE_FLOOR = 0.02;
+const WIDEST_NM = 2.4; // broad diffuse bands; wider structure belongs to the continuum
+
+/** Finds dips and peaks: rounds of matched filters on what the model does not explain, each followed by a joint refit. */
+export function detect(input: DetectionInput): Detection {
+  const { data, resolvingPower } = input;
+  const n = data.wavelength.length;
+  const sigmaPx = instrumentSigmaPx(data.wavelength, resolvingPower);
+  const range = data.wavelength[n - 1]! - data.wavelength[0]!;
+  const widestNm = Math.min(WIDEST_NM, range / 8);
+  const limits = (at: number): BlendLimits => ({ narrowest: (0.5 * at) / resolvingPower, widest: Math.max(widestNm * 1.3, (2 * at) / resolvingPower) });
+  const model = new LineModel(data, limits);
+  let usable = 0;
+  for (let i = 0; i < n; i++) if (data.weight[i]! > 0) usable++;
+  const threshold = thresholdFor(input.falseFeatures, sigmaPx, usable, (widestNm / range) * n);
+
+  for (let round = 0; round < ROUNDS; round++) {
+    const zeroMean = round < ROUNDS - 2;
+    const residual = residualOf(model, input.continuumSigma);
+    const excesses = findExcesses(residual, { instrumentSigmaPx: sigmaPx, widestNm, zeroMean, threshold, correlation: input.correlation });
+    const fresh = chosen(excesses, model, threshold).map((e) => newComponent(e.kind, e.centre, Math.max(e.fwhm, e.centre / resolvingPower), start(e)));
+    if (fresh.length === 0 && !zeroMean) break;
+    model.add(fresh);
+    model.refit(2, round === 0 ? undefined : nearTo(model, fresh));
+    pruneWeak(model, threshold * 0.8);
+    if (round === 1) trySpecialShapes(model, resolvingPower);
+    model.refresh();
+  }
+  trySpecialShapes(model, resolvingPower);
+  mergeShreds(model, threshold);
+  splitBlends(model, threshold, resolvingPower);
+  model.refit(2);
+  pruneWeak(model, threshold);
+  model.refit(1);
+  model.refresh();
+  return { model, threshold };
+}
+
+const start = (e: Excess): number => (e.kind === 'dip' ? Math.min(e.amplitude, 0.95) : e.amplitude);
+
+/** Sigma of the instrument profile in pixels, at every pixel. */
+export function instrumentSigmaPx(wavelength: Float64Array, resolvingPower: number): Float64Array {
+  const n = wavelength.length;
+  return Float64Array.from(wavelength, (w, i) => {
+    const a = Math.max(0, i - 1);
+    const z = Math.min(n - 1, i + 1);
+    return w / resolvingPower / FWHM_PER_SIGMA / ((wavelength[z]! - wavelength[a]!) / (z - a));
+  });
+}
+
+/** Data minus model; weights carry what the model cannot be trusted with. */
+function residualOf(model: LineModel, continuumSigma: number): NormalisedSamples {
+  const { wavelength, flux, weight } = model.data;
+  const out = { wavelength, flux: new Float64Array(flux.length), weight: new Float64Array(flux.length) };
+  for (let i = 0; i < flux.length; i++) {
+    const w = weight[i]!;
+    if (w === 0) continue;
+    const m = model.value[i]!;
+    const floor = PROFILE_FLOOR * (1 - m);
+    out.flux[i] = flux[i]! - m;
+    out.weight[i] = 1 / (1 / w + floor * floor + continuumSigma * continuumSigma);
+  }
+  return out;
+}
+
+/** Excesses to turn into components: not twice at one place and width, and on the right side of the continuum. */
+function chosen(excesses: readonly Excess[], model: LineModel, threshold: number): Excess[] {
+  const out: Excess[] = [];
+  for (const e of excesses) {
+    const clash = (centre: number, fwhm: number): boolean => {
+      const [narrow, wide] = fwhm < e.fwhm ? [fwhm, e.fwhm] : [e.fwhm, fwhm];
+      return wide < 3 * narrow ? Math.abs(centre - e.centre) < 0.6 * wide : Math.abs(centre - e.centre) < 0.5 * narrow;
+    };
+    if (out.some((o) => clash(o.centre, o.fwhm))) continue;
+    if (model.components.some((c) => c.kind === e.kind && clash(c.centre, c.fwhm) && c.fwhm < 3 * e.fwhm && c.fwhm > e.fwhm / 3 && Math.abs(c.centre - e.centre) < 0.35 * c.fwhm)) continue;
+    if (beyondContinuum(e, model.data) < threshold) continue;
+    out.push(e);
+  }
+  return out;
+}
+
+/** Significance with which the data themselves, not the residual, lie on the excess's side of the continuum. */
+function beyondContinuum(e: Excess, data: NormalisedSamples): number {
+  const { wavelength, flux, weight } = data;
+  let sum = 0;
+  let total = 0;
+  for (let i = lower(wavelength, e.centre - 0.5 * e.fwhm); i < wavelength.length && wavelength[i]! <= e.centre + 0.5 * e.fwhm; i++) {
+    sum += weight[i]! * (flux[i]! - 1);
+    total += weight[i]!;
+  }
+  return total > 0 ? ((e.kind === 'dip' ? -1 : 1) * sum) / Math.sqrt(total) : 0;
+}
+
+function lower(x: Float64Array, value: number): number {
+  let low = 0;
+  let high = x.length;
+  while (low < high) {
+    const mid = (low + high) >> 1;
+    if (x[mid]! < value) low = mid + 1;
+    else high = mid;
+  }
+  return low;
+}
+
+/** Fresh components and all that they may push around. */
+function nearTo(model: LineModel, fresh: readonly Component[]): Set<Component> {
+  const out = new Set<Component>(fresh);
+  const sorted = model.components;
+  for (const f of fresh) for (const c of sorted) if (Math.abs(c.centre - f.centre) < 1.2 * (c.fwhm + f.fwhm)) out.add(c);
+  return out;
+}

@@ -1,0 +1,139 @@
+import { addComponent, fitBlend, reachOf, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
+
+/** Narrowest and widest profile allowed at a wavelength. */
+export type LimitsAt = (wavelength: number) => BlendLimits;
+
+/** The components found so far and the light they leave: the model all rounds of detection share. */
+export class LineModel {
+  components: Component[] = [];
+  /** product of the dips plus sum of the peaks, in units of the continuum */
+  readonly value: Float64Array;
+  readonly #peaks: Float64Array;
+
+  constructor(
+    readonly data: NormalisedSamples,
+    readonly limitsAt: LimitsAt,
+  ) {
+    this.value = new Float64Array(data.wavelength.length).fill(1);
+    this.#peaks = new Float64Array(data.wavelength.length);
+  }
+
+  add(components: readonly Component[]): void {
+    this.components = [...this.components, ...components].sort((a, b) => a.centre - b.centre);
+  }
+
+  remove(gone: ReadonlySet<Component>): void {
+    if (gone.size) this.components = this.components.filter((c) => !gone.has(c));
+  }
+
+  /** Brings `value` up to date after components changed. */
+  refresh(): void {
+    const n = this.value.length;
+    this.value.fill(1);
+    this.#peaks.fill(0);
+    for (const c of this.components) addComponent(c, this.data.wavelength, 0, n, this.value, this.#peaks);
+    for (let i = 0; i < n; i++) this.value[i]! += this.#peaks[i]!;
+  }
+
+  /** Refits all blends that hold one of `touched` (all when absent), `sweeps` times over; broad profiles first in each sweep. */
+  refit(sweeps: number, touched?: ReadonlySet<Component>): void {
+    for (let sweep = 0; sweep < sweeps; sweep++) {
+      this.components.sort((a, b) => a.centre - b.centre);
+      const blends = blendsOf(this.components).filter((b) => !touched || b.some((c) => touched.has(c)));
+      blends.sort((a, b) => widest(b) - widest(a) || a[0]!.centre - b[0]!.centre);
+      const near = new Neighbours(this.components);
+      for (const blend of blends) {
+        const middle = blend[blend.length >> 1]!;
+        fitBlend(this.data, blend, near.of(blend), this.limitsAt(middle.centre));
+      }
+    }
+    this.components.sort((a, b) => a.centre - b.centre);
+  }
+
+  /** Components other than those of the blend whose profiles reach into its range. */
+  overlapping(blend: readonly Component[]): Component[] {
+    return new Neighbours(this.components).of(blend);
+  }
+}
+
+const widest = (blend: readonly Component[]): number => Math.max(...blend.map((c) => c.fwhm));
+
+/** Finds what overlaps a blend without looking at every component. */
+class Neighbours {
+  readonly #narrow: Component[];
+  readonly #broad: Component[];
+  readonly #narrowReach: number;
+
+  constructor(components: readonly Component[]) {
+    const sorted = [...components].sort((a, b) => a.centre - b.centre);
+    const reaches = sorted.map(reachOf).sort((a, b) => a - b);
+    this.#narrowReach = reaches[Math.floor(reaches.length * 0.8)] ?? 0;
+    this.#narrow = sorted.filter((c) => reachOf(c) <= this.#narrowReach);
+    this.#broad = sorted.filter((c) => reachOf(c) > this.#narrowReach);
+  }
+
+  of(blend: readonly Component[]): Component[] {
+    const from = Math.min(...blend.map((c) => c.centre - reachOf(c)));
+    const to = Math.max(...blend.map((c) => c.centre + reachOf(c)));
+    const out = this.#broad.filter((c) => c.centre + reachOf(c) > from && c.centre - reachOf(c) < to && !blend.includes(c));
+    let i = lowerBound(this.#narrow, from - this.#narrowReach);
+    for (; i < this.#narrow.length && this.#narrow[i]!.centre < to + this.#narrowReach; i++) {
+      const c = this.#narrow[i]!;
+      if (!blend.includes(c)) out.push(c);
+    }
+    return out;
+  }
+}
+
+function lowerBound(sorted: readonly Component[], centre: number): number {
+  let low = 0;
+  let high = sorted.length;
+  while (low < high) {
+    const mid = (low + high) >> 1;
+    if (sorted[mid]!.centre < centre) low = mid + 1;
+    else high = mid;
+  }
+  return low;
+}
+
+const LARGEST_BLEND = 7; // parameters fitted together; longer chains are cut at their widest gap and settled by sweeps
+
+/** Components that must be fitted together: similar widths, closer than the sum of their half-widths times 1.6. */
+export function blendsOf(sorted: readonly Component[]): Component[][] {
+  const bands = new Map<number, Component[]>();
+  for (const c of sorted) {
+    const key = Math.round(Math.log(c.fwhm / c.centre) / Math.log(6)); // widths in velocity within about a factor of six
+    const band = bands.get(key);
+    if (band) band.push(c);
+    else bands.set(key, [c]);
+  }
+  const out: Component[][] = [];
+  for (const band of bands.values()) {
+    let chain: Component[] = [];
+    for (const c of band) {
+      const last = chain[chain.length - 1];
+      if (last && c.centre - last.centre > 0.8 * (c.fwhm + last.fwhm)) {
+        cut(chain, out);
+        chain = [];
+      }
+      chain.push(c);
+    }
+    cut(chain, out);
+  }
+  return out;
+}
+
+function cut(chain: Component[], out: Component[][]): void {
+  if (chain.length <= LARGEST_BLEND) {
+    if (chain.length) out.push(chain);
+    return;
+  }
+  let best = 1;
+  let gap = -Infinity;
+  for (let i = Math.min(2, chain.length - 1); i <= chain.length - 2; i++) {
+    const d = (chain[i]!.centre - chain[i - 1]!.centre) / (chain[i]!.fwhm + chain[i - 1]!.fwhm);
+    if (d > gap) [gap, best] = [d, i];
+  }
+  cut(chain.slice(0, best), out);
+  cut(chain.slice(best), out);
+}
