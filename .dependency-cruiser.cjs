@@ -8,7 +8,7 @@ const SHARED = {
   reading: ['units', 'spectrum'],
   noise: ['spectrum', 'numeric'],
   continuum: ['units', 'spectrum', 'numeric', 'noise'],
-  detection: ['units', 'spectrum', 'noise', 'numeric'],
+  detection: ['units', 'spectrum', 'noise', 'profiles', 'numeric'],
   profiles: ['units', 'spectrum', 'numeric'],
   atoms: ['units', 'numeric'],
   linelist: ['units'],
@@ -24,6 +24,7 @@ const SHARED = {
 const SHARED_TYPES_TOO = {
   continuum: ['identify'],
   atoms: ['linelist'],
+  continuum: ['identify'],
   identify: ['continuum', 'detection', 'noise'],
   review: ['contract'],
   report: ['contract', 'identify'],

@@ -11,7 +11,9 @@ const partition = read('partition.csv');
 const temperatures = Object.keys(partition[0]).filter((k) => /^u_\d+k$/.test(k));
 const ion = new Map(read('ionisation.csv').map((r) => [r.species, Number(r.ionisation_ev)]));
 const abundance = read('abundances.csv').map((r) => `  ${r.element}: ${Number(r.log_eps)},`);
-const rows = partition.map((r) => `  '${r.species}': [${ion.get(r.species) ?? 'NaN'}, ${temperatures.map((t) => Number(r[t])).join(', ')}],`);
+const rows = partition.map(
+  (r) => `  '${r.species}': [${ion.get(r.species) ?? 'NaN'}, ${temperatures.map((t) => Number(r[t])).join(', ')}],`,
+);
 const missing = [...ion].filter(([s]) => !partition.some((r) => r.species === s)).map(([s, e]) => `  '${s}': [${e}],`);
 
 writeFileSync(

@@ -1,0 +1,78 @@
+import { build } from './build.mjs';
+import { openDatabase } from './database.mjs';
+import { ensureDependencies } from './dependencies.mjs';
+import { nextFreePort, freePort } from './ports.mjs';
+import { until } from './processes.mjs';
+import { Complaint, say, tell } from './say.mjs';
+import { onInterruption, startChild, stopChildren } from './supervisor.mjs';
+
+/** npm start. */
+export function start() {
+  const interruption = onInterruption();
+  return tell(async () => {
+    try {
+      await ensureDependencies();
+      const database = await openDatabase();
+      try {
+        await build();
+        await serve(database.url, interruption);
+      } finally {
+        await stopChildren();
+        await database.close();
+      }
+      say('stopped');
+    } catch (error) {
+      if (!interruption.was()) throw error; // what failed only because it was interrupted is no failure
+      say('stopped');
+    }
+  });
+}
+
+/** Runs the API and a worker until an interruption; one that ends by itself is a failure. */
+async function serve(databaseUrl, interruption) {
+  if (interruption.was()) return;
+  const port = await choosePort();
+  const env = {
+    NODE_ENV: 'production',
+    FOREVEIL_MODE: 'demo',
+    LOG_LEVEL: 'warn',
+    ...process.env,
+    DATABASE_URL: databaseUrl,
+    PORT: String(port),
+  };
+  const command = (file) => [process.execPath, ['--enable-source-maps', `server/dist/${file}`], { env }];
+  const running = [startChild('API', ...command('main.js')), startChild('analysis worker', ...command('worker.js'))];
+  const death = Promise.race(running.map(async ({ name, ended }) => ({ name, status: await ended })));
+
+  const address = `http://127.0.0.1:${port}`;
+  const first = await Promise.race([death, interruption.interrupted, isReady(address, interruption)]);
+  if (first === 'ready') greet(address);
+  const end = first === 'ready' ? await Promise.race([death, interruption.interrupted]) : first;
+  if (interruption.was()) return;
+  if (end === null) throw new Complaint(`The API did not get ready within a minute at ${address}/api/health/ready.`);
+  throw new Complaint(`The ${end.name} ended by itself (${end.status}); why stands above. Everything else was stopped.`);
+}
+
+async function choosePort() {
+  if (!process.env.PORT) return nextFreePort(3000);
+  const port = Number(process.env.PORT);
+  if (!Number.isInteger(port) || port < 1 || port > 65535) throw new Complaint(`PORT=${process.env.PORT} is no port number.`);
+  if (!(await freePort(port)))
+    throw new Complaint(`Port ${port} (PORT) is taken. Choose another one, or leave PORT out to get a free one.`);
+  return port;
+}
+
+/** @returns 'ready', or null when that takes longer than a minute */
+function isReady(address, interruption) {
+  const answers = () =>
+    fetch(`${address}/api/health/ready`, { signal: AbortSignal.timeout(2_000) }).then(
+      (answer) => answer.ok,
+      () => false,
+    );
+  return until(async () => interruption.was() || ((await answers()) && 'ready'), 60_000);
+}
+
+function greet(address) {
+  say('ready');
+  console.log(`\n  Foreveil    ${address}\n\n  Ctrl-C stops it. The data stay in .data; deleting that folder starts anew.\n`);
+}
