@@ -22,7 +22,6 @@ const SHARED = {
 
 /** Only the shapes, for they describe what travels; no code comes along. */
 const SHARED_TYPES_TOO = {
-  continuum: ['identify'],
   atoms: ['linelist'],
   continuum: ['identify'],
   identify: ['continuum', 'detection', 'noise'],
