@@ -1,7 +1,7 @@
 import { newComponent, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
 import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
-import { mergeShreds, pruneWeak, splitBlends, trySpecialShapes } from './refine.js';
+import { applyRotation, findRotation, mergeShreds, pruneWeak, splitBlends, trySpecialShapes, type Rotation } from './refine.js';
 
 export interface DetectionInput {
   /** flux over continuum, inverse variances */
@@ -38,16 +38,23 @@ export function detect(input: DetectionInput): Detection {
   for (let i = 0; i < n; i++) if (data.weight[i]! > 0) usable++;
   const threshold = thresholdFor(input.falseFeatures, sigmaPx, usable, (widestNm / range) * n);
 
+  let rotation: Rotation | null = null;
   for (let round = 0; round < ROUNDS; round++) {
     const zeroMean = round < ROUNDS - 2;
     const residual = residualOf(model, input.continuumSigma);
     const excesses = findExcesses(residual, { instrumentSigmaPx: sigmaPx, widestNm, zeroMean, threshold, correlation: input.correlation });
     const fresh = chosen(excesses, model, threshold).map((e) => newComponent(e.kind, e.centre, Math.max(e.fwhm, e.centre / resolvingPower), start(e)));
     if (fresh.length === 0 && !zeroMean) break;
+    if (rotation) applyRotation(fresh, rotation);
     model.add(fresh);
     model.refit(2, round === 0 ? undefined : nearTo(model, fresh));
     pruneWeak(model, threshold * 0.8);
-    if (round === 1) trySpecialShapes(model, resolvingPower);
+    if (round === 0) {
+      rotation = findRotation(model, resolvingPower);
+      if (rotation) applyRotation(model.components, rotation);
+      trySpecialShapes(model, resolvingPower);
+      model.refit(1);
+    }
     model.refresh();
   }
   trySpecialShapes(model, resolvingPower);

@@ -17,21 +17,80 @@ export function pruneWeak(model: LineModel, threshold: number): void {
 }
 
 const SPECIAL_SIGNIFICANCE = 25; // a shape can be told from a Gaussian only in strong lines
-const BROAD = 2.2; // in resolution elements
+const BROAD = 1.6; // in resolution elements
+const SAME_WIDTH = 1.35; // lines of one rotating star agree in velocity width within this factor
 
-/** Broad strong lines get the shape the data prefer: rotation-broadened, winged, or Gaussian. */
+/** What the broad lines of a rotating star have in common. */
+export interface Rotation {
+  /** FWHM over wavelength */
+  readonly relativeWidth: number;
+  readonly shape: Shape;
+}
+
+/**
+ * Looks for a common velocity width among broad dips and asks whether rotation fits them better than Gaussians, all together.
+ * @returns null when no width is shared or Gaussians serve as well
+ */
+export function findRotation(model: LineModel, resolvingPower: number): Rotation | null {
+  const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > BROAD * c.centre && c.amplitude / c.sigmaAmplitude > 12);
+  const width = commonWidth(broad);
+  if (width === null) return null;
+  const members = broad.filter((c) => near(c.fwhm / c.centre, width, SAME_WIDTH)).sort((a, b) => b.amplitude / b.sigmaAmplitude - a.amplitude / a.sigmaAmplitude);
+  const shape = rotationOfWidth(width * resolvingPower);
+  let gain = 0;
+  for (const c of members.slice(0, 40)) {
+    const others = model.overlapping([c]);
+    const range = rangeOf([{ ...c, core: GAUSSIAN }]);
+    const [g, r] = [GAUSSIAN, shape].map((core) => fitBlend(model.data, [{ ...c, core }], others, model.limitsAt(c.centre), range).chi2);
+    gain += g! - r!;
+  }
+  return gain > 0 ? { relativeWidth: width, shape } : null;
+}
+
+const near = (a: number, b: number, factor: number): boolean => a < b * factor && a > b / factor;
+
+/** The relative width that most components share, weighed by their strength; null when fewer than three agree. */
+function commonWidth(broad: readonly Component[]): number | null {
+  let best = 0;
+  let at: number | null = null;
+  for (const c of broad) {
+    const alike = broad.filter((d) => near(d.fwhm / d.centre, c.fwhm / c.centre, 1.15));
+    const weight = alike.reduce((sum, d) => sum + Math.sqrt(d.amplitude / d.sigmaAmplitude), 0);
+    if (alike.length >= 3 && weight > best) {
+      best = weight;
+      at = alike.map((d) => d.fwhm / d.centre).sort((x, y) => x - y)[alike.length >> 1]!;
+    }
+  }
+  return at;
+}
+
+const shapes = new Map<number, Shape>();
+
+/** Rotation profile for a FWHM given in resolution elements; made once per blur. */
+function rotationOfWidth(elements: number): Shape {
+  const blur = 1 / 2.3548 / (0.62 * Math.max(elements, 1));
+  const key = Math.max(1, Math.min(20, Math.round(blur * 20)));
+  let shape = shapes.get(key);
+  if (!shape) shapes.set(key, (shape = rotationShape(key / 20)));
+  return shape;
+}
+
+/** Dips of the star's width take its rotation profile. */
+export function applyRotation(components: readonly Component[], rotation: Rotation): void {
+  for (const c of components) if (c.kind === 'dip' && near(c.fwhm / c.centre, rotation.relativeWidth, 1.6)) c.core = rotation.shape;
+}
+
+/** Broad strong dips get the shape the data prefer: rotation-broadened or Gaussian, with wings or without. */
 export function trySpecialShapes(model: LineModel, resolvingPower: number): void {
-  const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm > (BROAD * c.centre) / resolvingPower && c.amplitude / c.sigmaAmplitude > SPECIAL_SIGNIFICANCE);
-  if (broad.length === 0) return;
-  const rotation = rotationShapes(resolvingPower);
+  const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > BROAD * c.centre && c.amplitude / c.sigmaAmplitude > SPECIAL_SIGNIFICANCE);
   for (const c of broad.sort((a, b) => b.fwhm - a.fwhm || a.centre - b.centre)) {
     const others = model.overlapping([c]);
-    const limits = model.limitsAt(c.centre);
     const range = rangeOf([{ ...c, winged: true }]);
+    const rotation = rotationOfWidth((c.fwhm * resolvingPower) / c.centre);
     let best: Component | null = null;
     let bestChi2 = Infinity;
-    for (const trial of [variant(c, GAUSSIAN, false), variant(c, rotation(c), false), variant(c, GAUSSIAN, true), variant(c, rotation(c), true)]) {
-      const { chi2 } = fitBlend(model.data, [trial], others, limits, range);
+    for (const trial of [variant(c, GAUSSIAN, false), variant(c, rotation, false), variant(c, GAUSSIAN, true), variant(c, rotation, true)]) {
+      const { chi2 } = fitBlend(model.data, [trial], others, model.limitsAt(c.centre), range);
       const penalised = chi2 + (trial.winged ? 12 : 0);
       if (penalised < bestChi2 - 1e-9) [best, bestChi2] = [trial, penalised];
     }
@@ -40,18 +99,6 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number): void
 }
 
 const variant = (c: Component, core: Shape, winged: boolean): Component => ({ ...c, core, winged, eta: winged ? Math.max(c.eta, 0.15) : 0 });
-
-/** Rotation profiles by how much the instrument blurs them, made once per blur. */
-function rotationShapes(resolvingPower: number): (c: Component) => Shape {
-  const made = new Map<number, Shape>();
-  return (c) => {
-    const ratio = c.centre / resolvingPower / 2.3548 / (0.62 * c.fwhm);
-    const key = Math.max(1, Math.round(ratio * 20));
-    let shape = made.get(key);
-    if (!shape) made.set(key, (shape = rotationShape(key / 20)));
-    return shape;
-  };
-}
 
 /** Replaces two overlapping components by one where the data do not need both. */
 export function mergeShreds(model: LineModel, threshold: number): void {
