@@ -1,6 +1,4 @@
-import type { Spectrum } from '../spectrum/index.js';
-
-/** Good samples cut into intervals of equal width in ln wavelength: the coarse grid on which smooth curves are fitted. */
+/** Samples cut into intervals of equal width in ln wavelength: the coarse grid on which smooth curves are fitted. */
 export interface Blocks {
   readonly count: number;
   /** first sample of each block and, last, the number of samples; `count + 1` entries */
@@ -9,32 +7,47 @@ export interface Blocks {
   readonly edgeNm: Float64Array;
   /** wavelength of the middle of each block, nm */
   readonly centreNm: Float64Array;
-  /** middle of each block scaled to [-1, 1] over the range, in ln wavelength */
-  readonly x: Float64Array;
 }
 
-const LARGEST_COUNT = 320;
+/** One value per block and its inverse variance (0: not usable). */
+export interface BlockValues {
+  readonly value: Float64Array;
+  readonly weight: Float64Array;
+}
+
+export const makeBlockValues = (count: number): BlockValues => ({ value: new Float64Array(count), weight: new Float64Array(count) });
+
+const MOST_BLOCKS = 320;
 const FEWEST_SAMPLES = 12;
 
-/** Cuts a spectrum into at most a few hundred blocks of, on average, at least a dozen samples. */
-export function cutBlocks(spectrum: Spectrum): Blocks {
-  const { wavelength } = spectrum;
+/** Cuts an ascending wavelength array into at most a few hundred blocks of, on average, at least a dozen samples. */
+export function cutBlocks(wavelength: Float64Array): Blocks {
   const n = wavelength.length;
-  const count = Math.max(1, Math.min(LARGEST_COUNT, Math.floor(n / FEWEST_SAMPLES)));
+  const count = Math.max(1, Math.min(MOST_BLOCKS, Math.floor(n / FEWEST_SAMPLES)));
   const from = Math.log(wavelength[0]!);
   const step = (Math.log(wavelength[n - 1]!) - from) / count;
+  const first = new Int32Array(count + 1);
   const edgeNm = new Float64Array(count + 1);
   const centreNm = new Float64Array(count);
-  const x = new Float64Array(count);
-  const first = new Int32Array(count + 1);
   for (let b = 0, i = 0; b <= count; b++) {
     edgeNm[b] = Math.exp(from + b * step);
-    if (b < count) {
-      centreNm[b] = Math.exp(from + (b + 0.5) * step);
-      x[b] = count > 1 ? (2 * (b + 0.5)) / count - 1 : 0;
-    }
+    if (b < count) centreNm[b] = Math.exp(from + (b + 0.5) * step);
     while (b > 0 && i < n && wavelength[i]! < edgeNm[b]!) i++;
     first[b] = b === count ? n : i;
   }
-  return { count, first, edgeNm, centreNm, x };
+  return { count, first, edgeNm, centreNm };
+}
+
+/** Position of block edge (or, with 0.5 added, block middle) `b` scaled to [-1, 1]. */
+export const scaledPosition = (b: number, count: number): number => (2 * b) / count - 1;
+
+/** Level between block edges, straight in wavelength: blocks are so narrow that a smooth curve bends by less than 1e-5 in them. */
+export function interpolateLevel(out: Float64Array, wavelength: Float64Array, blocks: Blocks, edgeLevel: Float64Array) {
+  for (let b = 0; b < blocks.count; b++) {
+    const left = blocks.edgeNm[b]!;
+    const base = edgeLevel[b]!;
+    const width = blocks.edgeNm[b + 1]! - left;
+    const slope = width > 0 ? (edgeLevel[b + 1]! - base) / width : 0;
+    for (let i = blocks.first[b]!, end = blocks.first[b + 1]!; i < end; i++) out[i] = base + slope * (wavelength[i]! - left);
+  }
 }

@@ -1,86 +1,92 @@
-import type { Blocks } from './blocks.js';
-
 /** Scratch arrays of one run, as long as the spectrum. */
 export interface Workspace {
   readonly level: Float64Array;
+  /** 1 / sigma; 0 where bad */
+  readonly inverseSigma: Float64Array;
   /** (flux - level) / sigma; 0 where bad */
   readonly residual: Float64Array;
-  /** running sums over the samples still kept, one longer than the spectrum */
-  readonly sum: Float64Array;
-  readonly count: Int32Array;
   /** 1 where a sample is bad or belongs to a line, a band or an outlier */
   readonly rejected: Uint8Array;
+  /** sums of residuals and of counts over cells of 1, 2, 4, ... samples; only one size at a time is held */
+  readonly cellSum: Float64Array;
+  readonly cellCount: Int32Array;
+  readonly cellHit: Uint8Array;
 }
 
-export const makeWorkspace = (n: number): Workspace => ({
-  level: new Float64Array(n),
-  residual: new Float64Array(n),
-  sum: new Float64Array(n + 1),
-  count: new Int32Array(n + 1),
-  rejected: new Uint8Array(n),
-});
-
-/** Level between block edges, straight in wavelength: blocks are so narrow that a smooth curve bends by less than 1e-5 in them. */
-export function interpolateLevel(out: Float64Array, wavelength: Float64Array, blocks: Blocks, edgeLevel: Float64Array) {
-  for (let b = 0; b < blocks.count; b++) {
-    const left = blocks.edgeNm[b]!;
-    const base = edgeLevel[b]!;
-    const slope = (edgeLevel[b + 1]! - base) / (blocks.edgeNm[b + 1]! - left);
-    for (let i = blocks.first[b]!, end = blocks.first[b + 1]!; i < end; i++) out[i] = base + slope * (wavelength[i]! - left);
-  }
+export function makeWorkspace(sigma: Float64Array, bad: Uint8Array): Workspace {
+  const n = sigma.length;
+  const inverseSigma = new Float64Array(n);
+  for (let i = 0; i < n; i++) inverseSigma[i] = bad[i] ? 0 : 1 / sigma[i]!;
+  return {
+    level: new Float64Array(n),
+    inverseSigma,
+    residual: new Float64Array(n),
+    rejected: new Uint8Array(n),
+    cellSum: new Float64Array(n),
+    cellCount: new Int32Array(n),
+    cellHit: new Uint8Array(n),
+  };
 }
 
 /** Thresholds of one round of rejection. */
 export interface Rejection {
-  /** box widths in samples, ascending */
-  readonly widths: readonly number[];
   /** significance beyond which a box is rejected, sigma */
   readonly sigmas: number;
-  /** mean relative departure below which a box is kept whatever its significance */
+  /** mean relative departure below which a box of several samples is kept whatever its significance */
   readonly floor: number;
   /** variance of a mean of many correlated samples over that of independent ones */
   readonly inflation: number;
 }
 
 /**
- * Marks every sample that lies in a box whose mean residual is significant, for a ladder of box widths from narrow to wide: narrow
- * lines are found by narrow boxes and then no longer disturb the wide ones, which find wings and bands. Both signs alike, so that
- * pure noise is cut evenly and its mean is not moved.
+ * Marks every sample that lies in a box whose mean residual is significant, for boxes of 1, 2, 4, 8, ... samples overlapping by half:
+ * narrow lines are found by narrow boxes and then no longer disturb the wide ones, which find wings and bands. Both signs alike, so
+ * that pure noise is cut evenly and its mean is not moved. Each size costs half of the one before.
  */
-export function rejectBoxes(space: Workspace, sigma: Float64Array, bad: Uint8Array, rule: Rejection) {
-  const { level, sum, count, rejected } = space;
-  const n = level.length;
-  rejected.set(bad);
-  for (const width of rule.widths) {
-    if (width > n / 4) break;
-    runningSums(space);
-    const before = width >> 1;
-    const after = width - before;
-    const floor = width > 2 ? rule.floor : 0;
-    const variance = rule.sigmas * rule.sigmas * (width > 2 ? rule.inflation : 1);
-    let marked = 0;
-    for (let i = 0; i < n; i++) {
-      const a = i < before ? 0 : i - before;
-      const b = i + after > n ? n : i + after;
-      const m = count[b]! - count[a]!;
-      const s = sum[b]! - sum[a]!;
-      if (s * s < variance * m || 3 * m < width) continue;
-      if (Math.abs(s) * sigma[i]! < floor * m * Math.abs(level[i]!)) continue;
-      rejected.fill(1, a > marked ? a : marked, b);
-      marked = b;
+export function rejectBoxes(space: Workspace, rule: Rejection) {
+  const { residual, inverseSigma, rejected, cellSum, cellCount } = space;
+  const n = residual.length;
+  for (let i = 0; i < n; i++) {
+    const z = residual[i]!;
+    const out = inverseSigma[i] === 0 || z > rule.sigmas || z < -rule.sigmas;
+    rejected[i] = out ? 1 : 0;
+    cellSum[i] = out ? 0 : z;
+    cellCount[i] = out ? 0 : 1;
+  }
+  for (let size = 1, cells = n; cells >= 4; size *= 2) {
+    rejectPairs(space, cells, size, rule);
+    const merged = (cells + 1) >> 1;
+    for (let c = 0; c < merged; c++) {
+      const second = 2 * c + 1 < cells;
+      cellSum[c] = cellSum[2 * c]! + (second ? cellSum[2 * c + 1]! : 0);
+      cellCount[c] = cellCount[2 * c]! + (second ? cellCount[2 * c + 1]! : 0);
     }
+    cells = merged;
   }
 }
 
-function runningSums({ residual, rejected, sum, count }: Workspace) {
-  let s = 0;
-  let m = 0;
-  for (let i = 0; i < residual.length; i++) {
-    if (!rejected[i]) {
-      s += residual[i]!;
-      m++;
-    }
-    sum[i + 1] = s;
-    count[i + 1] = m;
+/** Rejects neighbouring cells whose common mean is significant; a box of which less than a third is left is not judged. */
+function rejectPairs(space: Workspace, cells: number, size: number, rule: Rejection) {
+  const { level, inverseSigma, rejected, cellSum, cellCount, cellHit } = space;
+  const n = level.length;
+  const limit = rule.sigmas * rule.sigmas * rule.inflation;
+  const fewest = (2 * size) / 3;
+  let any = false;
+  for (let c = 0; c + 1 < cells; c++) {
+    const m = cellCount[c]! + cellCount[c + 1]!;
+    const s = cellSum[c]! + cellSum[c + 1]!;
+    if (s * s < limit * m || m < fewest) continue;
+    const middle = Math.min(n - 1, (c + 1) * size);
+    if (Math.abs(s) < rule.floor * m * Math.abs(level[middle]!) * inverseSigma[middle]!) continue;
+    cellHit[c] = cellHit[c + 1] = 1;
+    any = true;
+  }
+  if (!any) return;
+  for (let c = 0; c < cells; c++) {
+    if (!cellHit[c]) continue;
+    cellHit[c] = 0;
+    cellSum[c] = 0;
+    cellCount[c] = 0;
+    rejected.fill(1, c * size, Math.min(n, (c + 1) * size));
   }
 }

@@ -1,0 +1,148 @@
+import { chebyshevInto } from '../numeric/chebyshev.js';
+import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
+import { scaledPosition, type BlockValues, type Blocks } from './blocks.js';
+import { extinctionCurve } from './extinction.js';
+import { lnPlanck, planckSlope } from './planck.js';
+
+/** ln of a factor per magnitude. */
+export const LN_PER_MAG = 0.4 * Math.LN10;
+/** Wavelength of the Balmer limit in vacuum, nm; the confluent last lines hide it up to about 372 nm. */
+export const BALMER_LIMIT_NM = 364.7;
+const JUMP_MIDDLE_NM = 367.5;
+const JUMP_WIDTH_NM = 2.5;
+
+/** Columns of the linear model of ln flux: scale, ln temperature, visual extinction, Balmer jump, then Chebyshev orders 1, 2, ... */
+export const SCALE = 0;
+export const LN_T = 1;
+export const AV = 2;
+export const JUMP = 3;
+export const RESPONSE = 4;
+
+/**
+ * ln flux per wavelength = ln B_lambda(T0) - extinction given + sum of coefficients times columns: everything a smooth continuum may do,
+ * linear about a Planck curve of `temperatureK`. Rows are block middles or block edges.
+ */
+export interface SmoothModel {
+  readonly temperatureK: number;
+  readonly columns: number;
+  readonly hasJump: boolean;
+  readonly baseCentre: Float64Array;
+  readonly baseEdge: Float64Array;
+  readonly centre: Float64Array;
+  readonly edge: Float64Array;
+}
+
+export function makeSmoothModel(blocks: Blocks, temperatureK: number, givenAv: number, orders: number): SmoothModel {
+  const columns = RESPONSE + orders;
+  const base = (nm: number) => lnPlanck(nm, temperatureK) - (givenAv ? LN_PER_MAG * givenAv * extinctionCurve(nm) : 0);
+  const rows = (nm: Float64Array, shift: number) => {
+    const out = new Float64Array(nm.length * columns);
+    const series = new Float64Array(orders + 1);
+    for (let b = 0; b < nm.length; b++) {
+      const at = b * columns;
+      out[at + SCALE] = 1;
+      out[at + LN_T] = planckSlope(nm[b]!, temperatureK);
+      out[at + AV] = -LN_PER_MAG * extinctionCurve(nm[b]!);
+      out[at + JUMP] = -1 / (1 + Math.exp((nm[b]! - JUMP_MIDDLE_NM) / JUMP_WIDTH_NM));
+      chebyshevInto(series, scaledPosition(b + shift, blocks.count), orders);
+      for (let k = 1; k <= orders; k++) out[at + RESPONSE + k - 1] = series[k]!;
+    }
+    return out;
+  };
+  return {
+    temperatureK,
+    columns,
+    hasJump: blocks.edgeNm[0]! < BALMER_LIMIT_NM - 2 && blocks.edgeNm[blocks.count]! > 390,
+    baseCentre: blocks.centreNm.map(base),
+    baseEdge: blocks.edgeNm.map(base),
+    centre: rows(blocks.centreNm, 0.5),
+    edge: rows(blocks.edgeNm, 0),
+  };
+}
+
+/** What is believed of the coefficients beforehand: independent normal deviates about 0 with these inverse variances. */
+export type Precision = Float64Array;
+const HELD = 1e12;
+
+/** How much a response may deviate: coefficients of order k are about `amplitude / (1 + (k / order)^4)`. */
+export interface ResponsePrior {
+  readonly amplitude: number;
+  readonly order: number;
+}
+
+export function precisionOf(model: SmoothModel, response: ResponsePrior, free: { temperature: boolean; extinction: boolean }): Precision {
+  const precision = new Float64Array(model.columns);
+  precision[LN_T] = free.temperature ? 1 : HELD;
+  precision[AV] = free.extinction ? 1 : HELD;
+  precision[JUMP] = model.hasJump ? 4 : HELD;
+  for (let k = 1; RESPONSE + k - 1 < model.columns; k++) {
+    const sd = response.amplitude / (1 + (k / response.order) ** 4);
+    precision[RESPONSE + k - 1] = 1 / (sd * sd);
+  }
+  return precision;
+}
+
+/** Sums over blocks that a weighted fit of the model needs: normal matrix, right side, weighted sum of squares. */
+export interface NormalSums {
+  readonly matrix: Float64Array;
+  readonly right: Float64Array;
+  squares: number;
+}
+
+export function normalSums(model: SmoothModel, { value, weight }: BlockValues): NormalSums {
+  const m = model.columns;
+  const sums: NormalSums = { matrix: new Float64Array(m * m), right: new Float64Array(m), squares: 0 };
+  for (let b = 0; b < value.length; b++) {
+    const w = weight[b]!;
+    if (!(w > 0)) continue;
+    const y = value[b]!;
+    const at = b * m;
+    sums.squares += w * y * y;
+    for (let j = 0; j < m; j++) {
+      const wj = w * model.centre[at + j]!;
+      sums.right[j]! += wj * y;
+      for (let k = 0; k <= j; k++) sums.matrix[j * m + k]! += wj * model.centre[at + k]!;
+    }
+  }
+  return sums;
+}
+
+export interface SmoothFit {
+  readonly coefficients: Float64Array;
+  /** Cholesky factor of the inverse covariance */
+  readonly factor: Float64Array;
+  /** natural log of the probability of the data under the prior, up to a constant that does not depend on the prior */
+  readonly lnEvidence: number;
+}
+
+/** Most probable coefficients; null when even the prior leaves the system singular. */
+export function solveSmooth(sums: NormalSums, precision: Precision): SmoothFit | null {
+  const m = precision.length;
+  const factor = sums.matrix.slice();
+  let lnPrior = 0;
+  for (let j = 0; j < m; j++) {
+    factor[j * m + j]! += precision[j]!;
+    if (precision[j]! > 0) lnPrior += Math.log(precision[j]!);
+  }
+  if (!choleskyInPlace(factor, m)) return null;
+  const coefficients = sums.right.slice();
+  choleskySolve(factor, m, coefficients);
+  let gain = 0;
+  let lnDeterminant = 0;
+  for (let j = 0; j < m; j++) {
+    gain += coefficients[j]! * sums.right[j]!;
+    lnDeterminant += 2 * Math.log(factor[j * m + j]!);
+  }
+  return { coefficients, factor, lnEvidence: 0.5 * (gain - sums.squares + lnPrior - lnDeterminant) };
+}
+
+/** Sum of coefficients times columns for every row of `rows`. */
+export function evaluateRows(out: Float64Array, rows: Float64Array, coefficients: Float64Array) {
+  const m = coefficients.length;
+  for (let b = 0; b < out.length; b++) {
+    let sum = 0;
+    for (let j = 0; j < m; j++) sum += rows[b * m + j]! * coefficients[j]!;
+    out[b] = sum;
+  }
+  return out;
+}

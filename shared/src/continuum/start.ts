@@ -1,0 +1,87 @@
+import type { NoiseModel } from '../noise/index.js';
+import { selectInPlace } from '../numeric/select.js';
+import type { Spectrum } from '../spectrum/index.js';
+import { makeBlockValues, type BlockValues, type Blocks } from './blocks.js';
+import { lnPlanck } from './planck.js';
+
+/** Whether features pull the flux down, push it up, or do neither on the whole. */
+export type Pull = 'dips' | 'peaks' | 'neither';
+
+/** Samples looked at per block: enough for a quantile to a tenth of the noise. */
+const SAMPLES = 96;
+const QUARTILE_SIGMA = 0.6744897501960817;
+
+/** Quartiles of each block in one array, three per block; NaN where a block has too few good samples. */
+function blockQuartiles({ flux, bad }: Spectrum, blocks: Blocks): Float64Array {
+  const out = new Float64Array(3 * blocks.count).fill(NaN);
+  const scratch = new Float64Array(2 * SAMPLES);
+  for (let b = 0; b < blocks.count; b++) {
+    const from = blocks.first[b]!;
+    const to = blocks.first[b + 1]!;
+    const stride = Math.max(1, Math.floor((to - from) / SAMPLES));
+    let m = 0;
+    for (let i = from; i < to && m < scratch.length; i += stride) if (!bad[i]) scratch[m++] = flux[i]!;
+    if (m < 4) continue;
+    const middle = m >> 1;
+    out[3 * b + 1] = selectInPlace(scratch, middle, 0, m);
+    out[3 * b] = selectInPlace(scratch, m >> 2, 0, middle);
+    out[3 * b + 2] = selectInPlace(scratch, (3 * m) >> 2, middle, m);
+  }
+  return out;
+}
+
+/**
+ * A first guess per block: the upper quartile where dips dominate, the lower one where peaks do, the median else, each freed of what
+ * noise alone makes of it. A block full of narrow dips up to three quarters still shows its continuum there.
+ */
+export function startValues(spectrum: Spectrum, noise: NoiseModel, blocks: Blocks): { values: BlockValues; pull: Pull } {
+  const quartiles = blockQuartiles(spectrum, blocks);
+  const sigma = (b: number) => noise.sigma[(blocks.first[b]! + blocks.first[b + 1]!) >> 1]!;
+  let down = 0;
+  let up = 0;
+  let usable = 0;
+  for (let b = 0; b < blocks.count; b++) {
+    const half = QUARTILE_SIGMA * sigma(b);
+    const middle = quartiles[3 * b + 1]!;
+    if (!(middle === middle)) continue;
+    down += Math.min(10, (middle - quartiles[3 * b]!) / half);
+    up += Math.min(10, (quartiles[3 * b + 2]! - middle) / half);
+    usable++;
+  }
+  const lean = usable ? (down - up) / usable : 0;
+  const pull: Pull = lean > 0.15 ? 'dips' : lean < -0.15 ? 'peaks' : 'neither';
+  const which = pull === 'dips' ? 2 : pull === 'peaks' ? 0 : 1;
+  const values = makeBlockValues(blocks.count);
+  for (let b = 0; b < blocks.count; b++) {
+    const v = quartiles[3 * b + which]! - (which - 1) * QUARTILE_SIGMA * sigma(b);
+    if (!(v > 0)) continue;
+    values.value[b] = Math.log(v);
+    values.weight[b] = (v / sigma(b)) ** 2;
+  }
+  return { values, pull };
+}
+
+/** Temperature on a grid of 10 % steps whose Planck curve follows the block values best, without any other freedom than the scale. */
+export function startTemperature(blocks: Blocks, { value, weight }: BlockValues, lnExtinction: (nm: number) => number): number {
+  const y = value.map((v, b) => v - lnExtinction(blocks.centreNm[b]!));
+  let best = Infinity;
+  let at = 6000;
+  for (let t = 800; t < 80_000; t *= 1.1) {
+    let m = 0;
+    let s1 = 0;
+    let s2 = 0;
+    for (let b = 0; b < blocks.count; b++) {
+      if (!(weight[b]! > 0)) continue;
+      const d = y[b]! - lnPlanck(blocks.centreNm[b]!, t);
+      m++;
+      s1 += d;
+      s2 += d * d;
+    }
+    const spread = s2 - (s1 * s1) / m;
+    if (spread < best) {
+      best = spread;
+      at = t;
+    }
+  }
+  return at;
+}
