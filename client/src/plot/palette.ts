@@ -1,5 +1,4 @@
-import { useComputedColorScheme } from '@mantine/core';
-import { useLayoutEffect, useState } from 'react';
+import { useSyncExternalStore } from 'react';
 
 const NAMES = [
   'ground', 'raise', 'sink', 'select', 'hover', 'line', 'line-2', 'control', 'ink', 'ink-2', 'ink-3', 'curve', 'cont', 'fit',
@@ -18,14 +17,21 @@ export function readPalette(scheme: 'light' | 'dark'): Palette {
   return { ...(colours as Record<InkName, string>), scheme };
 }
 
-/** Follows the theme; a new object, so a redraw, whenever it changes. */
-export function usePalette(): Palette {
-  const scheme = useComputedColorScheme('light');
-  const [palette, setPalette] = useState<Palette>(() => readPalette(scheme));
-  // after the theme's attribute is on the document, before the browser paints
-  useLayoutEffect(() => setPalette(readPalette(scheme)), [scheme]);
-  return palette;
+let current: Palette | null = null;
+const themeOf = () => (document.documentElement.dataset.mantineColorScheme === 'dark' ? 'dark' : 'light');
+const snapshot = (): Palette => (current ??= readPalette(themeOf()));
+
+function subscribe(changed: () => void) {
+  const observer = new MutationObserver(() => {
+    current = null;
+    changed();
+  });
+  observer.observe(document.documentElement, { attributes: true, attributeFilter: ['data-mantine-color-scheme', 'data-theme', 'class'] });
+  return () => observer.disconnect();
 }
+
+/** Follows the theme; a new object, so a redraw, whenever it changes. */
+export const usePalette = (): Palette => useSyncExternalStore(subscribe, snapshot);
 
 /** '#RRGGBB' to three components, 0 to 255. */
 export const hexComponents = (hex: string): [number, number, number] => {

@@ -1,0 +1,101 @@
+import { useElementSize } from '@mantine/hooks';
+import { useCallback, useMemo } from 'react';
+import { LightStrip } from './LightStrip.js';
+import { Mark } from './Mark.js';
+import { AxisTicks, AXIS_HEIGHT } from './WavelengthAxis.js';
+import { WindowFrame } from './WindowFrame.js';
+import { drawOverview, LANE_HEIGHT } from './draw-overview.js';
+import type { CurveData } from './curve-data.js';
+import type { MarkFamily } from './marks.js';
+import { usePalette } from './palette.js';
+import type { PlotFeature } from './plot-feature.js';
+import { columnsOf } from './pyramid.js';
+import { useCanvas, type Surface } from './useCanvas.js';
+import type { ViewStore } from './view.js';
+import type { WavelengthDisplay } from './wavelength-display.js';
+import classes from './plot.module.css';
+
+const LANES: readonly { family: MarkFamily; word: string }[] = [
+  { family: 'stellar', word: 'star' },
+  { family: 'interstellar', word: 'clouds' },
+  { family: 'nebular', word: 'nebula' },
+  { family: 'telluric', word: 'air' },
+  { family: 'unidentified', word: 'unidentified' },
+];
+const STRIP_HEIGHT = 30;
+const CURVE_HEIGHT = 36;
+/** Columns of the strip: enough for any screen, and a strip keeps the deepest of what falls into one. */
+const STRIP_COLUMNS = 2600;
+
+interface Props {
+  data: CurveData;
+  features: readonly PlotFeature[];
+  view: ViewStore;
+  display: WavelengthDisplay;
+  emission: boolean;
+  /** columns from the server, for the strip while there is no continuum */
+  preview: { low: (number | null)[]; high: (number | null)[] } | null;
+  /** what it is the strip of */
+  label: string;
+}
+
+const orNull = (v: number) => (Number.isNaN(v) ? null : v);
+
+/** Strip, one lane of ticks a family, and the whole curve, with the frame of the window that the panels below show. */
+export function Overview({ data, features, view, display, emission, preview, label }: Props) {
+  const { ref, width } = useElementSize<HTMLDivElement>();
+  const palette = usePalette();
+  const { whole } = view;
+  const lanes = useMemo(() => LANES.filter(({ family }) => features.some((f) => f.family === family)), [features]);
+  const face = useMemo(() => {
+    if (!data.fitted) return preview ?? { low: [], high: [] };
+    const { low, high } = columnsOf(
+      data.wavelength,
+      data.fitted.normalised,
+      whole.fromNm,
+      whole.toNm,
+      Math.min(STRIP_COLUMNS, data.wavelength.length),
+    );
+    return { low: Array.from(low, orNull), high: Array.from(high, orNull) };
+  }, [data, preview, whole]);
+  const families = useMemo(() => lanes.map((l) => l.family), [lanes]);
+  const draw = useCallback(
+    (surface: Surface) => drawOverview(surface, { data, features, lanes: families, whole, emission }, palette),
+    [data, features, families, whole, emission, palette],
+  );
+  const canvas = useCanvas(draw);
+  const lanesTop = STRIP_HEIGHT + 5;
+  const drawnHeight = lanes.length * LANE_HEIGHT + 3 + CURVE_HEIGHT;
+  const narrow = width < 600;
+
+  return (
+    <div
+      className={classes.overview}
+      style={{ marginLeft: narrow ? 0 : 'var(--gutter, 112px)', height: lanesTop + drawnHeight + AXIS_HEIGHT - 2 }}
+      ref={ref}
+    >
+      <LightStrip
+        wavelengthFromNm={whole.fromNm}
+        wavelengthToNm={whole.toNm}
+        {...face}
+        height={STRIP_HEIGHT}
+        emission={emission}
+        label={label}
+      />
+      <canvas ref={canvas} className={classes.overviewCurve} style={{ top: lanesTop, height: drawnHeight }} aria-hidden="true" />
+      <div style={{ position: 'absolute', top: lanesTop + drawnHeight }}>
+        {width > 0 && <AxisTicks range={whole} width={width} display={display} spacingPx={82} />}
+      </div>
+      <div style={{ position: 'absolute', right: '100%', top: lanesTop - 1, width: 100, marginRight: 12 }} hidden={narrow}>
+        {lanes.map(({ family, word }) => (
+          <div key={family} className={classes.lane}>
+            <Mark family={family} state="accepted" size={11} />
+            {word}
+            <b>{features.filter((f) => f.family === family).length}</b>
+          </div>
+        ))}
+      </div>
+      {width > 0 && <WindowFrame view={view} display={display} width={width} height={lanesTop + drawnHeight} />}
+    </div>
+  );
+}

@@ -1,0 +1,106 @@
+import uPlot from 'uplot';
+import type { CurveData } from './curve-data.js';
+import { extremesPath, isDense, smoothPath, stepPath, type Frame } from './curve-paths.js';
+import { drawFits } from './draw-fits.js';
+import { drawLight } from './draw-light.js';
+import type { Palette } from './palette.js';
+import type { PlotFeature } from './plot-feature.js';
+import { columnsOf } from './pyramid.js';
+import { valueLabels, valueTicks } from './value-axis.js';
+import { layerOf, type CurveMode } from './value-domain.js';
+
+/** What the drawing hooks look at; changed in place, so that a new selection needs no new plot. */
+export interface CurveScene {
+  data: CurveData;
+  mode: CurveMode;
+  features: readonly PlotFeature[];
+  palette: Palette;
+  /** a spectrum of bright lines */
+  emission: boolean;
+}
+
+export const FONT = "12px 'Inter Variable', sans-serif";
+
+/** Plot area and scales of a uPlot in device pixels. */
+export function frameOf(u: uPlot): Frame {
+  const { left, top, width, height } = u.bbox;
+  const { x, y } = u.scales as Record<'x' | 'y', uPlot.Scale>;
+  return { left, top, width, height, fromNm: x.min ?? 0, toNm: x.max ?? 1, low: y.min ?? 0, high: y.max ?? 1 };
+}
+
+function curvePath(u: uPlot, { data, mode }: CurveScene): uPlot.Series.Paths {
+  const f = frameOf(u);
+  const { curve } = layerOf(data, mode);
+  const stroke = new Path2D();
+  if (isDense(data.wavelength, f)) extremesPath(stroke, f, columnsOf(data.wavelength, curve, f.fromNm, f.toNm, Math.round(f.width)));
+  else stepPath(stroke, f, { wavelength: data.wavelength, values: curve.values, bad: data.bad });
+  return { stroke };
+}
+
+function continuumPath(u: uPlot, { data, mode }: CurveScene): uPlot.Series.Paths | null {
+  const { level } = layerOf(data, mode);
+  if (!level) return null;
+  const stroke = new Path2D();
+  smoothPath(stroke, frameOf(u), data.wavelength, level);
+  return { stroke };
+}
+
+/** Options of the main curve. Scales are set from the view by hand, so uPlot never ranges over the data itself. */
+export function curveOptions(
+  scene: CurveScene,
+  size: { width: number; height: number; gutter: number },
+  onSelect: (leftPx: number, widthPx: number) => void,
+): uPlot.Options {
+  const { palette } = scene;
+  const labelled = size.gutter > 0;
+  return {
+    ...size,
+    pxAlign: 0,
+    padding: [0, 0, 0, 0],
+    legend: { show: false },
+    cursor: { x: false, y: false, points: { show: false }, drag: { x: true, y: false, setScale: false, dist: 6 } },
+    scales: { x: { time: false, auto: false }, y: { auto: false } },
+    axes: [
+      { show: false },
+      {
+        show: labelled,
+        size: size.gutter,
+        gap: 7,
+        font: FONT,
+        stroke: () => scene.palette['ink-3'],
+        ticks: { show: false },
+        grid: { stroke: () => scene.palette.line, width: 1, dash: [1, 3] },
+        splits: (u, _axis, low, high) => valueTicks(low, high, u.bbox.height / uPlot.pxRatio),
+        values: (_u, splits) => valueLabels(splits, scene.mode === 'flux' ? scene.data.fluxExponent : 0),
+      },
+    ],
+    series: [
+      {},
+      { stroke: () => scene.palette.cont, width: 1.3, dash: [7, 4], points: { show: false }, paths: (u) => continuumPath(u, scene) },
+      {
+        stroke: () => scene.palette.curve,
+        width: palette.scheme === 'dark' ? 1.05 : 1.15,
+        points: { show: false },
+        paths: (u) => curvePath(u, scene),
+      },
+    ],
+    hooks: {
+      drawAxes: [
+        (u) => {
+          const sides = scene.emission ? (['given', 'taken'] as const) : (['taken'] as const);
+          drawLight(u.ctx, frameOf(u), scene.data, layerOf(scene.data, scene.mode), sides, scene.palette);
+        },
+      ],
+      draw: [
+        (u) => drawFits(u.ctx, frameOf(u), scene.data, scene.mode === 'normalised', scene.features, scene.palette, 1.7 * uPlot.pxRatio),
+      ],
+      setSelect: [
+        (u) => {
+          const { left, width } = u.select;
+          u.setSelect({ left: 0, top: 0, width: 0, height: 0 }, false);
+          if (width >= 6) onSelect(left, width);
+        },
+      ],
+    },
+  };
+}
