@@ -17,7 +17,7 @@ export interface BlockValues {
 
 export const makeBlockValues = (count: number): BlockValues => ({ value: new Float64Array(count), weight: new Float64Array(count) });
 
-const MOST_BLOCKS = 320;
+const MOST_BLOCKS = 256;
 const FEWEST_SAMPLES = 12;
 
 /** Cuts an ascending wavelength array into at most a few hundred blocks of, on average, at least a dozen samples. */

@@ -30,25 +30,27 @@ export function makeWorkspace(sigma: Float64Array, bad: Uint8Array): Workspace {
 
 /** Thresholds of one round of rejection. */
 export interface Rejection {
-  /** significance beyond which a box is rejected, sigma */
-  readonly sigmas: number;
+  /** significance beyond which a box that lies low (high) is rejected, sigma */
+  readonly sigmasDown: number;
+  readonly sigmasUp: number;
   /** mean relative departure below which a box of several samples is kept whatever its significance */
-  readonly floor: number;
+  readonly floorDown: number;
+  readonly floorUp: number;
   /** variance of a mean of many correlated samples over that of independent ones */
   readonly inflation: number;
 }
 
 /**
  * Marks every sample that lies in a box whose mean residual is significant, for boxes of 1, 2, 4, 8, ... samples overlapping by half:
- * narrow lines are found by narrow boxes and then no longer disturb the wide ones, which find wings and bands. Both signs alike, so
- * that pure noise is cut evenly and its mean is not moved. Each size costs half of the one before.
+ * narrow lines are found by narrow boxes and then no longer disturb the wide ones, which find wings and bands. With equal thresholds up
+ * and down pure noise is cut evenly and its mean is not moved. Each size costs half of the one before.
  */
 export function rejectBoxes(space: Workspace, rule: Rejection) {
   const { residual, inverseSigma, rejected, cellSum, cellCount } = space;
   const n = residual.length;
   for (let i = 0; i < n; i++) {
     const z = residual[i]!;
-    const out = inverseSigma[i] === 0 || z > rule.sigmas || z < -rule.sigmas;
+    const out = inverseSigma[i] === 0 || z > rule.sigmasUp || z < -rule.sigmasDown;
     rejected[i] = out ? 1 : 0;
     cellSum[i] = out ? 0 : z;
     cellCount[i] = out ? 0 : 1;
@@ -69,15 +71,16 @@ export function rejectBoxes(space: Workspace, rule: Rejection) {
 function rejectPairs(space: Workspace, cells: number, size: number, rule: Rejection) {
   const { level, inverseSigma, rejected, cellSum, cellCount, cellHit } = space;
   const n = level.length;
-  const limit = rule.sigmas * rule.sigmas * rule.inflation;
+  const down = rule.sigmasDown * rule.sigmasDown * rule.inflation;
+  const up = rule.sigmasUp * rule.sigmasUp * rule.inflation;
   const fewest = (2 * size) / 3;
   let any = false;
   for (let c = 0; c + 1 < cells; c++) {
     const m = cellCount[c]! + cellCount[c + 1]!;
     const s = cellSum[c]! + cellSum[c + 1]!;
-    if (s * s < limit * m || m < fewest) continue;
+    if (s * s < (s < 0 ? down : up) * m || m < fewest) continue;
     const middle = Math.min(n - 1, (c + 1) * size);
-    if (Math.abs(s) < rule.floor * m * Math.abs(level[middle]!) * inverseSigma[middle]!) continue;
+    if (Math.abs(s) < (s < 0 ? rule.floorDown : rule.floorUp) * m * Math.abs(level[middle]!) * inverseSigma[middle]!) continue;
     cellHit[c] = cellHit[c + 1] = 1;
     any = true;
   }

@@ -3,11 +3,12 @@ import { truncatedNormal } from '../numeric/normal.js';
 import { MAD_TO_SIGMA, medianInPlace } from '../numeric/select.js';
 import type { Spectrum } from '../spectrum/index.js';
 import { interpolateLevel, makeBlockValues, type BlockValues, type Blocks } from './blocks.js';
-import { makeWorkspace, rejectBoxes, type Workspace } from './line-free.js';
+import { makeWorkspace, rejectBoxes, type Rejection, type Workspace } from './line-free.js';
 import {
   evaluateRows,
   normalSums,
   precisionOf,
+  RESPONSE,
   solveSmooth,
   type ResponsePrior,
   type SmoothFit,
@@ -26,7 +27,10 @@ export interface Refined {
 }
 
 /** Relative departures that count as a line in wide boxes, round by round: coarse while the level is coarse. */
-const FLOORS = [0.03, 0.015, 0.007, 0.003, 0.0015, 0.001];
+const FLOORS = [0.03, 0.012, 0.005, 0.002, 0.001];
+/** From this floor on the response may take its full number of orders. */
+const FINE_BELOW = 0.005;
+const COARSE_COLUMNS = RESPONSE + 7;
 const BOX_SIGMAS = 3.2;
 const FIRST_RESPONSE: ResponsePrior = { amplitude: 0.03, order: 4 };
 const RESPONSES: readonly ResponsePrior[] = [0.002, 0.006, 0.02, 0.06].flatMap((amplitude) =>
@@ -37,6 +41,14 @@ const RESPONSES: readonly ResponsePrior[] = [0.002, 0.006, 0.02, 0.06].flatMap((
 function clipFor(pull: Pull) {
   const [low, high] = pull === 'dips' ? [-2, 3] : pull === 'peaks' ? [-3, 2] : [-2.5, 2.5];
   return { low, high, ...truncatedNormal(low, high) };
+}
+
+/** Where features pull to one side, a wide departure to the other is more likely a level gone astray, which must be able to come back. */
+function rejectionFor(pull: Pull, floor: number, inflation: number): Rejection {
+  const against = { sigmas: 1.6 * BOX_SIGMAS, floor: 4 * floor };
+  const down = pull === 'peaks' ? against : { sigmas: BOX_SIGMAS, floor };
+  const up = pull === 'dips' ? against : { sigmas: BOX_SIGMAS, floor };
+  return { sigmasDown: down.sigmas, floorDown: down.floor, sigmasUp: up.sigmas, floorUp: up.floor, inflation };
 }
 
 /** Rounds of: level, rejection of what departs from it, smooth fit to what is left. */
@@ -58,14 +70,15 @@ export function refine(
   let response = FIRST_RESPONSE;
   let values: BlockValues = start;
   for (let b = 0; b < blocks.count; b++) values.value[b]! -= values.weight[b]! > 0 ? model.baseCentre[b]! : 0;
-  let fit = robustFit(model, values, precisionOf(model, response, free), pull);
+  let fit = robustFit(model, values, precisionOf(model, response, free, COARSE_COLUMNS), pull, 6);
   if (!fit) return null;
   for (const floor of FLOORS) {
     setLevel(space, spectrum, blocks, model, fit.coefficients, offset, edgeLevel);
-    rejectBoxes(space, { sigmas: BOX_SIGMAS, floor, inflation: Math.max(1, inflation) });
+    rejectBoxes(space, rejectionFor(pull, floor, Math.max(1, inflation)));
     values = lineFreeMeans(space, blocks, clip, offset);
-    if (floor < 0.005) response = likeliestResponse(model, values, response, free);
-    fit = robustFit(model, values, precisionOf(model, response, free), pull) ?? fit;
+    const fine = floor < FINE_BELOW;
+    if (fine) response = likeliestResponse(model, values, response, free);
+    fit = robustFit(model, values, precisionOf(model, response, free, fine ? model.columns : COARSE_COLUMNS), pull, 2) ?? fit;
   }
   setLevel(space, spectrum, blocks, model, fit.coefficients, offset, edgeLevel);
   return { space, edgeLevel, values, fit, response };
@@ -81,8 +94,8 @@ function setLevel(
   edgeLevel: Float64Array,
 ) {
   const { level, residual, inverseSigma } = space;
-  evaluateRows(offset, model.centre, coefficients);
-  evaluateRows(edgeLevel, model.edge, coefficients);
+  evaluateRows(offset, model.centre, model.columns, coefficients);
+  evaluateRows(edgeLevel, model.edge, model.columns, coefficients);
   for (let b = 0; b <= blocks.count; b++) edgeLevel[b] = Math.exp(model.baseEdge[b]! + edgeLevel[b]!);
   interpolateLevel(level, wavelength, blocks, edgeLevel);
   for (let i = 0; i < flux.length; i++) residual[i] = inverseSigma[i] === 0 ? 0 : (flux[i]! - level[i]!) * inverseSigma[i]!;
@@ -111,12 +124,12 @@ function lineFreeMeans(space: Workspace, blocks: Blocks, clip: ReturnType<typeof
 }
 
 /** Fit by re-weighting: blocks far off, most of all on the side to which features pull, lose their say. Writes the final weights back. */
-function robustFit(model: SmoothModel, values: BlockValues, precision: Float64Array, pull: Pull): SmoothFit | null {
+function robustFit(model: SmoothModel, values: BlockValues, precision: Float64Array, pull: Pull, rounds: number): SmoothFit | null {
   const stated = values.weight.slice();
   const fitted = new Float64Array(stated.length);
-  let fit = solveSmooth(normalSums(model, values), precision);
-  for (let round = 0; round < 4 && fit; round++) {
-    evaluateRows(fitted, model.centre, fit.coefficients);
+  let fit = solveSmooth(normalSums(model, values, precision.length), precision);
+  for (let round = 0; round < rounds && fit; round++) {
+    evaluateRows(fitted, model.centre, model.columns, fit.coefficients);
     const extra = extraVariance(values.value, fitted, stated);
     for (let b = 0; b < stated.length; b++) {
       if (!(stated[b]! > 0)) continue;
@@ -126,7 +139,7 @@ function robustFit(model: SmoothModel, values: BlockValues, precision: Float64Ar
       const u = (d / reach) ** 2;
       values.weight[b] = u < 1 ? (1 - u) ** 2 / variance : 0;
     }
-    fit = solveSmooth(normalSums(model, values), precision);
+    fit = solveSmooth(normalSums(model, values, precision.length), precision);
   }
   return fit;
 }
@@ -153,7 +166,7 @@ function likeliestResponse(
   free: { temperature: boolean; extinction: boolean },
 ): ResponsePrior {
   const trial = { value: values.value, weight: values.weight.slice() };
-  if (!robustFit(model, trial, precisionOf(model, before, free), 'neither')) return before;
+  if (!robustFit(model, trial, precisionOf(model, before, free), 'neither', 1)) return before;
   const sums = normalSums(model, trial);
   let best = -Infinity;
   let chosen = before;

@@ -70,12 +70,17 @@ export interface ResponsePrior {
   readonly order: number;
 }
 
-export function precisionOf(model: SmoothModel, response: ResponsePrior, free: { temperature: boolean; extinction: boolean }): Precision {
-  const precision = new Float64Array(model.columns);
+export function precisionOf(
+  model: SmoothModel,
+  response: ResponsePrior,
+  free: { temperature: boolean; extinction: boolean },
+  columns = model.columns,
+): Precision {
+  const precision = new Float64Array(columns);
   precision[LN_T] = free.temperature ? 1 : HELD;
   precision[AV] = free.extinction ? 1 : HELD;
   precision[JUMP] = model.hasJump ? 4 : HELD;
-  for (let k = 1; RESPONSE + k - 1 < model.columns; k++) {
+  for (let k = 1; RESPONSE + k - 1 < columns; k++) {
     const sd = response.amplitude / (1 + (k / response.order) ** 4);
     precision[RESPONSE + k - 1] = 1 / (sd * sd);
   }
@@ -86,25 +91,27 @@ export function precisionOf(model: SmoothModel, response: ResponsePrior, free: {
 export interface NormalSums {
   readonly matrix: Float64Array;
   readonly right: Float64Array;
-  squares: number;
+  readonly squares: number;
 }
 
-export function normalSums(model: SmoothModel, { value, weight }: BlockValues): NormalSums {
-  const m = model.columns;
-  const sums: NormalSums = { matrix: new Float64Array(m * m), right: new Float64Array(m), squares: 0 };
-  for (let b = 0; b < value.length; b++) {
+/** Sums over the blocks for the first `m` columns of the model. */
+export function normalSums(model: SmoothModel, { value, weight }: BlockValues, m = model.columns): NormalSums {
+  const matrix = new Float64Array(m * m);
+  const right = new Float64Array(m);
+  const rows = model.centre;
+  let squares = 0;
+  for (let b = 0, at = 0; b < value.length; b++, at += model.columns) {
     const w = weight[b]!;
     if (!(w > 0)) continue;
     const y = value[b]!;
-    const at = b * m;
-    sums.squares += w * y * y;
-    for (let j = 0; j < m; j++) {
-      const wj = w * model.centre[at + j]!;
-      sums.right[j]! += wj * y;
-      for (let k = 0; k <= j; k++) sums.matrix[j * m + k]! += wj * model.centre[at + k]!;
+    squares += w * y * y;
+    for (let j = 0, to = 0; j < m; j++, to += m) {
+      const wj = w * rows[at + j]!;
+      right[j] = right[j]! + wj * y;
+      for (let k = 0; k <= j; k++) matrix[to + k] = matrix[to + k]! + wj * rows[at + k]!;
     }
   }
-  return sums;
+  return { matrix, right, squares };
 }
 
 export interface SmoothFit {
@@ -136,12 +143,11 @@ export function solveSmooth(sums: NormalSums, precision: Precision): SmoothFit |
   return { coefficients, factor, lnEvidence: 0.5 * (gain - sums.squares + lnPrior - lnDeterminant) };
 }
 
-/** Sum of coefficients times columns for every row of `rows`. */
-export function evaluateRows(out: Float64Array, rows: Float64Array, coefficients: Float64Array) {
-  const m = coefficients.length;
-  for (let b = 0; b < out.length; b++) {
+/** Sum of coefficients times columns for every row of `rows`; columns beyond the coefficients count as 0. */
+export function evaluateRows(out: Float64Array, rows: Float64Array, columns: number, coefficients: Float64Array) {
+  for (let b = 0, at = 0; b < out.length; b++, at += columns) {
     let sum = 0;
-    for (let j = 0; j < m; j++) sum += rows[b * m + j]! * coefficients[j]!;
+    for (let j = 0; j < coefficients.length; j++) sum += rows[at + j]! * coefficients[j]!;
     out[b] = sum;
   }
   return out;
