@@ -1,0 +1,60 @@
+import { existsSync } from 'node:fs';
+import { Module } from '@nestjs/common';
+import { APP_FILTER, APP_PIPE } from '@nestjs/core';
+import { ServeStaticModule } from '@nestjs/serve-static';
+import { AuthModule } from './common/auth/auth.module.js';
+import { ProblemFilter } from './common/errors/problem.filter.js';
+import { validationPipe } from './common/errors/validation.js';
+import { LogModule } from './common/log/log.module.js';
+import type { Config } from './config/config.js';
+import { CONFIG, ConfigModule } from './config/config.module.js';
+import { DatabaseModule } from './database/database.module.js';
+import { AccountsModule } from './modules/accounts/accounts.module.js';
+import { AnalysesModule } from './modules/analyses/analyses.module.js';
+import { EventsModule } from './modules/events/events.module.js';
+import { HealthModule } from './modules/health/health.module.js';
+import { LineListsModule } from './modules/linelists/linelists.module.js';
+import { ProgrammesModule } from './modules/programmes/programmes.module.js';
+import { SpectraModule } from './modules/spectra/spectra.module.js';
+import { TargetsModule } from './modules/targets/targets.module.js';
+
+/** The built client, where there is one: any address but those of the API and of its own files is a page of it. */
+const ClientModule = ServeStaticModule.forRootAsync({
+  inject: [CONFIG],
+  useFactory: ({ clientDir }: Config) =>
+    existsSync(clientDir)
+      ? [
+          {
+            rootPath: clientDir,
+            exclude: ['/api/{*rest}', '/assets/{*rest}'],
+            serveStaticOptions: {
+              setHeaders: (response, path) =>
+                void response.setHeader('Cache-Control', path.includes('/assets/') ? 'public, max-age=31536000, immutable' : 'no-cache'),
+            },
+          },
+        ]
+      : [],
+});
+
+@Module({
+  imports: [
+    ConfigModule,
+    LogModule,
+    ClientModule,
+    DatabaseModule,
+    AuthModule,
+    AccountsModule,
+    ProgrammesModule,
+    TargetsModule,
+    SpectraModule,
+    LineListsModule,
+    AnalysesModule,
+    EventsModule,
+    HealthModule,
+  ],
+  providers: [
+    { provide: APP_FILTER, useClass: ProblemFilter },
+    { provide: APP_PIPE, useFactory: validationPipe },
+  ],
+})
+export class AppModule {}

@@ -1,0 +1,23 @@
+import { randomUUID } from 'node:crypto';
+import type { IncomingMessage } from 'node:http';
+import { LoggerModule } from 'nestjs-pino';
+import type { Config } from '../../config/config.js';
+import { CONFIG } from '../../config/config.module.js';
+
+/** What must never reach a log line. */
+const SECRET = ['req.headers.cookie', 'req.headers.authorization', 'res.headers["set-cookie"]', 'req.body', '*.password'];
+
+/** One JSON line per API request, with the trace id that the answer carries and the person's id. */
+export const LogModule = LoggerModule.forRootAsync({
+  inject: [CONFIG],
+  useFactory: (config: Config) => ({
+    pinoHttp: {
+      level: config.logLevel,
+      redact: SECRET,
+      genReqId: () => randomUUID(),
+      autoLogging: { ignore: (request: IncomingMessage) => !request.url?.startsWith('/api/') || request.url.startsWith('/api/health/') },
+      customProps: (request: IncomingMessage) => ({ userId: (request as { user?: { userId: string } }).user?.userId }),
+      serializers: { req: ({ id, method, url, remoteAddress }: Record<string, unknown>) => ({ id, method, url, remoteAddress }) },
+    },
+  }),
+});

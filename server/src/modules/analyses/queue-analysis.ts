@@ -1,0 +1,41 @@
+import { DEFAULT_SETTINGS, PROGRAM_VERSION, type AnalysisSettings } from '@foreveil/shared';
+import { DomainError } from '../../common/errors/domain-error.js';
+import type { Trx } from '../../database/transaction.js';
+import { sayEvent } from '../events/say-event.js';
+import { defaultLineListId } from '../linelists/line-list-store.js';
+import type { Scope } from '../../common/scope.js';
+import { insertAnalysis } from './analyses.repository.js';
+import { sendAnalyseJob } from './job-queue.js';
+
+interface Wanted {
+  readonly spectrumId: string;
+  readonly userId: string;
+  readonly settings?: Partial<AnalysisSettings>;
+}
+
+/** Puts an analysis of a spectrum into the queue. One at a time: a second one has to wait until the first ends or is cancelled. */
+export async function queueAnalysis(
+  trx: Trx,
+  scope: Scope,
+  { spectrumId, userId, settings }: Wanted,
+  analysisSeconds: number,
+): Promise<string> {
+  const lineListId = await defaultLineListId(trx);
+  if (!lineListId) throw new DomainError('unavailable', 'No line list is installed: npm run db -- seed');
+  const id = await insertAnalysis(trx, scope, {
+    spectrumId,
+    lineListId,
+    userId,
+    settings: { ...DEFAULT_SETTINGS, ...onlySet(settings ?? {}) },
+    programVersion: PROGRAM_VERSION,
+  });
+  if (!id) throw new DomainError('bad_transition', 'An analysis of this spectrum is still at work. Wait for it, or cancel it first.');
+  const jobId = await sendAnalyseJob(trx, { analysisId: id }, analysisSeconds);
+  await trx('analyses').where({ id }).update({ job_id: jobId });
+  await sayEvent(trx, { kind: 'analysis', programmeId: scope.programmeId, id });
+  return id;
+}
+
+/** A request's shape holds undefined for what was left out, and that must not cover a default. */
+const onlySet = (settings: Partial<AnalysisSettings>): Partial<AnalysisSettings> =>
+  Object.fromEntries(Object.entries(settings).filter(([, value]) => value !== undefined));

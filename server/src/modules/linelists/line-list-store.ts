@@ -1,0 +1,78 @@
+import type { Family, Line, LineList } from '@foreveil/shared';
+import type { Knex } from 'knex';
+
+export async function defaultLineListId(db: Knex): Promise<string | null> {
+  const row = await db('line_lists').where({ is_default: true }).first<{ id: string }>('id');
+  return row?.id ?? null;
+}
+
+export interface LineListRow {
+  readonly id: string;
+  readonly name: string;
+  readonly version: string;
+  readonly isDefault: boolean;
+  readonly lines: number;
+}
+
+export const findLineLists = (db: Knex): Promise<LineListRow[]> =>
+  db('line_lists as l')
+    .orderBy('l.is_default', 'desc')
+    .orderBy('l.name')
+    .orderBy('l.created_at', 'desc')
+    .select<LineListRow[]>(
+      { id: 'l.id', name: 'l.name', version: 'l.version', isDefault: 'l.is_default' },
+      db.raw('(select count(*)::int from lines where line_list_id = l.id) as lines'),
+    );
+
+const LINE: Record<keyof Line, string> = {
+  id: 'line_id',
+  species: 'species',
+  element: 'element',
+  ionStage: 'ion_stage',
+  wavelengthNm: 'wavelength_nm',
+  type: 'type',
+  lowerEnergyPerCm: 'lower_energy_per_cm',
+  upperEnergyPerCm: 'upper_energy_per_cm',
+  lowerJ: 'lower_j',
+  upperJ: 'upper_j',
+  logGf: 'log_gf',
+  oscillatorStrength: 'oscillator_strength',
+  einsteinA: 'einstein_a_per_s',
+  bandFwhmNm: 'band_fwhm_nm',
+  settings: 'settings',
+  multiplet: 'multiplet',
+  relativeIntensity: 'relative_intensity',
+  relativeIntensityScale: 'relative_intensity_scale',
+  tier: 'tier',
+  source: 'source',
+};
+
+/** A whole list as the analysis takes it. */
+export async function loadLineList(db: Knex, id: string): Promise<LineList> {
+  const list = await db('line_lists').where({ id }).first<{ name: string; version: string }>('name', 'version');
+  if (!list) throw new Error(`no line list ${id}`);
+  return { ...list, lines: await db('lines').where({ line_list_id: id }).orderBy('position').select<Line[]>(LINE) };
+}
+
+/** One line of a list, or null. */
+export async function findLine(db: Knex, listId: string, lineId: string): Promise<Line | null> {
+  return (await db('lines').where({ line_list_id: listId, line_id: lineId }).first<Line | undefined>(LINE)) ?? null;
+}
+
+const ROWS_AT_ONCE = 1000;
+
+/** Stores a list, as the one default when asked, and @returns its id. A list of this name and version must not exist yet. */
+export async function insertLineList(db: Knex, list: LineList, { isDefault }: { isDefault: boolean }): Promise<string> {
+  if (isDefault) await db('line_lists').where({ is_default: true }).update({ is_default: false });
+  const [row] = await db('line_lists')
+    .insert({ name: list.name, version: list.version, is_default: isDefault })
+    .returning<{ id: string }[]>('id');
+  const rows = list.lines.map((line, position) => toRow(row!.id, line, position));
+  for (let from = 0; from < rows.length; from += ROWS_AT_ONCE) await db('lines').insert(rows.slice(from, from + ROWS_AT_ONCE));
+  return row!.id;
+}
+
+function toRow(listId: string, line: Line, position: number): Record<string, unknown> {
+  const columns = Object.entries(LINE).map(([key, column]) => [column, line[key as keyof Line]]);
+  return { ...Object.fromEntries(columns), line_list_id: listId, position, settings: [...line.settings] satisfies Family[] };
+}

@@ -1,0 +1,57 @@
+import { existsSync } from 'node:fs';
+import { fileURLToPath } from 'node:url';
+import { Worker } from 'node:worker_threads';
+import type { Reading, ReadingCorrections, ReadResult, Spectrum, SpectrumSummary } from '@foreveil/shared';
+
+export interface ReadJob {
+  readonly bytes: Uint8Array;
+  readonly fileName: string;
+  readonly corrections: ReadingCorrections;
+}
+interface Limits {
+  readonly readSeconds: number;
+  readonly readMemoryMb: number;
+}
+export type ThreadResult =
+  | { readonly ok: true; readonly spectrum: Spectrum; readonly reading: Reading; readonly preview: SpectrumSummary['preview'] }
+  | Extract<ReadResult, { ok: false }>;
+
+/** Threads load plain JavaScript: beside this file in dist, or dist's copy when this file itself runs as TypeScript source (tests). */
+const beside = fileURLToPath(new URL('./read-spectrum.thread.js', import.meta.url));
+const built = fileURLToPath(new URL('../../../dist/modules/spectra/read-spectrum.thread.js', import.meta.url));
+export const READER_THREAD = existsSync(beside) ? beside : built;
+
+/**
+ * Reads a file within limits of time and memory. A reader that breaks either, or dies, is a file that cannot be read, not a fault of ours;
+ * `onFailure` hears of a death, because it may be a fault of the reader all the same.
+ */
+export async function readInThread(
+  job: ReadJob,
+  { readSeconds, readMemoryMb }: Limits,
+  onFailure: (error: unknown) => void = () => undefined,
+  script = READER_THREAD,
+): Promise<ThreadResult> {
+  const resourceLimits = { maxOldGenerationSizeMb: readMemoryMb };
+  const thread = new Worker(script, { workerData: job, resourceLimits, execArgv: [] });
+  let timer: NodeJS.Timeout | undefined;
+  try {
+    return await new Promise<ThreadResult>((resolve) => {
+      const unreadable = (code: string, sentence: string) => resolve({ ok: false, problem: { code, sentence } });
+      timer = setTimeout(
+        () => unreadable('too_slow', `Reading the file took more than ${readSeconds} s and was stopped.`),
+        readSeconds * 1000,
+      );
+      thread.once('message', (result: ThreadResult) => resolve(result));
+      thread.once('error', (error: NodeJS.ErrnoException) => {
+        onFailure(error);
+        if (error.code === 'ERR_WORKER_OUT_OF_MEMORY') {
+          unreadable('too_much_memory', `Reading the file took more than ${readMemoryMb} MiB of memory and was stopped.`);
+        } else unreadable('reader_failed', 'The reader failed on this file. It may be damaged, or of a kind that is not supported.');
+      });
+      thread.once('exit', () => unreadable('reader_failed', 'The reader stopped without an answer.'));
+    });
+  } finally {
+    clearTimeout(timer);
+    await thread.terminate();
+  }
+}
