@@ -1,0 +1,14 @@
+/** Addresses of the pages, written once: routes are made of them and links go through them. */
+export const pagePaths = {
+  signIn: '/sign-in',
+  programmes: '/',
+  programme: (p: string) => `/programmes/${p}`,
+  upload: (p: string, targetId?: string) => `/programmes/${p}/add${targetId ? `?target=${targetId}` : ''}`,
+  target: (p: string, t: string) => `/programmes/${p}/targets/${t}`,
+  spectrum: (p: string, s: string) => `/programmes/${p}/spectra/${s}`,
+} as const;
+
+/** Where to go after signing in: a page of ours or the start, never an address elsewhere. */
+export function safeNext(next: string | null): string {
+  return next && /^\/(?![/\\])/.test(next) && !next.startsWith(pagePaths.signIn) ? next : pagePaths.programmes;
+}

@@ -1,0 +1,65 @@
+import type { AnalysisSummary, Identification, ProgrammeEvent, SpectrumSummary, Target, TargetSummary } from '@foreveil/shared';
+import type { QueryClient } from '@tanstack/react-query';
+import { programmeQueries, targetQueries } from './queries/programmes.js';
+import { analysisQueries, identificationQueries, spectrumQueries } from './queries/spectra.js';
+
+const ENDED: ReadonlySet<AnalysisSummary['phase']> = new Set(['COMPLETED', 'ERROR', 'ABORTED']);
+
+/** Puts what the server told into the cache of every page that shows it; what it did not tell in full is fetched anew. */
+export function applyEvent(client: QueryClient, programmeId: string, event: ProgrammeEvent): void {
+  switch (event.type) {
+    case 'analysis':
+      return applyAnalysis(client, programmeId, event.spectrumId, event.analysis);
+    case 'identification':
+      return applyIdentification(client, programmeId, event.identification);
+    case 'spectrum':
+      refetch(client, targetQueries.all(programmeId), programmeQueries.detail(programmeId).queryKey);
+  }
+}
+
+function refetch(client: QueryClient, ...keys: (readonly unknown[])[]) {
+  for (const queryKey of keys) void client.invalidateQueries({ queryKey });
+}
+
+function applyAnalysis(client: QueryClient, programmeId: string, spectrumId: string, analysis: AnalysisSummary) {
+  const patch = <S extends SpectrumSummary>(spectrum: S): S => (spectrum.id === spectrumId ? { ...spectrum, analysis } : spectrum);
+  const patchTarget = <T extends TargetSummary>(target: T): T =>
+    target.spectra.some(({ id }) => id === spectrumId) ? { ...target, spectra: target.spectra.map(patch) } : target;
+
+  client.setQueryData(targetQueries.list(programmeId).queryKey, (old) => old?.map(patchTarget));
+  for (const [key] of client.getQueriesData<Target>({ queryKey: targetQueries.all(programmeId) })) {
+    if (key.at(-1) !== 'list') client.setQueryData<Target>(key, (old) => old && patchTarget(old));
+  }
+  client.setQueryData(spectrumQueries.detail(programmeId, spectrumId).queryKey, (old) => old && patch(old));
+  client.setQueryData(
+    analysisQueries.list(programmeId, spectrumId).queryKey,
+    (old) =>
+      old && (old.some(({ id }) => id === analysis.id) ? old.map((one) => (one.id === analysis.id ? analysis : one)) : [analysis, ...old]),
+  );
+  client.setQueryData(analysisQueries.detail(programmeId, analysis.id).queryKey, (old) => old && { ...old, ...analysis });
+  if (!ENDED.has(analysis.phase)) return;
+  // counts, the strip's continuum and the result came with it
+  refetch(
+    client,
+    targetQueries.all(programmeId),
+    spectrumQueries.all(programmeId, spectrumId),
+    analysisQueries.detail(programmeId, analysis.id).queryKey,
+    programmeQueries.detail(programmeId).queryKey,
+  );
+}
+
+const newest = (old: Identification[] | undefined, one: Identification) => {
+  if (!old) return old;
+  if (!old.some(({ id }) => id === one.id)) return [...old, one];
+  return old.map((each) => (each.id === one.id && each.version <= one.version ? one : each));
+};
+
+function applyIdentification(client: QueryClient, programmeId: string, one: Identification) {
+  client.setQueryData(identificationQueries.list(programmeId, one.spectrumId).queryKey, (old) => newest(old, one));
+  client.setQueryData(
+    targetQueries.detail(programmeId, one.targetId).queryKey,
+    (old) => old && { ...old, identifications: newest(old.identifications, one) ?? [] },
+  );
+  // open and accepted counts stand on the lists
+  refetch(client, targetQueries.list(programmeId).queryKey, programmeQueries.detail(programmeId).queryKey);
+}
