@@ -1,11 +1,11 @@
 import { DEMO, closeCluster, openCluster } from './postgres/cluster.mjs';
 import { typescript } from './processes.mjs';
 import { Complaint, say } from './say.mjs';
-import { runTracked } from './supervisor.mjs';
+import { runForOutput } from './supervisor.mjs';
 
 /**
  * The database of `npm start`, its tables up to date: the one DATABASE_URL names, else the private one of this checkout.
- * @returns {Promise<{ url: string, close(): Promise<void> }>}
+ * @returns {Promise<{ url: string, accounts: string, close(): Promise<void> }>} `accounts`: the demonstration's, one a line; '' without it
  */
 export async function openDatabase() {
   const given = process.env.DATABASE_URL;
@@ -14,21 +14,20 @@ export async function openDatabase() {
     if (!given) await closeCluster(DEMO);
   };
   try {
-    await prepareTables(url);
-    return { url, close };
+    say('bringing the tables up to date');
+    await commandDatabase(url, 'migrate', 'seed-if-empty');
+    return { url, accounts: await commandDatabase(url, 'accounts'), close };
   } catch (error) {
     await close();
     throw error;
   }
 }
 
-/** Migrates, and fills an empty database with the line lists and the demonstration. */
-async function prepareTables(url) {
-  say('bringing the tables up to date');
+/** Runs commands of scripts/db.ts. @returns what they printed */
+async function commandDatabase(url, ...commands) {
   const env = { FOREVEIL_MODE: 'demo', ...process.env, DATABASE_URL: url };
-  const status = await runTracked(process.execPath, [...typescript, 'scripts/db.ts', 'migrate', 'seed-if-empty'], {
-    env,
-    stdio: ['ignore', 2, 2],
-  });
+  const args = [...typescript, 'scripts/db.ts', ...commands];
+  const { status, output } = await runForOutput(process.execPath, args, { env, stdio: ['ignore', 'pipe', 2] });
   if (status !== 0) throw new Complaint('The tables could not be brought up to date; why stands above.');
+  return output.trim();
 }

@@ -11,11 +11,12 @@ export function start() {
   const interruption = onInterruption();
   return tell(async () => {
     try {
+      const port = await choosePort();
       await ensureDependencies();
       const database = await openDatabase();
       try {
         await build();
-        await serve(database.url, interruption);
+        await serve(database, port, interruption);
       } finally {
         await stopChildren();
         await database.close();
@@ -29,15 +30,14 @@ export function start() {
 }
 
 /** Runs the API and a worker until an interruption; one that ends by itself is a failure. */
-async function serve(databaseUrl, interruption) {
+async function serve({ url, accounts }, port, interruption) {
   if (interruption.was()) return;
-  const port = await choosePort();
   const env = {
     NODE_ENV: 'production',
     FOREVEIL_MODE: 'demo',
     LOG_LEVEL: 'warn',
     ...process.env,
-    DATABASE_URL: databaseUrl,
+    DATABASE_URL: url,
     PORT: String(port),
   };
   const command = (file) => [process.execPath, ['--enable-source-maps', `server/dist/${file}`], { env }];
@@ -46,7 +46,7 @@ async function serve(databaseUrl, interruption) {
 
   const address = `http://127.0.0.1:${port}`;
   const first = await Promise.race([death, interruption.interrupted, isReady(address, interruption)]);
-  if (first === 'ready') greet(address);
+  if (first === 'ready') greet(address, accounts);
   const end = first === 'ready' ? await Promise.race([death, interruption.interrupted]) : first;
   if (interruption.was()) return;
   if (end === null) throw new Complaint(`The API did not get ready within a minute at ${address}/api/health/ready.`);
@@ -72,7 +72,8 @@ function isReady(address, interruption) {
   return until(async () => interruption.was() || ((await answers()) && 'ready'), 60_000);
 }
 
-function greet(address) {
+function greet(address, accounts) {
   say('ready');
-  console.log(`\n  Foreveil    ${address}\n\n  Ctrl-C stops it. The data stay in .data; deleting that folder starts anew.\n`);
+  const signIns = accounts && `  sign in as  ${accounts.replaceAll('\n', '\n              ')}\n`;
+  console.log(`\n  Foreveil    ${address}\n${signIns}\n  Ctrl-C stops it. The data stay in .data; deleting that folder starts anew.\n`);
 }

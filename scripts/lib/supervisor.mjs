@@ -2,7 +2,6 @@ import { spawn } from 'node:child_process';
 import { once } from 'node:events';
 import { root } from './paths.mjs';
 import { pause } from './processes.mjs';
-import { say } from './say.mjs';
 
 // Every child gets a process group of its own: a Ctrl-C in the terminal then reaches this process only, which ends them in the right order,
 // and a whole group can be ended when its first process is gone already.
@@ -31,6 +30,18 @@ export async function runTracked(command, args, options) {
   return typeof status === 'number' ? status : 1;
 }
 
+/** Runs a program to its end and keeps what it writes. Standard error is kept too unless `options.stdio` sends it elsewhere. */
+export async function runForOutput(command, args, options) {
+  const child = startChild(command, command, args, { stdio: ['ignore', 'pipe', 'pipe'], ...options });
+  const streams = [child.process.stdout, child.process.stderr].filter(Boolean);
+  const pieces = [];
+  for (const stream of streams) stream.on('data', (piece) => pieces.push(piece));
+  const drained = Promise.all(streams.map((stream) => once(stream, 'close')));
+  const status = await child.ended;
+  await Promise.race([drained, pause(2_000)]); // something it started may hold its pipes open for ever
+  return { status: typeof status === 'number' ? status : 1, output: Buffer.concat(pieces).toString('utf8') };
+}
+
 /** Ends all children and waits for them: politely first, after `patienceMs` by force. */
 export async function stopChildren(patienceMs = 15_000) {
   const all = [...children];
@@ -52,22 +63,18 @@ function signalGroup({ process: child }, signal) {
 const SIGNALS = ['SIGINT', 'SIGTERM', 'SIGHUP'];
 
 /**
- * From now on the first Ctrl-C or SIGTERM resolves `interrupted` and ends the children, and a second one ends everything at once.
+ * From now on a Ctrl-C or SIGTERM resolves `interrupted` and ends the children, a second one ends them by force, a third one this process.
  * @returns {{ interrupted: Promise<string>, was: () => boolean }}
  */
 export function onInterruption() {
   let signals = 0;
   const interrupted = Promise.race(SIGNALS.map((signal) => once(process, signal).then(() => signal)));
-  for (const signal of SIGNALS) {
-    process.on(signal, () => {
-      signals++;
-      if (signals === 1) void stopChildren();
-      else {
-        for (const child of children) signalGroup(child, 'SIGKILL');
-        say('stopped by force');
-        process.exit(1);
-      }
-    });
-  }
+  const answer = () => {
+    signals++;
+    if (signals === 1) void stopChildren();
+    if (signals === 2) for (const child of children) signalGroup(child, 'SIGKILL');
+    if (signals === 3) process.exit(1);
+  };
+  for (const signal of SIGNALS) process.on(signal, answer);
   return { interrupted, was: () => signals > 0 };
 }

@@ -4,7 +4,7 @@ import { chromium } from '../chromium.mjs';
 import { ensureDependencies } from '../dependencies.mjs';
 import { TEST, closeCluster, openCluster } from '../postgres/cluster.mjs';
 import { say, tell } from '../say.mjs';
-import { onInterruption, startChild } from '../supervisor.mjs';
+import { onInterruption, runForOutput } from '../supervisor.mjs';
 import { countsOf, inWords, sum } from './results.mjs';
 import { allSteps, reportsDir } from './steps.mjs';
 
@@ -82,7 +82,7 @@ async function runAll(steps, provided, interruption) {
 async function runStep(step, { env, missing }) {
   const obstacle = step.needs.map((need) => missing[need]).find(Boolean);
   const from = Date.now();
-  const { status, output } = obstacle ? { status: 1, output: obstacle } : await runQuietly(step.command, { ...testEnvironment(), ...env });
+  const { status, output } = obstacle ? { status: 1, output: obstacle } : await runStepCommand(step, env);
   const counts = countsOf(step, status);
   if (counts.failed > 0) missing[step.name] = `not run, because the step "${step.name}" failed`;
   const verdict = counts.failed === 0 ? 'ok    ' : 'FAILED';
@@ -91,12 +91,8 @@ async function runStep(step, { env, missing }) {
   return counts;
 }
 
-async function runQuietly([command, ...args], env) {
-  const child = startChild(args[0], command, args, { env, stdio: ['ignore', 'pipe', 'pipe'] });
-  const pieces = [];
-  for (const stream of [child.process.stdout, child.process.stderr]) stream.on('data', (piece) => pieces.push(piece));
-  const status = await child.ended;
-  return { status: typeof status === 'number' ? status : 1, output: Buffer.concat(pieces).toString('utf8') };
+function runStepCommand({ command: [program, ...args] }, env) {
+  return runForOutput(program, args, { env: { ...testEnvironment(), ...env } });
 }
 
 /** Without what a person's shell adds for other purposes, so that a run means the same everywhere. */
