@@ -12,7 +12,8 @@ export interface Stated<T> {
 }
 
 /** Spectral axis units the reader converts from. 'velocity' axes carry their rest wavelength in the header. */
-export type AxisUnit = 'm' | 'nm' | 'angstrom' | 'micron' | 'wavenumber_per_cm' | 'wavenumber_per_m' | 'hz' | 'ghz' | 'thz' | 'ev' | 'kev' | 'velocity';
+export type AxisUnit =
+  'm' | 'nm' | 'angstrom' | 'micron' | 'wavenumber_per_cm' | 'wavenumber_per_m' | 'hz' | 'ghz' | 'thz' | 'ev' | 'kev' | 'velocity';
 
 export type UncertaintyKind = 'sigma' | 'variance' | 'inverse_variance';
 
@@ -85,5 +86,4 @@ export interface ReadProblem {
 }
 
 export type ReadResult =
-  | { readonly ok: true; readonly spectrum: Spectrum; readonly reading: Reading }
-  | { readonly ok: false; readonly problem: ReadProblem };
+  { readonly ok: true; readonly spectrum: Spectrum; readonly reading: Reading } | { readonly ok: false; readonly problem: ReadProblem };

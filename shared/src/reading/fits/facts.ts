@@ -1,0 +1,118 @@
+import type { Frame } from '../../spectrum/index.js';
+import type { Medium } from '../../units/index.js';
+import { isoFromFitsDate, isoFromMjd } from '../dates.js';
+import { notStated, parseFrame, stated } from '../columns/medium.js';
+import type { Facts } from '../raw.js';
+import { quoted } from '../refusal.js';
+import type { ReadWarning, Stated } from '../types.js';
+import type { Header } from './header.js';
+
+/** The headers that speak for a spectrum, the closest first: that of its own unit, then the primary one. */
+export type Headers = readonly Header[];
+
+function firstText(headers: Headers, ...keywords: string[]): { value: string; where: string } | null {
+  for (const keyword of keywords)
+    for (const header of headers) {
+      const value = header.text(keyword);
+      if (value !== null) return { value, where: keyword };
+    }
+  return null;
+}
+
+function firstNumber(headers: Headers, ...keywords: string[]): { value: number; where: string } | null {
+  for (const keyword of keywords)
+    for (const header of headers) {
+      const value = header.number(keyword);
+      if (value !== null) return { value, where: keyword };
+    }
+  return null;
+}
+
+/** What the headers say of the observation. */
+export function readFacts(headers: Headers, warnings: ReadWarning[]): Facts {
+  const object = firstText(headers, 'OBJECT', 'TARGNAME', 'TARGET', 'OBJNAME');
+  return {
+    objectName: object ? stated(object.value, object.where) : notStated(null),
+    frame: frameOf(headers, warnings),
+    resolvingPower: resolvingPowerOf(headers),
+    observedAt: observedAt(headers),
+    instrument: firstText(headers, 'INSTRUME', 'BSS_INST')?.value ?? null,
+    telescope: firstText(headers, 'TELESCOP')?.value ?? null,
+    ...positionOf(headers),
+  };
+}
+
+function frameOf(headers: Headers, warnings: ReadWarning[]): Stated<Frame> {
+  const specsys = firstText(headers, 'SPECSYS', 'SPECSYSA');
+  if (specsys) {
+    const frame = parseFrame(specsys.value);
+    if (frame) return stated(frame, specsys.where);
+    warnings.push({
+      code: 'frame_unknown',
+      sentence: `The velocity frame ${specsys.where} = '${quoted(specsys.value)}' is not one that is known here; the frame counts as unknown.`,
+    });
+  }
+  // Hubble's spectrographs say so when the wavelengths were brought to the Sun
+  if (firstText(headers, 'HELCORR')?.value.toUpperCase() === 'COMPLETE') return stated('heliocentric', 'HELCORR');
+  return notStated('unknown');
+}
+
+/** SPEC_RP is lambda / FWHM. Archives write the same into SPEC_RES, the data model a width in the axis unit there. */
+function resolvingPowerOf(headers: Headers): Stated<number | null> {
+  const direct = firstNumber(headers, 'SPEC_RP', 'BSS_ITRP');
+  if (direct && direct.value > 0) return stated(direct.value, direct.where);
+  const either = firstNumber(headers, 'SPEC_RES');
+  if (either && either.value >= 50) return stated(either.value, either.where);
+  return notStated(null);
+}
+
+function observedAt(headers: Headers): Stated<string | null> {
+  const date = firstText(headers, 'DATE-AVG', 'DATE-OBS', 'DATE-BEG');
+  if (date) {
+    const time = firstText(headers, 'TIME-OBS', 'UTSTART', 'UT')?.value ?? '';
+    const iso = isoFromFitsDate(date.value, time);
+    if (iso) return stated(iso, date.where);
+  }
+  const mjd = firstNumber(headers, 'MJD-AVG', 'MJD-OBS', 'MJD-BEG', 'MJD');
+  const iso = mjd && isoFromMjd(mjd.value);
+  return iso ? stated(iso, mjd.where) : notStated(null);
+}
+
+/** Only ICRS and FK5 of J2000, which agree to a fraction of an arcsecond, are taken over. */
+function positionOf(headers: Headers): { raDeg: number | null; decDeg: number | null } {
+  const nothing = { raDeg: null, decDeg: null };
+  const system = firstText(headers, 'RADESYS', 'RADECSYS')?.value.toUpperCase();
+  const equinox = firstNumber(headers, 'EQUINOX', 'EPOCH')?.value;
+  if ((system !== undefined && system !== 'ICRS' && system !== 'FK5') || (equinox !== undefined && equinox !== 2000)) return nothing;
+  const ra = angle(headers, ['RA', 'RA_TARG', 'RA_OBJ', 'OBJCTRA'], 15);
+  const dec = angle(headers, ['DEC', 'DEC_TARG', 'DEC_OBJ', 'OBJCTDEC'], 1);
+  if (ra === null || dec === null || ra < 0 || ra >= 360 || Math.abs(dec) > 90) return nothing;
+  return { raDeg: ra, decDeg: dec };
+}
+
+/** Degrees from a number or a sexagesimal text; right ascension in sexagesimal form counts hours. */
+function angle(headers: Headers, keywords: string[], perUnit: number): number | null {
+  const number = firstNumber(headers, ...keywords);
+  if (number) return number.value;
+  const text = firstText(headers, ...keywords)?.value ?? '';
+  const parts = /^([+-]?)(\d{1,3})[:\s](\d{1,2})[:\s](\d{1,2}(?:\.\d*)?)$/.exec(text);
+  if (!parts) return null;
+  const value = Number(parts[2]) + Number(parts[3]) / 60 + Number(parts[4]) / 3600;
+  return (parts[1] === '-' ? -value : value) * perUnit;
+}
+
+/** Medium of the wavelengths by cards that say it for the whole file. */
+export function mediumOfCards(headers: Headers): Stated<Medium> | null {
+  for (const header of headers) {
+    const vacuum = header.get('VACUUM');
+    if (vacuum === true || vacuum === 1) return stated('vacuum', 'VACUUM');
+    if (vacuum === false || vacuum === 0) return stated('air', 'VACUUM');
+  }
+  const word = firstText(headers, 'AIRORVAC', 'WAVEMED', 'WAVE_MED', 'MEDIUM');
+  const value = word?.value.toLowerCase() ?? '';
+  if (value.startsWith('vac')) return stated('vacuum', word!.where);
+  return value.startsWith('air') ? stated('air', word!.where) : null;
+}
+
+/** Whether a card says that the continuum was divided out. */
+export const saysNormalised = (headers: Headers): boolean => headers.some((header) => header.get('CONTNORM') === true);

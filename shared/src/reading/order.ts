@@ -1,0 +1,140 @@
+import { refuse } from './refusal.js';
+import type { RawSpectrum } from './raw.js';
+import type { ReadWarning } from './types.js';
+
+/** Runs shorter than this on average are disorder, longer ones are orders of a spectrograph or pieces of a spectrum. */
+const SHORTEST_RUN = 8;
+const MOST_RUNS = 500;
+
+interface Run {
+  readonly from: number;
+  readonly to: number;
+  readonly descending: boolean;
+}
+
+/**
+ * Samples in ascending order of wavelength, as indices into the file's columns.
+ *
+ * A descending axis is reversed. Overlapping orders are cut, each wavelength taken from the order whose centre is nearer in
+ * units of the order's half width, so nothing is resampled and the noise stays independent. Anything else is sorted. Samples
+ * without a usable wavelength are left out.
+ */
+export function ascendingOrder(raw: RawSpectrum, bad: Uint8Array, warnings: ReadWarning[]): Uint32Array {
+  const nm = raw.axis.nm;
+  const usable = usableIndices(nm);
+  const runs = monotonicRuns(nm, usable);
+  if (runs.length === 1) return runs[0]!.descending ? usable.reverse() : usable;
+  if (usable.length / runs.length < SHORTEST_RUN || runs.length > MOST_RUNS) return sorted(raw, usable, runs, warnings);
+  return joinedOrders(nm, bad, usable, runs, warnings);
+}
+
+function usableIndices(nm: Float64Array): Uint32Array {
+  const index = new Uint32Array(nm.length);
+  let n = 0;
+  for (let i = 0; i < nm.length; i++) if (nm[i]! > 0 && nm[i]! < Infinity) index[n++] = i;
+  return index.slice(0, n);
+}
+
+function monotonicRuns(nm: Float64Array, index: Uint32Array): Run[] {
+  const runs: Run[] = [];
+  let from = 0;
+  let direction = 0;
+  for (let k = 1; k < index.length; k++) {
+    const step = Math.sign(nm[index[k]!]! - nm[index[k - 1]!]!);
+    if (step === 0) continue;
+    if (direction === 0) direction = step;
+    else if (step !== direction) {
+      runs.push({ from, to: k, descending: direction < 0 });
+      from = k;
+      direction = 0;
+    }
+  }
+  runs.push({ from, to: index.length, descending: direction < 0 });
+  return runs;
+}
+
+function sorted(raw: RawSpectrum, index: Uint32Array, runs: readonly Run[], warnings: ReadWarning[]): Uint32Array {
+  const at = raw.locate(index[runs[1]!.from]!);
+  warnings.push({
+    code: 'not_in_order',
+    sentence: `The wavelengths are not in order (first at ${at.words}); the samples were sorted by wavelength. Check that columns and rows are what they should be.`,
+    row: at.row,
+    column: raw.axisName,
+  });
+  return sortedBy(raw.axis.nm, index);
+}
+
+const sortedBy = (nm: Float64Array, index: Uint32Array): Uint32Array => index.sort((a, b) => nm[a]! - nm[b]! || a - b);
+
+interface Extent {
+  readonly low: number;
+  readonly high: number;
+}
+
+function joinedOrders(nm: Float64Array, bad: Uint8Array, index: Uint32Array, runs: readonly Run[], warnings: ReadWarning[]): Uint32Array {
+  const extents = runs.map((run) => goodExtent(nm, bad, index, run));
+  const kept = new Uint32Array(index.length);
+  let n = 0;
+  runs.forEach((run, r) => {
+    const rivals = extents.map((_, other) => other).filter((other) => other !== r && overlap(extents[other]!, extents[r]!));
+    for (let k = run.from; k < run.to; k++) {
+      const wavelength = nm[index[k]!]!;
+      const own = distance(extents[r]!, wavelength);
+      const better = rivals.some((other) => {
+        const theirs = distance(extents[other]!, wavelength);
+        return theirs <= 1 && (theirs < own || (theirs === own && other < r));
+      });
+      if (!better) kept[n++] = index[k]!;
+    }
+  });
+  warnings.push({
+    code: 'orders_joined',
+    sentence: `The wavelengths run through ${runs.length} pieces (orders) that overlap or are out of order; where they overlap each wavelength is taken from the order whose centre is nearer, which leaves ${n} of ${index.length} samples. Flux steps between orders are not removed.`,
+  });
+  return sortedBy(nm, kept.slice(0, n));
+}
+
+function goodExtent(nm: Float64Array, bad: Uint8Array, index: Uint32Array, run: Run): Extent {
+  let low = Infinity;
+  let high = -Infinity;
+  for (let k = run.from; k < run.to; k++) {
+    const i = index[k]!;
+    if (bad[i]) continue;
+    if (nm[i]! < low) low = nm[i]!;
+    if (nm[i]! > high) high = nm[i]!;
+  }
+  return { low, high };
+}
+
+const overlap = (a: Extent, b: Extent): boolean => a.low <= b.high && b.low <= a.high;
+
+/** Distance from the centre in half widths; at most 1 inside. */
+function distance(extent: Extent, wavelength: number): number {
+  const half = (extent.high - extent.low) / 2;
+  const off = Math.abs(wavelength - (extent.high + extent.low) / 2);
+  return half > 0 ? off / half : off === 0 ? 0 : Infinity;
+}
+
+/** Equal wavelengths beyond this share mean that the column is not what it seems. */
+const MOST_DUPLICATES = 0.5;
+
+/** Groups of neighbours with one wavelength: the first position of each group and the number of groups. */
+export function groupsOfEqual(nm: Float64Array, name: string): { starts: Uint32Array; duplicates: number } {
+  const starts = new Uint32Array(nm.length);
+  let groups = 0;
+  for (let i = 0; i < nm.length; i++) if (i === 0 || nm[i] !== nm[i - 1]) starts[groups++] = i;
+  const duplicates = nm.length - groups;
+  if (groups < 2 && nm.length > 1)
+    refuse(
+      'same_wavelength',
+      `All ${nm.length} points have the same wavelength (column ${name}). Check which column holds the wavelengths.`,
+      { column: name },
+    );
+  if (duplicates > MOST_DUPLICATES * nm.length)
+    refuse(
+      'same_wavelength',
+      `${duplicates} of ${nm.length} points have a duplicate wavelength (column ${name}), too many to be merged. Check which column holds the wavelengths.`,
+      { column: name },
+    );
+  return { starts: starts.slice(0, groups), duplicates };
+}

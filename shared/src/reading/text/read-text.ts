@@ -1,0 +1,65 @@
+import { settleAxis } from '../columns/axis.js';
+import { mediumWord, words } from '../columns/words.js';
+import { notStated, stated } from '../columns/medium.js';
+import { fluxKindOf } from '../columns/flux-kind.js';
+import type { ReadLimits } from '../limits.js';
+import type { RawSpectrum } from '../raw.js';
+import type { ReadingCorrections, ReadWarning } from '../types.js';
+import { chooseTextColumns } from './columns.js';
+import { decodeText } from './decode.js';
+import { readPreamble } from './preamble.js';
+import { readRemarks } from './remarks.js';
+import { readRows } from './rows.js';
+
+/** A spectrum from a text table: comma, semicolon, tab or blanks between the cells, headings or none, remarks or none. */
+export function readText(bytes: Uint8Array, corrections: ReadingCorrections, limits: ReadLimits): RawSpectrum {
+  const warnings: ReadWarning[] = [];
+  const text = decodeText(bytes, warnings);
+  const preamble = readPreamble(text, limits);
+  const { infos, choice, byPosition } = chooseTextColumns(preamble, corrections, warnings);
+  const wanted = [choice.axis, choice.flux, ...[choice.uncertainty, choice.mask].filter((index) => index !== null)];
+  const nameOf = (index: number) => infos[index]!.name;
+  const rows = readRows(text, preamble, wanted, wanted.map(nameOf), limits, warnings);
+  const remarks = readRemarks(preamble.remarks);
+  const axisInfo = infos[choice.axis]!;
+  const fluxInfo = infos[choice.flux]!;
+  const unit = axisInfo.unit || remarks.axisUnit;
+  const where = axisInfo.unit ? 'column name' : remarks.axisUnitWhere;
+  const axis = settleAxis(rows.columns[0]!, { name: axisInfo.name, quantity: choice.quantity, unit, where }, corrections, warnings);
+  const word = mediumWord(axisInfo.name);
+  const fluxUnit = fluxInfo.unit || remarks.fluxUnit;
+  return {
+    format: 'text',
+    place: `line ${preamble.firstLine} onwards`,
+    otherPlaces: [],
+    columns: infos.filter((info) => info.numeric).map((info) => info.name),
+    header: [...preamble.remarks, ...rows.remarks],
+    axisName: axisInfo.name,
+    axis,
+    medium: word ? stated(word, 'column name') : remarks.medium,
+    flux: rows.columns[1]!,
+    fluxName: fluxInfo.name,
+    fluxUnit: fluxUnit ? stated(fluxUnit, fluxInfo.unit ? 'column name' : 'remark') : notStated(''),
+    fluxKind: fluxKindOf({ name: bareName(fluxInfo.name), unit: fluxUnit, ucd: '' }, fluxInfo.unit ? 'column name' : 'remark', false),
+    uncertainty:
+      choice.uncertainty === null
+        ? null
+        : {
+            values: rows.columns[2]!,
+            name: nameOf(choice.uncertainty),
+            kind: corrections.uncertaintyKind
+              ? { value: corrections.uncertaintyKind, how: 'corrected', where: 'correction' }
+              : {
+                  value: choice.uncertaintyKind,
+                  how: byPosition ? 'assumed' : 'stated',
+                  where: byPosition ? 'order of the columns' : 'column name',
+                },
+          },
+    mask: choice.mask === null ? null : { values: rows.columns.at(-1)!, name: nameOf(choice.mask) },
+    locate: (i) => ({ words: `line ${rows.lines[i]!}`, row: rows.lines[i]! }),
+    facts: remarks.facts,
+    warnings,
+  };
+}
+
+const bareName = (name: string): string => words(name.replace(/[([].*$/, '')).join('_');
