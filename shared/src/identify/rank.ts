@@ -1,0 +1,155 @@
+import { C_KM_PER_S } from '../units/index.js';
+import { normalDraws } from './draws.js';
+import type { Expected, SystemModel } from './model.js';
+import { offsetMoments, widthRatio, type Background, type LineTerm, type SpeciesState } from './offsets.js';
+import { featureAt, velocityOf, type Coverage, type FeatureView } from './views.js';
+
+/** A system with what the data say of its species. */
+export interface SystemState {
+  readonly system: SystemModel;
+  readonly states: readonly SpeciesState[];
+}
+
+/** A line of a system that may take part in a feature, with the strength the rest of the data leave it. */
+export interface Contender {
+  readonly expected: Expected;
+  readonly system: SystemModel;
+  readonly state: SpeciesState;
+  readonly term: LineTerm;
+  /** log10 of |W| in nm, mean and 1 sigma, this feature's own say left out */
+  readonly logW: number;
+  readonly sigmaLog: number;
+  /** chance that the species shows in the system, this feature's own say left out */
+  readonly presence: number;
+  /** share of the line's light that would fall to this feature, 0 to 1 */
+  readonly part: number;
+}
+
+export interface Ranked {
+  readonly contender: Contender;
+  /** chance that it makes at least 30 % of the feature */
+  readonly probability: number;
+  /** expected share of the feature's equivalent width */
+  readonly share: number;
+}
+
+export interface FeatureRanking {
+  readonly ranked: readonly Ranked[];
+  readonly unidentified: number;
+}
+
+const DRAWS = 400;
+const MAIN_SHARE = 0.3;
+const UNLISTED_SHARE = 0.06; // of all features, made by lines that no list holds: a prior, shown as "not in the list"
+const LOG_W_SPREAD = 0.55; // dex, as in offsets.ts
+const MODEL_ERROR = 0.14; // natural log: profile misfit and blending at the 14 % level
+const LEAST = 0.002; // candidates below this chance are not listed
+const MOST = 8;
+
+const LN10 = Math.LN10;
+
+/** Lines of all systems that reach into a feature. */
+export function contendersOf(f: FeatureView, systems: readonly SystemState[], features: readonly FeatureView[]): Contender[] {
+  const out: Contender[] = [];
+  for (const { system, states } of systems) {
+    if (system.kind !== f.kind) continue;
+    for (const state of states) {
+      const reach = ((0.55 * Math.max(f.fwhmV, 1.2 * system.fwhmV) + 12) * f.wavelength) / C_KM_PER_S;
+      for (let k = termAt(state.terms, f.wavelength - reach); k < state.terms.length; k++) {
+        const term = state.terms[k]!;
+        const e = term.expected;
+        if (e.wavelength > f.wavelength + reach) break;
+        const part = partOf(e, f, features);
+        if (part < 0.02) continue;
+        const own = term.feature === f ? term : null;
+        const { mean, sigma, logEvidence } = offsetMoments(state, own);
+        const p = state.model.presence;
+        const odds = (p / (1 - p)) * Math.exp(Math.max(-30, Math.min(30, logEvidence)));
+        out.push({ expected: e, system, state, term, logW: e.logW + mean, sigmaLog: Math.hypot(sigma, e.scatter), presence: odds / (1 + odds), part });
+      }
+    }
+  }
+  return out;
+}
+
+function termAt(terms: readonly LineTerm[], wavelength: number): number {
+  let low = 0;
+  let high = terms.length;
+  while (low < high) {
+    const mid = (low + high) >> 1;
+    if (terms[mid]!.expected.wavelength < wavelength) low = mid + 1;
+    else high = mid;
+  }
+  return low;
+}
+
+/** Share of a line's light that a feature takes when its neighbours compete for it, by distance in units of their widths. */
+function partOf(e: Expected, f: FeatureView, features: readonly FeatureView[]): number {
+  const pull = (g: FeatureView): number => {
+    const width = Math.hypot(0.3 * Math.max(g.fwhmV, 0.7 * e.fwhmV), 2 * e.sigmaV);
+    const d = velocityOf(g.wavelength, e.wavelength) / width;
+    return Math.exp(-0.5 * d * d) / Math.max(1, g.fwhmV / (1.5 * e.fwhmV), e.fwhmV / (1.5 * g.fwhmV));
+  };
+  const own = pull(f);
+  if (own < 1e-3) return 0;
+  let all = 0;
+  const span = ((2 * Math.max(e.fwhmV, f.fwhmV) + 20) * f.wavelength) / C_KM_PER_S;
+  for (let i = featureAt(features, e.wavelength - span); i < features.length && features[i]!.wavelength < e.wavelength + span; i++) {
+    if (features[i]!.kind === f.kind) all += pull(features[i]!);
+  }
+  return own / Math.max(all, own);
+}
+
+/**
+ * Ranks the readings of a feature: many sets of line strengths are drawn from the predictions with their scatter, blended, weighed by
+ * how well they give the feature's equivalent width, centroid and width, and counted. "Unidentified" competes as a flat density.
+ */
+export function rankFeature(f: FeatureView, contenders: readonly Contender[], coverage: Coverage, background: Background): FeatureRanking {
+  if (contenders.length === 0) return { ranked: [], unidentified: 1 };
+  const n = contenders.length;
+  const lnW = f.logW * LN10;
+  const sigmaLn = Math.hypot(f.sigmaLogW * LN10, MODEL_ERROR);
+  const offset = contenders.map((c) => velocityOf(c.expected.wavelength, f.wavelength));
+  const width = contenders.map((c) => Math.max(widthRatio(c.expected, f, coverage), 1e-4));
+  const wins = new Float64Array(n);
+  const shares = new Float64Array(n);
+  const w = new Float64Array(n);
+  let total = 0;
+  let idle = 0; // draws in which listed lines leave most of the feature unexplained
+  for (let j = 0; j < DRAWS; j++) {
+    let sum = 0;
+    let centroid = 0;
+    let top = 0;
+    for (let k = 0; k < n; k++) {
+      const c = contenders[k]!;
+      const draw = normalDraws(j, k);
+      w[k] = uniform(j, k) < c.presence ? c.part * 10 ** (c.logW + c.sigmaLog * draw) : 0;
+      sum += w[k]!;
+      centroid += w[k]! * offset[k]!;
+      if (w[k]! > w[top]!) top = k;
+    }
+    if (sum < 0.6 * 10 ** f.logW) idle++;
+    if (sum === 0) continue;
+    const place = Math.hypot(f.sigmaV, 0.025 * f.fwhmV, contenders[top]!.expected.sigmaV, 0.2);
+    const zW = (lnW - Math.log(sum)) / sigmaLn;
+    const zV = centroid / sum / place;
+    const weight = (Math.exp(-0.5 * (zW * zW + zV * zV)) / (sigmaLn * place * 2 * Math.PI)) * width[top]!;
+    total += weight;
+    for (let k = 0; k < n; k++) {
+      const share = w[k]! / sum;
+      shares[k]! += weight * share;
+      if (share >= MAIN_SHARE) wins[k]! += weight;
+    }
+  }
+  const flat = (UNLISTED_SHARE * background.rate(f.kind, f.wavelength) * idle) / (LOG_W_SPREAD * LN10 * Math.sqrt(2 * Math.PI));
+  const norm = total + flat;
+  if (!(norm > 0)) return { ranked: [], unidentified: 1 };
+  const ranked = contenders
+    .map((contender, k) => ({ contender, probability: wins[k]! / norm, share: total > 0 ? shares[k]! / total : 0 }))
+    .filter((r) => r.probability >= LEAST)
+    .sort((a, b) => b.probability - a.probability || b.share - a.share || a.contender.expected.wavelength - b.contender.expected.wavelength);
+  return { ranked: ranked.slice(0, MOST), unidentified: flat / norm };
+}
+
+/** A fixed low-discrepancy number in (0, 1) a draw and contender: the golden ratio's multiples, shifted a contender. */
+const uniform = (j: number, k: number): number => ((j + 0.5) * 0.6180339887498949 + (k + 1) * 0.7548776662466927) % 1;

@@ -1,0 +1,181 @@
+import { photosphericIndex } from '../atoms/index.js';
+import type { Line } from '../linelist/index.js';
+import { C_KM_PER_S } from '../units/index.js';
+import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
+import type { Expected, SpeciesModel, SystemModel } from './model.js';
+import { dopplerFactor, velocityOf, type Coverage, type FeatureView } from './views.js';
+
+/** What the continuum says of the temperature; null when nothing. */
+export interface TemperatureHint {
+  readonly temperatureK: number;
+  readonly sigmaK: number;
+}
+
+const TEMPERATURES = [3600, 4200, 4700, 5200, 5700, 6300, 7000, 7800, 8700, 9800, 11000, 12500, 14500, 17000, 20000, 23500, 27500, 32000];
+const ELECTRONS = [13, 14]; // log10 n_e, cm^-3, of cool and hot photospheres
+const DEPTHS = [0.25, 0.7, 1.6]; // lines in the template as a multiple of the number of dips: how far down the strength scale the data reach
+const LINE_SCATTER = 0.22; // dex: log gf errors and abundance patterns
+const HYDROGEN_SCATTER = 0.35;
+const SPECIES_SIGMA = 0.35; // dex: ionisation, non-LTE, abundance
+const SIGNIFICANT = 7; // of the correlation peak, in robust scatters of the score
+const MEMBERS = 5; // dips that the template must explain
+
+interface Photosphere {
+  readonly temperatureK: number;
+  readonly logNe: number;
+  readonly velocity: number;
+  readonly index: Float64Array;
+  readonly height: number;
+  readonly significance: number;
+}
+
+/**
+ * The star: temperature, electron density and velocity whose predicted line strengths correlate best with the dips, then the strength
+ * scale and saturation from lines that stand alone.
+ * @param lines photospheric lines within reach of the spectrum, ascending
+ * @returns null when no velocity stands out
+ */
+export function findStar(features: readonly FeatureView[], lines: readonly Line[], coverage: Coverage, hint: TemperatureHint | null, rangeV: number): SystemModel | null {
+  const dips = features.filter((f) => f.kind === 'dip' && !f.flags.includes('cosmic'));
+  if (dips.length < MEMBERS || lines.length === 0) return null;
+  const best = bestPhotosphere(dips, lines, coverage, hint, rangeV);
+  if (!best || best.significance < SIGNIFICANT) return null;
+  const alone = aloneMatches(dips, lines, best.index, best.velocity, coverage);
+  if (alone.length < MEMBERS) return null;
+  const { velocity, sigma, fwhmV } = refine(alone);
+  const scale = fitScale(aloneMatches(dips, lines, best.index, velocity, coverage, fwhmV));
+  return starModel(lines, best, velocity, sigma, fwhmV, scale, coverage);
+}
+
+function bestPhotosphere(dips: readonly FeatureView[], lines: readonly Line[], coverage: Coverage, hint: TemperatureHint | null, rangeV: number): Photosphere | null {
+  const weight = Float64Array.from(dips, (f) => Math.sqrt(Math.min((10 ** f.logW / f.wavelength) * C_KM_PER_S, 40)));
+  const spread = Float64Array.from(dips, (f) => Math.hypot(f.sigmaV, 0.12 * f.fwhmV));
+  const typical = Float64Array.from(spread).sort()[spread.length >> 1]!;
+  const step = Math.max(0.25 * coverage.elementV, Math.min(0.4 * typical, 6));
+  const grid: VelocityGrid = { from: -rangeV, step, count: 2 * Math.ceil(rangeV / step) + 1 };
+  const wavelength = Float64Array.from(lines, (l) => l.wavelengthNm);
+  const near = hint ? [hint.temperatureK] : TEMPERATURES;
+  let best: Photosphere | null = null;
+  for (const temperatureK of near) {
+    for (const logNe of ELECTRONS) {
+      const index = photosphericIndex(lines, temperatureK, logNe);
+      const sorted = Float64Array.from(index.filter((x) => Number.isFinite(x))).sort().reverse();
+      for (const depth of DEPTHS) {
+        const cut = sorted[Math.min(sorted.length - 1, Math.round(depth * dips.length))]!;
+        const template = { wavelength, weight: Float64Array.from(index, (x) => (x > cut - 0.3 ? 10 ** (0.5 * Math.min(x - cut, 1.2)) : 0)) };
+        const score = correlate(dips, weight, spread, template, grid);
+        const peak = peaksOf(score, grid, 5, 1)[0];
+        if (peak && (!best || peak.height > best.height)) best = { temperatureK, logNe, velocity: peak.velocity, index, height: peak.height, significance: peak.significance };
+      }
+    }
+  }
+  return best;
+}
+
+interface Match {
+  readonly feature: FeatureView;
+  readonly line: Line;
+  readonly index: number;
+  readonly dv: number;
+}
+
+/** Dips where one photospheric line outweighs all others within the profile. */
+function aloneMatches(dips: readonly FeatureView[], lines: readonly Line[], index: Float64Array, velocity: number, coverage: Coverage, fwhmV = 0): Match[] {
+  const factor = dopplerFactor(velocity);
+  const out: Match[] = [];
+  for (const f of dips) {
+    if (fwhmV && (f.fwhmV < 0.6 * fwhmV || f.fwhmV > 1.7 * fwhmV)) continue;
+    const half = (0.5 * Math.max(f.fwhmV, coverage.elementV) * f.wavelength) / C_KM_PER_S;
+    let total = 0;
+    let top = -1;
+    let topValue = 0;
+    for (let k = lineAt(lines, (f.wavelength - half) / factor); k < lines.length && lines[k]!.wavelengthNm * factor < f.wavelength + half; k++) {
+      const value = 10 ** index[k]!;
+      if (!(value > 0)) continue;
+      total += value;
+      if (value > topValue) [top, topValue] = [k, value];
+    }
+    if (top < 0 || topValue < 0.75 * total || lines[top]!.element === 'H') continue;
+    out.push({ feature: f, line: lines[top]!, index: index[top]!, dv: velocityOf(f.wavelength, lines[top]!.wavelengthNm) });
+  }
+  // the weakest predicted ones are chance more often than not: keep the strongest as many as make sense
+  return out.sort((a, b) => b.index - a.index).slice(0, Math.max(12, Math.ceil(out.length * 0.6)));
+}
+
+export function lineAt(lines: readonly Line[], wavelength: number): number {
+  let low = 0;
+  let high = lines.length;
+  while (low < high) {
+    const mid = (low + high) >> 1;
+    if (lines[mid]!.wavelengthNm < wavelength) low = mid + 1;
+    else high = mid;
+  }
+  return low;
+}
+
+/** Median velocity and width of the matches, clipped, with the error of the weighted mean. */
+function refine(matches: readonly Match[]): { velocity: number; sigma: number; fwhmV: number } {
+  const median = (x: number[]): number => x.sort((a, b) => a - b)[x.length >> 1]!;
+  let kept = [...matches];
+  let velocity = median(kept.map((m) => m.dv));
+  for (let pass = 0; pass < 3; pass++) {
+    const scatter = 1.4826 * median(kept.map((m) => Math.abs(m.dv - velocity)));
+    const near = matches.filter((m) => Math.abs(m.dv - velocity) < 2.5 * Math.max(scatter, 0.3));
+    if (near.length < 3) break;
+    kept = near;
+    const weights = kept.map((m) => 1 / (m.feature.sigmaV ** 2 + (0.02 * m.feature.fwhmV) ** 2 + 0.04));
+    velocity = kept.reduce((s, m, i) => s + weights[i]! * m.dv, 0) / weights.reduce((a, b) => a + b, 0);
+  }
+  const scatter = 1.4826 * median(kept.map((m) => Math.abs(m.dv - velocity)));
+  return { velocity, sigma: Math.max(scatter / Math.sqrt(kept.length), 0.02), fwhmV: median(kept.map((m) => m.feature.fwhmV)) };
+}
+
+interface Scale {
+  readonly shift: number;
+  readonly knee: number;
+}
+
+/** log10(W/lambda) from the strength index: thin below the knee, a quarter of the slope far above it. */
+const grow = (index: number, s: Scale): number => index + s.shift - 0.75 * Math.log10(1 + 10 ** (index + s.shift - s.knee));
+
+/** Shift and knee that fit the lone lines best in the sense of least absolute deviations. */
+function fitScale(matches: readonly Match[]): Scale {
+  const x = matches.map((m) => m.index);
+  const y = matches.map((m) => m.feature.logW - Math.log10(m.feature.wavelength));
+  let best: Scale = { shift: 0, knee: -4.5 };
+  let bestCost = Infinity;
+  for (let knee = -6; knee <= -3; knee += 0.25) {
+    for (let shift = -2; shift <= 9; shift += 0.05) {
+      let cost = 0;
+      for (let i = 0; i < x.length; i++) cost += Math.min(Math.abs(y[i]! - grow(x[i]!, { shift, knee })), 0.8);
+      if (cost < bestCost) [best, bestCost] = [{ shift, knee }, cost];
+    }
+  }
+  return best;
+}
+
+function starModel(lines: readonly Line[], p: Photosphere, velocity: number, sigma: number, fwhmV: number, scale: Scale, coverage: Coverage): SystemModel {
+  const factor = dopplerFactor(velocity);
+  const bySpecies = new Map<string, Expected[]>();
+  lines.forEach((line, k) => {
+    if (!Number.isFinite(p.index[k]!)) return;
+    const wavelength = line.wavelengthNm * factor;
+    const logW = grow(p.index[k]!, scale) + Math.log10(line.wavelengthNm);
+    const limit = coverage.sigmaW(wavelength, (wavelength * fwhmV) / C_KM_PER_S);
+    if (!(logW > Math.log10(limit) - 0.7)) return; // far below the noise even with a generous offset
+    const hydrogen = line.element === 'H';
+    const e: Expected = { line, wavelength, logW, scatter: hydrogen ? HYDROGEN_SCATTER : LINE_SCATTER, sigmaV: Math.hypot(sigma, 0.3), fwhmV: hydrogen ? 1.3 * fwhmV : fwhmV };
+    const list = bySpecies.get(line.species);
+    if (list) list.push(e);
+    else bySpecies.set(line.species, [e]);
+  });
+  const species: SpeciesModel[] = [...bySpecies].map(([name, list]) => ({
+    species: name,
+    lines: list,
+    priorMean: 0,
+    priorSigma: name === 'H I' ? 0.8 : SPECIES_SIGMA,
+    presence: 0.95,
+  }));
+  return { id: 'star', family: 'stellar', kind: 'dip', velocity, velocitySigma: sigma, significance: p.significance, fwhmV, species };
+}
+
