@@ -55,6 +55,9 @@ export const alive = (identity) => Boolean(identity) && identityOf(Number.parseI
 
 export const pause = (ms) => new Promise((resolve) => setTimeout(resolve, ms));
 
+/** The same, as a bound on something else: does not keep the process alive. */
+export const bound = (ms) => new Promise((resolve) => setTimeout(resolve, ms).unref());
+
 /** Asks until the answer is truthy; null after `timeoutMs`. */
 export async function until(ask, timeoutMs, everyMs = 100) {
   const end = Date.now() + timeoutMs;

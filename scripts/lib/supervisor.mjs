@@ -1,7 +1,7 @@
 import { spawn } from 'node:child_process';
 import { once } from 'node:events';
 import { root } from './paths.mjs';
-import { pause } from './processes.mjs';
+import { bound } from './processes.mjs';
 
 // Every child gets a process group of its own: a Ctrl-C in the terminal then reaches this process only, which ends them in the right order,
 // and a whole group can be ended when its first process is gone already.
@@ -38,7 +38,7 @@ export async function runForOutput(command, args, options) {
   for (const stream of streams) stream.on('data', (piece) => pieces.push(piece));
   const drained = Promise.all(streams.map((stream) => once(stream, 'close')));
   const status = await child.ended;
-  await Promise.race([drained, pause(2_000)]); // something it started may hold its pipes open for ever
+  await Promise.race([drained, bound(2_000)]); // something it started may hold its pipes open for ever
   return { status: typeof status === 'number' ? status : 1, output: Buffer.concat(pieces).toString('utf8') };
 }
 
@@ -47,7 +47,7 @@ export async function stopChildren(patienceMs = 15_000) {
   const all = [...children];
   for (const child of all) signalGroup(child, 'SIGTERM');
   const quiet = Promise.all(all.map((child) => child.ended));
-  await Promise.race([quiet, pause(patienceMs)]);
+  await Promise.race([quiet, bound(patienceMs)]);
   for (const child of all) signalGroup(child, 'SIGKILL'); // also what a child that ended left behind in its group
   await quiet;
 }
