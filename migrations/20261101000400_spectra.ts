@@ -32,7 +32,7 @@ export async function up(db: Knex): Promise<void> {
     t.binary('sigma');
     t.binary('bad').notNullable();
     t.uuid('created_by').notNullable().references('users.id');
-    t.timestamp('created_at').notNullable().defaultTo(db.fn.now());
+    t.timestamp('created_at').notNullable().defaultTo(db.raw('clock_timestamp()'));
     t.foreign(['programme_id', 'target_id']).references(['programme_id', 'id']).inTable('targets').onDelete('CASCADE');
     t.unique(['programme_id', 'sha256'], { indexName: 'spectra_file_once' });
     t.unique(['programme_id', 'id']);

@@ -17,7 +17,7 @@ export async function up(db: Knex): Promise<void> {
     t.text('program_version').notNullable();
     t.text('error');
     t.uuid('requested_by').notNullable().references('users.id');
-    t.timestamp('requested_at').notNullable().defaultTo(db.fn.now());
+    t.timestamp('requested_at').notNullable().defaultTo(db.raw('clock_timestamp()'));
     t.timestamp('started_at');
     t.timestamp('ended_at');
     t.integer('attempts').notNullable().defaultTo(0);

@@ -6,6 +6,7 @@ import type { NextFunction, Request, Response } from 'express';
 import helmet from 'helmet';
 import { cookieName } from './common/auth/session-token.js';
 import { DomainError } from './common/errors/domain-error.js';
+import { traced } from './common/http/trace-id.js';
 import type { Config } from './config/config.js';
 import { CONFIG } from './config/config.module.js';
 
@@ -20,6 +21,7 @@ export function configureApp(app: NestExpressApplication): OpenAPIObject {
   app.set('etag', false);
   app.set('query parser', 'simple');
   if (config.trustedProxies.length) app.set('trust proxy', config.trustedProxies);
+  app.use(traced);
   app.use(helmet(headers(config)));
   app.use(longUrlsRefused);
   app.use('/api', answersNotKept);

@@ -1,4 +1,5 @@
 import { existsSync, readFileSync } from 'node:fs';
+import { availableParallelism } from 'node:os';
 import { dirname, join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { localSecrets } from './local-secrets.js';
@@ -34,6 +35,10 @@ export interface Config {
   readonly readMemoryMb: number;
   readonly analysisSeconds: number;
   readonly analysisMemoryMb: number;
+  /** analyses that one worker process works on at a time */
+  readonly analysisThreads: number;
+  /** a worker that gives no sign of life for this long loses its analyses to others */
+  readonly leaseSeconds: number;
   readonly apiDocs: boolean;
   readonly logLevel: string;
   readonly clientDir: string;
@@ -78,6 +83,8 @@ export function loadConfig(env: NodeJS.ProcessEnv = process.env): Config {
     readMemoryMb: number('READ_MEMORY_MIB', 1024, 16),
     analysisSeconds: number('ANALYSIS_SECONDS', 600, 1),
     analysisMemoryMb: number('ANALYSIS_MEMORY_MIB', 2048, 16),
+    analysisThreads: number('ANALYSIS_THREADS', Math.max(1, availableParallelism() - 1), 1),
+    leaseSeconds: number('LEASE_SECONDS', 15, 1),
     apiDocs: env.API_DOCS === undefined ? mode !== 'production' : env.API_DOCS === '1',
     logLevel: env.LOG_LEVEL ?? (mode === 'test' ? 'silent' : 'info'),
     clientDir: env.CLIENT_DIR ?? join(repoRoot, 'client', 'dist'),

@@ -2,6 +2,7 @@ import { Catch, Logger, type ArgumentsHost, type ExceptionFilter } from '@nestjs
 import type { Problem } from '@foreveil/shared';
 import type { Request, Response } from 'express';
 import { allowedMethods } from '../http/routes.js';
+import { traceIdOf } from '../http/trace-id.js';
 import { DomainError, REFUSALS } from './domain-error.js';
 import { toDomainError } from './to-domain-error.js';
 
@@ -46,7 +47,7 @@ function asProblem({ code, message, more }: DomainError, request: Request): Prob
     detail: message,
     instance: request.originalUrl.split('?')[0] ?? '',
     code,
-    traceId: String((request as Request & { id?: unknown }).id ?? ''),
+    traceId: traceIdOf(request),
     ...(more.errors ? { errors: more.errors } : {}),
     ...(more.current === undefined ? {} : { current: more.current }),
   };

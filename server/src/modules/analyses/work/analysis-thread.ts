@@ -1,0 +1,81 @@
+import { existsSync } from 'node:fs';
+import { fileURLToPath } from 'node:url';
+import { Worker } from 'node:worker_threads';
+import type { Analysis, AnalysisSettings, AnalysisStep, LineList, Spectrum } from '@foreveil/shared';
+import type { FromThread, ToThread } from './protocol.js';
+
+export interface ThreadJob {
+  readonly listId: string;
+  readonly spectrum: Spectrum;
+  readonly settings: AnalysisSettings;
+}
+
+/** How a run in the thread ended. `died` is the thread's fault or fate, `failed` the analysis' own word, `stopped` ours. */
+export type Outcome =
+  | { readonly end: 'done'; readonly analysis: Analysis }
+  | { readonly end: 'failed'; readonly reason: string }
+  | { readonly end: 'died'; readonly reason: string }
+  | { readonly end: 'stopped' };
+
+const beside = fileURLToPath(new URL('./analysis.thread.js', import.meta.url));
+const built = fileURLToPath(new URL('../../../../dist/modules/analyses/work/analysis.thread.js', import.meta.url));
+
+/** Keeps one thread for analyses, warm; a thread that was stopped or died is replaced when the next job comes. */
+export class AnalysisThread {
+  private thread: Worker | null = null;
+  private readonly lists = new Map<string, LineList>();
+
+  constructor(
+    private readonly memoryMb: number,
+    private readonly script = existsSync(beside) ? beside : built,
+  ) {}
+
+  /** Gives the thread, now and after every replacement, a list to keep. */
+  keepList(listId: string, list: LineList): void {
+    if (this.lists.has(listId)) return;
+    this.lists.set(listId, list);
+    this.running().postMessage({ say: 'keep_list', listId, list } satisfies ToThread);
+  }
+
+  knowsList(listId: string): boolean {
+    return this.lists.has(listId);
+  }
+
+  /** @param signal ends the run, with the thread, whatever it is doing */
+  async run(job: ThreadJob, onProgress: (step: AnalysisStep, done: number) => void, signal: AbortSignal): Promise<Outcome> {
+    if (signal.aborted) return { end: 'stopped' };
+    const thread = this.running();
+    const outcome = await new Promise<Outcome>((resolve) => {
+      thread.on('message', (message: FromThread) => {
+        if (message.say === 'progress') onProgress(message.step, message.done);
+        else if (message.say === 'done') resolve({ end: 'done', analysis: message.analysis });
+        else resolve({ end: 'failed', reason: message.reason });
+      });
+      thread.once('error', (error) => resolve({ end: 'died', reason: error.message }));
+      thread.once('exit', (code) => resolve({ end: 'died', reason: `the thread ended with ${code}` }));
+      signal.addEventListener('abort', () => resolve({ end: 'stopped' }), { once: true });
+      thread.postMessage({ say: 'run', ...job } satisfies ToThread);
+    });
+    thread.removeAllListeners('message');
+    if (outcome.end === 'stopped' || outcome.end === 'died') await this.end();
+    return outcome;
+  }
+
+  async end(): Promise<void> {
+    const thread = this.thread;
+    this.thread = null;
+    await thread?.terminate();
+  }
+
+  private running(): Worker {
+    if (this.thread) return this.thread;
+    const thread = new Worker(this.script, { resourceLimits: { maxOldGenerationSizeMb: this.memoryMb }, execArgv: [] });
+    thread.on('error', () => undefined); // told by the run that it ends; without one there is nobody to tell
+    thread.once('exit', () => {
+      if (this.thread === thread) this.thread = null;
+    });
+    for (const [listId, list] of this.lists) thread.postMessage({ say: 'keep_list', listId, list } satisfies ToThread);
+    this.thread = thread;
+    return thread;
+  }
+}
