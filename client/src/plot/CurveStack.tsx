@@ -1,5 +1,6 @@
 import { useElementSize } from '@mantine/hooks';
 import { useMemo } from 'react';
+import type { WavelengthDisplay } from '../lib/wavelength.js';
 import { AXIS_HEIGHT, WavelengthAxis } from './WavelengthAxis.js';
 import { Curve } from './Curve.js';
 import { Residual, RESIDUAL_LABELS } from './Residual.js';
@@ -13,7 +14,6 @@ import type { DueLine, PlotFeature, Stave } from './plot-feature.js';
 import { scaledUnit } from './value-axis.js';
 import type { Base, CurveMode } from './value-domain.js';
 import { useView, type ViewStore } from './view.js';
-import type { WavelengthDisplay } from './wavelength-display.js';
 import classes from './plot.module.css';
 
 export interface CurveStackProps {

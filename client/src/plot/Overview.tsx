@@ -1,5 +1,6 @@
 import { useElementSize } from '@mantine/hooks';
 import { useCallback, useMemo } from 'react';
+import type { WavelengthDisplay } from '../lib/wavelength.js';
 import { LightStrip } from './LightStrip.js';
 import { Mark } from './Mark.js';
 import { AxisTicks, AXIS_HEIGHT } from './WavelengthAxis.js';
@@ -12,7 +13,6 @@ import type { PlotFeature } from './plot-feature.js';
 import { columnsOf } from './pyramid.js';
 import { useCanvas, type Surface } from './useCanvas.js';
 import type { ViewStore } from './view.js';
-import type { WavelengthDisplay } from './wavelength-display.js';
 import classes from './plot.module.css';
 
 const LANES: readonly { family: MarkFamily; word: string }[] = [

@@ -1,5 +1,6 @@
 import { useView, type Range, type ViewStore } from './view.js';
-import { axisTicks, type WavelengthDisplay } from './wavelength-display.js';
+import type { WavelengthDisplay } from '../lib/wavelength.js';
+import { axisTicks } from './axis-ticks.js';
 import classes from './plot.module.css';
 
 export const AXIS_HEIGHT = 22;

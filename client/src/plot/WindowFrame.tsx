@@ -1,7 +1,7 @@
 import { useState, type KeyboardEvent, type PointerEvent } from 'react';
-import { typeset } from './ticks.js';
+import type { WavelengthDisplay } from '../lib/wavelength.js';
+import { shownWavelength } from './axis-ticks.js';
 import { useView, type Range, type ViewStore } from './view.js';
-import type { WavelengthDisplay } from './wavelength-display.js';
 import classes from './plot.module.css';
 
 interface Props {
@@ -77,7 +77,7 @@ export function WindowFrame({ view, display, width, height }: Props) {
     event.preventDefault();
     view.move(next);
   };
-  const shown = (nm: number) => typeset(display.show(nm), display.unit === 'micron' ? 5 : 2);
+  const shown = (nm: number) => shownWavelength(nm, display, 2);
 
   return (
     <div

@@ -16,8 +16,3 @@ export function tickDigits(ticks: readonly number[]): number {
   const step = Math.abs(ticks[1]! - ticks[0]!);
   return Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
 }
-
-/** A typeset number: fixed digits, true minus sign. */
-export const typeset = (v: number, digits: number) => v.toFixed(digits).replace('-', '\u2212');
-/** As `typeset`, with a plus sign before positive numbers. */
-export const signed = (v: number, digits: number) => (v > 0 ? '+' : '') + typeset(v, digits);

@@ -1,4 +1,5 @@
-import { niceTicks, tickDigits, typeset } from './ticks.js';
+import { fixed } from '../lib/number.js';
+import { niceTicks, tickDigits } from './ticks.js';
 
 const SUPERSCRIPT: Record<string, string> = {
   '-': '⁻',
@@ -27,7 +28,7 @@ export const valueTicks = (low: number, high: number, heightPx: number, spacingP
 export function valueLabels(ticks: readonly number[], exponent: number): string[] {
   const scaled = ticks.map((t) => t / 10 ** exponent);
   const digits = tickDigits(scaled);
-  return scaled.map((t) => typeset(Math.abs(t) < 1e-12 ? 0 : t, digits));
+  return scaled.map((t) => fixed(t, digits));
 }
 
 /** Writes out powers in a FITS unit string: 'erg/s/cm2/Angstrom' becomes 'erg/s/cm²/Å'. */

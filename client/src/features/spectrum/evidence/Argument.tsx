@@ -1,0 +1,62 @@
+import type { Candidate } from '@foreveil/shared';
+import { probability } from '../../../lib/number.js';
+import { barLength, factorLabel, oddsLabel, PART_WORD, together } from './odds.js';
+import classes from './evidence.module.css';
+
+const BAR = { width: 100, middle: 46, reach: 50 };
+
+/** One factor on the odds: solid bar to the right for, hollow bar to the left against. */
+export function OddsBar({ logOdds }: { logOdds: number }) {
+  const isFor = logOdds >= 0;
+  const length = Math.max(1, Math.abs(barLength(logOdds)) * (isFor ? BAR.reach : BAR.middle - 4));
+  const label = factorLabel(logOdds);
+  return (
+    <svg width={BAR.width} height={18} role="img" aria-label={`${isFor ? 'for' : 'against'}, odds ${label}`}>
+      <line x1={BAR.middle} x2={BAR.middle} y1={0} y2={18} stroke="var(--control)" />
+      {isFor ? (
+        <rect x={BAR.middle} y={5} width={length} height={8} fill="var(--ink)" />
+      ) : (
+        <rect x={BAR.middle - length} y={5.5} width={length - 0.5} height={7} fill="none" stroke="var(--ink)" />
+      )}
+      <text x={isFor ? BAR.middle - 6 : BAR.middle + 6} y={13} textAnchor={isFor ? 'end' : 'start'} fill="var(--ink)">
+        {label}
+      </text>
+    </svg>
+  );
+}
+
+/** The first numbers of a sentence stand out, so the column can be read down. */
+function Emphasised({ sentence }: { sentence: string }) {
+  const match = /^(.{1,48}?)([,;:.](?=\s|$)|$)(.*)$/s.exec(sentence);
+  if (!match) return sentence;
+  return (
+    <>
+      <b>{match[1]}</b>
+      {match[2]}
+      {match[3]}
+    </>
+  );
+}
+
+/** The five parts as an argument: factors that multiply to the odds of the stated probability. */
+export function Argument({ candidate }: { candidate: Candidate }) {
+  const total = together(candidate.evidence);
+  return (
+    <ol className={classes.parts} aria-label="Evidence, as factors on the odds">
+      {candidate.evidence.map(({ part, logOdds, sentence }) => (
+        <li key={part} className={classes.part}>
+          <span className={classes.partName}>{PART_WORD[part]}</span>
+          <span className={classes.partWords}>
+            <Emphasised sentence={sentence} />
+          </span>
+          <OddsBar logOdds={logOdds} />
+        </li>
+      ))}
+      <li className={classes.total}>
+        <span className={classes.partName}>Together</span>
+        <span className={classes.partWords}>odds of {oddsLabel(total)}</span>
+        <b className={classes.totalP}>{probability(candidate.probability)}</b>
+      </li>
+    </ol>
+  );
+}
