@@ -97,7 +97,9 @@ function runStepCommand({ command: [program, ...args] }, env) {
 
 /** Without what a person's shell adds for other purposes, so that a run means the same everywhere. */
 function testEnvironment() {
-  const env = { ...process.env, NODE_ENV: 'test', FORCE_COLOR: process.stdout.isTTY ? '1' : '0', TZ: 'UTC' };
-  for (const name of ['DATABASE_URL', 'PORT', 'HOST', 'NODE_OPTIONS', 'FOREVEIL_MODE', 'LOG_LEVEL', 'APP_ORIGIN']) delete env[name];
-  return env;
+  const colour = process.stdout.isTTY ? { FORCE_COLOR: '1' } : { NO_COLOR: '1' };
+  const env = { ...process.env, NODE_ENV: 'test', TZ: 'UTC' };
+  for (const name of ['FORCE_COLOR', 'DATABASE_URL', 'PORT', 'HOST', 'NODE_OPTIONS', 'FOREVEIL_MODE', 'LOG_LEVEL', 'APP_ORIGIN'])
+    delete env[name];
+  return { ...env, ...colour };
 }
