@@ -13,6 +13,7 @@ import { AccountsModule } from './modules/accounts/accounts.module.js';
 import { AnalysesModule } from './modules/analyses/analyses.module.js';
 import { EventsModule } from './modules/events/events.module.js';
 import { HealthModule } from './modules/health/health.module.js';
+import { IdentificationsModule } from './modules/identifications/identifications.module.js';
 import { LineListsModule } from './modules/linelists/linelists.module.js';
 import { ProgrammesModule } from './modules/programmes/programmes.module.js';
 import { SpectraModule } from './modules/spectra/spectra.module.js';
@@ -49,6 +50,7 @@ const ClientModule = ServeStaticModule.forRootAsync({
     SpectraModule,
     LineListsModule,
     AnalysesModule,
+    IdentificationsModule,
     EventsModule,
     HealthModule,
   ],

@@ -1,7 +1,7 @@
 import { setInterval as every } from 'node:timers/promises';
 import PgBoss from 'pg-boss';
 import { pino } from 'pino';
-import { ConfigError, loadConfig, type Config } from './config/config.js';
+import { configOrExit } from './config/config-or-exit.js';
 import { createKnex } from './database/knex.js';
 import { Listener } from './database/listener.js';
 import { ANALYSE_QUEUE, JOBS_SCHEMA, type AnalyseJob } from './modules/analyses/job-queue.js';
@@ -13,7 +13,7 @@ import { defaultLineListId, loadLineList } from './modules/linelists/line-list-s
 import { exitWithin } from './stop.js';
 
 /** An analysis worker: takes jobs from the queue, and takes back those of workers that died. Any number may run, on any machine. */
-const config = readConfig();
+const config = configOrExit();
 const log = pino({ level: config.logLevel, name: 'worker' });
 const db = createKnex(config.databaseUrl, { pool: 4, statementSeconds: 120, applicationName: 'foreveil worker' });
 const listener = new Listener(config.databaseUrl);
@@ -81,14 +81,4 @@ async function stop(): Promise<void> {
   await listener.close();
   await db.destroy();
   process.exit(0);
-}
-
-function readConfig(): Config {
-  try {
-    return loadConfig();
-  } catch (error) {
-    if (!(error instanceof ConfigError)) throw error;
-    console.error(error.message);
-    process.exit(1);
-  }
 }

@@ -1,1 +1,2 @@
 export * from './transitions.js';
+export * from './reading-in-words.js';

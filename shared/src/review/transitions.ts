@@ -15,4 +15,9 @@ const NEXT: Record<ReviewState, Partial<Record<ReviewAction, ReviewState>>> = {
 export const nextState = (state: ReviewState, action: ReviewAction): ReviewState | null => NEXT[state][action] ?? null;
 
 /** The weakest role that may take an action. */
-export const ROLE_FOR: Record<ReviewAction, MemberRole> = { propose: 'analyst', accept: 'reviewer', reject: 'reviewer', reopen: 'reviewer' };
+export const ROLE_FOR: Record<ReviewAction, MemberRole> = {
+  propose: 'analyst',
+  accept: 'reviewer',
+  reject: 'reviewer',
+  reopen: 'reviewer',
+};

@@ -19,7 +19,10 @@ export const LogModule = LoggerModule.forRootAsync({
       genReqId: traceIdOf,
       autoLogging: { ignore: (request: IncomingMessage) => !request.url?.startsWith('/api/') || request.url.startsWith('/api/health/') },
       customProps: (request: IncomingMessage) => ({ userId: (request as { user?: { userId: string } }).user?.userId }),
-      serializers: { req: ({ id, method, url, remoteAddress }: Record<string, unknown>) => ({ id, method, url, remoteAddress }) },
+      serializers: {
+        res: ({ statusCode }: { statusCode: number }) => ({ statusCode }),
+        req: ({ id, method, url, remoteAddress }: Record<string, unknown>) => ({ id, method, url, remoteAddress }),
+      },
     },
   }),
 });

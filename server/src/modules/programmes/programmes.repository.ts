@@ -7,7 +7,7 @@ export async function findProgrammes(db: Knex, userId: string, id?: string): Pro
   return db('memberships as m')
     .join('programmes as p', 'p.id', 'm.programme_id')
     .where('m.user_id', userId)
-    .modify((q) => (id ? q.where('p.id', id) : q))
+    .modify((query) => void (id && query.where('p.id', id)))
     .orderBy('p.name')
     .select<ProgrammeSummary[]>(
       { id: 'p.id', name: 'p.name', description: 'p.description', simulated: 'p.simulated', role: 'm.role' },

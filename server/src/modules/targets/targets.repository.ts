@@ -11,7 +11,7 @@ const decided = (state: 'accepted' | 'rejected') =>
 export async function findTargets(db: Knex, { programmeId }: Scope, id?: string): Promise<Omit<TargetSummary, 'spectra'>[]> {
   return db('targets as t')
     .where('t.programme_id', programmeId)
-    .modify((q) => (id ? q.where('t.id', id) : q))
+    .modify((query) => void (id && query.where('t.id', id)))
     .orderByRaw('lower(t.name)')
     .select<Omit<TargetSummary, 'spectra'>[]>(
       { id: 't.id', name: 't.name', kind: 't.kind', simulated: 't.simulated', notes: 't.notes', version: 't.version' },

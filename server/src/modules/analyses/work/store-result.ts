@@ -14,7 +14,7 @@ import type { Claim } from './claim.js';
 export function storeResult(db: Knex, claim: Claim, spectrum: Spectrum, analysis: Analysis): Promise<boolean> {
   return inTransaction(db, async (trx) => {
     // the spectrum first: decisions hold it while they read which analysis is current, so either they see this one whole or not at all
-    await trx('spectra').where({ id: claim.spectrumId }).forUpdate().first('id');
+    await trx('spectra').where({ id: claim.spectrumId }).forNoKeyUpdate().first('id');
     if (!(await complete(trx, claim, analysis))) return false;
     await insertFeatures(trx, claim.id, analysis.features);
     const preview = JSON.stringify(previewOf(spectrum, analysis.continuum));

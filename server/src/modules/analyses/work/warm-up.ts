@@ -1,7 +1,9 @@
 import { DEFAULT_SETTINGS, analyse, type LineList, type Spectrum } from '@foreveil/shared';
 
-const POINTS = 10_000;
-const ROUNDS = 6;
+const POINTS = 3_000;
+/** a first job may be waiting behind this */
+const AT_MOST_MS = 1_500;
+const ROUNDS = 15;
 
 /**
  * Runs the analysis on small made-up spectra, so that the compiler has seen its loops before the first real job: without this the first
@@ -9,7 +11,8 @@ const ROUNDS = 6;
  */
 export function warmUp(list: LineList): void {
   try {
-    for (let round = 0; round < ROUNDS; round++) analyse(madeUpSpectrum(round), list, DEFAULT_SETTINGS);
+    const end = performance.now() + AT_MOST_MS;
+    for (let round = 0; round < ROUNDS && performance.now() < end; round++) analyse(madeUpSpectrum(round), list, DEFAULT_SETTINGS);
   } catch {
     return;
   }
