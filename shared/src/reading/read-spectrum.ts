@@ -1,4 +1,5 @@
 import { assemble } from './assemble.js';
+import type { ReadContext } from './context.js';
 import { readFits } from './fits/read-fits.js';
 import { gunzip } from './gunzip.js';
 import { DEFAULT_READ_LIMITS, type ReadLimits } from './limits.js';
@@ -59,8 +60,9 @@ const FITS_NAME = /\.(?:fits?|fts)(?:\.gz)?$/i;
 
 function readPlain(bytes: Uint8Array, fileName: string, corrections: ReadingCorrections, limits: ReadLimits): RawSpectrum {
   const content = recognise(bytes);
-  if (content === 'fits') return readFits(bytes, corrections, limits);
-  if (content === 'text' || content === 'utf16') return readText(bytes, corrections, limits);
+  const context: ReadContext = { bytes, corrections, limits, warnings: [] };
+  if (content === 'fits') return readFits(context);
+  if (content === 'text' || content === 'utf16') return readText(context);
   if (content === 'empty') refuse('empty', 'The file is empty: it has no bytes.');
   if (content === 'nearly_fits')
     refuse('not_fits', 'This looks like FITS but is not a FITS file: its first card is not SIMPLE.', { card: 'SIMPLE' });

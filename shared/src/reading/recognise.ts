@@ -38,8 +38,7 @@ export function recognise(bytes: Uint8Array): Content {
     .toLowerCase();
   if (head.startsWith('<!doctype html') || head.startsWith('<html'))
     return { foreign: 'an HTML page, perhaps an error page saved as a file' };
-  if (head.startsWith('<?xml') || head.startsWith('<votable') || head.startsWith('<svg'))
-    return { foreign: 'an XML document, not a text table' };
+  if (head.startsWith('<?xml') || head.startsWith('<votable') || head.startsWith('<svg')) return { foreign: 'an XML document' };
   if (/^(?:XTENSION|[A-Z][A-Z0-9_-]{0,7} *=).{70}/.test(start.slice(0, 80)) && !start.slice(0, 240).includes('\n')) return 'nearly_fits';
   return looksBinary(start) ? 'binary' : 'text';
 }

@@ -1,7 +1,8 @@
 import type { Medium } from '../../units/index.js';
 import { isLength, toNm, type SpectralUnit } from '../../units/index.js';
+import type { ReadContext } from '../context.js';
 import { quoted, refuse } from '../refusal.js';
-import type { AxisUnit, ReadingCorrections, ReadWarning, Stated } from '../types.js';
+import type { AxisUnit, Stated } from '../types.js';
 import { AXIS_UNIT_NAMES, parseAxisUnit, type ScaledAxisUnit } from './axis-unit.js';
 import type { SpectralQuantity } from './words.js';
 
@@ -28,10 +29,10 @@ const DEFAULTS: Partial<Record<SpectralQuantity, AxisUnit>> = { frequency: 'hz',
  * Values of a spectral axis, turned into nm in place. The unit is the corrected one, else the stated one, else one that is
  * assumed with a warning.
  */
-export function settleAxis(values: Float64Array, statement: AxisStatement, corrections: ReadingCorrections, warnings: ReadWarning[]): Axis {
+export function settleAxis(values: Float64Array, statement: AxisStatement, context: ReadContext): Axis {
   const log10 = statement.quantity === 'log10_length' || (parseAxisUnit(statement.unit)?.log10 ?? false);
   if (log10) for (let i = 0; i < values.length; i++) values[i] = 10 ** values[i]!;
-  const { scaled, how, where } = settleUnit(values, statement, log10, corrections, warnings);
+  const { scaled, how, where } = settleUnit(values, statement, log10, context);
   if (scaled.unit === 'velocity')
     refuse(
       'no_rest_wavelength',
@@ -51,13 +52,7 @@ interface Settled {
   readonly where: string;
 }
 
-function settleUnit(
-  values: Float64Array,
-  statement: AxisStatement,
-  log10: boolean,
-  corrections: ReadingCorrections,
-  warnings: ReadWarning[],
-): Settled {
+function settleUnit(values: Float64Array, statement: AxisStatement, log10: boolean, { corrections, warnings }: ReadContext): Settled {
   if (corrections.axisUnit) return { scaled: { unit: corrections.axisUnit, scale: 1 }, how: 'corrected', where: 'correction' };
   if (statement.unit.trim() !== '') {
     const scaled = parseAxisUnit(statement.unit);

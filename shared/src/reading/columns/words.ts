@@ -58,7 +58,8 @@ const INVERSE = list('ivar invvar ivariance inverse inv');
 const NOT_THE_ERROR = list('sys syserror syserr systematic lo low lower hi high upper plus minus');
 
 const MASK = list('mask masks qual quality dq dqflag dqflags dataqual flag flags bad badpix badpixel badpixels');
-const NOT_THE_MASK = list('or full');
+/** Masks of that kind hold remarks; the faults among them are zeros of the inverse variance already. */
+const NOT_THE_MASK = list('and or full');
 
 export type NameRole = 'flux' | 'sigma' | 'variance' | 'inverse_variance' | 'mask';
 
@@ -69,7 +70,7 @@ export function nameRole(name: string): { role: NameRole; strength: number } | n
   if (aboutAxis) return null;
   const uncertainty = uncertaintyRole(found);
   if (uncertainty) return found.some(has(NOT_THE_ERROR)) ? null : { role: uncertainty, strength: found.length === 1 ? 9 : 8 };
-  if (found.some(has(MASK))) return { role: 'mask', strength: found.some(has(NOT_THE_MASK)) ? 4 : 8 };
+  if (found.some(has(MASK))) return found.some(has(NOT_THE_MASK)) ? null : { role: 'mask', strength: 8 };
   const base = found.some(has(FLUX)) || found.some((word) => word.endsWith('flux')) ? 9 : found.some(has(LIKE_FLUX)) ? 7 : 0;
   if (base === 0) return null;
   const other = found.some(has(NOT_THE_FLUX)) ? -6 : 0;
@@ -78,6 +79,7 @@ export function nameRole(name: string): { role: NameRole; strength: number } | n
 }
 
 function uncertaintyRole(found: readonly string[]): 'sigma' | 'variance' | 'inverse_variance' | null {
+  if (found.length === 1 && found[0] === 'inverse') return 'inverse_variance';
   if (found.some(has(INVERSE)) && (found.some((word) => word.includes('var')) || found.includes('ivar'))) return 'inverse_variance';
   if (found.some(has(VARIANCE))) return 'variance';
   // 'ferr', 'fluxerr', 'staterror', 'e_flux'

@@ -1,4 +1,4 @@
-import type { ReadLimits } from '../limits.js';
+import type { ReadContext } from '../context.js';
 import { latin1 } from '../platform.js';
 import { quoted, refuse } from '../refusal.js';
 import { fieldCount } from './binary-table.js';
@@ -18,7 +18,7 @@ interface AsciiColumn {
 }
 
 /** An ASCII table, FITS Standard 4.0 section 7.2. */
-export function asciiTable(bytes: Uint8Array, hdu: Hdu, limits: ReadLimits): FitsTable {
+export function asciiTable(hdu: Hdu, { bytes, limits }: ReadContext): FitsTable {
   const { header } = hdu;
   const rowBytes = header.count('NAXIS1');
   const rows = header.count('NAXIS2');

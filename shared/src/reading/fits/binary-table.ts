@@ -1,3 +1,4 @@
+import type { ReadContext } from '../context.js';
 import type { ReadLimits } from '../limits.js';
 import { quoted, refuse } from '../refusal.js';
 import type { Hdu } from './hdu.js';
@@ -13,7 +14,7 @@ interface BinaryColumn extends BinaryFormat {
 const NUMERIC = new Set('L X B I J K E D'.split(' '));
 
 /** A binary table, FITS Standard 4.0 section 7.3. The structure is checked as a whole before any value is read. */
-export function binaryTable(bytes: Uint8Array, hdu: Hdu, limits: ReadLimits): FitsTable {
+export function binaryTable(hdu: Hdu, { bytes, limits }: ReadContext): FitsTable {
   const { header } = hdu;
   const rowBytes = header.count('NAXIS1');
   const rows = header.count('NAXIS2');

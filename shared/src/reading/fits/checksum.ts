@@ -52,7 +52,7 @@ export function verifyChecksums(bytes: Uint8Array, hdu: Hdu, warnings: ReadWarni
   if (wrong.length > 0)
     warnings.push({
       code: 'checksum_wrong',
-      sentence: `${wrong.join(' and ')} of ${hdu.place} does not match its content (checksum wrong): the file was changed or damaged after it was written.`,
+      sentence: `${wrong.join(' and ')} of ${hdu.place} ${wrong.length > 1 ? 'do' : 'does'} not match the content (checksum wrong): the file was changed or damaged after it was written.`,
     });
 }
 

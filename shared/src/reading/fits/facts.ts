@@ -52,14 +52,22 @@ function frameOf(headers: Headers, warnings: ReadWarning[]): Stated<Frame> {
       sentence: `The velocity frame ${specsys.where} = '${quoted(specsys.value)}' is not one that is known here; the frame counts as unknown.`,
     });
   }
-  // Hubble's spectrographs say so when the wavelengths were brought to the Sun
-  if (firstText(headers, 'HELCORR')?.value.toUpperCase() === 'COMPLETE') return stated('heliocentric', 'HELCORR');
-  return notStated('unknown');
+  const correction = heliocentricCard(headers);
+  return correction ? stated('heliocentric', correction) : notStated('unknown');
+}
+
+/** The card by which a reduction system says that it brought the wavelengths to the Sun; null when none does. */
+function heliocentricCard(headers: Headers): string | null {
+  if (firstText(headers, 'HELCORR')?.value.toUpperCase() === 'COMPLETE') return 'HELCORR';
+  if (headers.some((header) => header.get('HELIO') === true)) return 'HELIO';
+  // the correction that was applied, km/s; exactly zero stands for none
+  const applied = firstNumber(headers, 'HELIO_RV', 'BSS_VHEL');
+  return applied && applied.value !== 0 ? applied.where : null;
 }
 
 /** SPEC_RP is lambda / FWHM. Archives write the same into SPEC_RES, the data model a width in the axis unit there. */
 function resolvingPowerOf(headers: Headers): Stated<number | null> {
-  const direct = firstNumber(headers, 'SPEC_RP', 'BSS_ITRP');
+  const direct = firstNumber(headers, 'SPEC_RP', 'BSS_ITRP', 'AAV_ITRP');
   if (direct && direct.value > 0) return stated(direct.value, direct.where);
   const either = firstNumber(headers, 'SPEC_RES');
   if (either && either.value >= 50) return stated(either.value, either.where);
@@ -84,8 +92,8 @@ function positionOf(headers: Headers): { raDeg: number | null; decDeg: number | 
   const system = firstText(headers, 'RADESYS', 'RADECSYS')?.value.toUpperCase();
   const equinox = firstNumber(headers, 'EQUINOX', 'EPOCH')?.value;
   if ((system !== undefined && system !== 'ICRS' && system !== 'FK5') || (equinox !== undefined && equinox !== 2000)) return nothing;
-  const ra = angle(headers, ['RA', 'RA_TARG', 'RA_OBJ', 'OBJCTRA'], 15);
-  const dec = angle(headers, ['DEC', 'DEC_TARG', 'DEC_OBJ', 'OBJCTDEC'], 1);
+  const ra = angle(headers, ['RA_TARG', 'RA_OBJ', 'PLUG_RA', 'RA', 'RA2000', 'OBJCTRA'], 15);
+  const dec = angle(headers, ['DEC_TARG', 'DEC_OBJ', 'PLUG_DEC', 'DEC', 'DEC2000', 'OBJCTDEC'], 1);
   if (ra === null || dec === null || ra < 0 || ra >= 360 || Math.abs(dec) > 90) return nothing;
   return { raDeg: ra, decDeg: dec };
 }
@@ -95,6 +103,7 @@ function angle(headers: Headers, keywords: string[], perUnit: number): number | 
   const number = firstNumber(headers, ...keywords);
   if (number) return number.value;
   const text = firstText(headers, ...keywords)?.value ?? '';
+  if (/^[+-]?\d{1,3}(?:\.\d+)?$/.test(text)) return Number(text);
   const parts = /^([+-]?)(\d{1,3})[:\s](\d{1,2})[:\s](\d{1,2}(?:\.\d*)?)$/.exec(text);
   if (!parts) return null;
   const value = Number(parts[2]) + Number(parts[3]) / 60 + Number(parts[4]) / 3600;
@@ -116,3 +125,16 @@ export function mediumOfCards(headers: Headers): Stated<Medium> | null {
 
 /** Whether a card says that the continuum was divided out. */
 export const saysNormalised = (headers: Headers): boolean => headers.some((header) => header.get('CONTNORM') === true);
+
+/** Unit of the data of the whole file; '' when there is none. */
+export const dataUnit = (headers: Headers): string => firstText(headers, 'BUNIT')?.value ?? '';
+
+/**
+ * Bits of a quality column that mean "do not use": the ones that Hubble's files name in SDQFLAGS, bit 0 in Webb's. Null:
+ * every bit.
+ */
+export function qualityBits(headers: Headers): number | null {
+  const serious = firstNumber(headers, 'SDQFLAGS');
+  if (serious && Number.isInteger(serious.value) && serious.value > 0) return serious.value;
+  return firstText(headers, 'TELESCOP')?.value.toUpperCase() === 'JWST' ? 1 : null;
+}

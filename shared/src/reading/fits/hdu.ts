@@ -1,3 +1,4 @@
+import type { ReadContext } from '../context.js';
 import type { ReadLimits } from '../limits.js';
 import { latin1 } from '../platform.js';
 import { Refusal, refuse } from '../refusal.js';
@@ -25,7 +26,7 @@ const BITPIX = new Set([8, 16, 32, 64, -32, -64]);
  * The units of a FITS file in order. When one is damaged, the ones before it and the problem are returned together: the
  * spectrum may be whole.
  */
-export function readHdus(bytes: Uint8Array, limits: ReadLimits, warnings: ReadWarning[]): { hdus: Hdu[]; problem: ReadProblem | null } {
+export function readHdus({ bytes, limits, warnings }: ReadContext): { hdus: Hdu[]; problem: ReadProblem | null } {
   const hdus: Hdu[] = [];
   try {
     let at = 0;

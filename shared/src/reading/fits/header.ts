@@ -91,7 +91,7 @@ export function readHeader(bytes: Uint8Array, start: number, place: string, limi
         `The file is incomplete: it ends inside the header of ${place}, before the END card. Copy or download it again.`,
         { card: 'END' },
       );
-    if (isEnd(bytes, at)) return { header: new Header(cards), end: start + Math.ceil((at + CARD - start) / BLOCK) * BLOCK };
+    if (isEnd(bytes, at)) return { header: new Header(cards), end: endOfBlocks(bytes, start, at + CARD, place) };
     if (cards.length >= limits.headerCards)
       refuse('header_too_long', `The header of ${place} is too long: no END card within ${limits.headerCards} cards, the limit.`, {
         card: 'END',
@@ -102,6 +102,17 @@ export function readHeader(bytes: Uint8Array, start: number, place: string, limi
       });
     cards.push(latin1(bytes, at, at + CARD).trimEnd());
   }
+}
+
+/** First byte after the block that holds the END card; all of the block must be there. */
+function endOfBlocks(bytes: Uint8Array, start: number, afterEnd: number, place: string): number {
+  const end = start + Math.ceil((afterEnd - start) / BLOCK) * BLOCK;
+  if (end > bytes.length)
+    refuse(
+      'header_truncated',
+      `The file is incomplete: it ends inside the last block of the header of ${place}. Copy or download it again.`,
+    );
+  return end;
 }
 
 function isEnd(bytes: Uint8Array, at: number): boolean {

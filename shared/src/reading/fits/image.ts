@@ -1,4 +1,4 @@
-import type { ReadLimits } from '../limits.js';
+import type { ReadContext } from '../context.js';
 import { refuse } from '../refusal.js';
 import { decode } from './decode.js';
 import type { Hdu } from './hdu.js';
@@ -35,7 +35,7 @@ export function imageShape(hdu: Hdu): ImageShape {
 }
 
 /** Pixels of one band, scaled by BSCALE and BZERO; BLANK becomes NaN. */
-export function readBand(bytes: Uint8Array, hdu: Hdu, shape: ImageShape, band: number, limits: ReadLimits): Float64Array {
+export function readBand(hdu: Hdu, shape: ImageShape, band: number, { bytes, limits }: ReadContext): Float64Array {
   if (shape.length > limits.points)
     refuse(
       'too_large',

@@ -1,23 +1,13 @@
 import { settleAxis } from '../columns/axis.js';
 import { stated } from '../columns/medium.js';
-import type { ReadLimits } from '../limits.js';
+import type { ReadContext } from '../context.js';
 import { quoted, refuse } from '../refusal.js';
-import type { ReadingCorrections, ReadWarning } from '../types.js';
 import { binaryTable } from './binary-table.js';
 import type { Hdu } from './hdu.js';
-import type { ImageAxis } from './wcs.js';
+import type { AxisPlace, ImageAxis } from './axis-place.js';
 
 /** An axis from a look-up table, -TAB of Greisen et al. 2006 section 6, one-dimensional. */
-export function lookUpAxis(
-  bytes: Uint8Array,
-  hdu: Hdu,
-  hdus: readonly Hdu[],
-  k: number,
-  length: number,
-  limits: ReadLimits,
-  corrections: ReadingCorrections,
-  warnings: ReadWarning[],
-): ImageAxis {
+export function lookUpAxis({ hdu, k, length }: AxisPlace, hdus: readonly Hdu[], context: ReadContext): ImageAxis {
   const { header } = hdu;
   const ctype = header.text(`CTYPE${k}`)!.toUpperCase();
   const name = header.text(`PS${k}_0`);
@@ -35,7 +25,7 @@ export function lookUpAxis(
       `The spectral axis in ${hdu.place} is a look-up table, but its table ${quoted(name ?? '(no name)')} is missing.`,
       { card: `PS${k}_0` },
     );
-  const table = binaryTable(bytes, tableHdu, limits);
+  const table = binaryTable(tableHdu, context);
   const column = (wanted: string) => {
     const index = table.infos.findIndex((info) => info.name.toUpperCase() === wanted.toUpperCase());
     if (index < 0 || table.rows < 1)
@@ -56,12 +46,7 @@ export function lookUpAxis(
   }
   const unit = header.text(`CUNIT${k}`) ?? coordinates.unit;
   const where = header.text(`CUNIT${k}`) ? `CUNIT${k}` : coordinates.card;
-  const axis = settleAxis(
-    out,
-    { name: ctype, quantity: ctype.startsWith('FREQ') ? 'frequency' : 'length', unit, where },
-    corrections,
-    warnings,
-  );
+  const axis = settleAxis(out, { name: ctype, quantity: ctype.startsWith('FREQ') ? 'frequency' : 'length', unit, where }, context);
   const medium = ctype.startsWith('WAVE')
     ? stated('vacuum' as const, `CTYPE${k}`)
     : ctype.startsWith('AWAV')

@@ -1,7 +1,7 @@
-import type { ReadLimits } from '../limits.js';
+import type { ReadContext } from '../context.js';
 import type { RawSpectrum } from '../raw.js';
 import { quoted, Refusal, refuse } from '../refusal.js';
-import type { ReadingCorrections, ReadProblem, ReadWarning } from '../types.js';
+import type { ReadProblem, ReadWarning } from '../types.js';
 import { asciiTable } from './ascii-table.js';
 import { binaryTable } from './binary-table.js';
 import { verifyChecksums } from './checksum.js';
@@ -13,11 +13,11 @@ import { rawFromTable, tableCandidate, type TableCandidate } from './spectrum-ta
 type Candidate = { readonly kind: 'table'; readonly of: TableCandidate } | { readonly kind: 'image'; readonly of: ImageCandidate };
 
 /** The best spectrum of a FITS file, or the one at the place that was asked for. */
-export function readFits(bytes: Uint8Array, corrections: ReadingCorrections, limits: ReadLimits): RawSpectrum {
-  const warnings: ReadWarning[] = [];
-  const { hdus, problem } = readHdus(bytes, limits, warnings);
+export function readFits(context: ReadContext): RawSpectrum {
+  const { bytes, corrections, warnings } = context;
+  const { hdus, problem } = readHdus(context);
   const wanted = corrections.place === undefined ? null : parsePlace(corrections.place, hdus);
-  const { candidates, problems } = look(bytes, wanted ? [wanted.hdu] : hdus, hdus, wanted?.row ?? null, corrections, limits);
+  const { candidates, problems } = look(wanted ? [wanted.hdu] : hdus, hdus, wanted?.row ?? null, context);
   const best = candidates.find((candidate) => candidate.kind === 'table') ?? candidates[0];
   if (!best) {
     if (problem) throw new Refusal(problem);
@@ -32,11 +32,10 @@ export function readFits(bytes: Uint8Array, corrections: ReadingCorrections, lim
   const headers = hdu.index === 0 ? [hdu.header] : [hdu.header, hdus[0]!.header];
   noteHeader(headers, warnings);
   verifyChecksums(bytes, hdu, warnings);
-  const others = wanted ? look(bytes, hdus, hdus, null, {}, limits).candidates : candidates;
+  const others = wanted ? look(hdus, hdus, null, { ...context, corrections: {} }).candidates : candidates;
   const otherPlaces = others.flatMap((other) => placesOf(other)).filter((place) => place !== corrections.place && place !== hdu.place);
-  if (best.kind === 'table')
-    return rawFromTable(best.of, headers, [...new Set([...best.of.places, ...otherPlaces])], corrections, warnings);
-  return rawFromImage(bytes, best.of, hdus, headers, otherPlaces, corrections, limits, warnings);
+  if (best.kind === 'table') return rawFromTable(best.of, headers, [...new Set([...best.of.places, ...otherPlaces])], context);
+  return rawFromImage(best.of, hdus, headers, otherPlaces, context);
 }
 
 const placesOf = (candidate: Candidate): string[] => [candidate.of.hdu.place, ...(candidate.kind === 'table' ? candidate.of.places : [])];
@@ -50,19 +49,12 @@ function parsePlace(place: string, hdus: readonly Hdu[]): { hdu: Hdu; row: numbe
   return { hdu, row: row ? Number(row[1]) - 1 : null };
 }
 
-function look(
-  bytes: Uint8Array,
-  among: readonly Hdu[],
-  hdus: readonly Hdu[],
-  row: number | null,
-  corrections: ReadingCorrections,
-  limits: ReadLimits,
-) {
+function look(among: readonly Hdu[], hdus: readonly Hdu[], row: number | null, context: ReadContext) {
   const candidates: Candidate[] = [];
   const problems: ReadProblem[] = [];
   for (const hdu of among) {
     try {
-      const candidate = candidateOf(bytes, hdu, hdus, row, corrections, limits);
+      const candidate = candidateOf(hdu, hdus, row, context);
       if (candidate) candidates.push(candidate);
     } catch (error) {
       if (!(error instanceof Refusal)) throw error;
@@ -72,14 +64,7 @@ function look(
   return { candidates, problems };
 }
 
-function candidateOf(
-  bytes: Uint8Array,
-  hdu: Hdu,
-  hdus: readonly Hdu[],
-  row: number | null,
-  corrections: ReadingCorrections,
-  limits: ReadLimits,
-): Candidate | null {
+function candidateOf(hdu: Hdu, hdus: readonly Hdu[], row: number | null, context: ReadContext): Candidate | null {
   if (hdu.kind === 'binary_table') {
     if (hdu.header.get('ZTABLE') === true || hdu.header.get('ZIMAGE') === true)
       refuse(
@@ -87,9 +72,9 @@ function candidateOf(
         `${hdu.place} is a compressed table or image (ZTABLE, ZIMAGE), which is not supported. Uncompress the file first.`,
         { card: 'ZTABLE' },
       );
-    return { kind: 'table', of: tableCandidate(hdu, binaryTable(bytes, hdu, limits), row, corrections) };
+    return { kind: 'table', of: tableCandidate(hdu, binaryTable(hdu, context), row, context.corrections) };
   }
-  if (hdu.kind === 'ascii_table') return { kind: 'table', of: tableCandidate(hdu, asciiTable(bytes, hdu, limits), row, corrections) };
+  if (hdu.kind === 'ascii_table') return { kind: 'table', of: tableCandidate(hdu, asciiTable(hdu, context), row, context.corrections) };
   return hdu.kind === 'image' ? { kind: 'image', of: imageCandidate(hdu, hdus) } : null;
 }
 

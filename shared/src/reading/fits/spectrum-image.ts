@@ -1,16 +1,17 @@
-import type { ReadLimits } from '../limits.js';
+import type { ReadContext } from '../context.js';
 import { settleAxis } from '../columns/axis.js';
 import { fluxKindOf } from '../columns/flux-kind.js';
 import { notStated, stated } from '../columns/medium.js';
 import { axisQuantity, nameRole } from '../columns/words.js';
 import type { RawSpectrum } from '../raw.js';
 import { quoted, refuse } from '../refusal.js';
-import type { ReadingCorrections, ReadWarning, UncertaintyKind } from '../types.js';
+import type { ReadingCorrections, UncertaintyKind } from '../types.js';
 import { mediumOfCards, readFacts, saysNormalised, type Headers } from './facts.js';
 import type { Hdu } from './hdu.js';
 import { imageShape, readBand, type ImageShape } from './image.js';
 import { lookUpAxis } from './look-up.js';
-import { imageAxis, type ImageAxis } from './wcs.js';
+import type { ImageAxis } from './axis-place.js';
+import { imageAxis } from './wcs.js';
 
 /** A row of an image, or an image of its own, with the words that say what it holds. */
 interface Band {
@@ -77,17 +78,15 @@ function sameLength(hdu: Hdu, shape: ImageShape): boolean {
 }
 
 export function rawFromImage(
-  bytes: Uint8Array,
   candidate: ImageCandidate,
   hdus: readonly Hdu[],
   headers: Headers,
   otherPlaces: string[],
-  corrections: ReadingCorrections,
-  limits: ReadLimits,
-  warnings: ReadWarning[],
+  context: ReadContext,
 ): RawSpectrum {
+  const { corrections, warnings } = context;
   const { hdu, shape } = candidate;
-  const { name, axis, medium } = axisOf(bytes, candidate, hdus, corrections, limits, warnings);
+  const { name, axis, medium } = axisOf(candidate, hdus, context);
   const bands = bandsOf(hdu, shape, hdus);
   const chosen = chooseBands(bands, corrections);
   const flux = read(chosen.flux);
@@ -124,29 +123,22 @@ export function rawFromImage(
   };
 
   function read(band: Band): Float64Array {
-    return readBand(bytes, band.hdu, band.shape, band.band, limits);
+    return readBand(band.hdu, band.shape, band.band, context);
   }
 }
 
-function axisOf(
-  bytes: Uint8Array,
-  { hdu, shape }: ImageCandidate,
-  hdus: readonly Hdu[],
-  corrections: ReadingCorrections,
-  limits: ReadLimits,
-  warnings: ReadWarning[],
-): ImageAxis {
+function axisOf({ hdu, shape }: ImageCandidate, hdus: readonly Hdu[], context: ReadContext): ImageAxis {
+  const place = { hdu, k: shape.axis, length: shape.length };
   const ctype = (hdu.header.text(`CTYPE${shape.axis}`) ?? '').toUpperCase();
-  if (ctype.endsWith('-TAB')) return lookUpAxis(bytes, hdu, hdus, shape.axis, shape.length, limits, corrections, warnings);
-  if (hasAxis(hdu, shape)) return imageAxis(hdu, shape.axis, shape.length, corrections, warnings);
+  if (ctype.endsWith('-TAB')) return lookUpAxis(place, hdus, context);
+  if (hasAxis(hdu, shape)) return imageAxis(place, context);
   const wave = waveImage(hdu, shape, hdus)!;
   const name = wave.header.text('EXTNAME')!;
-  const values = readBand(bytes, wave, { axis: 1, length: shape.length, bands: 1 }, 0, limits);
+  const values = readBand(wave, { axis: 1, length: shape.length, bands: 1 }, 0, context);
   const axis = settleAxis(
     values,
     { name, quantity: axisQuantity(name) ?? 'length', unit: wave.header.text('BUNIT') ?? '', where: `BUNIT of ${wave.place}` },
-    corrections,
-    warnings,
+    context,
   );
   return { name, axis, medium: null };
 }
@@ -182,7 +174,8 @@ function rowLabel(hdu: Hdu, band: number, bands: number): string {
     // 'sigma - background none, weights none': what comes after the dash is how it was made
     if (text !== null) return text.split(' - ')[0]!.trim();
   }
-  return '';
+  const words = hdu.header.text('EXTEN0')?.split(/\s+/) ?? [];
+  return words.length === bands ? words[band]! : '';
 }
 
 const nameOf = (band: Band): string => band.label || (band.shape.bands > 1 ? `row ${band.band + 1}` : 'image');

@@ -4,10 +4,11 @@ import { fluxKindOf } from '../columns/flux-kind.js';
 import { mediumOfUcd, notStated, stated } from '../columns/medium.js';
 import { mediumWord } from '../columns/words.js';
 import type { Medium } from '../../units/index.js';
+import type { ReadContext } from '../context.js';
 import type { RawSpectrum } from '../raw.js';
 import { quoted, refuse } from '../refusal.js';
 import type { ReadingCorrections, ReadWarning, Stated } from '../types.js';
-import { mediumOfCards, readFacts, saysNormalised, type Headers } from './facts.js';
+import { dataUnit, mediumOfCards, qualityBits, readFacts, saysNormalised, type Headers } from './facts.js';
 import type { Hdu } from './hdu.js';
 import { pickRows, sliceRows, type RowPick } from './rows.js';
 import type { ColumnValues, FitsTable } from './table.js';
@@ -34,6 +35,7 @@ export function tableCandidate(hdu: Hdu, table: FitsTable, row: number | null, c
     );
   if (table.rows === 0) refuse('no_rows', `The table in ${hdu.place} is empty: it has no rows.`);
   const axis = table.read(choice.axis);
+  if (axis.values.length < 2) refuse('too_few_points', `The table in ${hdu.place} has one row only; a spectrum needs at least two points.`);
   const pick = pickRows(axis, row, hdu.place);
   const places = pick.alternatives.map((r) => `${hdu.place} row ${r + 1}`);
   return { hdu, table, choice, axis, pick, places };
@@ -42,13 +44,8 @@ export function tableCandidate(hdu: Hdu, table: FitsTable, row: number | null, c
 const namesOf = (infos: readonly ColumnInfo[]): string => quoted(infos.map((info) => info.name).join(', '), 120);
 
 /** The columns of a candidate, in file order. */
-export function rawFromTable(
-  candidate: TableCandidate,
-  headers: Headers,
-  otherPlaces: string[],
-  corrections: ReadingCorrections,
-  warnings: ReadWarning[],
-): RawSpectrum {
+export function rawFromTable(candidate: TableCandidate, headers: Headers, otherPlaces: string[], context: ReadContext): RawSpectrum {
+  const { corrections, warnings } = context;
   const { hdu, table, choice, pick } = candidate;
   const read = (index: number) => sliceRows(table.read(index), pick);
   const axisInfo = table.infos[choice.axis]!;
@@ -75,18 +72,17 @@ export function rawFromTable(
   };
   const uncertainty = beside(choice.uncertainty);
   const mask = beside(choice.mask);
+  if (mask) keepBits(mask.values, qualityBits(headers));
+  const ownUnit = fluxInfo.unit !== '';
+  const fluxUnit = ownUnit ? fluxInfo.unit : dataUnit(headers);
+  const fluxUnitWhere = ownUnit ? `TUNIT${choice.flux + 1}` : 'BUNIT';
   if (pick.skipped > 0)
     warnings.push({
       code: 'rows_left_out',
       sentence: `${pick.skipped} rows of ${hdu.place} hold fewer than two elements and were left out.`,
     });
   const unitCard = `TUNIT${choice.axis + 1}`;
-  const axis = settleAxis(
-    axisValues,
-    { name: axisInfo.name, quantity: choice.quantity, unit: axisInfo.unit, where: unitCard },
-    corrections,
-    warnings,
-  );
+  const axis = settleAxis(axisValues, { name: axisInfo.name, quantity: choice.quantity, unit: axisInfo.unit, where: unitCard }, context);
   return {
     format: hdu.kind === 'ascii_table' ? 'fits_ascii_table' : 'fits_table',
     place: pick.single === null ? hdu.place : `${hdu.place} row ${pick.single + 1}`,
@@ -98,8 +94,8 @@ export function rawFromTable(
     medium: settleMediumOf(axisInfo, choice.axis, headers, warnings),
     flux,
     fluxName: fluxInfo.name,
-    fluxUnit: fluxInfo.unit === '' ? notStated('') : stated(fluxInfo.unit, `TUNIT${choice.flux + 1}`),
-    fluxKind: fluxKindOf(fluxInfo, `TUNIT${choice.flux + 1}`, saysNormalised(headers)),
+    fluxUnit: fluxUnit === '' ? notStated('') : stated(fluxUnit, fluxUnitWhere),
+    fluxKind: fluxKindOf({ ...fluxInfo, unit: fluxUnit }, fluxUnitWhere, saysNormalised(headers)),
     uncertainty: uncertainty && {
       ...uncertainty,
       kind: corrections.uncertaintyKind
@@ -111,6 +107,12 @@ export function rawFromTable(
     facts: readFacts(headers, warnings),
     warnings,
   };
+}
+
+/** Leaves of each quality value the bits that matter. */
+function keepBits(values: Float64Array, bits: number | null) {
+  if (bits === null) return;
+  for (let i = 0; i < values.length; i++) if (Number.isInteger(values[i]!)) values[i] = values[i]! & bits ? 1 : 0;
 }
 
 /** Statements of the medium, the most particular first; a second one that disagrees is reported. */

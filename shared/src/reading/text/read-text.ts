@@ -2,9 +2,8 @@ import { settleAxis } from '../columns/axis.js';
 import { mediumWord, words } from '../columns/words.js';
 import { notStated, stated } from '../columns/medium.js';
 import { fluxKindOf } from '../columns/flux-kind.js';
-import type { ReadLimits } from '../limits.js';
+import type { ReadContext } from '../context.js';
 import type { RawSpectrum } from '../raw.js';
-import type { ReadingCorrections, ReadWarning } from '../types.js';
 import { chooseTextColumns } from './columns.js';
 import { decodeText } from './decode.js';
 import { readPreamble } from './preamble.js';
@@ -12,8 +11,8 @@ import { readRemarks } from './remarks.js';
 import { readRows } from './rows.js';
 
 /** A spectrum from a text table: comma, semicolon, tab or blanks between the cells, headings or none, remarks or none. */
-export function readText(bytes: Uint8Array, corrections: ReadingCorrections, limits: ReadLimits): RawSpectrum {
-  const warnings: ReadWarning[] = [];
+export function readText(context: ReadContext): RawSpectrum {
+  const { bytes, corrections, limits, warnings } = context;
   const text = decodeText(bytes, warnings);
   const preamble = readPreamble(text, limits);
   const { infos, choice, byPosition } = chooseTextColumns(preamble, corrections, warnings);
@@ -25,7 +24,7 @@ export function readText(bytes: Uint8Array, corrections: ReadingCorrections, lim
   const fluxInfo = infos[choice.flux]!;
   const unit = axisInfo.unit || remarks.axisUnit;
   const where = axisInfo.unit ? 'column name' : remarks.axisUnitWhere;
-  const axis = settleAxis(rows.columns[0]!, { name: axisInfo.name, quantity: choice.quantity, unit, where }, corrections, warnings);
+  const axis = settleAxis(rows.columns[0]!, { name: axisInfo.name, quantity: choice.quantity, unit, where }, context);
   const word = mediumWord(axisInfo.name);
   const fluxUnit = fluxInfo.unit || remarks.fluxUnit;
   return {
