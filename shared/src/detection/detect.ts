@@ -1,7 +1,7 @@
 import { newComponent, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
 import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
-import { applyRotation, findRotation, mergeShreds, pruneWeak, splitBlends, trySpecialShapes, type Rotation } from './refine.js';
+import { applyRotation, dropNeedless, findRotation, mergeShreds, pruneWeak, splitBlends, trySpecialShapes, type Rotation } from './refine.js';
 
 export interface DetectionInput {
   /** flux over continuum, inverse variances */
@@ -53,12 +53,16 @@ export function detect(input: DetectionInput): Detection {
       rotation = findRotation(model, resolvingPower);
       if (rotation) applyRotation(model.components, rotation);
       trySpecialShapes(model, resolvingPower);
+      model.refresh();
+      dropNeedless(model, threshold, tolerantOf(model));
       model.refit(1);
     }
     model.refresh();
   }
   trySpecialShapes(model, resolvingPower);
-  mergeShreds(model, threshold);
+  model.refresh();
+  dropNeedless(model, threshold, tolerantOf(model));
+  mergeShreds(model, threshold, tolerantOf(model));
   splitBlends(model, threshold, resolvingPower);
   model.refit(2);
   pruneWeak(model, threshold);
@@ -77,6 +81,12 @@ export function instrumentSigmaPx(wavelength: Float64Array, resolvingPower: numb
     const z = Math.min(n - 1, i + 1);
     return w / resolvingPower / FWHM_PER_SIGMA / ((wavelength[z]! - wavelength[a]!) / (z - a));
   });
+}
+
+/** The data with weights that allow for imperfect profiles beside strong lines. */
+function tolerantOf(model: LineModel): NormalisedSamples {
+  const { wavelength, flux, weight } = model.data;
+  return { wavelength, flux, weight: weight.map((w, i) => (w === 0 ? 0 : 1 / (1 / w + (PROFILE_FLOOR * (1 - model.value[i]!)) ** 2))) };
 }
 
 /** Data minus model; weights carry what the model cannot be trusted with. */

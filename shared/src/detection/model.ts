@@ -1,4 +1,4 @@
-import { addComponent, fitBlend, reachOf, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
+import { addComponent, fitBlend, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
 
 /** Narrowest and widest profile allowed at a wavelength. */
 export type LimitsAt = (wavelength: number) => BlendLimits;
@@ -66,16 +66,16 @@ class Neighbours {
 
   constructor(components: readonly Component[]) {
     const sorted = [...components].sort((a, b) => a.centre - b.centre);
-    const reaches = sorted.map(reachOf).sort((a, b) => a - b);
+    const reaches = sorted.map((c) => c.reach).sort((a, b) => a - b);
     this.#narrowReach = reaches[Math.floor(reaches.length * 0.8)] ?? 0;
-    this.#narrow = sorted.filter((c) => reachOf(c) <= this.#narrowReach);
-    this.#broad = sorted.filter((c) => reachOf(c) > this.#narrowReach);
+    this.#narrow = sorted.filter((c) => c.reach <= this.#narrowReach);
+    this.#broad = sorted.filter((c) => c.reach > this.#narrowReach);
   }
 
   of(blend: readonly Component[]): Component[] {
-    const from = Math.min(...blend.map((c) => c.centre - reachOf(c)));
-    const to = Math.max(...blend.map((c) => c.centre + reachOf(c)));
-    const out = this.#broad.filter((c) => c.centre + reachOf(c) > from && c.centre - reachOf(c) < to && !blend.includes(c));
+    const from = Math.min(...blend.map((c) => c.centre - c.reach));
+    const to = Math.max(...blend.map((c) => c.centre + c.reach));
+    const out = this.#broad.filter((c) => c.centre + c.reach > from && c.centre - c.reach < to && !blend.includes(c));
     let i = lowerBound(this.#narrow, from - this.#narrowReach);
     for (; i < this.#narrow.length && this.#narrow[i]!.centre < to + this.#narrowReach; i++) {
       const c = this.#narrow[i]!;

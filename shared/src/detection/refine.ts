@@ -1,4 +1,4 @@
-import { fitBlend, GAUSSIAN, newComponent, rangeOf, rotationShape, type Component, type Shape } from '../profiles/index.js';
+import { asDamped, fitBlend, GAUSSIAN, newComponent, rangeOf, rotationShape, settle, withCore, type Component, type NormalisedSamples, type Shape } from '../profiles/index.js';
 import type { LineModel } from './model.js';
 
 /** Takes out components that the joint fit no longer supports. */
@@ -40,8 +40,8 @@ export function findRotation(model: LineModel, resolvingPower: number): Rotation
   let gain = 0;
   for (const c of members.slice(0, 40)) {
     const others = model.overlapping([c]);
-    const range = rangeOf([{ ...c, core: GAUSSIAN }]);
-    const [g, r] = [GAUSSIAN, shape].map((core) => fitBlend(model.data, [{ ...c, core }], others, model.limitsAt(c.centre), range).chi2);
+    const range = rangeOf([withCore(c, GAUSSIAN)]);
+    const [g, r] = [GAUSSIAN, shape].map((core) => fitBlend(model.data, [withCore(c, core)], others, model.limitsAt(c.centre), range).chi2);
     gain += g! - r!;
   }
   return gain > 0 ? { relativeWidth: width, shape } : null;
@@ -77,54 +77,95 @@ function rotationOfWidth(elements: number): Shape {
 
 /** Dips of the star's width take its rotation profile. */
 export function applyRotation(components: readonly Component[], rotation: Rotation): void {
-  for (const c of components) if (c.kind === 'dip' && near(c.fwhm / c.centre, rotation.relativeWidth, 1.6)) c.core = rotation.shape;
+  for (const c of components) if (c.kind === 'dip' && !c.damped && near(c.fwhm / c.centre, rotation.relativeWidth, 1.6)) Object.assign(c, withCore(c, rotation.shape));
 }
 
-/** Broad strong dips get the shape the data prefer: rotation-broadened or Gaussian, with wings or without. */
+const DAMPED_SIGNIFICANCE = 40;
+const DAMPED_GAIN = 40; // chi-square asked of two more parameters, with room for imperfect profiles
+
+/** Broad strong dips get the shape the data prefer: Gaussian, rotation-broadened, or saturated with damping wings. */
 export function trySpecialShapes(model: LineModel, resolvingPower: number): void {
   const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > BROAD * c.centre && c.amplitude / c.sigmaAmplitude > SPECIAL_SIGNIFICANCE);
-  for (const c of broad.sort((a, b) => b.fwhm - a.fwhm || a.centre - b.centre)) {
+  for (const c of broad.sort((a, b) => b.amplitude * b.fwhm - a.amplitude * a.fwhm || a.centre - b.centre)) {
     const others = model.overlapping([c]);
-    const range = rangeOf([{ ...c, winged: true }]);
-    const rotation = rotationOfWidth((c.fwhm * resolvingPower) / c.centre);
+    const trials = [withCore(c, GAUSSIAN), withCore(c, rotationOfWidth((c.fwhm * resolvingPower) / c.centre))];
+    if (c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE) trials.push(c.damped ? { ...c } : asDamped(c));
+    const range = [c.centre - 4 * c.fwhm, c.centre + 4 * c.fwhm] as const;
     let best: Component | null = null;
     let bestChi2 = Infinity;
-    for (const trial of [variant(c, GAUSSIAN, false), variant(c, rotation, false), variant(c, GAUSSIAN, true), variant(c, rotation, true)]) {
-      const { chi2 } = fitBlend(model.data, [trial], others, model.limitsAt(c.centre), range);
-      const penalised = chi2 + (trial.winged ? 12 : 0);
-      if (penalised < bestChi2 - 1e-9) [best, bestChi2] = [trial, penalised];
+    for (const trial of trials) {
+      const chi2 = fitBlend(model.data, [trial], others, model.limitsAt(c.centre), range).chi2 + (trial.damped ? DAMPED_GAIN : 0);
+      if (chi2 < bestChi2) [best, bestChi2] = [trial, chi2];
     }
     if (best) Object.assign(c, best);
   }
 }
 
-const variant = (c: Component, core: Shape, winged: boolean): Component => ({ ...c, core, winged, eta: winged ? Math.max(c.eta, 0.15) : 0 });
+const NEEDED_SIGNIFICANCE = 45; // stronger components are beyond doubt
+const NEIGHBOURS = 3;
+
+/**
+ * Takes out components that a stronger neighbour can stand for: wings and corners of profiles that are not quite right. Both fits are
+ * weighed with the profile error allowed for beside strong lines, so that a misfit of a few per cent is no feature.
+ */
+export function dropNeedless(model: LineModel, threshold: number, tolerant: NormalisedSamples): void {
+  const weakFirst = [...model.components].sort((a, b) => a.amplitude / a.sigmaAmplitude - b.amplitude / b.sigmaAmplitude || a.centre - b.centre);
+  const gone = new Set<Component>();
+  for (const c of weakFirst) {
+    if (c.amplitude / c.sigmaAmplitude > NEEDED_SIGNIFICANCE) break;
+    const strong = model.components
+      .filter((o) => o !== c && !gone.has(o) && o.kind === c.kind && o.amplitude * o.area > 1.5 * c.amplitude * c.area && Math.abs(o.centre - c.centre) < 0.7 * (o.fwhm + c.fwhm))
+      .sort((a, b) => Math.abs(a.centre - c.centre) / a.fwhm - Math.abs(b.centre - c.centre) / b.fwhm)
+      .slice(0, NEIGHBOURS);
+    if (strong.length === 0) continue;
+    const others = model.overlapping([c, ...strong]).filter((o) => !gone.has(o));
+    const limits = model.limitsAt(c.centre);
+    const range = rangeOf([c, ...strong.filter((o) => !o.damped)]);
+    const wide = [Math.min(range[0], c.centre - 2 * c.fwhm), Math.max(range[1], c.centre + 2 * c.fwhm)] as const;
+    const withIt = fitBlend(tolerant, [{ ...c }, ...strong.map((o) => ({ ...o }))], others, limits, wide);
+    const alone = strong.map((o) => ({ ...o }));
+    const without = fitBlend(tolerant, alone, others, limits, wide);
+    if (without.chi2 - withIt.chi2 > threshold * threshold) continue;
+    gone.add(c);
+    strong.forEach((o, k) => Object.assign(o, alone[k]));
+  }
+  model.remove(gone);
+}
 
 /** Replaces two overlapping components by one where the data do not need both. */
-export function mergeShreds(model: LineModel, threshold: number): void {
+export function mergeShreds(model: LineModel, threshold: number, tolerant: NormalisedSamples): void {
   const penalty = threshold * threshold;
   for (let pass = 0; pass < 3; pass++) {
     let merged = 0;
     for (let i = 0; i + 1 < model.components.length; i++) {
       const a = model.components[i]!;
       const b = model.components[i + 1]!;
-      if (a.kind !== b.kind || b.centre - a.centre > 0.75 * Math.max(a.fwhm, b.fwhm) || Math.max(a.fwhm, b.fwhm) > 3 * Math.min(a.fwhm, b.fwhm)) continue;
+      const [narrow, wide] = a.fwhm < b.fwhm ? [a.fwhm, b.fwhm] : [b.fwhm, a.fwhm];
+      if (a.kind !== b.kind || b.centre - a.centre > 0.75 * wide || wide > 3 * narrow) continue;
       const others = model.overlapping([a, b]);
       const limits = model.limitsAt(a.centre);
       const pair = [{ ...a }, { ...b }];
       const range = rangeOf(pair);
-      const two = fitBlend(model.data, pair, others, limits, range);
-      const one = { ...(a.amplitude * a.fwhm > b.amplitude * b.fwhm ? a : b) };
-      one.centre = (a.centre * a.amplitude + b.centre * b.amplitude) / (a.amplitude + b.amplitude);
-      one.fwhm = Math.max(a.fwhm, b.fwhm) + 0.5 * (b.centre - a.centre);
-      one.amplitude = Math.max(a.amplitude, b.amplitude);
-      const single = fitBlend(model.data, [one], others, limits, range);
+      const two = fitBlend(tolerant, pair, others, limits, range);
+      const one = together(a, b);
+      const single = fitBlend(tolerant, [one], others, limits, range);
       if (single.chi2 > two.chi2 + penalty) continue;
       model.components.splice(i, 2, one);
       merged++;
     }
     if (!merged) return;
   }
+}
+
+/** A starting point for one component in place of two. */
+function together(a: Component, b: Component): Component {
+  const one = { ...(a.amplitude * a.area > b.amplitude * b.area ? a : b) };
+  if (one.damped) return one;
+  one.centre = (a.centre * a.amplitude + b.centre * b.amplitude) / (a.amplitude + b.amplitude);
+  one.scale = Math.max(a.fwhm, b.fwhm) + 0.5 * (b.centre - a.centre);
+  one.amplitude = Math.max(a.amplitude, b.amplitude);
+  settle(one);
+  return one;
 }
 
 /** Splits a component in two where two fit much better and lie far enough apart to be told from each other. */
@@ -134,12 +175,12 @@ export function splitBlends(model: LineModel, threshold: number, resolvingPower:
   const gone = new Set<Component>();
   for (const c of model.components) {
     const element = c.centre / resolvingPower;
-    if (c.fwhm < 1.25 * element || c.amplitude / c.sigmaAmplitude < 12 || c.winged) continue;
+    if (c.fwhm < 1.25 * element || c.amplitude / c.sigmaAmplitude < 12 || c.damped) continue;
     const others = model.overlapping([c]);
     const limits = model.limitsAt(c.centre);
     const range = rangeOf([c]);
     const one = fitBlend(model.data, [{ ...c }], others, limits, range);
-    const pair = [-1, 1].map((side) => ({ ...newComponent(c.kind, c.centre + side * 0.35 * c.fwhm, Math.max(0.6 * c.fwhm, element), 0.7 * c.amplitude), core: c.core }));
+    const pair = [-1, 1].map((side) => newComponent(c.kind, c.centre + side * 0.35 * c.fwhm, Math.max(0.6 * c.fwhm, element), 0.7 * c.amplitude, c.core));
     const two = fitBlend(model.data, pair, others, limits, range);
     const [a, b] = pair as [Component, Component];
     const apart = Math.abs(b.centre - a.centre) > 0.8 * Math.min(a.fwhm, b.fwhm);

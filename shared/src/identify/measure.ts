@@ -1,5 +1,4 @@
-import { equivalentWidth, reachOf, type Component, type NormalisedSamples } from '../profiles/index.js';
-import { indexAt, addComponent } from '../profiles/blend.js';
+import { addComponent, equivalentWidth, indexAt, type Component, type NormalisedSamples } from '../profiles/index.js';
 import { C_KM_PER_S } from '../units/index.js';
 import type { FeatureFlag } from './analysis.js';
 
@@ -27,7 +26,7 @@ const BAND_KM_S = 450;
  */
 export function measure(c: Component, data: NormalisedSamples, others: readonly Component[], resolvingPower: number, continuumSigma: number): Measured {
   const fitted = equivalentWidth(c);
-  const half = Math.min(reachOf(c), 1.5 * c.fwhm * (c.eta > 0.1 ? 2 : 1));
+  const half = Math.min(c.reach, (c.damped ? 4 : 1.5) * c.fwhm);
   const from = indexAt(data.wavelength, c.centre - half);
   const to = indexAt(data.wavelength, c.centre + half);
   const dips = new Float64Array(Math.max(0, to - from)).fill(1);

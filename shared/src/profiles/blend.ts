@@ -1,41 +1,7 @@
 import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
-import { look, reachOf, type Component } from './component.js';
-import { LORENTZ } from './shapes.js';
-
-/** Flux over continuum with inverse variances (0 where a sample must not count); columns of equal length. */
-export interface NormalisedSamples {
-  /** vacuum nm, ascending */
-  readonly wavelength: Float64Array;
-  readonly flux: Float64Array;
-  readonly weight: Float64Array;
-}
-
-/** Index of the first sample at or beyond a wavelength. */
-export function indexAt(wavelength: Float64Array, value: number): number {
-  let low = 0;
-  let high = wavelength.length;
-  while (low < high) {
-    const mid = (low + high) >> 1;
-    if (wavelength[mid]! < value) low = mid + 1;
-    else high = mid;
-  }
-  return low;
-}
-
-/** Multiplies dips into `dips` and adds peaks to `peaks` over samples [from, to). */
-export function addComponent(c: Component, wavelength: Float64Array, from: number, to: number, dips: Float64Array, peaks: Float64Array, offset = from): void {
-  const reach = reachOf(c);
-  const a = Math.max(from, indexAt(wavelength, c.centre - reach));
-  const z = Math.min(to, indexAt(wavelength, c.centre + reach));
-  const inverse = 1 / c.fwhm;
-  for (let i = a; i < z; i++) {
-    const u = Math.abs(wavelength[i]! - c.centre) * inverse;
-    let p = look(c.core.value, c.core, u);
-    if (c.eta !== 0) p += c.eta * (look(LORENTZ.value, LORENTZ, u) - p);
-    if (c.kind === 'dip') dips[i - offset]! *= 1 - c.amplitude * p;
-    else peaks[i - offset]! += c.amplitude * p;
-  }
-}
+import { look, settle, type Component } from './component.js';
+import { dampedExtent, dampedInto, dampedPeak, type DampedPeak } from './damped.js';
+import { addComponent, indexAt, type NormalisedSamples } from './samples.js';
 
 export interface BlendLimits {
   /** narrowest and widest FWHM allowed, nm */
@@ -49,15 +15,18 @@ export interface BlendFit {
 }
 
 const MAX_ITERATIONS = 14;
-const WINGED_REACH = 4; // FWHM; wings further out carry hardly any weight on the parameters
-const PER = 4; // amplitude, centre, ln FWHM, eta
+const DAMPED_RANGE = 4; // FWHM; wings further out carry hardly any weight on the parameters
+const SIMPLE = 3; // parameters: amplitude, centre, ln scale
+const DAMPED = 5; // and ln tau, a
+const TAU_LIMITS = [0.02, 3e4] as const;
+const A_LIMITS = [0.005, 3] as const;
 
 /** Wavelengths that a set of components covers, nm. */
 export function rangeOf(components: readonly Component[]): readonly [number, number] {
   let low = Infinity;
   let high = -Infinity;
   for (const c of components) {
-    const r = c.fwhm * (c.winged ? WINGED_REACH : c.core.reach);
+    const r = c.damped ? Math.min(c.reach, DAMPED_RANGE * c.fwhm) : c.reach;
     low = Math.min(low, c.centre - r);
     high = Math.max(high, c.centre + r);
   }
@@ -65,7 +34,15 @@ export function rangeOf(components: readonly Component[]): readonly [number, num
 }
 
 /** Scratch of one fit, grown when needed and reused: a loop over blends allocates nothing big. */
-const scratch = { base: new Float64Array(0), add: new Float64Array(0), normal: new Float64Array(0), factor: new Float64Array(0), gradient: new Float64Array(0), step: new Float64Array(0) };
+const scratch = {
+  base: new Float64Array(0),
+  add: new Float64Array(0),
+  normal: new Float64Array(0),
+  factor: new Float64Array(0),
+  gradient: new Float64Array(0),
+  step: new Float64Array(0),
+  derivative: new Float64Array(0),
+};
 
 function grow(samples: number, parameters: number): void {
   if (scratch.base.length < samples) {
@@ -77,33 +54,47 @@ function grow(samples: number, parameters: number): void {
     scratch.factor = new Float64Array(parameters * parameters);
     scratch.gradient = new Float64Array(parameters);
     scratch.step = new Float64Array(parameters);
+    scratch.derivative = new Float64Array(parameters);
   }
 }
 
+/** A component in the fit: where its parameters stand in the normal matrix, and what limits them. */
+interface Slot {
+  readonly c: Component;
+  readonly at: number;
+  readonly size: number;
+  readonly startCentre: number;
+  readonly startFwhm: number;
+  peak: DampedPeak | null;
+}
+
 /**
- * Fits the free components of a blend together, all `others` held fixed, by damped least squares with analytic derivatives.
- * Writes parameters and their 1-sigma errors into the free components. Errors come from the undamped normal matrix of this fit.
+ * Fits the free components of a blend together, all `others` held fixed, by damped least squares (Levenberg 1944, Marquardt 1963) with
+ * analytic derivatives. Writes parameters and their 1-sigma errors into the free components; errors come from the undamped normal matrix.
  * @param free components to move
  * @param others components that overlap their range
  * @param range wavelengths (nm) whose samples count; by default what the free components cover. Fits to be compared need the same range
  */
 export function fitBlend(data: NormalisedSamples, free: Component[], others: readonly Component[], limits: BlendLimits, range = rangeOf(free)): BlendFit {
-  const [low, high] = range;
-  const from = indexAt(data.wavelength, low);
-  const to = indexAt(data.wavelength, high);
-  const n = to - from;
-  const parameters = free.length * PER;
-  grow(n, parameters);
-  scratch.base.fill(1, 0, n);
-  scratch.add.fill(0, 0, n);
+  const from = indexAt(data.wavelength, range[0]);
+  const to = indexAt(data.wavelength, range[1]);
+  let parameters = 0;
+  const slots = free.map((c): Slot => {
+    const size = c.damped ? DAMPED : SIMPLE;
+    const slot = { c, at: parameters, size, startCentre: c.centre, startFwhm: c.fwhm, peak: null };
+    parameters += size;
+    return slot;
+  });
+  grow(to - from, parameters);
+  scratch.base.fill(1, 0, to - from);
+  scratch.add.fill(0, 0, to - from);
   for (const c of others) addComponent(c, data.wavelength, from, to, scratch.base, scratch.add);
 
-  const start = free.map((c) => ({ centre: c.centre, fwhm: c.fwhm }));
   let damping = 1e-3;
-  let chi2 = accumulate(data, free, from, to);
+  let chi2 = accumulate(data, slots, parameters, from, to);
   let end: BlendFit['end'] = 'iteration_limit';
   for (let iteration = 0; iteration < MAX_ITERATIONS; iteration++) {
-    const kept = free.map((c) => [c.amplitude, c.centre, c.fwhm, c.eta] as const);
+    const kept = free.map((c) => ({ amplitude: c.amplitude, centre: c.centre, scale: c.scale, damped: c.damped, fwhm: c.fwhm, area: c.area, reach: c.reach }));
     scratch.factor.set(scratch.normal.subarray(0, parameters * parameters));
     for (let k = 0; k < parameters; k++) scratch.factor[k * parameters + k]! *= 1 + damping;
     scratch.step.set(scratch.gradient.subarray(0, parameters));
@@ -116,49 +107,57 @@ export function fitBlend(data: NormalisedSamples, free: Component[], others: rea
       continue;
     }
     choleskySolve(scratch.factor, parameters, scratch.step);
-    free.forEach((c, k) => move(c, start[k]!, scratch.step, k * PER, limits));
-    const next = accumulate(data, free, from, to);
+    for (const s of slots) move(s, scratch.step, limits);
+    const next = accumulate(data, slots, parameters, from, to);
     if (next <= chi2) {
       const gain = chi2 - next;
       chi2 = next;
       damping = Math.max(damping * 0.2, 1e-9);
-      if (gain < 1e-3) {
+      if (gain < 1e-3 + 1e-6 * chi2) {
         end = 'converged';
         break;
       }
     } else {
-      free.forEach((c, k) => ([c.amplitude, c.centre, c.fwhm, c.eta] = kept[k]!));
+      free.forEach((c, k) => Object.assign(c, kept[k]));
       damping *= 8;
-      chi2 = accumulate(data, free, from, to);
+      chi2 = accumulate(data, slots, parameters, from, to);
       if (damping > 1e7) {
         end = 'converged';
         break;
       }
     }
   }
-  writeErrors(free, parameters);
+  writeErrors(slots, parameters);
   return { chi2, end };
 }
 
-function move(c: Component, start: { centre: number; fwhm: number }, step: Float64Array, at: number, limits: BlendLimits): void {
+const clamp = (x: number, limit: number): number => Math.max(-limit, Math.min(limit, x));
+const within = (x: number, [low, high]: readonly [number, number]): number => Math.max(low, Math.min(high, x));
+
+function move({ c, at, startCentre, startFwhm }: Slot, step: Float64Array, limits: BlendLimits): void {
   c.amplitude = Math.min(Math.max(c.amplitude + clamp(step[at]!, Math.max(0.5 * c.amplitude, 0.2)), 0), c.kind === 'dip' ? 1 : Infinity);
-  c.centre = start.centre + clamp(c.centre + clamp(step[at + 1]!, 0.5) * c.fwhm - start.centre, start.fwhm);
-  c.fwhm = Math.min(Math.max(c.fwhm * Math.exp(clamp(step[at + 2]!, 0.4)), limits.narrowest), limits.widest);
-  if (c.winged) c.eta = Math.min(Math.max(c.eta + clamp(step[at + 3]!, 0.3), 0), 1);
+  c.centre = startCentre + clamp(c.centre + clamp(step[at + 1]! * c.scale, 0.5 * c.fwhm) - startCentre, startFwhm);
+  const factor = Math.exp(clamp(step[at + 2]!, 0.4));
+  c.scale *= factor;
+  if (c.damped) c.damped = { tau: within(c.damped.tau * Math.exp(clamp(step[at + 3]!, 0.7)), TAU_LIMITS), a: within(c.damped.a + clamp(step[at + 4]!, 0.3), A_LIMITS) };
+  settle(c);
+  const allowed = within(c.fwhm, [limits.narrowest, limits.widest]) / c.fwhm;
+  if (allowed !== 1) {
+    c.scale *= allowed;
+    settle(c);
+  }
 }
 
-const clamp = (x: number, limit: number): number => Math.max(-limit, Math.min(limit, x));
+const damped4 = new Float64Array(4);
 
 /** Fills normal matrix and gradient at the present parameters; returns chi-square over the range. */
-function accumulate(data: NormalisedSamples, free: readonly Component[], from: number, to: number): number {
-  const p = free.length * PER;
-  const { normal, gradient, base, add } = scratch;
+function accumulate(data: NormalisedSamples, slots: readonly Slot[], p: number, from: number, to: number): number {
+  const { normal, gradient, base, add, derivative } = scratch;
   normal.fill(0, 0, p * p);
   gradient.fill(0, 0, p);
-  const derivative = new Float64Array(p);
-  const active = new Int32Array(free.length);
-  const reach = Float64Array.from(free, (c) => c.fwhm * (c.winged ? LORENTZ.reach : c.core.reach));
-  const one = new Float64Array(free.length);
+  for (const s of slots) s.peak = s.c.damped ? dampedPeak(s.c.damped) : null;
+  const active: Slot[] = new Array(slots.length);
+  const clear = new Float64Array(slots.length);
   let chi2 = 0;
   for (let i = from; i < to; i++) {
     const w = data.weight[i]!;
@@ -167,74 +166,94 @@ function accumulate(data: NormalisedSamples, free: readonly Component[], from: n
     let product = base[i - from]!;
     let sum = add[i - from]!;
     let count = 0;
-    for (let k = 0; k < free.length; k++) {
-      const c = free[k]!;
+    for (const slot of slots) {
+      const { c, at } = slot;
       const dx = x - c.centre;
-      if (Math.abs(dx) >= reach[k]!) continue;
-      const u = Math.abs(dx) / c.fwhm;
-      let value = look(c.core.value, c.core, u);
-      let slope = look(c.core.slope, c.core, u);
-      const at = k * PER;
-      derivative[at + 3] = 0;
-      if (c.winged) {
-        const wing = look(LORENTZ.value, LORENTZ, u);
-        derivative[at + 3] = c.amplitude * (wing - value);
-        value += c.eta * (wing - value);
-        slope += c.eta * (look(LORENTZ.slope, LORENTZ, u) - slope);
-      }
-      derivative[at] = value;
-      derivative[at + 1] = -c.amplitude * slope * Math.sign(dx);
-      derivative[at + 2] = -c.amplitude * slope * u;
+      if (dx >= c.reach || dx <= -c.reach) continue;
+      const value = derivatives(slot, dx, derivative, at);
       if (c.kind === 'dip') {
-        one[k] = Math.max(1 - c.amplitude * value, 1e-4);
-        product *= one[k]!;
+        const left = Math.max(1 - c.amplitude * value, 1e-4);
+        clear[count] = left;
+        product *= left;
       } else sum += c.amplitude * value;
-      active[count++] = k;
+      active[count++] = slot;
     }
     const residual = data.flux[i]! - product - sum;
     chi2 += w * residual * residual;
     for (let a = 0; a < count; a++) {
-      const k = active[a]!;
-      const at = k * PER;
-      const factor = free[k]!.kind === 'dip' ? -product / one[k]! : 1;
-      for (let q = 0; q < PER; q++) derivative[at + q]! *= factor;
-      for (let q = 0; q < PER; q++) {
-        const d = derivative[at + q]!;
+      const { c, at, size } = active[a]!;
+      const factor = c.kind === 'dip' ? -product / clear[a]! : 1;
+      for (let q = 0; q < size; q++) {
+        const d = (derivative[at + q]! *= factor);
         if (d === 0) continue;
-        gradient[at + q]! += w * d * residual;
+        const wd = w * d;
+        gradient[at + q]! += wd * residual;
         const row = (at + q) * p;
-        for (let b = 0; b <= a; b++) {
-          const bt = active[b]! * PER;
-          const last = b === a ? q + 1 : PER;
-          for (let r = 0; r < last; r++) normal[row + bt + r]! += w * d * derivative[bt + r]!;
+        for (let b = 0; b < a; b++) {
+          const { at: bt, size: bs } = active[b]!;
+          for (let r = 0; r < bs; r++) normal[row + bt + r]! += wd * derivative[bt + r]!;
         }
+        for (let r = 0; r <= q; r++) normal[row + at + r]! += wd * derivative[at + r]!;
       }
     }
   }
   for (let k = 0; k < p; k++) {
-    if (normal[k * p + k]! === 0) normal[k * p + k] = 1; // eta of a wingless profile, or a profile off the data: held
+    if (normal[k * p + k]! === 0) normal[k * p + k] = 1; // a parameter off the data is held
     for (let q = k + 1; q < p; q++) normal[k * p + q] = normal[q * p + k]!;
   }
   return chi2;
 }
 
-function writeErrors(free: Component[], p: number): void {
+/** phi at a distance; derivatives of amplitude * phi by amplitude, centre (in scales), ln scale (and ln tau, a) go to `out` from `at`. */
+function derivatives({ c, peak }: Slot, dx: number, out: Float64Array, at: number): number {
+  const u = Math.abs(dx) / c.scale;
+  let value: number;
+  let slope: number;
+  if (c.damped) {
+    dampedInto(damped4, c.damped, u, peak!);
+    value = damped4[0]!;
+    slope = damped4[1]!;
+    out[at + 3] = c.amplitude * damped4[2]!;
+    out[at + 4] = c.amplitude * damped4[3]!;
+  } else {
+    value = look(c.core.value, c.core, u);
+    slope = look(c.core.slope, c.core, u);
+  }
+  out[at] = value;
+  out[at + 1] = dx < 0 ? c.amplitude * slope : -c.amplitude * slope;
+  out[at + 2] = -c.amplitude * slope * u;
+  return value;
+}
+
+function writeErrors(slots: readonly Slot[], p: number): void {
   scratch.factor.set(scratch.normal.subarray(0, p * p));
   for (let k = 0; k < p; k++) scratch.factor[k * p + k]! *= 1 + 1e-9;
   const good = choleskyInPlace(scratch.factor, p);
   const column = scratch.step;
-  const variance = (at: number): number => {
+  /** variance of a linear combination of a slot's parameters */
+  const variance = (slot: Slot, weights: readonly number[]): number => {
     if (!good) return NaN;
     column.fill(0, 0, p);
-    column[at] = 1;
+    weights.forEach((w, q) => (column[slot.at + q] = w));
     choleskySolve(scratch.factor, p, column);
-    return column[at]!;
+    return weights.reduce((sum, w, q) => sum + w * column[slot.at + q]!, 0);
   };
-  free.forEach((c, k) => {
-    const at = k * PER;
-    c.sigmaCentre = Math.sqrt(variance(at + 1)) * c.fwhm;
-    c.sigmaLogFwhm = Math.sqrt(variance(at + 2));
-    c.sigmaAmplitude = Math.sqrt(variance(at));
-    c.covAmplitudeLogFwhm = column[at + 2]!;
-  });
+  for (const slot of slots) {
+    const { c } = slot;
+    const shape = shapeDerivatives(c);
+    c.sigmaAmplitude = Math.sqrt(variance(slot, [1]));
+    c.sigmaCentre = Math.sqrt(variance(slot, [0, 1])) * c.scale;
+    c.sigmaLogFwhm = Math.sqrt(variance(slot, [0, 0, 1, ...shape.fwhm]));
+    c.sigmaEquivalentWidth = Math.sqrt(variance(slot, [c.area, 0, c.amplitude * c.area, ...shape.area.map((d) => d * c.amplitude * c.area)]));
+  }
+}
+
+/** Derivatives of ln FWHM and ln area by ln tau and a, by differences; none for fixed shapes. */
+function shapeDerivatives(c: Component): { fwhm: number[]; area: number[] } {
+  if (!c.damped) return { fwhm: [], area: [] };
+  const { tau, a } = c.damped;
+  const h = 0.01;
+  const here = dampedExtent(c.damped);
+  const there = [dampedExtent({ tau: tau * Math.exp(h), a }), dampedExtent({ tau, a: a + h })];
+  return { fwhm: there.map((t) => Math.log(t.fwhm / here.fwhm) / h), area: there.map((t) => Math.log(t.area / here.area) / h) };
 }

@@ -1,46 +1,81 @@
-import { GAUSSIAN, LORENTZ, type Shape } from './shapes.js';
+import { dampedExtent, dampedInto, dampedPeak, type DampedShape } from './damped.js';
+import { GAUSSIAN, type Shape } from './shapes.js';
 
 /**
  * One profile of a blend. Dips multiply the light, (1 - amplitude * phi); peaks add amplitude * phi, in units of the continuum.
- * phi = (1 - eta) * core + eta * Lorentz, both of the same FWHM.
+ * phi has unit peak and is either a fixed shape scaled in width, or a damped one with two shape parameters of its own.
  */
 export interface Component {
   readonly kind: 'dip' | 'peak';
   core: Shape;
+  /** null for a fixed shape */
+  damped: DampedShape | null;
   /** vacuum nm */
   centre: number;
-  /** nm */
-  fwhm: number;
+  /** nm that stand for one unit of the shape's argument: FWHM for fixed shapes, Doppler width for damped ones */
+  scale: number;
   /** depth or height over the continuum, never negative */
   amplitude: number;
-  /** share of the Lorentzian, 0 for a pure core */
-  eta: number;
-  /** whether eta may move in the fit */
-  winged: boolean;
-  /** 1 sigma of amplitude, centre (nm), ln(fwhm), and their covariance, from the last fit; NaN before */
+  /** nm; follows scale and shape */
+  fwhm: number;
+  /** integral of phi over wavelength, nm; follows scale and shape */
+  area: number;
+  /** nm from the centre beyond which the profile is taken as absent; follows scale and shape */
+  reach: number;
+  /** 1 sigma of amplitude, centre (nm), ln FWHM and equivalent width (nm) from the last fit; NaN before */
   sigmaAmplitude: number;
   sigmaCentre: number;
   sigmaLogFwhm: number;
-  covAmplitudeLogFwhm: number;
+  sigmaEquivalentWidth: number;
 }
 
-export function newComponent(kind: Component['kind'], centre: number, fwhm: number, amplitude: number): Component {
-  return { kind, core: GAUSSIAN, centre, fwhm, amplitude, eta: 0, winged: false, sigmaAmplitude: NaN, sigmaCentre: NaN, sigmaLogFwhm: NaN, covAmplitudeLogFwhm: NaN };
+export function newComponent(kind: Component['kind'], centre: number, fwhm: number, amplitude: number, core: Shape = GAUSSIAN): Component {
+  const c: Component = {
+    kind,
+    core,
+    damped: null,
+    centre,
+    scale: fwhm,
+    amplitude,
+    fwhm,
+    area: 0,
+    reach: 0,
+    sigmaAmplitude: NaN,
+    sigmaCentre: NaN,
+    sigmaLogFwhm: NaN,
+    sigmaEquivalentWidth: NaN,
+  };
+  settle(c);
+  return c;
 }
 
-/** Distance from the centre, nm, beyond which the component is taken as absent. */
-export function reachOf(c: Component): number {
-  return c.fwhm * (c.eta > 0 || c.winged ? LORENTZ.reach : c.core.reach);
+/** Brings FWHM, area and reach in line with scale and shape. */
+export function settle(c: Component): void {
+  if (c.damped) {
+    const extent = dampedExtent(c.damped);
+    c.fwhm = extent.fwhm * c.scale;
+    c.area = extent.area * c.scale;
+    c.reach = extent.reach * c.scale;
+  } else {
+    c.fwhm = c.scale;
+    c.area = c.core.area * c.scale;
+    c.reach = c.core.reach * c.scale;
+  }
 }
 
-/** Integral of phi over wavelength divided by FWHM. */
-export const areaOf = (c: Component): number => (1 - c.eta) * c.core.area + c.eta * LORENTZ.area;
+/** A copy with a damped profile of about the same FWHM: moderately saturated, moderately winged. */
+export function asDamped(c: Component): Component {
+  const shape = { tau: 4, a: 0.6 };
+  const out: Component = { ...c, damped: shape, scale: c.fwhm / dampedExtent(shape).fwhm };
+  settle(out);
+  return out;
+}
 
-/** phi at a wavelength. */
-export function phi(c: Component, wavelength: number): number {
-  const u = Math.abs(wavelength - c.centre) / c.fwhm;
-  const core = look(c.core.value, c.core, u);
-  return c.eta === 0 ? core : (1 - c.eta) * core + c.eta * look(LORENTZ.value, LORENTZ, u);
+/** A copy with a fixed shape of the same FWHM. */
+export function withCore(c: Component, core: Shape): Component {
+  const out: Component = { ...c, damped: null, core, scale: c.fwhm };
+  settle(out);
+  return out;
 }
 
 /** Table look-up, linear between steps. */
@@ -52,9 +87,21 @@ export function look(table: Float64Array, shape: Shape, u: number): number {
   return a + (t - i) * (table[i + 1]! - a);
 }
 
-/** Equivalent width, nm, positive in absorption: exact for a dip alone, additive for peaks. */
+/** Function that gives phi at a wavelength for one component as it is now. */
+export function profileOf(c: Component): (wavelength: number) => number {
+  const { centre, core, damped } = c;
+  const inverse = 1 / c.scale;
+  if (!damped) return (x) => look(core.value, core, Math.abs(x - centre) * inverse);
+  const peak = dampedPeak(damped);
+  const out = new Float64Array(4);
+  return (x) => {
+    dampedInto(out, damped, Math.abs(x - centre) * inverse, peak);
+    return out[0]!;
+  };
+}
+
+/** Equivalent width, nm, positive in absorption. */
 export function equivalentWidth(c: Component): { value: number; sigma: number } {
-  const value = c.amplitude * c.fwhm * areaOf(c);
-  const relativeVariance = (c.sigmaAmplitude / c.amplitude) ** 2 + c.sigmaLogFwhm ** 2 + (2 * c.covAmplitudeLogFwhm) / c.amplitude;
-  return { value: c.kind === 'dip' ? value : -value, sigma: value * Math.sqrt(Math.max(relativeVariance, 0)) };
+  const value = c.amplitude * c.area;
+  return { value: c.kind === 'dip' ? value : -value, sigma: c.sigmaEquivalentWidth };
 }

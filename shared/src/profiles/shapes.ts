@@ -1,6 +1,6 @@
 /** Half-widths at half maximum are at u = 1/2: shapes are functions of u = (x - centre) / FWHM with peak value 1 at u = 0. */
 export interface Shape {
-  readonly name: 'gaussian' | 'rotation' | 'lorentz';
+  readonly name: 'gaussian' | 'rotation';
   /** |u| beyond which the shape is taken as zero */
   readonly reach: number;
   /** integral over u */
@@ -28,9 +28,6 @@ const gauss = (u: number): number => Math.exp(-FOUR_LN2 * u * u);
 /** Area of a Gaussian of unit peak and unit FWHM. */
 export const GAUSSIAN_AREA = Math.sqrt(Math.PI / FOUR_LN2);
 export const GAUSSIAN: Shape = tabulate('gaussian', 1.8, gauss, GAUSSIAN_AREA);
-
-/** Cut at 12 FWHM, where 0.17 % of the peak is left; the area is that of the cut shape. */
-export const LORENTZ: Shape = tabulate('lorentz', 12, (u) => 1 / (1 + 4 * u * u), Math.atan(24));
 
 const LIMB_DARKENING = 0.6; // linear coefficient, common practice for optical spectra of stars
 

@@ -1,0 +1,77 @@
+import { faddeevaInto } from '../numeric/faddeeva.js';
+
+/**
+ * Saturated line with damping wings: phi(u) = (1 - exp(-tau H(a, u))) / (1 - exp(-tau H(a, 0))), H the Voigt function, u in Doppler
+ * widths. Times a depth it describes hydrogen lines, whose cores level off at the flux of the highest layers, and damped absorbers.
+ */
+export interface DampedShape {
+  readonly tau: number;
+  readonly a: number;
+}
+
+const held = new Float64Array(2);
+const TWO_OVER_SQRT_PI = 2 / Math.sqrt(Math.PI);
+
+/** phi and its derivatives with respect to u, ln tau and a, written to out[0..3]. */
+export function dampedInto(out: Float64Array, shape: DampedShape, u: number, peak: DampedPeak): void {
+  const { tau, a } = shape;
+  faddeevaInto(held, u, a);
+  const h = held[0]!;
+  const im = held[1]!;
+  const slopeU = -2 * (u * h - a * im);
+  const slopeA = 2 * (u * im + a * h) - TWO_OVER_SQRT_PI;
+  const left = Math.exp(-tau * h);
+  const phi = (1 - left) / peak.norm;
+  out[0] = phi;
+  out[1] = (tau * slopeU * left) / peak.norm;
+  out[2] = (tau * h * left - phi * peak.byLogTau) / peak.norm;
+  out[3] = (tau * slopeA * left - phi * peak.byA) / peak.norm;
+}
+
+/** What normalises a damped shape: 1 - exp(-tau H(a, 0)) and its derivatives. */
+export interface DampedPeak {
+  readonly norm: number;
+  readonly byLogTau: number;
+  readonly byA: number;
+}
+
+export function dampedPeak({ tau, a }: DampedShape): DampedPeak {
+  faddeevaInto(held, 0, a);
+  const h = held[0]!;
+  const left = Math.exp(-tau * h);
+  const slopeA = 2 * a * h - TWO_OVER_SQRT_PI;
+  return { norm: -Math.expm1(-tau * h), byLogTau: tau * h * left, byA: tau * slopeA * left };
+}
+
+/** FWHM and area in Doppler widths, and the distance beyond which less than `TAIL` of the peak is left. */
+export function dampedExtent(shape: DampedShape): { fwhm: number; area: number; reach: number } {
+  const peak = dampedPeak(shape);
+  const value = (u: number): number => {
+    faddeevaInto(held, u, shape.a);
+    return -Math.expm1(-shape.tau * held[0]!) / peak.norm;
+  };
+  let low = 0;
+  let high = 1;
+  while (value(high) > 0.5) high *= 2;
+  for (let i = 0; i < 40; i++) {
+    const mid = 0.5 * (low + high);
+    if (value(mid) > 0.5) low = mid;
+    else high = mid;
+  }
+  const wing = (shape.tau * shape.a) / Math.sqrt(Math.PI) / peak.norm; // phi -> wing / u^2
+  const reach = Math.max(3.5 * high, Math.min(Math.sqrt(wing / TAIL), 24 * high));
+  const steps = 160;
+  // Simpson on a stretched grid, dense at the core, then the wing beyond
+  let area = 0;
+  let before = 0;
+  const at = (k: number): number => reach * (k / steps) ** 2;
+  for (let k = 0; k < steps; k++) {
+    const [x0, x1] = [at(k), at(k + 1)];
+    const [f0, fm, f1] = [k ? before : 1, value(0.5 * (x0 + x1)), value(x1)];
+    area += ((x1 - x0) / 6) * (f0 + 4 * fm + f1);
+    before = f1;
+  }
+  return { fwhm: 2 * high, area: 2 * (area + wing / reach), reach };
+}
+
+const TAIL = 7e-4;
