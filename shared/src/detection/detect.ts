@@ -1,7 +1,8 @@
 import { newComponent, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
+import { C_KM_PER_S } from '../units/index.js';
 import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
-import { applyRotation, dropNeedless, findRotation, mergeShreds, pruneWeak, splitBlends, trySpecialShapes, type Rotation } from './refine.js';
+import { applyRotation, dropNeedless, findRotation, gatherDamped, mergeShreds, pruneWeak, splitBlends, trySpecialShapes, type Rotation } from './refine.js';
 
 export interface DetectionInput {
   /** flux over continuum, inverse variances */
@@ -23,6 +24,8 @@ const FWHM_PER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
 const ROUNDS = 5;
 /** Relative misfit of profiles allowed for: a few per cent of the light that the model takes or adds beside strong neighbours. */
 const PROFILE_FLOOR = 0.02;
+const PEAK_PLACEMENT = 0.0025;
+const DIP_PLACEMENT = 0.0005;
 const WIDEST_NM = 2.4; // broad diffuse bands; wider structure belongs to the continuum
 
 /** Finds dips and peaks: rounds of matched filters on what the model does not explain, each followed by a joint refit. */
@@ -54,14 +57,16 @@ export function detect(input: DetectionInput): Detection {
       if (rotation) applyRotation(model.components, rotation);
       trySpecialShapes(model, resolvingPower);
       model.refresh();
-      dropNeedless(model, threshold, tolerantOf(model));
+      gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
+      dropNeedless(model, threshold, tolerantOf(model), rotation);
       model.refit(1);
     }
     model.refresh();
   }
   trySpecialShapes(model, resolvingPower);
   model.refresh();
-  dropNeedless(model, threshold, tolerantOf(model));
+  gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
+  dropNeedless(model, threshold, tolerantOf(model), rotation);
   mergeShreds(model, threshold, tolerantOf(model));
   splitBlends(model, threshold, resolvingPower);
   model.refit(2);
@@ -115,9 +120,16 @@ function chosen(excesses: readonly Excess[], model: LineModel, threshold: number
     if (out.some((o) => clash(o.centre, o.fwhm))) continue;
     if (model.components.some((c) => c.kind === e.kind && clash(c.centre, c.fwhm) && c.fwhm < 3 * e.fwhm && c.fwhm > e.fwhm / 3 && Math.abs(c.centre - e.centre) < 0.35 * c.fwhm)) continue;
     if (beyondContinuum(e, model.data) < threshold) continue;
+    if (e.amplitude / Math.hypot(e.amplitude / e.significance, placementFloor(e)) < threshold) continue;
     out.push(e);
   }
   return out;
+}
+
+/** Error of the continuum's placement under a broad excess, which no number of pixels averages out. Gaps between broad lines mimic peaks. */
+function placementFloor(e: Excess): number {
+  const widthV = (e.fwhm / e.centre) * C_KM_PER_S;
+  return (e.kind === 'peak' ? PEAK_PLACEMENT : DIP_PLACEMENT) * Math.min(1, Math.max(0, (widthV - 100) / 200));
 }
 
 /** Significance with which the data themselves, not the residual, lie on the excess's side of the continuum. */

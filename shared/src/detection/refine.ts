@@ -101,6 +101,33 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number): void
   }
 }
 
+const CROWD_WIDTH = 0.18; // of the strong line's FWHM: narrower components are lines of their own
+const CROWD_REACH = 1.8; // FWHM
+
+/**
+ * One damped profile in place of a crowd of broad components around a strong line, where the data are content with it. Real lines that
+ * go with the crowd stand out again in the next round.
+ */
+export function gatherDamped(model: LineModel, threshold: number, tolerant: NormalisedSamples, resolvingPower: number): void {
+  const strong = model.components
+    .filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > 2 * BROAD * c.centre && c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE)
+    .sort((a, b) => b.amplitude * b.area - a.amplitude * a.area || a.centre - b.centre);
+  for (const c of strong) {
+    if (!model.components.includes(c)) continue;
+    const crowd = model.components.filter((o) => o !== c && o.kind === 'dip' && o.fwhm > CROWD_WIDTH * c.fwhm && Math.abs(o.centre - c.centre) < CROWD_REACH * Math.max(c.fwhm, 0.5 * o.fwhm) && o.amplitude * o.area < c.amplitude * c.area);
+    if (crowd.length === 0) continue;
+    const others = model.overlapping([c, ...crowd]);
+    const limits = model.limitsAt(c.centre);
+    const range = rangeOf([c, ...crowd]);
+    const now = fitBlend(tolerant, [{ ...c }, ...crowd.map((o) => ({ ...o }))], others, limits, range).chi2;
+    const one = c.damped ? { ...c } : asDamped(c);
+    const alone = fitBlend(tolerant, [one], others, limits, range).chi2;
+    if (alone > now + threshold * threshold * crowd.length) continue;
+    model.remove(new Set(crowd));
+    Object.assign(c, one);
+  }
+}
+
 const NEEDED_SIGNIFICANCE = 45; // stronger components are beyond doubt
 const NEIGHBOURS = 3;
 
@@ -108,7 +135,7 @@ const NEIGHBOURS = 3;
  * Takes out components that a stronger neighbour can stand for: wings and corners of profiles that are not quite right. Both fits are
  * weighed with the profile error allowed for beside strong lines, so that a misfit of a few per cent is no feature.
  */
-export function dropNeedless(model: LineModel, threshold: number, tolerant: NormalisedSamples): void {
+export function dropNeedless(model: LineModel, threshold: number, tolerant: NormalisedSamples, rotation: Rotation | null): void {
   const weakFirst = [...model.components].sort((a, b) => a.amplitude / a.sigmaAmplitude - b.amplitude / b.sigmaAmplitude || a.centre - b.centre);
   const gone = new Set<Component>();
   for (const c of weakFirst) {
@@ -123,9 +150,14 @@ export function dropNeedless(model: LineModel, threshold: number, tolerant: Norm
     const range = rangeOf([c, ...strong.filter((o) => !o.damped)]);
     const wide = [Math.min(range[0], c.centre - 2 * c.fwhm), Math.max(range[1], c.centre + 2 * c.fwhm)] as const;
     const withIt = fitBlend(tolerant, [{ ...c }, ...strong.map((o) => ({ ...o }))], others, limits, wide);
-    const alone = strong.map((o) => ({ ...o }));
-    const without = fitBlend(tolerant, alone, others, limits, wide);
-    if (without.chi2 - withIt.chi2 > threshold * threshold) continue;
+    let alone = strong.map((o) => ({ ...o }));
+    let without = fitBlend(tolerant, alone, others, limits, wide).chi2;
+    if (rotation && without - withIt.chi2 > threshold * threshold) {
+      const rotating = strong.map((o) => (o.damped || !near(o.fwhm / o.centre, rotation.relativeWidth, 1.8) ? { ...o } : withCore(o, rotation.shape)));
+      const chi2 = fitBlend(tolerant, rotating, others, limits, wide).chi2;
+      if (chi2 < without) [alone, without] = [rotating, chi2];
+    }
+    if (without - withIt.chi2 > threshold * threshold) continue;
     gone.add(c);
     strong.forEach((o, k) => Object.assign(o, alone[k]));
   }
