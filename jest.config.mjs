@@ -15,7 +15,7 @@ export default {
   testTimeout: 60_000,
   projects: [
     { ...common, displayName: 'unit', testMatch: ['<rootDir>/shared/src/**/*.spec.ts', '<rootDir>/server/src/**/*.spec.ts'] },
-    { ...common, displayName: 'reference', testMatch: ['<rootDir>/test/reference/**/*.spec.ts'] },
+    { ...common, displayName: 'reference', testMatch: ['<rootDir>/test/{reference,reading}/**/*.spec.ts'] },
     { ...common, ...withDatabase, displayName: 'api', testMatch: ['<rootDir>/test/api/**/*.spec.ts'] },
     { ...common, ...withDatabase, displayName: 'browser', testMatch: ['<rootDir>/test/browser/**/*.spec.ts'] },
   ],
