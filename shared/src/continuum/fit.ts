@@ -1,55 +1,129 @@
 import type { AnalysisSettings, Continuum } from '../identify/analysis.js';
 import type { NoiseModel } from '../noise/index.js';
 import type { Spectrum } from '../spectrum/index.js';
-import { cutBlocks } from './blocks.js';
+import { cutBlocks, type Blocks } from './blocks.js';
 import { extinctionCurve } from './extinction.js';
-import { wienPeakNm } from './planck.js';
-import { refine } from './refine.js';
-import { AV, LN_PER_MAG, LN_T, makeSmoothModel } from './smooth-model.js';
-import { startTemperature, startValues } from './start.js';
+import { flatLevel, tracedLevel } from './fallback.js';
+import { lnPlanck, wienPeakNm } from './planck.js';
+import { describeQuality, placementSigma, type Quality } from './quality.js';
+import { beliefInExtinction, GIVEN_EXTINCTION } from './reddening.js';
+import { ANY_SHAPE, CALIBRATED, refine, type Refined } from './refine.js';
+import { LN_PER_MAG, makeSmoothModel } from './smooth-model.js';
+import { looksNormalised, startPlanck, startValues, type PlanckStart, type Start } from './start.js';
+import { verdictOn, type Verdict } from './statement.js';
+import { judgeTemperature } from './temperature.js';
 
 /** The continuum under a spectrum: what is told and drawn, and the level per sample. */
 export interface ContinuumFit {
   readonly summary: Continuum;
-  /** continuum flux per sample, finite everywhere */
+  /** continuum flux per sample, in the unit of the flux; finite and positive everywhere */
   readonly level: Float64Array;
-  /** relative 1 sigma error of the placement */
+  /** relative 1 sigma error of the placement, typical of the spectrum */
   readonly levelSigma: Float64Array | number;
 }
 
+/** Chebyshev orders of the smooth part: features narrower than about a twentieth of the range do not pull it. */
 const ORDERS = 20;
+/** Fewer usable samples than this make no continuum worth a model. */
+const FEWEST_SAMPLES = 24;
 
-/** Fits the continuum. First version: Planck curve times a Chebyshev series, refined by rounds of box rejection. */
+/**
+ * Fits the continuum: a Planck curve with extinction times a smooth response where the flux is calibrated, a smooth curve alone where it is
+ * not. Dips and peaks are found by boxes of all widths and left out, in rounds. Never fails: with too little to fit the level is flat or
+ * traced by a running median, and the statement says so.
+ */
 export function fitContinuum(spectrum: Spectrum, noise: NoiseModel, settings: AnalysisSettings): ContinuumFit {
-  const { flux, bad } = spectrum;
+  let usable = 0;
+  for (let i = 0; i < spectrum.bad.length; i++) usable += spectrum.bad[i] ? 0 : 1;
+  if (usable < FEWEST_SAMPLES) return flatLevel(spectrum);
   const blocks = cutBlocks(spectrum.wavelength);
-  const { values, pull } = startValues(spectrum, noise, blocks);
-  const av = settings.extinctionAv ?? 0;
-  const temperature = startTemperature(blocks, values, (nm) => -LN_PER_MAG * av * extinctionCurve(nm));
-  const model = makeSmoothModel(blocks, temperature, av, ORDERS);
-  const refined = refine(spectrum, noise, blocks, model, values, pull, settings.extinctionAv === null)!;
-  const { space, edgeLevel } = refined;
-  let clipped = 0;
-  for (let i = 0; i < flux.length; i++) if (space.rejected[i] && !bad[i]) clipped++;
-  const summary: Continuum = {
-    model: 'planck',
-    temperatureK: temperature,
+  const start = startValues(spectrum, noise, blocks);
+  const known = knownFactor(spectrum, settings);
+  const planck = startPlanck(blocks, start.values, known);
+  const reason = reasonForLocal(spectrum, settings, start, planck);
+  const fit = reason ? null : fitPlanckModel(spectrum, noise, settings.extinctionAv, blocks, start, planck.temperatureK, known);
+  return fit ?? fitLocalModel(spectrum, noise, blocks, start, reason ?? 'no_fit') ?? tracedLevel(spectrum, noise, blocks);
+}
+
+/** Why no Planck curve is tried, or null. */
+function reasonForLocal({ fluxKind }: Spectrum, settings: AnalysisSettings, start: Start, planck: PlanckStart): LocalReason | null {
+  if (settings.localContinuum) return 'asked';
+  if (fluxKind === 'counts') return 'counts';
+  return fluxKind === 'normalised' || (fluxKind === 'unknown' && looksNormalised(start, planck)) ? 'normalised' : null;
+}
+type LocalReason = 'asked' | 'normalised' | 'counts' | 'no_fit';
+
+/** ln of what is known beside the Planck curve: the extinction given, and flux per frequency where it is not per wavelength. */
+function knownFactor({ fluxKind }: Spectrum, { extinctionAv }: AnalysisSettings): (nm: number) => number {
+  return (nm) =>
+    (extinctionAv ? -LN_PER_MAG * extinctionAv * extinctionCurve(nm) : 0) + (fluxKind === 'per_frequency' ? 2 * Math.log(nm) : 0);
+}
+
+function fitPlanckModel(
+  spectrum: Spectrum,
+  noise: NoiseModel,
+  given: number | null,
+  blocks: Blocks,
+  start: Start,
+  startK: number,
+  known: (nm: number) => number,
+): ContinuumFit | null {
+  const model = makeSmoothModel(blocks, (nm) => lnPlanck(nm, startK) + known(nm), startK, ORDERS);
+  const free = { temperature: true, extinction: given === null, response: CALIBRATED };
+  const refined = refine(spectrum, noise, blocks, model, start.values, start.pull, free);
+  if (!refined) return null;
+  const quality = describeQuality(spectrum, blocks, refined);
+  const placement = placementSigma(refined, model, noise, quality);
+  const extinction = given === null ? beliefInExtinction(spectrum, refined.space, placement) : GIVEN_EXTINCTION;
+  const belief = judgeTemperature(blocks, model, refined.values, extinction, known);
+  const verdict = verdictOn(belief, quality, { fromNm: blocks.edgeNm[0]!, toNm: blocks.edgeNm[blocks.count]!, givenAv: given });
+  return assemble('planck', refined, blocks, quality, placement, verdict);
+}
+
+const LOCAL_STATEMENTS: Record<LocalReason, string> = {
+  asked: 'A local continuum was asked for, so no temperature was fitted.',
+  normalised: 'The flux is normalised: its shape says nothing of a temperature, and the continuum was traced locally.',
+  counts:
+    'The flux is in counts: without a flux calibration its shape says nothing of a temperature, and the continuum was traced locally.',
+  no_fit: 'No Planck curve could be fitted, and the continuum was traced locally.',
+};
+
+function fitLocalModel(spectrum: Spectrum, noise: NoiseModel, blocks: Blocks, start: Start, reason: LocalReason): ContinuumFit | null {
+  const model = makeSmoothModel(blocks, () => 0, 6000, ORDERS);
+  const free = { temperature: false, extinction: false, response: ANY_SHAPE };
+  const refined = refine(spectrum, noise, blocks, model, start.values, start.pull, free);
+  if (!refined) return null;
+  const quality = describeQuality(spectrum, blocks, refined);
+  return assemble('local', refined, blocks, quality, placementSigma(refined, model, noise, quality), {
+    temperatureK: null,
     temperatureSigmaK: null,
     constrained: false,
-    statement:
-      'The temperature is not judged yet.' +
-      pull +
-      JSON.stringify(refined.response) +
-      refined.fit.coefficients[LN_T] +
-      ' ' +
-      refined.fit.coefficients[AV],
+    statement: LOCAL_STATEMENTS[reason],
     lowerBoundK: null,
     upperBoundK: null,
-    wienPeakNm: wienPeakNm(temperature),
-    chi2PerDegree: null,
-    clippedFraction: clipped / Math.max(1, flux.length),
-    sampleNm: Array.from(blocks.edgeNm),
-    sampleFlux: Array.from(edgeLevel),
+  });
+}
+
+function assemble(
+  model: Continuum['model'],
+  refined: Refined,
+  blocks: Blocks,
+  quality: Quality,
+  levelSigma: number,
+  verdict: Verdict,
+): ContinuumFit {
+  const { temperatureK } = verdict;
+  return {
+    summary: {
+      model,
+      ...verdict,
+      wienPeakNm: temperatureK === null ? null : wienPeakNm(temperatureK),
+      chi2PerDegree: quality.chi2PerDegree,
+      clippedFraction: quality.clippedFraction,
+      sampleNm: Array.from(blocks.edgeNm),
+      sampleFlux: Array.from(refined.edgeLevel),
+    },
+    level: refined.space.level,
+    levelSigma,
   };
-  return { summary, level: space.level, levelSigma: 0.001 };
 }

@@ -32,10 +32,22 @@ const FLOORS = [0.03, 0.012, 0.005, 0.002, 0.001];
 const FINE_BELOW = 0.005;
 const COARSE_COLUMNS = RESPONSE + 7;
 const BOX_SIGMAS = 3.2;
-const FIRST_RESPONSE: ResponsePrior = { amplitude: 0.03, order: 4 };
-const RESPONSES: readonly ResponsePrior[] = [0.002, 0.006, 0.02, 0.06].flatMap((amplitude) =>
-  [2.5, 4, 7, 12].map((order) => ({ amplitude, order })),
-);
+const responses = (amplitudes: readonly number[], orders: readonly number[]): ResponsePrior[] =>
+  amplitudes.flatMap((amplitude) => orders.map((order) => ({ amplitude, order })));
+
+/** What may vary about the base, and the smooth deviations to choose from; the first of them is where the rounds start. */
+export interface Freedom {
+  readonly temperature: boolean;
+  readonly extinction: boolean;
+  readonly response: readonly ResponsePrior[];
+}
+/** Deviations of a calibrated flux from a Planck curve: per mille to some per cent. */
+export const CALIBRATED: readonly ResponsePrior[] = [
+  { amplitude: 0.03, order: 4 },
+  ...responses([0.002, 0.006, 0.02, 0.06], [2.5, 4, 7, 12]),
+];
+/** Shapes of a flux that was never calibrated, or was divided by some other continuum. */
+export const ANY_SHAPE: readonly ResponsePrior[] = [{ amplitude: 0.5, order: 4 }, ...responses([0.005, 0.05, 0.5, 2], [2.5, 4, 7, 12, 20])];
 
 /** Single samples are clipped closer on the side to which features pull; the mean of what noise leaves is then removed. */
 function clipFor(pull: Pull) {
@@ -59,17 +71,15 @@ export function refine(
   model: SmoothModel,
   start: BlockValues,
   pull: Pull,
-  freeExtinction: boolean,
+  free: Freedom,
 ): Refined | null {
-  const free = { temperature: true, extinction: freeExtinction };
   const space = makeWorkspace(noise.sigma, spectrum.bad);
   const offset = new Float64Array(blocks.count);
   const edgeLevel = new Float64Array(blocks.count + 1);
   const inflation = noise.correlation.reduce((sum, c, lag) => sum + (lag ? 2 * c : c), 0);
   const clip = clipFor(pull);
-  let response = FIRST_RESPONSE;
-  let values: BlockValues = start;
-  for (let b = 0; b < blocks.count; b++) values.value[b]! -= values.weight[b]! > 0 ? model.baseCentre[b]! : 0;
+  let response = free.response[0]!;
+  let values: BlockValues = { value: start.value.map((v, b) => v - model.baseCentre[b]!), weight: start.weight.slice() };
   let fit = robustFit(model, values, precisionOf(model, response, free, COARSE_COLUMNS), pull, 6);
   if (!fit) return null;
   for (const floor of FLOORS) {
@@ -159,18 +169,13 @@ function extraVariance(value: Float64Array, fitted: Float64Array, weight: Float6
 }
 
 /** The size and smoothness of the response that make the block values most probable. */
-function likeliestResponse(
-  model: SmoothModel,
-  values: BlockValues,
-  before: ResponsePrior,
-  free: { temperature: boolean; extinction: boolean },
-): ResponsePrior {
+function likeliestResponse(model: SmoothModel, values: BlockValues, before: ResponsePrior, free: Freedom): ResponsePrior {
   const trial = { value: values.value, weight: values.weight.slice() };
   if (!robustFit(model, trial, precisionOf(model, before, free), 'neither', 1)) return before;
   const sums = normalSums(model, trial);
   let best = -Infinity;
   let chosen = before;
-  for (const response of RESPONSES) {
+  for (const response of free.response) {
     const fit = solveSmooth(sums, precisionOf(model, response, free));
     if (!fit || fit.lnEvidence <= best) continue;
     best = fit.lnEvidence;

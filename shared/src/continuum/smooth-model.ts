@@ -2,7 +2,7 @@ import { chebyshevInto } from '../numeric/chebyshev.js';
 import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
 import { scaledPosition, type BlockValues, type Blocks } from './blocks.js';
 import { extinctionCurve } from './extinction.js';
-import { lnPlanck, planckSlope } from './planck.js';
+import { planckSlope } from './planck.js';
 
 /** ln of a factor per magnitude. */
 export const LN_PER_MAG = 0.4 * Math.LN10;
@@ -19,11 +19,10 @@ export const JUMP = 3;
 export const RESPONSE = 4;
 
 /**
- * ln flux per wavelength = ln B_lambda(T0) - extinction given + sum of coefficients times columns: everything a smooth continuum may do,
- * linear about a Planck curve of `temperatureK`. Rows are block middles or block edges.
+ * ln flux = base + sum of coefficients times columns: everything a smooth continuum may do, linear about its base, which is the ln of a
+ * Planck curve with the given extinction, or 0 where nothing is said of temperatures. Rows are block middles or block edges.
  */
 export interface SmoothModel {
-  readonly temperatureK: number;
   readonly columns: number;
   readonly hasJump: boolean;
   readonly baseCentre: Float64Array;
@@ -32,16 +31,16 @@ export interface SmoothModel {
   readonly edge: Float64Array;
 }
 
-export function makeSmoothModel(blocks: Blocks, temperatureK: number, givenAv: number, orders: number): SmoothModel {
+/** `slopeTemperatureK`: where the column of ln T, if it is to be used, takes the slope of the Planck curve. */
+export function makeSmoothModel(blocks: Blocks, base: (nm: number) => number, slopeTemperatureK: number, orders: number): SmoothModel {
   const columns = RESPONSE + orders;
-  const base = (nm: number) => lnPlanck(nm, temperatureK) - (givenAv ? LN_PER_MAG * givenAv * extinctionCurve(nm) : 0);
   const rows = (nm: Float64Array, shift: number) => {
     const out = new Float64Array(nm.length * columns);
     const series = new Float64Array(orders + 1);
     for (let b = 0; b < nm.length; b++) {
       const at = b * columns;
       out[at + SCALE] = 1;
-      out[at + LN_T] = planckSlope(nm[b]!, temperatureK);
+      out[at + LN_T] = planckSlope(nm[b]!, slopeTemperatureK);
       out[at + AV] = -LN_PER_MAG * extinctionCurve(nm[b]!);
       out[at + JUMP] = -1 / (1 + Math.exp((nm[b]! - JUMP_MIDDLE_NM) / JUMP_WIDTH_NM));
       chebyshevInto(series, scaledPosition(b + shift, blocks.count), orders);
@@ -50,7 +49,6 @@ export function makeSmoothModel(blocks: Blocks, temperatureK: number, givenAv: n
     return out;
   };
   return {
-    temperatureK,
     columns,
     hasJump: blocks.edgeNm[0]! < BALMER_LIMIT_NM - 2 && blocks.edgeNm[blocks.count]! > 390,
     baseCentre: blocks.centreNm.map(base),

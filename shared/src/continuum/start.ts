@@ -7,6 +7,12 @@ import { lnPlanck } from './planck.js';
 /** Whether features pull the flux down, push it up, or do neither on the whole. */
 export type Pull = 'dips' | 'peaks' | 'neither';
 
+/** First guesses of ln flux per block, and the side to which features pull. */
+export interface Start {
+  readonly values: BlockValues;
+  readonly pull: Pull;
+}
+
 /** Samples looked at per block: enough for a quantile to a tenth of the noise. */
 const SAMPLES = 96;
 const QUARTILE_SIGMA = 0.6744897501960817;
@@ -34,7 +40,7 @@ function blockQuartiles({ flux, bad }: Spectrum, blocks: Blocks): Float64Array {
  * A first guess per block: the upper quartile where dips dominate, the lower one where peaks do, the median else, each freed of what
  * noise alone makes of it. A block full of narrow dips up to three quarters still shows its continuum there.
  */
-export function startValues(spectrum: Spectrum, noise: NoiseModel, blocks: Blocks): { values: BlockValues; pull: Pull } {
+export function startValues(spectrum: Spectrum, noise: NoiseModel, blocks: Blocks): Start {
   const quartiles = blockQuartiles(spectrum, blocks);
   const sigma = (b: number) => noise.sigma[(blocks.first[b]! + blocks.first[b + 1]!) >> 1]!;
   let down = 0;
@@ -61,11 +67,17 @@ export function startValues(spectrum: Spectrum, noise: NoiseModel, blocks: Block
   return { values, pull };
 }
 
-/** Temperature on a grid of 10 % steps whose Planck curve follows the block values best, without any other freedom than the scale. */
-export function startTemperature(blocks: Blocks, { value, weight }: BlockValues, lnExtinction: (nm: number) => number): number {
-  const y = value.map((v, b) => v - lnExtinction(blocks.centreNm[b]!));
-  let best = Infinity;
-  let at = 6000;
+/** How the best of a grid of Planck curves, with no freedom but the scale, follows the block values. */
+export interface PlanckStart {
+  readonly temperatureK: number;
+  /** root mean square of what is left of ln flux */
+  readonly rms: number;
+}
+
+/** Best Planck curve on a grid of temperatures in 10 % steps; `known` is the ln of all that is known beside it. */
+export function startPlanck(blocks: Blocks, { value, weight }: BlockValues, known: (nm: number) => number): PlanckStart {
+  const y = value.map((v, b) => v - known(blocks.centreNm[b]!));
+  let best: PlanckStart = { temperatureK: 6000, rms: Infinity };
   for (let t = 800; t < 80_000; t *= 1.1) {
     let m = 0;
     let s1 = 0;
@@ -77,11 +89,24 @@ export function startTemperature(blocks: Blocks, { value, weight }: BlockValues,
       s1 += d;
       s2 += d * d;
     }
-    const spread = s2 - (s1 * s1) / m;
-    if (spread < best) {
-      best = spread;
-      at = t;
-    }
+    const rms = Math.sqrt(Math.max(0, s2 - (s1 * s1) / m) / m);
+    if (rms < best.rms) best = { temperatureK: t, rms };
   }
-  return at;
+  return best;
+}
+
+/** A continuum this near 1, as root mean square of ln flux, may come from a division by a continuum. */
+const NEAR_ONE = 0.03;
+
+/** Whether the continuum is 1 all along, and no Planck curve follows it better than the constant does: it was divided by a continuum. */
+export function looksNormalised({ values: { value, weight } }: Start, planck: PlanckStart): boolean {
+  let m = 0;
+  let squares = 0;
+  for (let b = 0; b < value.length; b++) {
+    if (!(weight[b]! > 0)) continue;
+    m++;
+    squares += value[b]! * value[b]!;
+  }
+  const rms = Math.sqrt(squares / m);
+  return rms < NEAR_ONE && rms < 1.3 * planck.rms;
 }

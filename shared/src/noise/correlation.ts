@@ -7,7 +7,7 @@ const LINE_LAGS = [3, 4, 5, 6];
 /** Shares of lines in the scatter below this are not told from chance. */
 const SMALLEST_SHARE = 0.1;
 /** Correlations below this never matter; chance alone makes them about 2.1 over the root of the number of samples. */
-const SMALLEST = 0.08;
+const SMALLEST = 0.12;
 const CHANCE = 2.8 * 2.1;
 /** A smooth part larger than this is no remnant of lines: the noise itself was smoothed. */
 const LARGEST_LINE_SHARE = 0.7;

@@ -1,0 +1,135 @@
+import { quantile } from '../numeric/select.js';
+import { C_KM_PER_S } from '../units/index.js';
+import type { Spectrum } from '../spectrum/index.js';
+import type { Workspace } from './line-free.js';
+
+/** A diffuse interstellar band strong enough to tell of the dust in front of a star. */
+interface DiffuseBand {
+  readonly vacuumNm: number;
+  readonly fwhmNm: number;
+  /** equivalent width, nm, per magnitude of visual extinction */
+  readonly nmPerMag: number;
+}
+
+/**
+ * Strengths per E(B-V) as in the line list (Jenniskens & Desert 1994, A&AS 106, 39; Hobbs et al. 2008, ApJ 680, 1256; from memory),
+ * over R_V = 3.1. The band at 628.6 nm lies among lines of molecular oxygen of the air and is left out.
+ */
+export const BANDS: readonly DiffuseBand[] = [
+  { vacuumNm: 443.004, fwhmNm: 1.75, nmPerMag: 0.223 / 3.1 },
+  { vacuumNm: 472.812, fwhmNm: 0.27, nmPerMag: 0.0128 / 3.1 },
+  { vacuumNm: 578.21, fwhmNm: 0.21, nmPerMag: 0.0579 / 3.1 },
+  { vacuumNm: 579.871, fwhmNm: 0.09, nmPerMag: 0.0132 / 3.1 },
+  { vacuumNm: 620.482, fwhmNm: 0.12, nmPerMag: 0.0107 / 3.1 },
+  { vacuumNm: 661.543, fwhmNm: 0.1, nmPerMag: 0.0231 / 3.1 },
+  { vacuumNm: 862.317, fwhmNm: 0.43, nmPerMag: 0.0368 / 3.1 },
+];
+
+/** Clouds are looked for within this range of velocities, km/s, in steps of about half the width of the narrowest band. */
+const VELOCITIES = [-100, -80, -60, -40, -20, 0, 20, 40, 60, 80, 100];
+/** Scatter of one band's strength about the mean relation, and of the whole relation from sightline to sightline, in ln. */
+const BAND_SCATTER = 0.3;
+export const RELATION_SCATTER = 0.25;
+/** Chance that a line of the star adds to a band, and by how much on average, as a depth over the band's own width. */
+const BLEND_CHANCE = 0.4;
+const BLEND_DEPTH = 0.1;
+
+interface BandMeasure {
+  readonly widthNm: number;
+  readonly sigmaNm: number;
+  readonly nmPerMag: number;
+  /** equivalent width of a band of this shape and depth 1, nm */
+  readonly areaNm: number;
+}
+
+/**
+ * ln likelihood of each trial extinction from the diffuse bands that the spectrum covers, seen or not; all 0 when it covers none.
+ * The clouds' velocity is where the bands together stand out most. A band that is too strong may be blended, one too weak may not.
+ */
+export function lnLikelihoodOfExtinction(spectrum: Spectrum, space: Workspace, placement: number, trialAv: Float64Array): Float64Array {
+  let bands: BandMeasure[] = [];
+  let most = -1;
+  for (const velocity of VELOCITIES) {
+    const here = BANDS.map((band) => measureBand(spectrum, space, band, velocity, placement)).filter((m) => m !== null);
+    const standsOut = here.reduce((sum, m) => sum + Math.max(0, m.widthNm / m.sigmaNm) ** 2, 0);
+    if (standsOut <= most) continue;
+    most = standsOut;
+    bands = here;
+  }
+  return trialAv.map((av) => bands.reduce((sum, m) => sum + lnLikelihood(m, av), 0));
+}
+
+function lnLikelihood({ widthNm, sigmaNm, nmPerMag, areaNm }: BandMeasure, av: number): number {
+  const expected = av * nmPerMag;
+  const sigma = Math.hypot(sigmaNm, BAND_SCATTER * expected);
+  const d = (widthNm - expected) / sigma;
+  const alone = Math.exp(-0.5 * d * d) / (sigma * Math.sqrt(2 * Math.PI));
+  // a blending line adds an amount with an exponential distribution; folded with the error as a plain step softened over sigma
+  const blend = BLEND_DEPTH * areaNm;
+  const blended = Math.exp(-Math.max(0, widthNm - expected) / blend) / blend / (1 + Math.exp(-1.7 * d));
+  return Math.log((1 - BLEND_CHANCE) * alone + BLEND_CHANCE * blended + 1e-6 / areaNm);
+}
+
+/**
+ * Equivalent width of a band at one velocity by a matched Gaussian, from the samples that are not far below it: narrow lines on top of
+ * the band are left out. `placement` is the relative error of the continuum there. Null when the band is not covered.
+ */
+export function measureBand(
+  spectrum: Spectrum,
+  space: Workspace,
+  band: DiffuseBand,
+  velocity: number,
+  placement: number,
+): BandMeasure | null {
+  const { wavelength, flux } = spectrum;
+  const { level, inverseSigma } = space;
+  const centre = band.vacuumNm * (1 + velocity / C_KM_PER_S);
+  const instrument = spectrum.resolvingPower ? centre / spectrum.resolvingPower : 0;
+  const sigma = Math.hypot(band.fwhmNm, instrument) / 2.354820045;
+  const first = lowerBound(wavelength, centre - 1.8 * sigma);
+  const last = lowerBound(wavelength, centre + 1.8 * sigma);
+  if (last - first < 5 || first === 0 || last === wavelength.length) return null;
+  let depth = Math.max(0, startDepth(spectrum, space, first, last, centre, sigma));
+  let weights = 0;
+  for (let round = 0; round < 6; round++) {
+    let top = 0;
+    weights = 0;
+    for (let i = first; i < last; i++) {
+      const inverse = inverseSigma[i]! * level[i]!;
+      if (inverse === 0) continue;
+      const u = (wavelength[i]! - centre) / sigma;
+      const shape = Math.exp(-0.5 * u * u);
+      const seen = 1 - flux[i]! / level[i]!;
+      if ((seen - depth * shape) * inverse > 2.5 || (seen - depth * shape) * inverse < -4) continue;
+      const w = inverse * inverse * shape;
+      top += w * seen;
+      weights += w * shape;
+    }
+    if (!(weights > 0)) return null;
+    depth = Math.max(0, top / weights);
+    if (round === 5) depth = top / weights;
+  }
+  const area = sigma * Math.sqrt(2 * Math.PI);
+  return { widthNm: depth * area, sigmaNm: Math.hypot(1 / Math.sqrt(weights), placement) * area, nmPerMag: band.nmPerMag, areaNm: area };
+}
+
+/** Lower third of the depths that single samples of the band's core would give. */
+function startDepth(spectrum: Spectrum, space: Workspace, first: number, last: number, centre: number, sigma: number): number {
+  const depths: number[] = [];
+  for (let i = first; i < last; i++) {
+    const u = (spectrum.wavelength[i]! - centre) / sigma;
+    if (u * u < 1 && space.inverseSigma[i]! > 0) depths.push((1 - spectrum.flux[i]! / space.level[i]!) * Math.exp(0.5 * u * u));
+  }
+  return quantile(depths, 0.3);
+}
+
+function lowerBound(sorted: Float64Array, value: number): number {
+  let from = 0;
+  let to = sorted.length;
+  while (from < to) {
+    const middle = (from + to) >> 1;
+    if (sorted[middle]! < value) from = middle + 1;
+    else to = middle;
+  }
+  return from;
+}

@@ -1,0 +1,291 @@
+import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
+import type { BlockValues, Blocks } from './blocks.js';
+import { lnPlanck } from './planck.js';
+import { AV, JUMP, RESPONSE, SCALE, type SmoothModel } from './smooth-model.js';
+
+/** Trial visual extinctions with the probability of each cell around them; a single cell at 0 when the extinction is given. */
+export interface ExtinctionBelief {
+  readonly av: Float64Array;
+  readonly width: Float64Array;
+  readonly mass: Float64Array;
+}
+
+/** What the shape of the continuum says of the colour temperature, all else averaged out. */
+export interface TemperatureBelief {
+  /** mean and standard deviation of ln T */
+  readonly lnT: number;
+  readonly lnSigma: number;
+  /** ln T below which lie 2.5 % and 97.5 % of the probability */
+  readonly lnLow: number;
+  readonly lnHigh: number;
+  /** most probable temperature without any extinction beyond the given one, K */
+  readonly unreddenedK: number;
+  /** posterior mean of the visual extinction */
+  readonly av: number;
+}
+
+const LN_LOW = Math.log(600);
+const LN_HIGH = Math.log(200_000);
+const ORDERS = 10;
+/** Smooth calibration errors of a reduced spectrum are of the order of a per cent; how large they are here, the fit must find. */
+const TYPICAL_RESPONSE = 0.01;
+const RESPONSE_SPREAD = 0.8;
+const AMPLITUDES = [0.003, 0.006, 0.012, 0.024, 0.048];
+const SMOOTHNESS = [2.5, 4, 7];
+
+/** One belief about the response, with the solved system that removes it. */
+interface Nuisance {
+  readonly lnPrior: number;
+  readonly factor: Float64Array;
+  readonly extinction: Float64Array;
+  /** quadratic form of the extinction column with itself */
+  readonly q2: number;
+}
+
+/**
+ * Probability of the colour temperature from the block values of the continuum. The scale, smooth calibration errors of a size that the
+ * data themselves tell, and the extinction are averaged out, so that the width of the result holds all of them.
+ * @param known ln of all that is known beside the Planck curve: given extinction, flux per frequency instead of wavelength
+ */
+export function judgeTemperature(
+  blocks: Blocks,
+  model: SmoothModel,
+  values: BlockValues,
+  extinction: ExtinctionBelief,
+  known: (nm: number) => number,
+): TemperatureBelief {
+  const problem = makeProblem(blocks, model, values, known);
+  const peak = highestPoint((u) => lnProbability(problem, extinction, u, true));
+  const f = (u: number) => lnProbability(problem, extinction, u, false);
+  const grid = gridAround(f, peak);
+  const unreddened = highestPoint((u) => lnProbability(problem, { av: ZERO, width: ZERO, mass: ONE }, u, true));
+  return { ...summarise(grid), unreddenedK: Math.exp(unreddened), av: meanExtinction(problem, extinction, grid) };
+}
+
+const ZERO = Float64Array.of(0);
+const ONE = Float64Array.of(1);
+
+interface Problem {
+  readonly centreNm: Float64Array;
+  readonly value: Float64Array;
+  readonly weight: Float64Array;
+  readonly columns: number;
+  /** scale, jump and response columns, row by row */
+  readonly rows: Float64Array;
+  readonly extinctionColumn: Float64Array;
+  readonly nuisances: Nuisance[];
+  readonly z: Float64Array;
+  readonly right: Float64Array;
+  readonly solved: Float64Array;
+}
+
+function makeProblem(blocks: Blocks, model: SmoothModel, values: BlockValues, known: (nm: number) => number): Problem {
+  const used: number[] = [];
+  for (let b = 0; b < blocks.count; b++) if (values.weight[b]! > 0) used.push(b);
+  const pick = [SCALE, ...(model.hasJump ? [JUMP] : []), ...Array.from({ length: ORDERS }, (_, k) => RESPONSE + k)];
+  const m = pick.length;
+  const rows = new Float64Array(used.length * m);
+  used.forEach((b, r) => pick.forEach((column, j) => (rows[r * m + j] = model.centre[b * model.columns + column]!)));
+  const weight = Float64Array.from(used, (b) => values.weight[b]!);
+  const extinctionColumn = Float64Array.from(used, (b) => model.centre[b * model.columns + AV]!);
+  const problem: Problem = {
+    centreNm: Float64Array.from(used, (b) => blocks.centreNm[b]!),
+    value: Float64Array.from(used, (b) => values.value[b]! + model.baseCentre[b]! - known(blocks.centreNm[b]!)),
+    weight,
+    columns: m,
+    rows,
+    extinctionColumn,
+    nuisances: [],
+    z: new Float64Array(used.length),
+    right: new Float64Array(m),
+    solved: new Float64Array(m),
+  };
+  const matrix = new Float64Array(m * m);
+  for (let r = 0; r < used.length; r++) {
+    for (let j = 0; j < m; j++) {
+      const wj = weight[r]! * rows[r * m + j]!;
+      for (let k = 0; k <= j; k++) matrix[j * m + k] = matrix[j * m + k]! + wj * rows[r * m + k]!;
+    }
+  }
+  const first = m - ORDERS;
+  for (const amplitude of AMPLITUDES) {
+    for (const order of SMOOTHNESS) problem.nuisances.push(makeNuisance(problem, matrix, first, amplitude, order));
+  }
+  return problem;
+}
+
+function makeNuisance(problem: Problem, matrix: Float64Array, first: number, amplitude: number, order: number): Nuisance {
+  const { columns: m, weight, extinctionColumn } = problem;
+  const factor = matrix.slice();
+  let lnPrior = -0.5 * (Math.log(amplitude / TYPICAL_RESPONSE) / RESPONSE_SPREAD) ** 2;
+  if (first > 1) factor[m + 1] = factor[m + 1]! + 4; // the Balmer jump: half a unit of ln flux
+  for (let k = 1; k <= ORDERS; k++) {
+    const sd = amplitude / (1 + (k / order) ** 4);
+    const j = first + k - 1;
+    factor[j * m + j] = factor[j * m + j]! + 1 / (sd * sd);
+    lnPrior -= Math.log(sd);
+  }
+  choleskyInPlace(factor, m);
+  for (let j = 0; j < m; j++) lnPrior -= Math.log(factor[j * m + j]!);
+  const right = new Float64Array(m);
+  project(problem, extinctionColumn, right);
+  const extinction = right.slice();
+  choleskySolve(factor, m, extinction);
+  let q2 = 0;
+  for (let r = 0; r < weight.length; r++) q2 += weight[r]! * extinctionColumn[r]! ** 2;
+  for (let j = 0; j < m; j++) q2 -= right[j]! * extinction[j]!;
+  return { lnPrior, factor, extinction, q2 };
+}
+
+function project({ rows, weight, columns: m }: Problem, y: Float64Array, right: Float64Array) {
+  right.fill(0);
+  for (let r = 0, at = 0; r < y.length; r++, at += m) {
+    const wy = weight[r]! * y[r]!;
+    for (let j = 0; j < m; j++) right[j] = right[j]! + wy * rows[at + j]!;
+  }
+}
+
+/** ln probability of ln T = `u`, up to a constant; `quick` takes one middling response only. */
+function lnProbability(problem: Problem, belief: ExtinctionBelief, u: number, quick: boolean): number {
+  const { z, right, solved, weight, value, centreNm, extinctionColumn, columns: m } = problem;
+  const temperature = Math.exp(u);
+  let zz = 0;
+  let zk = 0;
+  for (let r = 0; r < z.length; r++) {
+    const d = value[r]! - lnPlanck(centreNm[r]!, temperature);
+    z[r] = d;
+    const wd = weight[r]! * d;
+    zz += wd * d;
+    zk += wd * extinctionColumn[r]!;
+  }
+  project(problem, z, right);
+  let best = -Infinity;
+  let sum = 0;
+  const nuisances = quick ? [problem.nuisances[7]!] : problem.nuisances;
+  for (const { lnPrior, factor, extinction, q2 } of nuisances) {
+    solved.set(right);
+    choleskySolve(factor, m, solved);
+    let q0 = zz;
+    let q1 = zk;
+    for (let j = 0; j < m; j++) {
+      q0 -= right[j]! * solved[j]!;
+      q1 -= right[j]! * extinction[j]!;
+    }
+    const lnP = lnPrior + overExtinction(belief, q0, q1, q2);
+    if (lnP > best) {
+      sum = sum * Math.exp(best - lnP) + 1;
+      best = lnP;
+    } else sum += Math.exp(lnP - best);
+  }
+  return best + Math.log(sum);
+}
+
+/** ln of the sum over trial extinctions of mass times exp(-(q0 - 2 A q1 + A^2 q2) / 2), each cell spread over its width. */
+function overExtinction({ av, width, mass }: ExtinctionBelief, q0: number, q1: number, q2: number): number {
+  const centre = q1 / q2;
+  const variance = 1 / q2;
+  let best = -Infinity;
+  let sum = 0;
+  for (let j = 0; j < av.length; j++) {
+    const spread = variance + (width[j]! * width[j]!) / 12;
+    const lnTerm = -0.5 * ((av[j]! - centre) ** 2 / spread + Math.log(spread / variance)) + Math.log(mass[j]!);
+    if (lnTerm > best) {
+      sum = sum * Math.exp(best - lnTerm) + 1;
+      best = lnTerm;
+    } else sum += Math.exp(lnTerm - best);
+  }
+  return best + Math.log(sum) - 0.5 * (q0 - q1 * centre);
+}
+
+/** Highest point of a function of ln T: the best of a coarse grid, then parabolas. */
+function highestPoint(f: (u: number) => number): number {
+  const step = 0.12;
+  let at = LN_LOW;
+  let best = -Infinity;
+  for (let u = LN_LOW; u <= LN_HIGH; u += step) {
+    const p = f(u);
+    if (p > best) {
+      best = p;
+      at = u;
+    }
+  }
+  for (let h = step / 2; h > 2e-4; h /= 4) {
+    const left = f(at - h);
+    const right = f(at + h);
+    const bend = left + right - 2 * best;
+    const move = bend < 0 ? Math.max(-2 * h, Math.min(2 * h, (0.5 * h * (left - right)) / bend)) : left > right ? -h : h;
+    const p = f(at + move);
+    if (p > best) {
+      best = p;
+      at += move;
+    }
+  }
+  return at;
+}
+
+interface Grid {
+  readonly u: Float64Array;
+  readonly probability: Float64Array;
+}
+
+const HALF_POINTS = 20;
+
+/** Points around the peak, dense near it, out to where the probability has dropped to nothing or the range ends. */
+function gridAround(f: (u: number) => number, peak: number): Grid {
+  const top = f(peak);
+  const reach = (sign: number) => {
+    let d = 0.001;
+    while (f(peak + sign * d) > top - 10 && peak + sign * d > LN_LOW && peak + sign * d < LN_HIGH) d *= 2;
+    return d;
+  };
+  const left = reach(-1);
+  const right = reach(1);
+  const n = 2 * HALF_POINTS + 1;
+  const u = new Float64Array(n);
+  for (let i = 0; i < n; i++) {
+    const t = (i - HALF_POINTS) / HALF_POINTS;
+    u[i] = peak + (t < 0 ? left : right) * Math.sign(t) * t * t;
+  }
+  const lnP = u.map(f);
+  const best = Math.max(...lnP);
+  const probability = lnP.map((p, i) => Math.exp(p - best) * 0.5 * (u[Math.min(n - 1, i + 1)]! - u[Math.max(0, i - 1)]!));
+  const sum = probability.reduce((a, b) => a + b, 0);
+  return { u, probability: probability.map((p) => p / sum) };
+}
+
+function summarise({ u, probability }: Grid) {
+  let lnT = 0;
+  let square = 0;
+  let below = 0;
+  let lnLow = u[0]!;
+  let lnHigh = u[u.length - 1]!;
+  let found = 0;
+  for (let i = 0; i < u.length; i++) {
+    lnT += probability[i]! * u[i]!;
+    square += probability[i]! * u[i]! * u[i]!;
+    below += probability[i]!;
+    if (found === 0 && below > 0.025) {
+      lnLow = u[i]!;
+      found = 1;
+    }
+    if (found === 1 && below > 0.975) {
+      lnHigh = u[i]!;
+      found = 2;
+    }
+  }
+  return { lnT, lnSigma: Math.sqrt(Math.max(0, square - lnT * lnT)), lnLow, lnHigh };
+}
+
+function meanExtinction(problem: Problem, belief: ExtinctionBelief, { u, probability }: Grid): number {
+  let top = 0;
+  let all = 0;
+  const peak = u[probability.indexOf(Math.max(...probability))]!;
+  const offset = lnProbability(problem, belief, peak, true);
+  for (let j = 0; j < belief.av.length; j++) {
+    const one = { av: belief.av.subarray(j, j + 1), width: belief.width.subarray(j, j + 1), mass: belief.mass.subarray(j, j + 1) };
+    const p = Math.exp(lnProbability(problem, one, peak, true) - offset);
+    top += p * belief.av[j]!;
+    all += p;
+  }
+  return top / all;
+}
