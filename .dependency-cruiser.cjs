@@ -26,7 +26,7 @@ const SHARED_TYPES_TOO = {
   continuum: ['identify'],
   identify: ['continuum', 'detection', 'noise'],
   review: ['contract'],
-  report: ['contract', 'identify'],
+  report: ['contract', 'identify', 'reading'],
   contract: ['identify', 'reading', 'review', 'spectrum', 'linelist', 'units'],
 };
 

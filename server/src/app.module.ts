@@ -16,6 +16,7 @@ import { HealthModule } from './modules/health/health.module.js';
 import { IdentificationsModule } from './modules/identifications/identifications.module.js';
 import { LineListsModule } from './modules/linelists/linelists.module.js';
 import { ProgrammesModule } from './modules/programmes/programmes.module.js';
+import { ReportsModule } from './modules/reports/reports.module.js';
 import { SpectraModule } from './modules/spectra/spectra.module.js';
 import { TargetsModule } from './modules/targets/targets.module.js';
 
@@ -51,6 +52,7 @@ const ClientModule = ServeStaticModule.forRootAsync({
     LineListsModule,
     AnalysesModule,
     IdentificationsModule,
+    ReportsModule,
     EventsModule,
     HealthModule,
   ],

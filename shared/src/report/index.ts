@@ -1,1 +1,3 @@
-export {};
+export { lineReportCsv } from './line-report.js';
+export type { LineReport, ReportedSpectrum } from './types.js';
+export { roundedToError, type Rounded } from './rounding.js';

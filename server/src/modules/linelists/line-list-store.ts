@@ -59,6 +59,16 @@ export async function findLine(db: Knex, listId: string, lineId: string): Promis
   return (await db('lines').where({ line_list_id: listId, line_id: lineId }).first<Line | undefined>(LINE)) ?? null;
 }
 
+/** Lines by their ids; where several lists hold an id, as the newest list has it. */
+export async function findLines(db: Knex, lineIds: readonly string[]): Promise<Map<string, Line>> {
+  const rows = await db('lines')
+    .join('line_lists as l', 'l.id', 'lines.line_list_id')
+    .whereIn('line_id', lineIds)
+    .orderBy('l.created_at')
+    .select<Line[]>(LINE);
+  return new Map(rows.map((line) => [line.id, line]));
+}
+
 const ROWS_AT_ONCE = 1000;
 
 /** Stores a list, as the one default when asked, and @returns its id. A list of this name and version must not exist yet. */

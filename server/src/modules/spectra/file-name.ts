@@ -11,13 +11,3 @@ export function storedFileName(delivered: string): string {
 
 /** Without its endings: what a spectrum is called when nobody says otherwise. */
 export const labelFrom = (fileName: string): string => fileName.replace(/(\.[A-Za-z0-9]{1,5}){1,2}$/, '').slice(0, 120) || 'spectrum';
-
-/** Always a download, never shown in the page; the name once in plain ASCII and once as it is (RFC 6266, RFC 8187). */
-export function contentDisposition(fileName: string): string {
-  const plain = fileName
-    .normalize('NFKD')
-    .replace(/[^\x20-\x7e]/g, '_')
-    .replace(/["\\%]/g, '_');
-  const exact = encodeURIComponent(fileName).replace(/['()*]/g, (c) => `%${c.charCodeAt(0).toString(16).toUpperCase()}`);
-  return `attachment; filename="${plain}"; filename*=UTF-8''${exact}`;
-}

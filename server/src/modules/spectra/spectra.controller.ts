@@ -5,9 +5,9 @@ import type { SpectrumDetail, SpectrumSummary } from '@foreveil/shared';
 import { Readable } from 'node:stream';
 import { CurrentActor, type Actor } from '../../common/auth/actor.js';
 import { NeedsRole } from '../../common/auth/rules.js';
+import { contentDisposition } from '../../common/http/content-disposition.js';
 import { Immutable } from '../../common/http/immutable.js';
 import { UuidParam } from '../../common/http/uuid-param.js';
-import { contentDisposition } from './file-name.js';
 import { SpectraService } from './spectra.service.js';
 
 const UPLOAD_BODY = {
