@@ -1,4 +1,3 @@
-import { refuse } from './refusal.js';
 import type { RawSpectrum } from './raw.js';
 import type { ReadWarning } from './types.js';
 
@@ -113,28 +112,4 @@ function distance(extent: Extent, wavelength: number): number {
   const half = (extent.high - extent.low) / 2;
   const off = Math.abs(wavelength - (extent.high + extent.low) / 2);
   return half > 0 ? off / half : off === 0 ? 0 : Infinity;
-}
-
-/** Equal wavelengths beyond this share mean that the column is not what it seems. */
-const MOST_DUPLICATES = 0.5;
-
-/** Groups of neighbours with one wavelength: the first position of each group and the number of groups. */
-export function groupsOfEqual(nm: Float64Array, name: string): { starts: Uint32Array; duplicates: number } {
-  const starts = new Uint32Array(nm.length);
-  let groups = 0;
-  for (let i = 0; i < nm.length; i++) if (i === 0 || nm[i] !== nm[i - 1]) starts[groups++] = i;
-  const duplicates = nm.length - groups;
-  if (groups < 2 && nm.length > 1)
-    refuse(
-      'same_wavelength',
-      `All ${nm.length} points have the same wavelength (column ${name}). Check which column holds the wavelengths.`,
-      { column: name },
-    );
-  if (duplicates > MOST_DUPLICATES * nm.length)
-    refuse(
-      'same_wavelength',
-      `${duplicates} of ${nm.length} points have a duplicate wavelength (column ${name}), too many to be merged. Check which column holds the wavelengths.`,
-      { column: name },
-    );
-  return { starts: starts.slice(0, groups), duplicates };
 }

@@ -30,6 +30,7 @@ export interface Reading {
   readonly format: 'fits_table' | 'fits_ascii_table' | 'fits_image' | 'text';
   /** where in the file: 'HDU 1 SPECTRUM', 'line 5 onwards' */
   readonly place: string;
+  /** samples in the file, missing ones included; the spectrum has fewer when some were merged or left out, which a warning says */
   readonly points: number;
   readonly objectName: Stated<string | null>;
   readonly wavelengthColumn: string;
@@ -38,6 +39,8 @@ export interface Reading {
   readonly frame: Stated<Frame>;
   readonly fluxColumn: string;
   readonly fluxUnit: Stated<string>;
+  /** unit of the numbers in the spectrum where they were converted: flux per frequency becomes flux per wavelength */
+  readonly convertedFluxUnit?: string;
   readonly fluxKind: Stated<FluxKind>;
   readonly uncertaintyColumn: string | null;
   readonly uncertaintyKind: Stated<UncertaintyKind | null>;

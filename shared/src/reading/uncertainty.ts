@@ -1,5 +1,5 @@
 import type { RawSpectrum } from './raw.js';
-import { quoted } from './refusal.js';
+import { quoted, refuse } from './refusal.js';
 import type { ReadWarning } from './types.js';
 
 /**
@@ -29,7 +29,7 @@ export function sigmaOf(raw: RawSpectrum, warnings: ReadWarning[]): Float64Array
 const MOST_MASKED = 0.5;
 
 /** 1 where a sample must not be used: no flux, masked, or without a positive sigma although the file gives sigmas. */
-export function badSamples(raw: RawSpectrum, sigma: Float64Array | null, warnings: ReadWarning[]): Uint8Array {
+export function badSamples(raw: RawSpectrum, sigma: Float64Array | null, warnings: ReadWarning[]): { bad: Uint8Array; maskUsed: boolean } {
   const { flux, mask } = raw;
   const bad = new Uint8Array(flux.length);
   let good = 0;
@@ -38,7 +38,13 @@ export function badSamples(raw: RawSpectrum, sigma: Float64Array | null, warning
     else good++;
   }
   if (sigma) for (let i = 0; i < sigma.length; i++) if (!(sigma[i]! > 0 && sigma[i]! < Infinity)) sigma[i] = NaN;
-  if (!mask) return bad;
+  if (good === 0)
+    refuse(
+      'no_usable_sample',
+      'No sample can be used: everywhere the flux is missing or its uncertainty is not a positive number. Choose other columns.',
+      { column: raw.fluxName },
+    );
+  if (!mask) return { bad, maskUsed: false };
   let masked = 0;
   for (let i = 0; i < bad.length; i++) if (!bad[i] && mask.values[i]! >= 1) masked++;
   if (masked > MOST_MASKED * good) {
@@ -47,8 +53,8 @@ export function badSamples(raw: RawSpectrum, sigma: Float64Array | null, warning
       sentence: `Column ${quoted(mask.name)} marks ${masked} of ${good} samples, more than half; it was not used as a mask. Its values may be remarks rather than faults.`,
       column: mask.name,
     });
-    return bad;
+    return { bad, maskUsed: false };
   }
   for (let i = 0; i < bad.length; i++) if (mask.values[i]! >= 1) bad[i] = 1;
-  return bad;
+  return { bad, maskUsed: true };
 }

@@ -1,0 +1,91 @@
+import type { RawSpectrum } from './raw.js';
+import { quoted, refuse } from './refusal.js';
+import type { ReadWarning } from './types.js';
+
+/** Wavelengths must be positive; samples without one are left out with a warning. */
+export function checkAxis(raw: RawSpectrum, warnings: ReadWarning[]) {
+  const nm = raw.axis.nm;
+  let usable = 0;
+  let firstUnusable = -1;
+  for (let i = 0; i < nm.length; i++) {
+    const value = nm[i]!;
+    if (value < 0) {
+      const at = raw.locate(i);
+      refuse(
+        'negative_wavelength',
+        `The wavelength at ${at.words} is negative (column ${quoted(raw.axisName)}); wavelengths must be positive. Check which column holds the wavelengths.`,
+        {
+          row: at.row,
+          column: raw.axisName,
+        },
+      );
+    }
+    if (value > 0 && value < Infinity) usable++;
+    else if (firstUnusable < 0) firstUnusable = i;
+  }
+  if (usable === 0 && nm.length > 0)
+    refuse(
+      'no_wavelength',
+      `There is no valid wavelength: every value of ${quoted(raw.axisName)} is missing, not a number (NaN), zero or out of range (infinite).`,
+      {
+        column: raw.axisName,
+      },
+    );
+  if (firstUnusable < 0) return;
+  const at = raw.locate(firstUnusable);
+  warnings.push({
+    code: 'no_wavelength',
+    sentence: `${nm.length - usable} samples were left out because their wavelength is missing, zero or not finite (first at ${at.words}).`,
+    row: at.row,
+    column: raw.axisName,
+  });
+}
+
+/** There must be some flux; infinite values become NaN, in place. */
+export function checkFlux(raw: RawSpectrum, warnings: ReadWarning[]) {
+  const { flux } = raw;
+  let min = Infinity;
+  let max = -Infinity;
+  let missing = 0;
+  for (let i = 0; i < flux.length; i++) {
+    const value = flux[i]!;
+    if (!Number.isFinite(value)) {
+      // an infinite flux is as useless as a missing one, and NaN says so
+      flux[i] = NaN;
+      missing++;
+      continue;
+    }
+    if (value < min) min = value;
+    if (value > max) max = value;
+  }
+  if (missing === flux.length && missing > 0)
+    refuse(
+      'no_flux',
+      `There is no valid flux: every value of column ${quoted(raw.fluxName)} is missing (null) or not a number (NaN). Choose another flux column.`,
+      {
+        column: raw.fluxName,
+      },
+    );
+  if (missing > 0)
+    warnings.push({
+      code: 'missing_flux',
+      sentence: `${missing} samples have no flux (missing, NaN or infinite) and are not used.`,
+      column: raw.fluxName,
+    });
+  if (min === max && flux.length > 1)
+    warnings.push({
+      code: 'constant_flux',
+      sentence: `The flux is constant: every value of column ${quoted(raw.fluxName)} is ${min}. There is nothing to find in it.`,
+      column: raw.fluxName,
+    });
+}
+
+/** Fewer samples than this cannot hold a continuum and a line. */
+const FEW_POINTS = 20;
+
+export function checkSize(points: number, warnings: ReadWarning[]) {
+  if (points < 2)
+    refuse('too_few_points', `The file has ${points === 1 ? 'one usable point' : 'no usable points'}; a spectrum needs at least two.`);
+  if (points < FEW_POINTS)
+    warnings.push({ code: 'few_points', sentence: `The spectrum has only ${points} points, too few to fit a continuum or a line.` });
+}
