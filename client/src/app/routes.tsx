@@ -1,0 +1,59 @@
+import type { QueryClient } from '@tanstack/react-query';
+import { createBrowserRouter, type RouteObject } from 'react-router-dom';
+import { makeLoaders } from './loaders.js';
+import { FirstLoad } from './pages/FirstLoad.js';
+import { NotFoundPage } from './pages/NotFoundPage.js';
+import { RouteError } from './pages/RouteError.js';
+import { Shell } from './shell/Shell.js';
+
+export function makeRoutes(client: QueryClient): RouteObject[] {
+  const loaders = makeLoaders(client);
+  const pages: RouteObject[] = [
+    {
+      index: true,
+      loader: loaders.programmes,
+      lazy: async () => ({ Component: (await import('../features/programmes/ProgrammesPage.js')).ProgrammesPage }),
+    },
+    {
+      path: 'programmes/:programmeId',
+      loader: loaders.programme,
+      lazy: async () => ({ Component: (await import('../features/programmes/ProgrammePage.js')).ProgrammePage }),
+    },
+    {
+      path: 'programmes/:programmeId/add',
+      loader: loaders.programme,
+      lazy: async () => ({ Component: (await import('../features/upload/UploadPage.js')).UploadPage }),
+    },
+    {
+      path: 'programmes/:programmeId/targets/:targetId',
+      loader: loaders.target,
+      lazy: async () => ({ Component: (await import('../features/targets/TargetPage.js')).TargetPage }),
+    },
+    {
+      path: 'programmes/:programmeId/spectra/:spectrumId',
+      loader: loaders.spectrum,
+      lazy: async () => ({ Component: (await import('../features/spectrum/SpectrumPage.js')).default }),
+    },
+    { path: '*', element: <NotFoundPage /> },
+  ];
+  return [
+    {
+      path: 'sign-in',
+      HydrateFallback: FirstLoad,
+      errorElement: <RouteError bare />,
+      lazy: async () => ({ Component: (await import('../features/sign-in/SignInPage.js')).SignInPage }),
+    },
+    {
+      id: 'shell',
+      element: <Shell />,
+      loader: loaders.shell,
+      // who is signed in does not change with the page
+      shouldRevalidate: () => false,
+      HydrateFallback: FirstLoad,
+      errorElement: <RouteError bare />,
+      children: [{ errorElement: <RouteError />, children: pages }],
+    },
+  ];
+}
+
+export const makeRouter = (client: QueryClient) => createBrowserRouter(makeRoutes(client));

@@ -1,0 +1,54 @@
+import { AppShell } from '@mantine/core';
+import { useEffect, useRef } from 'react';
+import { Outlet, ScrollRestoration, useLocation, useParams } from 'react-router-dom';
+import { useProgrammeEvents } from '../../lib/useProgrammeEvents.js';
+import { AccountMenu } from './AccountMenu.js';
+import { Brand } from './Brand.js';
+import { ConnectionNote } from './ConnectionNote.js';
+import { Crumbs } from './Crumbs.js';
+import { KeysSheet } from './KeysSheet.js';
+import { Pending } from './Pending.js';
+import classes from './shell.module.css';
+import { SignInAgain } from './SignInAgain.js';
+
+/** The bar of 44 px and the page under it. Listens to the programme in the address, so that every page of it stays fresh. */
+export function Shell() {
+  const { programmeId } = useParams();
+  const liveness = useProgrammeEvents(programmeId);
+  const main = useFocusOnNewPage();
+  return (
+    <AppShell header={{ height: 44 }} padding={0}>
+      <a href="#content" className={classes.skip}>
+        Skip to the page
+      </a>
+      <AppShell.Header className={classes.bar} withBorder={false}>
+        <Brand />
+        <Crumbs />
+        <div className={classes.right}>
+          <KeysSheet />
+          <AccountMenu />
+        </div>
+        <Pending />
+      </AppShell.Header>
+      <AppShell.Main id="content" ref={main} tabIndex={-1}>
+        <ConnectionNote liveness={liveness} />
+        <Outlet />
+      </AppShell.Main>
+      <SignInAgain />
+      <ScrollRestoration />
+    </AppShell>
+  );
+}
+
+/** After a change of page the focus starts at its top, as after a full load; a screen reader then reads the new title. */
+function useFocusOnNewPage() {
+  const main = useRef<HTMLElement>(null);
+  const { pathname } = useLocation();
+  const shown = useRef(pathname);
+  useEffect(() => {
+    if (shown.current === pathname) return;
+    shown.current = pathname;
+    main.current?.focus({ preventScroll: true });
+  }, [pathname]);
+  return main;
+}
