@@ -18,12 +18,13 @@ export interface BlockValues {
 export const makeBlockValues = (count: number): BlockValues => ({ value: new Float64Array(count), weight: new Float64Array(count) });
 
 const MOST_BLOCKS = 256;
-const FEWEST_SAMPLES = 12;
+const SAMPLES_PER_BLOCK = 12;
+const FEWEST_BLOCKS = 5;
 
 /** Cuts an ascending wavelength array into at most a few hundred blocks of, on average, at least a dozen samples. */
 export function cutBlocks(wavelength: Float64Array): Blocks {
   const n = wavelength.length;
-  const count = Math.max(1, Math.min(MOST_BLOCKS, Math.floor(n / FEWEST_SAMPLES)));
+  const count = Math.max(1, Math.min(MOST_BLOCKS, Math.max(Math.floor(n / SAMPLES_PER_BLOCK), Math.min(FEWEST_BLOCKS, n >> 2))));
   const from = Math.log(wavelength[0]!);
   const step = (Math.log(wavelength[n - 1]!) - from) / count;
   const first = new Int32Array(count + 1);
@@ -40,14 +41,3 @@ export function cutBlocks(wavelength: Float64Array): Blocks {
 
 /** Position of block edge (or, with 0.5 added, block middle) `b` scaled to [-1, 1]. */
 export const scaledPosition = (b: number, count: number): number => (2 * b) / count - 1;
-
-/** Level between block edges, straight in wavelength: blocks are so narrow that a smooth curve bends by less than 1e-5 in them. */
-export function interpolateLevel(out: Float64Array, wavelength: Float64Array, blocks: Blocks, edgeLevel: Float64Array) {
-  for (let b = 0; b < blocks.count; b++) {
-    const left = blocks.edgeNm[b]!;
-    const base = edgeLevel[b]!;
-    const width = blocks.edgeNm[b + 1]! - left;
-    const slope = width > 0 ? (edgeLevel[b + 1]! - base) / width : 0;
-    for (let i = blocks.first[b]!, end = blocks.first[b + 1]!; i < end; i++) out[i] = base + slope * (wavelength[i]! - left);
-  }
-}

@@ -7,7 +7,8 @@ import { flatLevel, tracedLevel } from './fallback.js';
 import { lnPlanck, wienPeakNm } from './planck.js';
 import { describeQuality, placementSigma, type Quality } from './quality.js';
 import { beliefInExtinction, GIVEN_EXTINCTION } from './reddening.js';
-import { ANY_SHAPE, CALIBRATED, refine, type Refined } from './refine.js';
+import { refine, type Refined } from './refine.js';
+import { ANY_SHAPE, CALIBRATED } from './robust-fit.js';
 import { LN_PER_MAG, makeSmoothModel } from './smooth-model.js';
 import { looksNormalised, startPlanck, startValues, type PlanckStart, type Start } from './start.js';
 import { verdictOn, type Verdict } from './statement.js';
@@ -25,7 +26,7 @@ export interface ContinuumFit {
 /** Chebyshev orders of the smooth part: features narrower than about a twentieth of the range do not pull it. */
 const ORDERS = 20;
 /** Fewer usable samples than this make no continuum worth a model. */
-const FEWEST_SAMPLES = 24;
+const FEWEST_SAMPLES = 12;
 
 /**
  * Fits the continuum: a Planck curve with extinction times a smooth response where the flux is calibrated, a smooth curve alone where it is
@@ -49,7 +50,7 @@ export function fitContinuum(spectrum: Spectrum, noise: NoiseModel, settings: An
 function reasonForLocal({ fluxKind }: Spectrum, settings: AnalysisSettings, start: Start, planck: PlanckStart): LocalReason | null {
   if (settings.localContinuum) return 'asked';
   if (fluxKind === 'counts') return 'counts';
-  return fluxKind === 'normalised' || (fluxKind === 'unknown' && looksNormalised(start, planck)) ? 'normalised' : null;
+  return fluxKind === 'normalised' || looksNormalised(start, planck) ? 'normalised' : null;
 }
 type LocalReason = 'asked' | 'normalised' | 'counts' | 'no_fit';
 

@@ -1,3 +1,5 @@
+import type { Binned } from './binned.js';
+
 /** Scratch arrays of one run, as long as the spectrum. */
 export interface Workspace {
   readonly level: Float64Array;
@@ -13,10 +15,8 @@ export interface Workspace {
   readonly cellHit: Uint8Array;
 }
 
-export function makeWorkspace(sigma: Float64Array, bad: Uint8Array): Workspace {
-  const n = sigma.length;
-  const inverseSigma = new Float64Array(n);
-  for (let i = 0; i < n; i++) inverseSigma[i] = bad[i] ? 0 : 1 / sigma[i]!;
+export function makeWorkspace({ inverseSigma }: Binned): Workspace {
+  const n = inverseSigma.length;
   return {
     level: new Float64Array(n),
     inverseSigma,
@@ -26,6 +26,26 @@ export function makeWorkspace(sigma: Float64Array, bad: Uint8Array): Workspace {
     cellCount: new Int32Array(n),
     cellHit: new Uint8Array(n),
   };
+}
+
+/** Level per sample, straight between the block edges (a smooth curve bends by less than 1e-4 in a block), and residuals from it. */
+export function measureAgainst(
+  edgeLevel: Float64Array,
+  { wavelength, flux, inverseSigma, blocks }: Binned,
+  { level, residual }: Workspace,
+) {
+  for (let b = 0; b < blocks.count; b++) {
+    const left = blocks.edgeNm[b]!;
+    const base = edgeLevel[b]!;
+    const width = blocks.edgeNm[b + 1]! - left;
+    const slope = width > 0 ? (edgeLevel[b + 1]! - base) / width : 0;
+    for (let i = blocks.first[b]!, end = blocks.first[b + 1]!; i < end; i++) {
+      const l = base + slope * (wavelength[i]! - left);
+      const inverse = inverseSigma[i]!;
+      level[i] = l;
+      residual[i] = inverse === 0 ? 0 : (flux[i]! - l) * inverse;
+    }
+  }
 }
 
 /** Thresholds of one round of rejection. */

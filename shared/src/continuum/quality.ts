@@ -36,9 +36,9 @@ export function describeQuality({ bad, wavelength }: Spectrum, blocks: Blocks, {
       kept++;
       chi2 += z * z;
     } else {
-      // cosmic rays are bright but few: no sample counts for more than a hundred times the continuum
-      const excess = Math.min(100, Math.abs(z / (inverseSigma[i]! * level[i]!))) * spacing(wavelength, i);
-      if (z > 0) above += excess;
+      const excess = Math.abs(z / (inverseSigma[i]! * level[i]!)) * spacing(wavelength, i);
+      // a single bright sample is more likely a cosmic ray than a line
+      if (z > 0) above += (residual[i - 1] ?? 0) > 2 || (residual[i + 1] ?? 0) > 2 ? excess : 0;
       else below += excess;
     }
   }

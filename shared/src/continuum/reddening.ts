@@ -8,7 +8,7 @@ const FINEST = 0.004;
 const GROWTH = 0.155;
 /** Half of all stars looked at are taken to be near and free of dust, half to be dimmed by some tenths of a magnitude or more. */
 const NEAR_SHARE = 0.5;
-const NEAR_MAG = 0.02;
+const NEAR_MAG = 0.01;
 const FAR_MAG = 0.7;
 
 /** Extinction as a person gave it: the model applies it, nothing further is allowed for. */

@@ -2,7 +2,7 @@ import type { NoiseModel } from '../noise/index.js';
 import { selectInPlace } from '../numeric/select.js';
 import type { Spectrum } from '../spectrum/index.js';
 import { makeBlockValues, type BlockValues, type Blocks } from './blocks.js';
-import { lnPlanck } from './planck.js';
+import { lnPlanck, wienPeakNm } from './planck.js';
 
 /** Whether features pull the flux down, push it up, or do neither on the whole. */
 export type Pull = 'dips' | 'peaks' | 'neither';
@@ -74,11 +74,15 @@ export interface PlanckStart {
   readonly rms: number;
 }
 
+/** The grid runs from curves whose peak lies at this many times the longest wavelength up to the Rayleigh-Jeans tail. */
+const COOLEST = 6;
+const HOTTEST_K = 80_000;
+
 /** Best Planck curve on a grid of temperatures in 10 % steps; `known` is the ln of all that is known beside it. */
 export function startPlanck(blocks: Blocks, { value, weight }: BlockValues, known: (nm: number) => number): PlanckStart {
   const y = value.map((v, b) => v - known(blocks.centreNm[b]!));
   let best: PlanckStart = { temperatureK: 6000, rms: Infinity };
-  for (let t = 800; t < 80_000; t *= 1.1) {
+  for (let t = wienPeakNm(blocks.edgeNm[blocks.count]!) / COOLEST; t < HOTTEST_K; t *= 1.1) {
     let m = 0;
     let s1 = 0;
     let s2 = 0;

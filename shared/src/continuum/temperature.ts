@@ -1,6 +1,6 @@
 import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
 import type { BlockValues, Blocks } from './blocks.js';
-import { lnPlanck } from './planck.js';
+import { lnPlanck, wienPeakNm } from './planck.js';
 import { AV, JUMP, RESPONSE, SCALE, type SmoothModel } from './smooth-model.js';
 
 /** Trial visual extinctions with the probability of each cell around them; a single cell at 0 when the extinction is given. */
@@ -24,8 +24,9 @@ export interface TemperatureBelief {
   readonly av: number;
 }
 
-const LN_LOW = Math.log(600);
 const LN_HIGH = Math.log(200_000);
+/** The coolest temperature tried has its peak at this many times the longest wavelength. */
+const COOLEST = 8;
 const ORDERS = 10;
 /** Smooth calibration errors of a reduced spectrum are of the order of a per cent; how large they are here, the fit must find. */
 const TYPICAL_RESPONSE = 0.01;
@@ -55,15 +56,17 @@ export function judgeTemperature(
   known: (nm: number) => number,
 ): TemperatureBelief {
   const problem = makeProblem(blocks, model, values, known);
-  const peak = highestPoint((u) => lnProbability(problem, extinction, u, true));
-  const f = (u: number) => lnProbability(problem, extinction, u, false);
-  const grid = gridAround(f, peak);
-  const unreddened = highestPoint((u) => lnProbability(problem, { av: ZERO, width: ZERO, mass: ONE }, u, true));
+  const lnLow = Math.log(wienPeakNm(blocks.edgeNm[blocks.count]!) / COOLEST);
+  const dustless = (u: number) => lnProbability(problem, NO_EXTINCTION, u, true);
+  const unreddened = highestPoint(dustless, lnLow);
+  const peak = extinction.av.length > 1 ? highestPoint((u) => lnProbability(problem, extinction, u, true), lnLow) : unreddened;
+  const grid = gridAround((u) => lnProbability(problem, extinction, u, false), peak, widthAt(dustless, unreddened), lnLow);
   return { ...summarise(grid), unreddenedK: Math.exp(unreddened), av: meanExtinction(problem, extinction, grid) };
 }
 
-const ZERO = Float64Array.of(0);
-const ONE = Float64Array.of(1);
+const NO_EXTINCTION: ExtinctionBelief = { av: Float64Array.of(0), width: Float64Array.of(0), mass: Float64Array.of(1) };
+/** Neighbouring blocks are taken together into about this many rows: the curves here bend so little that only their mean position matters. */
+const ROWS = 64;
 
 interface Problem {
   readonly centreNm: Float64Array;
@@ -80,28 +83,48 @@ interface Problem {
 }
 
 function makeProblem(blocks: Blocks, model: SmoothModel, values: BlockValues, known: (nm: number) => number): Problem {
-  const used: number[] = [];
-  for (let b = 0; b < blocks.count; b++) if (values.weight[b]! > 0) used.push(b);
   const pick = [SCALE, ...(model.hasJump ? [JUMP] : []), ...Array.from({ length: ORDERS }, (_, k) => RESPONSE + k)];
   const m = pick.length;
-  const rows = new Float64Array(used.length * m);
-  used.forEach((b, r) => pick.forEach((column, j) => (rows[r * m + j] = model.centre[b * model.columns + column]!)));
-  const weight = Float64Array.from(used, (b) => values.weight[b]!);
-  const extinctionColumn = Float64Array.from(used, (b) => model.centre[b * model.columns + AV]!);
+  const perRow = Math.max(1, Math.floor(blocks.count / ROWS));
+  const groups = Math.ceil(blocks.count / perRow);
+  const centreNm = new Float64Array(groups);
+  const value = new Float64Array(groups);
+  const weight = new Float64Array(groups);
+  const rows = new Float64Array(groups * m);
+  const extinctionColumn = new Float64Array(groups);
+  let used = 0;
+  for (let g = 0; g < groups; g++) {
+    const from = g * perRow;
+    const to = Math.min(blocks.count, from + perRow);
+    let sum = 0;
+    for (let b = from; b < to; b++) sum += values.weight[b]!;
+    if (!(sum > 0)) continue;
+    weight[used] = sum;
+    for (let b = from; b < to; b++) {
+      const share = values.weight[b]! / sum;
+      if (share === 0) continue;
+      const nm = blocks.centreNm[b]!;
+      centreNm[used] = centreNm[used]! + share * nm;
+      value[used] = value[used]! + share * (values.value[b]! + model.baseCentre[b]! - known(nm));
+      extinctionColumn[used] = extinctionColumn[used]! + share * model.centre[b * model.columns + AV]!;
+      for (let j = 0; j < m; j++) rows[used * m + j] = rows[used * m + j]! + share * model.centre[b * model.columns + pick[j]!]!;
+    }
+    used++;
+  }
   const problem: Problem = {
-    centreNm: Float64Array.from(used, (b) => blocks.centreNm[b]!),
-    value: Float64Array.from(used, (b) => values.value[b]! + model.baseCentre[b]! - known(blocks.centreNm[b]!)),
-    weight,
+    centreNm: centreNm.subarray(0, used),
+    value: value.subarray(0, used),
+    weight: weight.subarray(0, used),
     columns: m,
     rows,
-    extinctionColumn,
+    extinctionColumn: extinctionColumn.subarray(0, used),
     nuisances: [],
-    z: new Float64Array(used.length),
+    z: new Float64Array(used),
     right: new Float64Array(m),
     solved: new Float64Array(m),
   };
   const matrix = new Float64Array(m * m);
-  for (let r = 0; r < used.length; r++) {
+  for (let r = 0; r < used; r++) {
     for (let j = 0; j < m; j++) {
       const wj = weight[r]! * rows[r * m + j]!;
       for (let k = 0; k <= j; k++) matrix[j * m + k] = matrix[j * m + k]! + wj * rows[r * m + k]!;
@@ -145,6 +168,9 @@ function project({ rows, weight, columns: m }: Problem, y: Float64Array, right: 
   }
 }
 
+/** Responses less probable than the best by more than this, in ln, are not averaged in. */
+const NEGLIGIBLE = 12;
+
 /** ln probability of ln T = `u`, up to a constant; `quick` takes one middling response only. */
 function lnProbability(problem: Problem, belief: ExtinctionBelief, u: number, quick: boolean): number {
   const { z, right, solved, weight, value, centreNm, extinctionColumn, columns: m } = problem;
@@ -171,6 +197,7 @@ function lnProbability(problem: Problem, belief: ExtinctionBelief, u: number, qu
       q0 -= right[j]! * solved[j]!;
       q1 -= right[j]! * extinction[j]!;
     }
+    if (lnPrior - 0.5 * (q0 - (q1 * q1) / q2) < best - NEGLIGIBLE) continue;
     const lnP = lnPrior + overExtinction(belief, q0, q1, q2);
     if (lnP > best) {
       sum = sum * Math.exp(best - lnP) + 1;
@@ -198,11 +225,11 @@ function overExtinction({ av, width, mass }: ExtinctionBelief, q0: number, q1: n
 }
 
 /** Highest point of a function of ln T: the best of a coarse grid, then parabolas. */
-function highestPoint(f: (u: number) => number): number {
+function highestPoint(f: (u: number) => number, lnLow: number): number {
   const step = 0.12;
-  let at = LN_LOW;
+  let at = lnLow;
   let best = -Infinity;
-  for (let u = LN_LOW; u <= LN_HIGH; u += step) {
+  for (let u = lnLow; u <= LN_HIGH; u += step) {
     const p = f(u);
     if (p > best) {
       best = p;
@@ -228,29 +255,38 @@ interface Grid {
   readonly probability: Float64Array;
 }
 
-const HALF_POINTS = 20;
+/** Points of the final grid stand half a standard deviation apart, as it is for a known extinction, and between these in ln T. */
+const FINEST_STEP = 0.003;
+const COARSEST_STEP = 0.04;
+const MOST_POINTS = 160;
+/** The grid ends where ln probability has dropped by this much. */
+const DEPTH = 9;
 
-/** Points around the peak, dense near it, out to where the probability has dropped to nothing or the range ends. */
-function gridAround(f: (u: number) => number, peak: number): Grid {
+/** Evenly spaced points about the peak, out to where the probability has dropped to nothing or the range ends. */
+function gridAround(f: (u: number) => number, peak: number, width: number, lnLow: number): Grid {
   const top = f(peak);
+  const step = Math.max(FINEST_STEP, Math.min(COARSEST_STEP, width / 2));
   const reach = (sign: number) => {
-    let d = 0.001;
-    while (f(peak + sign * d) > top - 10 && peak + sign * d > LN_LOW && peak + sign * d < LN_HIGH) d *= 2;
+    let d = 4 * step;
+    while (f(peak + sign * d) > top - DEPTH && peak + sign * d > lnLow && peak + sign * d < LN_HIGH) d *= 1.7;
     return d;
   };
   const left = reach(-1);
   const right = reach(1);
-  const n = 2 * HALF_POINTS + 1;
-  const u = new Float64Array(n);
-  for (let i = 0; i < n; i++) {
-    const t = (i - HALF_POINTS) / HALF_POINTS;
-    u[i] = peak + (t < 0 ? left : right) * Math.sign(t) * t * t;
-  }
+  const n = Math.min(MOST_POINTS, Math.ceil((left + right) / step) + 1);
+  const u = new Float64Array(n).map((_, i) => peak - left + ((left + right) * i) / (n - 1));
   const lnP = u.map(f);
-  const best = Math.max(...lnP);
-  const probability = lnP.map((p, i) => Math.exp(p - best) * 0.5 * (u[Math.min(n - 1, i + 1)]! - u[Math.max(0, i - 1)]!));
+  const best = lnP.reduce((a, b) => Math.max(a, b), -Infinity);
+  const probability = lnP.map((p) => Math.exp(p - best));
   const sum = probability.reduce((a, b) => a + b, 0);
   return { u, probability: probability.map((p) => p / sum) };
+}
+
+/** Standard deviation of ln T about a peak, from the bend of the log probability there. */
+function widthAt(f: (u: number) => number, peak: number): number {
+  const h = 0.01;
+  const bend = (2 * f(peak) - f(peak - h) - f(peak + h)) / (h * h);
+  return bend > 0 ? 1 / Math.sqrt(bend) : Infinity;
 }
 
 function summarise({ u, probability }: Grid) {

@@ -1,0 +1,80 @@
+import { MAD_TO_SIGMA, medianInPlace } from '../numeric/select.js';
+import type { BlockValues } from './blocks.js';
+import {
+  evaluateRows,
+  normalSums,
+  precisionOf,
+  solveSmooth,
+  type ResponsePrior,
+  type SmoothFit,
+  type SmoothModel,
+} from './smooth-model.js';
+import type { Pull } from './start.js';
+
+const responses = (amplitudes: readonly number[], orders: readonly number[]): ResponsePrior[] =>
+  amplitudes.flatMap((amplitude) => orders.map((order) => ({ amplitude, order })));
+
+/** What may vary about the base, and the smooth deviations to choose from; the first of them is where the rounds start. */
+export interface Freedom {
+  readonly temperature: boolean;
+  readonly extinction: boolean;
+  readonly response: readonly ResponsePrior[];
+}
+/** Deviations of a calibrated flux from a Planck curve: per mille to some per cent. */
+export const CALIBRATED: readonly ResponsePrior[] = [
+  { amplitude: 0.03, order: 4 },
+  ...responses([0.002, 0.006, 0.02, 0.06], [2.5, 4, 7, 12]),
+];
+/** Shapes of a flux that was never calibrated, or was divided by some other continuum. */
+export const ANY_SHAPE: readonly ResponsePrior[] = [{ amplitude: 0.5, order: 4 }, ...responses([0.005, 0.05, 0.5, 2], [2.5, 4, 7, 12, 20])];
+
+/** Fit by re-weighting: blocks far off, most of all on the side to which features pull, lose their say. Writes the final weights back. */
+export function robustFit(model: SmoothModel, values: BlockValues, precision: Float64Array, pull: Pull, rounds: number): SmoothFit | null {
+  const stated = values.weight.slice();
+  const fitted = new Float64Array(stated.length);
+  let fit = solveSmooth(normalSums(model, values, precision.length), precision);
+  for (let round = 0; round < rounds && fit; round++) {
+    evaluateRows(fitted, model.centre, model.columns, fit.coefficients);
+    const extra = extraVariance(values.value, fitted, stated);
+    for (let b = 0; b < stated.length; b++) {
+      if (!(stated[b]! > 0)) continue;
+      const variance = 1 / stated[b]! + extra;
+      const d = (values.value[b]! - fitted[b]!) / Math.sqrt(variance);
+      const reach = pull === 'neither' ? 5 : d < 0 === (pull === 'dips') ? 4 : 6;
+      const u = (d / reach) ** 2;
+      values.weight[b] = u < 1 ? (1 - u) ** 2 / variance : 0;
+    }
+    fit = solveSmooth(normalSums(model, values, precision.length), precision);
+  }
+  return fit;
+}
+
+/** Variance that the blocks scatter beyond what their noise explains, from the median of squares. */
+function extraVariance(value: Float64Array, fitted: Float64Array, weight: Float64Array): number {
+  const squares = new Float64Array(value.length);
+  const variances = new Float64Array(value.length);
+  let m = 0;
+  for (let b = 0; b < value.length; b++) {
+    if (!(weight[b]! > 0)) continue;
+    squares[m] = Math.abs(value[b]! - fitted[b]!);
+    variances[m++] = 1 / weight[b]!;
+  }
+  if (!m) return 0;
+  return Math.max(0, (MAD_TO_SIGMA * medianInPlace(squares, m)) ** 2 - medianInPlace(variances, m));
+}
+
+/** The size and smoothness of the response that make the block values most probable. */
+export function likeliestResponse(model: SmoothModel, values: BlockValues, before: ResponsePrior, free: Freedom): ResponsePrior {
+  const trial = { value: values.value, weight: values.weight.slice() };
+  if (!robustFit(model, trial, precisionOf(model, before, free), 'neither', 1)) return before;
+  const sums = normalSums(model, trial);
+  let best = -Infinity;
+  let chosen = before;
+  for (const response of free.response) {
+    const fit = solveSmooth(sums, precisionOf(model, response, free));
+    if (!fit || fit.lnEvidence <= best) continue;
+    best = fit.lnEvidence;
+    chosen = response;
+  }
+  return chosen;
+}
