@@ -33,14 +33,28 @@ const TYPICAL_RESPONSE = 0.01;
 const RESPONSE_SPREAD = 0.8;
 const AMPLITUDES = [0.003, 0.006, 0.012, 0.024, 0.048];
 const SMOOTHNESS = [2.5, 4, 7];
+/** The middle one of these fifteen, for quick looks. */
+const MIDDLING = 7;
 
 /** One belief about the response, with the solved system that removes it. */
 interface Nuisance {
   readonly lnPrior: number;
   readonly factor: Float64Array;
   readonly extinction: Float64Array;
-  /** quadratic form of the extinction column with itself */
+  /** quadratic form of the extinction column with itself: the inverse variance of A_V at a known temperature */
   readonly q2: number;
+}
+
+/** Trial extinctions as one nuisance sees them: each cell of width w widens the error of A_V by w / sqrt(12). */
+interface Cells {
+  readonly av: Float64Array;
+  readonly inverseSpread: Float64Array;
+  readonly lnMass: Float64Array;
+}
+
+function cellsFor({ av, width, mass }: ExtinctionBelief, { q2 }: Nuisance): Cells {
+  const inverseSpread = width.map((w) => 1 / (1 / q2 + (w * w) / 12));
+  return { av, inverseSpread, lnMass: mass.map((m, j) => Math.log(m) + 0.5 * Math.log(inverseSpread[j]! / q2)) };
 }
 
 /**
@@ -57,11 +71,18 @@ export function judgeTemperature(
 ): TemperatureBelief {
   const problem = makeProblem(blocks, model, values, known);
   const lnLow = Math.log(wienPeakNm(blocks.edgeNm[blocks.count]!) / COOLEST);
-  const dustless = (u: number) => lnProbability(problem, NO_EXTINCTION, u, true);
-  const unreddened = highestPoint(dustless, lnLow);
-  const peak = extinction.av.length > 1 ? highestPoint((u) => lnProbability(problem, extinction, u, true), lnLow) : unreddened;
-  const grid = gridAround((u) => lnProbability(problem, extinction, u, false), peak, widthAt(dustless, unreddened), lnLow);
-  return { ...summarise(grid), unreddenedK: Math.exp(unreddened), av: meanExtinction(problem, extinction, grid) };
+  const middling = [problem.nuisances[MIDDLING]!];
+  const probability = (belief: ExtinctionBelief, nuisances: readonly Nuisance[]) => {
+    const cells = nuisances.map((nuisance) => cellsFor(belief, nuisance));
+    return (u: number) => lnProbability(problem, nuisances, cells, u);
+  };
+  const dustless = probability(NO_EXTINCTION, middling);
+  const unreddened = highestPoint(dustless, lnLow, LN_HIGH);
+  // dust only ever hides a hotter body
+  const peak = extinction.av.length > 1 ? highestPoint(probability(extinction, middling), unreddened - 0.1, unreddened + 3) : unreddened;
+  const grid = gridAround(probability(extinction, problem.nuisances), peak, widthAt(dustless, unreddened), lnLow);
+  const av = meanExtinction(extinction, (one) => probability(one, middling), grid);
+  return { ...summarise(grid), unreddenedK: Math.exp(unreddened), av };
 }
 
 const NO_EXTINCTION: ExtinctionBelief = { av: Float64Array.of(0), width: Float64Array.of(0), mass: Float64Array.of(1) };
@@ -171,8 +192,8 @@ function project({ rows, weight, columns: m }: Problem, y: Float64Array, right: 
 /** Responses less probable than the best by more than this, in ln, are not averaged in. */
 const NEGLIGIBLE = 12;
 
-/** ln probability of ln T = `u`, up to a constant; `quick` takes one middling response only. */
-function lnProbability(problem: Problem, belief: ExtinctionBelief, u: number, quick: boolean): number {
+/** ln probability of ln T = `u`, up to a constant, averaged over the nuisances and their cells of extinction. */
+function lnProbability(problem: Problem, nuisances: readonly Nuisance[], cells: readonly Cells[], u: number): number {
   const { z, right, solved, weight, value, centreNm, extinctionColumn, columns: m } = problem;
   const temperature = Math.exp(u);
   let zz = 0;
@@ -187,8 +208,8 @@ function lnProbability(problem: Problem, belief: ExtinctionBelief, u: number, qu
   project(problem, z, right);
   let best = -Infinity;
   let sum = 0;
-  const nuisances = quick ? [problem.nuisances[7]!] : problem.nuisances;
-  for (const { lnPrior, factor, extinction, q2 } of nuisances) {
+  for (let h = 0; h < nuisances.length; h++) {
+    const { lnPrior, factor, extinction, q2 } = nuisances[h]!;
     solved.set(right);
     choleskySolve(factor, m, solved);
     let q0 = zz;
@@ -197,8 +218,9 @@ function lnProbability(problem: Problem, belief: ExtinctionBelief, u: number, qu
       q0 -= right[j]! * solved[j]!;
       q1 -= right[j]! * extinction[j]!;
     }
-    if (lnPrior - 0.5 * (q0 - (q1 * q1) / q2) < best - NEGLIGIBLE) continue;
-    const lnP = lnPrior + overExtinction(belief, q0, q1, q2);
+    const lnBest = lnPrior - 0.5 * (q0 - (q1 * q1) / q2);
+    if (lnBest < best - NEGLIGIBLE) continue;
+    const lnP = lnBest + overExtinction(cells[h]!, q1 / q2);
     if (lnP > best) {
       sum = sum * Math.exp(best - lnP) + 1;
       best = lnP;
@@ -207,29 +229,28 @@ function lnProbability(problem: Problem, belief: ExtinctionBelief, u: number, qu
   return best + Math.log(sum);
 }
 
-/** ln of the sum over trial extinctions of mass times exp(-(q0 - 2 A q1 + A^2 q2) / 2), each cell spread over its width. */
-function overExtinction({ av, width, mass }: ExtinctionBelief, q0: number, q1: number, q2: number): number {
-  const centre = q1 / q2;
-  const variance = 1 / q2;
+/** ln of the sum over cells of mass times exp(-(A - centre)^2 / 2 spread): `centre` is the extinction that suits this temperature best. */
+function overExtinction({ av, inverseSpread, lnMass }: Cells, centre: number): number {
   let best = -Infinity;
   let sum = 0;
   for (let j = 0; j < av.length; j++) {
-    const spread = variance + (width[j]! * width[j]!) / 12;
-    const lnTerm = -0.5 * ((av[j]! - centre) ** 2 / spread + Math.log(spread / variance)) + Math.log(mass[j]!);
+    const d = av[j]! - centre;
+    const lnTerm = lnMass[j]! - 0.5 * d * d * inverseSpread[j]!;
+    if (lnTerm < best - NEGLIGIBLE) continue;
     if (lnTerm > best) {
       sum = sum * Math.exp(best - lnTerm) + 1;
       best = lnTerm;
     } else sum += Math.exp(lnTerm - best);
   }
-  return best + Math.log(sum) - 0.5 * (q0 - q1 * centre);
+  return best + Math.log(sum);
 }
 
 /** Highest point of a function of ln T: the best of a coarse grid, then parabolas. */
-function highestPoint(f: (u: number) => number, lnLow: number): number {
+function highestPoint(f: (u: number) => number, from: number, to: number): number {
   const step = 0.12;
-  let at = lnLow;
+  let at = from;
   let best = -Infinity;
-  for (let u = lnLow; u <= LN_HIGH; u += step) {
+  for (let u = from; u <= to; u += step) {
     const p = f(u);
     if (p > best) {
       best = p;
@@ -255,9 +276,10 @@ interface Grid {
   readonly probability: Float64Array;
 }
 
-/** Points of the final grid stand half a standard deviation apart, as it is for a known extinction, and between these in ln T. */
+/** Points of the final grid stand this part of a standard deviation apart, as it is for a known extinction, and between these in ln T. */
+const STEP_SIGMAS = 0.8;
 const FINEST_STEP = 0.003;
-const COARSEST_STEP = 0.04;
+const COARSEST_STEP = 0.05;
 const MOST_POINTS = 160;
 /** The grid ends where ln probability has dropped by this much. */
 const DEPTH = 9;
@@ -265,7 +287,7 @@ const DEPTH = 9;
 /** Evenly spaced points about the peak, out to where the probability has dropped to nothing or the range ends. */
 function gridAround(f: (u: number) => number, peak: number, width: number, lnLow: number): Grid {
   const top = f(peak);
-  const step = Math.max(FINEST_STEP, Math.min(COARSEST_STEP, width / 2));
+  const step = Math.max(FINEST_STEP, Math.min(COARSEST_STEP, STEP_SIGMAS * width));
   const reach = (sign: number) => {
     let d = 4 * step;
     while (f(peak + sign * d) > top - DEPTH && peak + sign * d > lnLow && peak + sign * d < LN_HIGH) d *= 1.7;
@@ -291,37 +313,35 @@ function widthAt(f: (u: number) => number, peak: number): number {
 
 function summarise({ u, probability }: Grid) {
   let lnT = 0;
-  let square = 0;
-  let below = 0;
-  let lnLow = u[0]!;
-  let lnHigh = u[u.length - 1]!;
-  let found = 0;
-  for (let i = 0; i < u.length; i++) {
-    lnT += probability[i]! * u[i]!;
-    square += probability[i]! * u[i]! * u[i]!;
-    below += probability[i]!;
-    if (found === 0 && below > 0.025) {
-      lnLow = u[i]!;
-      found = 1;
-    }
-    if (found === 1 && below > 0.975) {
-      lnHigh = u[i]!;
-      found = 2;
-    }
-  }
-  return { lnT, lnSigma: Math.sqrt(Math.max(0, square - lnT * lnT)), lnLow, lnHigh };
+  for (let i = 0; i < u.length; i++) lnT += probability[i]! * u[i]!;
+  let variance = 0;
+  for (let i = 0; i < u.length; i++) variance += probability[i]! * (u[i]! - lnT) ** 2;
+  return { lnT, lnSigma: Math.sqrt(variance), lnLow: quantileOf(u, probability, 0.025), lnHigh: quantileOf(u, probability, 0.975) };
 }
 
-function meanExtinction(problem: Problem, belief: ExtinctionBelief, { u, probability }: Grid): number {
+/** Each point's probability is taken to be spread evenly over the step about it. */
+function quantileOf(u: Float64Array, probability: Float64Array, p: number): number {
+  let below = 0;
+  let i = 0;
+  while (i < u.length - 1 && below + probability[i]! < p) below += probability[i++]!;
+  const step = u.length > 1 ? u[1]! - u[0]! : 0;
+  return u[i]! + step * ((p - below) / (probability[i]! || 1) - 0.5);
+}
+
+/** Mean visual extinction at the most probable temperature. */
+function meanExtinction(belief: ExtinctionBelief, probability: (one: ExtinctionBelief) => (u: number) => number, grid: Grid): number {
+  const peak = grid.u[grid.probability.reduce((best, p, i, all) => (p > all[best]! ? i : best), 0)]!;
+  const cell = (a: Float64Array, j: number) => a.subarray(j, j + 1);
+  const lnP = belief.av.map((_, j) =>
+    probability({ av: cell(belief.av, j), width: cell(belief.width, j), mass: cell(belief.mass, j) })(peak),
+  );
+  const best = lnP.reduce((a, b) => Math.max(a, b), -Infinity);
   let top = 0;
   let all = 0;
-  const peak = u[probability.indexOf(Math.max(...probability))]!;
-  const offset = lnProbability(problem, belief, peak, true);
-  for (let j = 0; j < belief.av.length; j++) {
-    const one = { av: belief.av.subarray(j, j + 1), width: belief.width.subarray(j, j + 1), mass: belief.mass.subarray(j, j + 1) };
-    const p = Math.exp(lnProbability(problem, one, peak, true) - offset);
+  lnP.forEach((l, j) => {
+    const p = Math.exp(l - best);
     top += p * belief.av[j]!;
     all += p;
-  }
+  });
   return top / all;
 }
