@@ -33,12 +33,15 @@ export function detectDialect(lines: readonly string[]): Dialect {
     if (share(delimiter) < 0.8) continue;
     const dialect = { delimiter, decimalComma: false };
     const rows = lines.map((line) => splitLine(line, dialect));
-    if (delimiter === '\t' && !rows.some((row) => row.filter((cell) => cell !== '').length > 1)) continue;
+    if (delimiter === '\t' && (!rows.some((row) => row.filter((cell) => cell !== '').length > 1) || rows.some(holdsTwoNumbers))) continue;
     return { delimiter, decimalComma: hasDecimalCommas(rows) };
   }
   if (share(',') < 0.5) return { delimiter: ' ', decimalComma: false };
   return blanksBetweenDecimalCommas(bare) ? { delimiter: ' ', decimalComma: true } : { delimiter: ',', decimalComma: false };
 }
+
+/** Blanks stand between numbers of one cell: then the tabs are blanks too. */
+const holdsTwoNumbers = (row: readonly string[]): boolean => row.some((cell) => /^[+-]?[\d.,]+(?:[eE][+-]?\d+)? +[+-]?[\d.,]+/.test(cell));
 
 /** '400,0000   2,269e-13': between blanks only whole numbers and decimals with a comma, at least two in a line. */
 function blanksBetweenDecimalCommas(lines: readonly string[]): boolean {
