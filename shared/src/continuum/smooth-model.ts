@@ -29,22 +29,29 @@ export interface SmoothModel {
   readonly baseEdge: Float64Array;
   readonly centre: Float64Array;
   readonly edge: Float64Array;
+  readonly orders: number;
+  /** Chebyshev polynomials 0 to 2 * orders in the block middles, row by row */
+  readonly series: Float64Array;
 }
 
 /** `slopeTemperatureK`: where the column of ln T, if it is to be used, takes the slope of the Planck curve. */
 export function makeSmoothModel(blocks: Blocks, base: (nm: number) => number, slopeTemperatureK: number, orders: number): SmoothModel {
   const columns = RESPONSE + orders;
+  const series = new Float64Array(blocks.count * (2 * orders + 1));
+  for (let b = 0; b < blocks.count; b++) {
+    chebyshevInto(series, scaledPosition(b + 0.5, blocks.count), 2 * orders, b * (2 * orders + 1));
+  }
   const rows = (nm: Float64Array, shift: number) => {
     const out = new Float64Array(nm.length * columns);
-    const series = new Float64Array(orders + 1);
+    const polynomials = new Float64Array(orders + 1);
     for (let b = 0; b < nm.length; b++) {
       const at = b * columns;
       out[at + SCALE] = 1;
       out[at + LN_T] = planckSlope(nm[b]!, slopeTemperatureK);
       out[at + AV] = -LN_PER_MAG * extinctionCurve(nm[b]!);
       out[at + JUMP] = -1 / (1 + Math.exp((nm[b]! - JUMP_MIDDLE_NM) / JUMP_WIDTH_NM));
-      chebyshevInto(series, scaledPosition(b + shift, blocks.count), orders);
-      for (let k = 1; k <= orders; k++) out[at + RESPONSE + k - 1] = series[k]!;
+      chebyshevInto(polynomials, scaledPosition(b + shift, blocks.count), orders);
+      for (let k = 1; k <= orders; k++) out[at + RESPONSE + k - 1] = polynomials[k]!;
     }
     return out;
   };
@@ -55,6 +62,8 @@ export function makeSmoothModel(blocks: Blocks, base: (nm: number) => number, sl
     baseEdge: blocks.edgeNm.map(base),
     centre: rows(blocks.centreNm, 0.5),
     edge: rows(blocks.edgeNm, 0),
+    orders,
+    series,
   };
 }
 
@@ -85,31 +94,62 @@ export function precisionOf(
   return precision;
 }
 
-/** Sums over blocks that a weighted fit of the model needs: normal matrix, right side, weighted sum of squares. */
+/** What a weighted fit of the model needs: lower triangle of the normal matrix, right side, weighted sum of squares. */
 export interface NormalSums {
   readonly matrix: Float64Array;
   readonly right: Float64Array;
   readonly squares: number;
 }
 
-/** Sums over the blocks for the first `m` columns of the model. */
+/**
+ * Sums over the blocks for the first `m` columns of the model. Products of Chebyshev polynomials are sums of two of them,
+ * T_j T_k = (T_(j+k) + T_|j-k|) / 2, so that their part of the matrix needs one sum per order only.
+ */
 export function normalSums(model: SmoothModel, { value, weight }: BlockValues, m = model.columns): NormalSums {
+  const orders = m - RESPONSE;
+  const { series, centre, columns } = model;
+  const width = 2 * model.orders + 1;
+  const moments = new Float64Array(2 * orders + 1);
+  const withValue = new Float64Array(orders + 1);
+  const special = model.hasJump ? [LN_T, AV, JUMP] : [LN_T, AV];
+  const mixed = special.map(() => new Float64Array(orders + 1));
   const matrix = new Float64Array(m * m);
   const right = new Float64Array(m);
-  const rows = model.centre;
   let squares = 0;
-  for (let b = 0, at = 0; b < value.length; b++, at += model.columns) {
+  for (let b = 0; b < value.length; b++) {
     const w = weight[b]!;
     if (!(w > 0)) continue;
     const y = value[b]!;
+    const at = b * width;
     squares += w * y * y;
-    for (let j = 0, to = 0; j < m; j++, to += m) {
-      const wj = w * rows[at + j]!;
-      right[j] = right[j]! + wj * y;
-      for (let k = 0; k <= j; k++) matrix[to + k] = matrix[to + k]! + wj * rows[at + k]!;
+    addScaled(moments, series, at, w);
+    addScaled(withValue, series, at, w * y);
+    for (let s = 0; s < special.length; s++) {
+      const column = special[s]!;
+      const wc = w * centre[b * columns + column]!;
+      addScaled(mixed[s]!, series, at, wc);
+      right[column] = right[column]! + wc * y;
+      for (let t = 0; t <= s; t++) {
+        const other = special[t]!;
+        matrix[column * m + other] = matrix[column * m + other]! + wc * centre[b * columns + other]!;
+      }
     }
   }
+  // order k of the series stands in column 0 (k = 0, the scale) or RESPONSE + k - 1
+  const columnOf = (k: number) => (k ? RESPONSE + k - 1 : SCALE);
+  for (let k = 0; k <= orders; k++) {
+    const row = columnOf(k);
+    right[row] = withValue[k]!;
+    for (let j = 0; j <= k; j++) matrix[row * m + columnOf(j)] = 0.5 * (moments[k + j]! + moments[k - j]!);
+    special.forEach((column, s) => {
+      matrix[Math.max(row, column) * m + Math.min(row, column)] = mixed[s]![k]!;
+    });
+  }
   return { matrix, right, squares };
+}
+
+function addScaled(sums: Float64Array, series: Float64Array, at: number, factor: number) {
+  for (let k = 0; k < sums.length; k++) sums[k] = sums[k]! + factor * series[at + k]!;
 }
 
 export interface SmoothFit {

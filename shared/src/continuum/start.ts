@@ -81,12 +81,13 @@ const HOTTEST_K = 80_000;
 /** Best Planck curve on a grid of temperatures in 10 % steps; `known` is the ln of all that is known beside it. */
 export function startPlanck(blocks: Blocks, { value, weight }: BlockValues, known: (nm: number) => number): PlanckStart {
   const y = value.map((v, b) => v - known(blocks.centreNm[b]!));
+  const stride = Math.max(1, blocks.count >> 6);
   let best: PlanckStart = { temperatureK: 6000, rms: Infinity };
   for (let t = wienPeakNm(blocks.edgeNm[blocks.count]!) / COOLEST; t < HOTTEST_K; t *= 1.1) {
     let m = 0;
     let s1 = 0;
     let s2 = 0;
-    for (let b = 0; b < blocks.count; b++) {
+    for (let b = 0; b < blocks.count; b += stride) {
       if (!(weight[b]! > 0)) continue;
       const d = y[b]! - lnPlanck(blocks.centreNm[b]!, t);
       m++;
