@@ -68,23 +68,32 @@ export interface Rejection {
 export function rejectBoxes(space: Workspace, rule: Rejection) {
   const { residual, inverseSigma, rejected, cellSum, cellCount } = space;
   const n = residual.length;
+  const low = -rule.sigmasDown;
+  const high = rule.sigmasUp;
   for (let i = 0; i < n; i++) {
     const z = residual[i]!;
-    const out = inverseSigma[i] === 0 || z > rule.sigmasUp || z < -rule.sigmasDown;
-    rejected[i] = out ? 1 : 0;
-    cellSum[i] = out ? 0 : z;
-    cellCount[i] = out ? 0 : 1;
+    const kept = inverseSigma[i] !== 0 && z >= low && z <= high;
+    rejected[i] = kept ? 0 : 1;
+    cellSum[i] = kept ? z : 0;
+    cellCount[i] = kept ? 1 : 0;
   }
   for (let size = 1, cells = n; cells >= 4; size *= 2) {
     rejectPairs(space, cells, size, rule);
-    const merged = (cells + 1) >> 1;
-    for (let c = 0; c < merged; c++) {
-      const second = 2 * c + 1 < cells;
-      cellSum[c] = cellSum[2 * c]! + (second ? cellSum[2 * c + 1]! : 0);
-      cellCount[c] = cellCount[2 * c]! + (second ? cellCount[2 * c + 1]! : 0);
-    }
-    cells = merged;
+    cells = mergePairs(cellSum, cellCount, cells);
   }
+}
+
+function mergePairs(cellSum: Float64Array, cellCount: Int32Array, cells: number): number {
+  const whole = cells >> 1;
+  for (let c = 0; c < whole; c++) {
+    cellSum[c] = cellSum[2 * c]! + cellSum[2 * c + 1]!;
+    cellCount[c] = cellCount[2 * c]! + cellCount[2 * c + 1]!;
+  }
+  if (cells & 1) {
+    cellSum[whole] = cellSum[cells - 1]!;
+    cellCount[whole] = cellCount[cells - 1]!;
+  }
+  return (cells + 1) >> 1;
 }
 
 /** Rejects neighbouring cells whose common mean is significant; a box of which less than a third is left is not judged. */
@@ -93,23 +102,31 @@ function rejectPairs(space: Workspace, cells: number, size: number, rule: Reject
   const n = level.length;
   const down = rule.sigmasDown * rule.sigmasDown * rule.inflation;
   const up = rule.sigmasUp * rule.sigmasUp * rule.inflation;
+  const either = Math.min(down, up);
   const fewest = (2 * size) / 3;
-  let any = false;
+  let first = cells;
+  let last = 0;
+  let sum = cellSum[0]!;
+  let count = cellCount[0]!;
   for (let c = 0; c + 1 < cells; c++) {
-    const m = cellCount[c]! + cellCount[c + 1]!;
-    const s = cellSum[c]! + cellSum[c + 1]!;
-    if (s * s < (s < 0 ? down : up) * m || m < fewest) continue;
+    const nextSum = cellSum[c + 1]!;
+    const nextCount = cellCount[c + 1]!;
+    const m = count + nextCount;
+    const s = sum + nextSum;
+    sum = nextSum;
+    count = nextCount;
+    if (s * s < either * m || s * s < (s < 0 ? down : up) * m || m < fewest) continue;
     const middle = Math.min(n - 1, (c + 1) * size);
     if (Math.abs(s) < (s < 0 ? rule.floorDown : rule.floorUp) * m * Math.abs(level[middle]!) * inverseSigma[middle]!) continue;
     cellHit[c] = cellHit[c + 1] = 1;
-    any = true;
+    if (c < first) first = c;
+    last = c + 1;
   }
-  if (!any) return;
-  for (let c = 0; c < cells; c++) {
-    if (!cellHit[c]) continue;
+  for (let c = first; c <= last; c++) {
+    if (cellHit[c] === 0) continue;
     cellHit[c] = 0;
     cellSum[c] = 0;
     cellCount[c] = 0;
-    rejected.fill(1, c * size, Math.min(n, (c + 1) * size));
+    for (let i = c * size, end = Math.min(n, i + size); i < end; i++) rejected[i] = 1;
   }
 }
