@@ -55,7 +55,7 @@ export function detect(input: DetectionInput): Detection {
     if (round === 0) {
       rotation = findRotation(model, resolvingPower);
       if (rotation) applyRotation(model.components, rotation);
-      trySpecialShapes(model, resolvingPower);
+      trySpecialShapes(model, resolvingPower, rotation);
       model.refresh();
       gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
       dropNeedless(model, threshold, tolerantOf(model), rotation);
@@ -63,7 +63,7 @@ export function detect(input: DetectionInput): Detection {
     }
     model.refresh();
   }
-  trySpecialShapes(model, resolvingPower);
+  trySpecialShapes(model, resolvingPower, rotation);
   model.refresh();
   gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
   dropNeedless(model, threshold, tolerantOf(model), rotation);

@@ -32,46 +32,72 @@ export interface Rotation {
  * @returns null when no width is shared or Gaussians serve as well
  */
 export function findRotation(model: LineModel, resolvingPower: number): Rotation | null {
-  const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > BROAD * c.centre && c.amplitude / c.sigmaAmplitude > 12);
-  const width = commonWidth(broad);
-  if (width === null) return null;
-  const members = broad.filter((c) => near(c.fwhm / c.centre, width, SAME_WIDTH)).sort((a, b) => b.amplitude / b.sigmaAmplitude - a.amplitude / a.sigmaAmplitude);
-  const shape = rotationOfWidth(width * resolvingPower);
-  let gain = 0;
-  for (const c of members.slice(0, 40)) {
-    const others = model.overlapping([c]);
-    const range = rangeOf([withCore(c, GAUSSIAN)]);
-    const [g, r] = [GAUSSIAN, shape].map((core) => fitBlend(model.data, [withCore(c, core)], others, model.limitsAt(c.centre), range).chi2);
-    gain += g! - r!;
+  const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > RESOLVED * c.centre && c.amplitude / c.sigmaAmplitude > 12);
+  let best: Rotation | null = null;
+  let bestGain = ROTATION_GAIN;
+  for (const width of commonWidths(broad)) {
+    const members = broad.filter((c) => near(c.fwhm / c.centre, width, SAME_WIDTH)).sort((a, b) => b.amplitude / b.sigmaAmplitude - a.amplitude / a.sigmaAmplitude);
+    const shapes = [GAUSSIAN, ...BLURS.map((b) => rotationOfBlur(b * blurOf(width * resolvingPower)))];
+    const gains = new Float64Array(shapes.length);
+    const widths = shapes.map((): number[] => []);
+    for (const c of members.slice(0, MEMBERS)) {
+      const others = model.overlapping([c]).filter((o) => !isShredOf(o, c));
+      const range = [c.centre - WHOLE * c.fwhm, c.centre + WHOLE * c.fwhm] as const;
+      let gaussian = 0;
+      shapes.forEach((core, k) => {
+        const trial = withCore(c, core);
+        const { chi2 } = fitBlend(model.data, [trial], others, model.limitsAt(c.centre), range);
+        if (k === 0) gaussian = chi2;
+        gains[k]! += Math.max(-ONE_VOTE, Math.min(ONE_VOTE, gaussian - chi2));
+        widths[k]!.push(trial.fwhm / trial.centre);
+      });
+    }
+    for (let k = 1; k < shapes.length; k++) {
+      const gain = gains[k]!;
+      if (gain > bestGain) [best, bestGain] = [{ relativeWidth: widths[k]!.sort((a, b) => a - b)[widths[k]!.length >> 1]!, shape: shapes[k]! }, gain];
+    }
   }
-  return gain > 0 ? { relativeWidth: width, shape } : null;
+  return best;
 }
+
+const WHOLE = 1.8; // FWHM to either side: the corners of a rotation profile lie beyond those of a Gaussian cut too narrow
+const RESOLVED = 2.5; // resolution elements: below, a rotation profile looks like a Gaussian
+const ONE_VOTE = 30; // chi-square: hydrogen, shaped otherwise, must not outvote the rest
+const ROTATION_GAIN = 30; // chi-square over Gaussians, all members together
+const MEMBERS = 30;
+/** The star's own broadening blurs its rotation profile beyond what the instrument does: tried in these ratios. */
+const BLURS = [1, 1.8, 3];
+
+/** Whether a weak component may be the corner of a profile whose shape was not right yet. */
+const isShredOf = (o: Component, c: Component): boolean => o.kind === c.kind && Math.abs(o.centre - c.centre) < 1.3 * c.fwhm && o.amplitude * o.area < 0.35 * c.amplitude * c.area;
 
 const near = (a: number, b: number, factor: number): boolean => a < b * factor && a > b / factor;
 
-/** The relative width that most components share, weighed by their strength; null when fewer than three agree. */
-function commonWidth(broad: readonly Component[]): number | null {
-  let best = 0;
-  let at: number | null = null;
-  for (const c of broad) {
-    const alike = broad.filter((d) => near(d.fwhm / d.centre, c.fwhm / c.centre, 1.15));
-    const weight = alike.reduce((sum, d) => sum + Math.sqrt(d.amplitude / d.sigmaAmplitude), 0);
-    if (alike.length >= 3 && weight > best) {
-      best = weight;
-      at = alike.map((d) => d.fwhm / d.centre).sort((x, y) => x - y)[alike.length >> 1]!;
-    }
-  }
-  return at;
+/** Relative widths that several components share, most supported first, at most three. */
+function commonWidths(broad: readonly Component[]): number[] {
+  const ranked = broad
+    .map((c) => {
+      const alike = broad.filter((d) => near(d.fwhm / d.centre, c.fwhm / c.centre, 1.15));
+      const weight = alike.reduce((sum, d) => sum + Math.sqrt(d.amplitude / d.sigmaAmplitude), 0);
+      return { width: alike.map((d) => d.fwhm / d.centre).sort((x, y) => x - y)[alike.length >> 1]!, count: alike.length, weight };
+    })
+    .filter((r) => r.count >= 3)
+    .sort((a, b) => b.weight - a.weight || a.width - b.width);
+  const out: number[] = [];
+  for (const r of ranked) if (out.length < 3 && out.every((w) => !near(w, r.width, 1.4))) out.push(r.width);
+  return out;
 }
 
-const shapes = new Map<number, Shape>();
+const made = new Map<number, Shape>();
 
-/** Rotation profile for a FWHM given in resolution elements; made once per blur. */
-function rotationOfWidth(elements: number): Shape {
-  const blur = 1 / 2.3548 / (0.62 * Math.max(elements, 1));
-  const key = Math.max(1, Math.min(20, Math.round(blur * 20)));
-  let shape = shapes.get(key);
-  if (!shape) shapes.set(key, (shape = rotationShape(key / 20)));
+/** Instrumental sigma in units of v sin i for a FWHM given in resolution elements; a rotation profile's FWHM is 1.6 v sin i. */
+const blurOf = (elements: number): number => 1.6 / 2.3548 / Math.max(elements, 1);
+
+/** Rotation profile of a blur, to two significant digits; made once. */
+function rotationOfBlur(blur: number): Shape {
+  const key = Math.round(Math.log(Math.min(Math.max(blur, 0.02), 1)) * 8);
+  let shape = made.get(key);
+  if (!shape) made.set(key, (shape = rotationShape(Math.exp(key / 8))));
   return shape;
 }
 
@@ -84,11 +110,11 @@ const DAMPED_SIGNIFICANCE = 40;
 const DAMPED_GAIN = 40; // chi-square asked of two more parameters, with room for imperfect profiles
 
 /** Broad strong dips get the shape the data prefer: Gaussian, rotation-broadened, or saturated with damping wings. */
-export function trySpecialShapes(model: LineModel, resolvingPower: number): void {
+export function trySpecialShapes(model: LineModel, resolvingPower: number, rotation: Rotation | null): void {
   const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > BROAD * c.centre && c.amplitude / c.sigmaAmplitude > SPECIAL_SIGNIFICANCE);
   for (const c of broad.sort((a, b) => b.amplitude * b.fwhm - a.amplitude * a.fwhm || a.centre - b.centre)) {
     const others = model.overlapping([c]);
-    const trials = [withCore(c, GAUSSIAN), withCore(c, rotationOfWidth((c.fwhm * resolvingPower) / c.centre))];
+    const trials = [withCore(c, GAUSSIAN), withCore(c, rotation && near(c.fwhm / c.centre, rotation.relativeWidth, 1.8) ? rotation.shape : rotationOfBlur(blurOf((c.fwhm * resolvingPower) / c.centre)))];
     if (c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE) trials.push(c.damped ? { ...c } : asDamped(c));
     const range = [c.centre - 4 * c.fwhm, c.centre + 4 * c.fwhm] as const;
     let best: Component | null = null;
