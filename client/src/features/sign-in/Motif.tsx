@@ -12,7 +12,7 @@ const SCATTER_PX = [-9, -1, 4, 1, -6, 7, -3, 2, -7, 8, 0, -1, 9, -4, 5];
 
 /** A star's light and the threads of the cloud before it, gathered by one ring over the name. Decoration: the page works without it. */
 export function Motif() {
-  const columns = useMemo(motifColumns, []);
+  const columns = useMemo(() => motifColumns(), []);
   const { ref, width } = useElementSize();
   const { scheme } = usePalette();
   const middle = width / 2;

@@ -1,0 +1,85 @@
+import type { Medium, ReadingCorrections, TargetSummary } from '@foreveil/shared';
+import { count, fileSize } from '../../lib/number.js';
+import type { OffendingLine } from '../../workers/offending-lines.js';
+import { NO_CORRECTIONS } from './entries.js';
+import { verdict, type Entry, type TargetChoice } from './entry.js';
+import { FileFace } from './FileFace.js';
+import { ReadingFacts } from './ReadingFacts.js';
+import classes from './upload.module.css';
+import { VerdictColumn } from './VerdictColumn.js';
+import { withCorrection } from './words.js';
+
+export interface BandActs {
+  onCorrect: (corrections: ReadingCorrections) => void;
+  onRetarget: (target: TargetChoice) => void;
+  onRelabel: (label: string) => void;
+  onSend: () => void;
+  onCancel: () => void;
+  onLeaveOut: () => void;
+}
+
+interface Props extends BandActs {
+  programmeId: string;
+  targets: readonly TargetSummary[];
+  entry: Entry;
+}
+
+/** One file: what it looks like, what was read and how that is known, what to do. Once sent, nothing of it can be changed here. */
+export function FileBand({ programmeId, targets, entry, ...acts }: Props) {
+  const { file, read, corrections } = entry;
+  const state = verdict(entry);
+  const closed = state === 'sending' || state === 'added' || state === 'duplicate';
+  return (
+    <section className={classes.file} aria-label={file.name} data-state={state} aria-busy={state === 'reading' || undefined}>
+      <div className={classes.face}>
+        <h2>
+          {file.name} <span>{sizeWords(entry)}</span>
+        </h2>
+        {read?.ok ? <FileFace face={read.face} name={file.name} /> : <NoCurve words={read ? 'no curve: it cannot be read' : 'reading'} />}
+      </div>
+      {read?.ok ? (
+        <fieldset disabled={closed} className={classes.fields}>
+          <legend className={classes.unseen}>What was read of {file.name}</legend>
+          <ReadingFacts entry={entry} reading={read.reading} targets={targets} {...acts} />
+        </fieldset>
+      ) : (
+        <Offending lines={read?.lines ?? []} />
+      )}
+      <VerdictColumn
+        programmeId={programmeId}
+        entry={entry}
+        {...acts}
+        onMedium={(medium: Medium) => acts.onCorrect(withCorrection(corrections, 'medium', medium))}
+        onTakeBack={() => acts.onCorrect(NO_CORRECTIONS)}
+      />
+    </section>
+  );
+}
+
+function sizeWords({ file, read }: Entry): string {
+  const points = read?.ok ? `, ${count(read.reading.points)} ${read.reading.format === 'text' ? 'rows' : 'samples'}` : '';
+  return fileSize(file.size) + points;
+}
+
+const NoCurve = ({ words }: { words: string }) => (
+  <div className={classes.noCurve} aria-hidden="true">
+    {words}
+  </div>
+);
+
+/** The lines of a text file around the one at fault. */
+function Offending({ lines }: { lines: readonly OffendingLine[] }) {
+  if (!lines.length) return <div />;
+  return (
+    <pre className={classes.offending} tabIndex={0} aria-label="The lines at fault">
+      {lines.map(({ number, text, atFault }) => (
+        <span key={number} data-fault={atFault || undefined}>
+          <i>{number}</i>
+          {text}
+          {atFault ? '   ← here' : ''}
+          {'\n'}
+        </span>
+      ))}
+    </pre>
+  );
+}

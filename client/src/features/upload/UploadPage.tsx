@@ -1,0 +1,117 @@
+import { Dropzone } from '@mantine/dropzone';
+import { roleAllows } from '@foreveil/shared';
+import { IconDownload } from '@tabler/icons-react';
+import { useSuspenseQueries } from '@tanstack/react-query';
+import { useEffect, useRef } from 'react';
+import { useParams, useSearchParams } from 'react-router-dom';
+import { PageHead } from '../../components/PageHead.js';
+import { roleReason } from '../../components/RoleButton.js';
+import { takeHandedOver } from '../../lib/handed-over.js';
+import { count, counted } from '../../lib/number.js';
+import { programmeQueries, targetQueries } from '../../lib/queries/programmes.js';
+import { verdict, type Entry, type Verdict } from './entry.js';
+import { FileBand } from './FileBand.js';
+import { SendBar } from './SendBar.js';
+import classes from './upload.module.css';
+import { useLeaveGuard } from './useLeaveGuard.js';
+import { useUploads } from './useUploads.js';
+
+export function UploadPage() {
+  const { programmeId = '' } = useParams();
+  const [search] = useSearchParams();
+  const [{ data: programme }, { data: targets }] = useSuspenseQueries({
+    queries: [programmeQueries.detail(programmeId), targetQueries.list(programmeId)],
+  });
+  const page = targets.find(({ id }) => id === search.get('target'));
+  const uploads = useUploads({ programmeId, targets, page });
+  const { entries, add } = uploads;
+  useLeaveGuard(entries);
+  useFilesHandedOver(add);
+  const number = (state: Verdict) => entries.filter((entry) => verdict(entry) === state).length;
+
+  if (!roleAllows(programme.role, 'analyst')) {
+    return <PageHead title="Add spectra" sub={roleReason(programme.role, 'analyst')} />;
+  }
+  return (
+    <>
+      <PageHead
+        title={titleOf(entries)}
+        tab={`Add spectra · ${programme.name}`}
+        simulated={programme.simulated}
+        sub="Correct what was read wrongly; the original bytes are kept as they are"
+        facts={
+          entries.length
+            ? [
+                { label: 'Ready', value: count(number('ready')) },
+                { label: 'Need an answer', value: count(number('asks')) },
+                { label: 'Cannot be read', value: count(number('unreadable')) },
+                { label: 'Added', value: count(number('added')) },
+              ]
+            : []
+        }
+      />
+      <FileDrop empty={!entries.length} onFiles={add} />
+      {entries.map((entry) => (
+        <FileBand
+          key={entry.id}
+          programmeId={programmeId}
+          targets={targets}
+          entry={entry}
+          onCorrect={(corrections) => uploads.correct(entry, corrections)}
+          onRetarget={(target) => uploads.retarget(entry, target)}
+          onRelabel={(label) => uploads.relabel(entry, label)}
+          onSend={() => uploads.send(entry)}
+          onCancel={() => uploads.cancel(entry)}
+          onLeaveOut={() => uploads.leaveOut(entry)}
+        />
+      ))}
+      {entries.length > 0 && (
+        <SendBar
+          entries={entries}
+          programmeName={programme.name}
+          onSend={(ready) => ready.forEach(uploads.send)}
+          onCancel={(busy) => busy.forEach(uploads.cancel)}
+        />
+      )}
+    </>
+  );
+}
+
+function titleOf(entries: readonly Entry[]): string {
+  if (!entries.length) return 'Add spectra';
+  const added = entries.filter((entry) => verdict(entry) === 'added').length;
+  return added
+    ? `${count(added)} of ${counted(entries.length, 'file')} added`
+    : `${counted(entries.length, 'file')} read here, nothing sent yet`;
+}
+
+/** Files dropped on the page one came from. */
+function useFilesHandedOver(add: (files: readonly File[]) => void) {
+  const take = useRef(add);
+  useEffect(() => {
+    const files = takeHandedOver();
+    if (files.length) take.current(files);
+  }, []);
+}
+
+function FileDrop({ empty, onFiles }: { empty: boolean; onFiles: (files: File[]) => void }) {
+  return (
+    <div className={classes.dropFrame}>
+      <Dropzone
+        onDrop={onFiles}
+        className={classes.drop}
+        data-empty={empty || undefined}
+        aria-label="Drop spectrum files here, or choose them"
+        inputProps={{ 'aria-label': 'Spectrum files' }}
+      >
+        <div className={classes.dropText}>
+          <IconDownload size={18} aria-hidden />
+          <span>
+            Drop {empty ? 'reduced spectra' : 'more files'} here, or <u>choose</u>. FITS tables and images, CSV, plain text, gzip; to 200 MB
+            each.
+          </span>
+        </div>
+      </Dropzone>
+    </div>
+  );
+}
