@@ -13,7 +13,12 @@ export const WIEN_NM_K = 2.897771955185172e6;
 /** Planck's B_lambda in erg s^-1 cm^-2 Angstrom^-1 sr^-1; 0 where it underflows. */
 export function planck(wavelengthNm: number, temperatureK: number): number {
   const l2 = wavelengthNm * wavelengthNm;
-  return C1 / (l2 * l2 * wavelengthNm * Math.expm1(C2_NM_K / (wavelengthNm * temperatureK)));
+  const front = C1 / (l2 * l2 * wavelengthNm);
+  const x = C2_NM_K / (wavelengthNm * temperatureK);
+  if (x < 700) return front / Math.expm1(x);
+  // exp(x) would overflow while the whole need not underflow
+  const half = Math.exp(-0.5 * x);
+  return front * half * half;
 }
 
 /** Natural log of B_lambda in the unit of `planck`; finite also where B_lambda itself underflows. */

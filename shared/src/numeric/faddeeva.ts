@@ -119,3 +119,20 @@ export function voigtProfile(x: number, sigma: number, gamma: number): number {
   const scale = 1 / (sigma * Math.SQRT2);
   return voigtH(gamma * scale, x * scale) * scale * INVERSE_SQRT_PI;
 }
+
+/** Full width at half maximum of the Voigt profile, to rounding; same unit as its arguments. */
+export function voigtFwhm(sigma: number, gamma: number): number {
+  if (sigma === 0) return 2 * gamma;
+  const scale = 1 / (sigma * Math.SQRT2);
+  const a = gamma * scale;
+  const half = 0.5 * voigtH(a, 0);
+  // start: Olivero & Longbothum 1977, JQSRT 17, 233 (2e-4); then Newton with w'(z) = -2 z w(z) + 2 i / sqrt(pi)
+  const gaussian = 2 * Math.sqrt(2 * Math.LN2) * sigma;
+  let u = 0.5 * scale * (0.5346 * 2 * gamma + Math.sqrt(0.2166 * 4 * gamma * gamma + gaussian * gaussian));
+  for (let step = 0; step < 4; step++) {
+    faddeevaInto(held, u, a);
+    const slope = 2 * (a * held[1]! - u * held[0]!);
+    u -= (held[0]! - half) / slope;
+  }
+  return (2 * u) / scale;
+}
