@@ -1,6 +1,7 @@
 import { fitContinuum, type ContinuumFit } from './continuum/index.js';
 import { detect, type Detection } from './detection/index.js';
 import { coverageOf, type Coverage, type FeatureView } from './identify/views.js';
+import { cautionsOf } from './identify/cautions.js';
 import { describe } from './identify/describe.js';
 import { identify } from './identify/identify.js';
 import { measure, type Measured } from './identify/measure.js';
@@ -48,8 +49,8 @@ export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSe
     logContinuum: logContinuumOf(spectrum, continuum),
   });
   onProgress('identification', 0.9);
-  const told = describe(identified, measured, views, coverage);
-  return {
+  const told = describe(identified, measured, views, coverage, list);
+  const result = {
     programVersion: PROGRAM_VERSION,
     lineListName: list.name,
     lineListVersion: list.version,
@@ -65,8 +66,8 @@ export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSe
     continuum: continuum.summary,
     systems: told.systems,
     features: told.features,
-    cautions: told.cautions,
   };
+  return { ...result, cautions: cautionsOf(result) };
 }
 
 /** Flux over continuum; samples that must not count get weight 0. */

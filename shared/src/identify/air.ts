@@ -44,7 +44,7 @@ function airModel(lines: readonly Line[], kind: 'dip' | 'peak', velocity: number
     priorSigma: kind === 'peak' ? 1 : 0.45,
     presence: 0.8,
   }));
-  return { id: 'air', family: 'telluric', kind, velocity, velocitySigma: sigma, significance: 0, fwhmV: coverage.elementV, species };
+  return { id: kind === 'dip' ? 'air' : 'sky', family: 'telluric', kind, velocity, velocitySigma: sigma, significance: 0, fwhmV: coverage.elementV, species };
 }
 
 /** The Earth's air, if its lines show: its velocity is what the frame took off. */

@@ -35,8 +35,9 @@ export function findClouds(lines: readonly Line[], scene: Scene, rangeV: number)
       if (w && (!best || w.evidence > best.evidence)) best = w;
     }
     if (!best) break;
+    const apart = (v: number): boolean => found.every((c) => Math.abs(c.velocity - v) > 0.7 * scene.coverage.elementV);
     const settled = settle(best, `cloud${n + 1}`, atoms, withoutUsed(scene, used));
-    if (settled.weighed.evidence < ENOUGH + Math.log(spaced.length + 1) || settled.members < 2) break;
+    if (settled.weighed.evidence < ENOUGH + Math.log(spaced.length + 1) || settled.members < 2 || !apart(settled.weighed.system.velocity)) break;
     found.push({ ...settled.weighed.system, significance: Math.sqrt(2 * settled.weighed.evidence) });
     for (const s of settled.weighed.states) for (const t of s.terms) if (t.feature && t.outcome === 'seen' && s.logEvidence > 1) used.add(t.feature);
   }

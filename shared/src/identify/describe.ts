@@ -1,67 +1,79 @@
+import type { Line, LineList } from '../linelist/index.js';
 import type { Candidate, Feature, VelocitySystem } from './analysis.js';
+import { argue, companionsOf, sumUp } from './evidence.js';
 import type { Identified } from './identify.js';
 import type { Measured } from './measure.js';
+import type { FeatureRanking, Ranked } from './rank.js';
 import { velocityOf, type Coverage, type FeatureView } from './views.js';
 
 export interface Told {
   readonly systems: VelocitySystem[];
   readonly features: Feature[];
-  readonly cautions: string[];
 }
 
+const ARGUED = 4; // candidates that get their companions listed; the argument is given for all
+
 /** Turns the inner result into what is stored and shown. */
-export function describe(identified: Identified, measured: readonly Measured[], views: readonly FeatureView[], coverage: Coverage): Told {
-  const features = measured.map((m, i): Feature => {
-    const c = m.component;
-    const ranking = identified.rankings[i]!;
-    return {
-      index: i,
-      kind: c.kind,
-      wavelengthNm: c.centre,
-      wavelengthSigmaNm: c.sigmaCentre,
-      equivalentWidthNm: m.equivalentWidthNm,
-      equivalentWidthSigmaNm: m.equivalentWidthSigmaNm,
-      directEquivalentWidthNm: m.directNm,
-      directEquivalentWidthSigmaNm: m.directSigmaNm,
-      fwhmNm: c.fwhm,
-      fwhmSigmaNm: c.fwhm * c.sigmaLogFwhm,
-      depth: c.kind === 'dip' ? c.amplitude : -c.amplitude,
-      depthSigma: c.sigmaAmplitude,
-      shape: c.damped ? 'voigt' : c.core.name === 'rotation' ? 'rotation' : 'gaussian',
-      significance: m.significance,
-      snr: m.snr,
-      flags: m.flags,
-      candidates: ranking.ranked.map((r): Candidate => {
-        const e = r.contender.expected;
-        const sigmaV = views[i]!.sigmaV;
-        return {
-          lineId: e.line.id,
-          species: e.line.species,
-          restNm: e.line.wavelengthNm,
-          family: r.contender.system.family,
-          systemId: r.contender.system.id,
-          velocityKmPerS: velocityOf(c.centre, e.line.wavelengthNm),
-          velocitySigmaKmPerS: sigmaV,
-          probability: r.probability,
-          share: r.share,
-          expectedNm: 10 ** r.contender.logW,
-          expectedSigmaNm: 10 ** r.contender.logW * r.contender.sigmaLog * Math.LN10,
-          evidence: [],
-          companions: [],
-          sentence: '',
-        };
-      }),
-      unidentifiedProbability: ranking.unidentified,
-    };
-  });
-  const systems = identified.systems.map(({ system }): VelocitySystem => ({
-    id: system.id,
-    family: system.family,
-    velocityKmPerS: system.velocity,
-    velocitySigmaKmPerS: system.velocitySigma,
-    significance: system.significance,
-    members: features.filter((f) => f.candidates[0]?.systemId === system.id).length,
-    fwhmKmPerS: Math.max(system.fwhmV, coverage.elementV),
-  }));
-  return { systems, features, cautions: [] };
+export function describe(identified: Identified, measured: readonly Measured[], views: readonly FeatureView[], coverage: Coverage, list: LineList): Told {
+  const uncovered = list.lines.filter((l) => l.wavelengthNm < coverage.fromNm || l.wavelengthNm > coverage.toNm);
+  const features = measured.map((m, i) => featureOf(m, views[i]!, identified.rankings[i]!, coverage, uncovered));
+  const systems = identified.systems
+    .map(({ system }): VelocitySystem => ({
+      id: system.id,
+      family: system.family,
+      velocityKmPerS: system.velocity,
+      velocitySigmaKmPerS: system.velocitySigma,
+      significance: system.significance,
+      members: features.filter((f) => f.candidates[0]?.systemId === system.id && f.candidates[0].probability > f.unidentifiedProbability).length,
+      fwhmKmPerS: Math.max(system.fwhmV, coverage.elementV),
+    }))
+    .filter((s) => s.members > 0);
+  return { systems, features };
+}
+
+function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: readonly Line[]): Feature {
+  const c = m.component;
+  return {
+    index: view.index,
+    kind: c.kind,
+    wavelengthNm: c.centre,
+    wavelengthSigmaNm: c.sigmaCentre,
+    equivalentWidthNm: m.equivalentWidthNm,
+    equivalentWidthSigmaNm: m.equivalentWidthSigmaNm,
+    directEquivalentWidthNm: m.directNm,
+    directEquivalentWidthSigmaNm: m.directSigmaNm,
+    fwhmNm: c.fwhm,
+    fwhmSigmaNm: c.fwhm * c.sigmaLogFwhm,
+    depth: c.kind === 'dip' ? c.amplitude : -c.amplitude,
+    depthSigma: c.sigmaAmplitude,
+    shape: c.damped ? 'voigt' : c.core.name === 'rotation' ? 'rotation' : 'gaussian',
+    significance: m.significance,
+    snr: m.snr,
+    flags: m.flags,
+    candidates: ranking.ranked.map((r, k) => candidateOf(r, k < ARGUED, view, ranking, coverage, uncovered)),
+    unidentifiedProbability: ranking.unidentified,
+  };
+}
+
+function candidateOf(r: Ranked, full: boolean, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: readonly Line[]): Candidate {
+  const c = r.contender;
+  const { line } = c.expected;
+  const evidence = argue(r, view, ranking.contenders, ranking.unidentified, coverage);
+  const companions = full ? companionsOf(c, view, uncovered) : [];
+  return {
+    lineId: line.id,
+    species: line.species,
+    restNm: line.wavelengthNm,
+    family: c.system.family,
+    systemId: c.system.id,
+    velocityKmPerS: velocityOf(view.wavelength, line.wavelengthNm),
+    velocitySigmaKmPerS: view.sigmaV,
+    probability: r.probability,
+    share: r.share,
+    expectedNm: 10 ** c.logW,
+    expectedSigmaNm: 10 ** c.logW * c.sigmaLog * Math.LN10,
+    evidence,
+    companions,
+    sentence: sumUp(c, evidence, companions, r.probability),
+  };
 }

@@ -38,7 +38,8 @@ export function findNebulae(lines: readonly Line[], scene: Scene, rangeV: number
     let best: { weighed: Weighed; members: number } | null = null;
     for (const p of places) {
       const tried = settle(`nebula${n + 1}`, chosen, logI, p.velocity, left, logContinuum);
-      if (tried && (!best || tried.weighed.evidence > best.weighed.evidence)) best = tried;
+      if (!tried || found.some((s) => Math.abs(s.velocity - tried.weighed.system.velocity) < 0.7 * scene.coverage.elementV)) continue;
+      if (!best || tried.weighed.evidence > best.weighed.evidence) best = tried;
     }
     if (!best || best.members < 2 || best.weighed.evidence < ENOUGH + Math.log(places.length)) break;
     found.push({ ...best.weighed.system, significance: Math.sqrt(2 * best.weighed.evidence) });

@@ -35,6 +35,8 @@ export interface Ranked {
 
 export interface FeatureRanking {
   readonly ranked: readonly Ranked[];
+  /** every line that was weighed, listed or not */
+  readonly contenders: readonly Contender[];
   readonly unidentified: number;
 }
 
@@ -105,7 +107,7 @@ function partOf(e: Expected, f: FeatureView, features: readonly FeatureView[]): 
  * how well they give the feature's equivalent width, centroid and width, and counted. "Unidentified" competes as a flat density.
  */
 export function rankFeature(f: FeatureView, contenders: readonly Contender[], coverage: Coverage, background: Background): FeatureRanking {
-  if (contenders.length === 0) return { ranked: [], unidentified: 1 };
+  if (contenders.length === 0) return { ranked: [], contenders, unidentified: 1 };
   const n = contenders.length;
   const lnW = f.logW * LN10;
   const sigmaLn = Math.hypot(f.sigmaLogW * LN10, MODEL_ERROR);
@@ -143,12 +145,12 @@ export function rankFeature(f: FeatureView, contenders: readonly Contender[], co
   }
   const flat = (UNLISTED_SHARE * background.rate(f.kind, f.wavelength) * idle) / (LOG_W_SPREAD * LN10 * Math.sqrt(2 * Math.PI));
   const norm = total + flat;
-  if (!(norm > 0)) return { ranked: [], unidentified: 1 };
+  if (!(norm > 0)) return { ranked: [], contenders, unidentified: 1 };
   const ranked = contenders
     .map((contender, k) => ({ contender, probability: wins[k]! / norm, share: total > 0 ? shares[k]! / total : 0 }))
     .filter((r) => r.probability >= LEAST)
     .sort((a, b) => b.probability - a.probability || b.share - a.share || a.contender.expected.wavelength - b.contender.expected.wavelength);
-  return { ranked: ranked.slice(0, MOST), unidentified: flat / norm };
+  return { ranked: ranked.slice(0, MOST), contenders, unidentified: flat / norm };
 }
 
 /** A fixed low-discrepancy number in (0, 1) a draw and contender: the golden ratio's multiples, shifted a contender. */
