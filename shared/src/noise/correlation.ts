@@ -1,24 +1,30 @@
-import { crowdedValue, sigmaOfSquares, squaredDifferences, windowScatter, type Samples } from './windows.js';
+import { crowdedValue, DIFFERENCE_SCATTER, sigmaOfSquares, squaredDifferences, windowScatter, type Samples } from './windows.js';
 
 /** Noise is taken to be independent over this many samples and more. */
 const FAR_LAG = 12;
 /** Lags at which what is left is the shape of lines: resampling seldom ties samples together so far. */
 const LINE_LAGS = [3, 4, 5, 6];
-/** Shares of lines in the scatter below this are not told from chance. */
-const SMALLEST_SHARE = 0.1;
 /** Correlations below this never matter; chance alone makes them about 2.1 over the root of the number of samples. */
 const SMALLEST = 0.12;
 const CHANCE = 2.8 * 2.1;
+/** Ties weaker than this come from interpolation between neighbours. */
+const WEAK = 0.3;
 /** A smooth part larger than this is no remnant of lines: the noise itself was smoothed. */
 const LARGEST_LINE_SHARE = 0.7;
+/** The crowd of windows is this much wider than chance alone makes it, at most, where there are windows free of lines. */
+const FREE_OF_LINES = 2;
 
 export interface NoiseStructure {
-  /** scatter of neighbouring samples in the windows with the fewest lines, in units of the presumed sigma */
-  readonly near: number;
-  /** 1 sigma of the noise, correlated or not, in units of the presumed sigma; NaN when there is too little to measure */
+  /** scatter of direct neighbours, in units of the presumed sigma: lines hardly raise it, correlation lowers it; NaN: too few samples */
+  readonly neighbours: number;
+  /** 1 sigma of the noise, correlated or not, in units of the presumed sigma */
   readonly sigma: number;
   /** autocorrelation at lags 0, 1, 2, ...: [1] for white noise */
   readonly correlation: readonly number[];
+  /** there are windows without lines, so that sigma and correlation are those of the noise alone */
+  readonly lineFree: boolean;
+  /** the scatter is smooth through and through: smoothed noise or, where windows free of lines are lacking, nothing but lines */
+  readonly smooth: boolean;
 }
 
 /**
@@ -26,10 +32,10 @@ export interface NoiseStructure {
  * For noise of autocorrelation r the variance of 2 f(i) - f(i-k) - f(i+k) is (6 - 8 r(k) + 2 r(2k)) sigma^2.
  */
 export function noiseStructure(samples: Samples, length: number, stride: number): NoiseStructure {
-  const near = crowdedValue(windowScatter(samples, length, stride, 2)).mean;
+  const neighbours = crowdedValue(windowScatter(samples, length, stride, 1)).mean;
   const farWindows = windowScatter(samples, length, stride, FAR_LAG);
   const far = crowdedValue(farWindows);
-  if (!(far.mean > 0) || !(near > 0)) return { near, sigma: near, correlation: [1] };
+  if (!(far.mean > 0) || !(neighbours > 0)) return { neighbours, sigma: neighbours, correlation: [1], lineFree: false, smooth: false };
   const quiet: number[] = [];
   farWindows.forEach((s, w) => {
     if (s >= far.low && s <= far.high) quiet.push(w * stride * length);
@@ -43,29 +49,34 @@ export function noiseStructure(samples: Samples, length: number, stride: number)
   const plateau = varianceAt(FAR_LAG);
   const seen = new Float64Array(2 * FAR_LAG);
   for (let lag = FAR_LAG - 1; lag > 0; lag--) seen[lag] = 0.75 * (1 + seen[2 * lag]! / 3 - varianceAt(lag) / plateau);
-  const { correlation, lineShare } = withoutLines(seen, Math.max(SMALLEST, CHANCE / Math.sqrt(quiet.length * length)));
-  return { near, sigma: Math.sqrt(plateau * (1 - lineShare)), correlation };
+  const { correlation, lineShare, smooth } = withoutLines(seen, Math.max(SMALLEST, CHANCE / Math.sqrt(quiet.length * length)));
+  // 35 % of normal deviates lie within 0.91 sigma about the middle
+  const spread = Math.log(far.high / far.low) / ((0.91 * DIFFERENCE_SCATTER) / Math.sqrt(length));
+  return { neighbours, sigma: Math.sqrt(plateau * (1 - lineShare)), correlation, lineFree: spread < FREE_OF_LINES, smooth };
 }
 
 /**
  * Lines left in the windows look like a smooth part of the autocorrelation that declines slowly from less than 1: it is extrapolated
  * from the larger lags and taken away. What is left is the noise: 1 at lag 0 and soon nothing.
  */
-function withoutLines(seen: Float64Array, smallest: number): { correlation: readonly number[]; lineShare: number } {
+function withoutLines(seen: Float64Array, smallest: number): { correlation: readonly number[]; lineShare: number; smooth: boolean } {
   const { intercept, slope } = straightLine(LINE_LAGS, seen);
-  const share = slope < 0 ? intercept : Math.max(0, mean(LINE_LAGS.map((lag) => seen[lag]!)));
+  const share = Math.max(0, slope < 0 ? intercept : mean(LINE_LAGS.map((lag) => seen[lag]!)));
   const tied = (part: number) => {
     const out = [1];
     for (let lag = 1; lag < FAR_LAG; lag++) {
       const r = (seen[lag]! - Math.max(0, part + (part ? Math.min(0, slope) * lag : 0))) / (1 - part);
       if (r < smallest) break;
-      out.push(r);
+      out.push(Math.min(1, r));
     }
     return out;
   };
-  if (share < SMALLEST_SHARE || share > LARGEST_LINE_SHARE) return { correlation: tied(0), lineShare: 0 };
-  const correlation = tied(share);
-  return correlation.some((r) => r > 1) ? { correlation: tied(0), lineShare: 0 } : { correlation, lineShare: share };
+  if (share > LARGEST_LINE_SHARE) return { correlation: tied(0), lineShare: 0, smooth: true };
+  const all = tied(share);
+  // weak ties that reach to the second neighbour almost undiminished are lines; resampling makes weak ones between direct neighbours only
+  const correlation = all.length > 2 && all[1]! < WEAK && all[2]! > 0.5 * all[1]! ? [1] : all;
+  // samples tied more closely than the rest allows: the smooth part was the noise's own
+  return correlation[1]! > 0.97 ? { correlation: tied(0), lineShare: 0, smooth: true } : { correlation, lineShare: share, smooth: false };
 }
 
 const mean = (values: readonly number[]) => values.reduce((sum, v) => sum + v, 0) / values.length;

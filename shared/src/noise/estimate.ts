@@ -1,14 +1,17 @@
 import { quantileInPlace, selectInPlace } from '../numeric/select.js';
 import type { Spectrum } from '../spectrum/index.js';
-import { noiseStructure } from './correlation.js';
+import { noiseStructure, type NoiseStructure } from './correlation.js';
 import type { NoiseModel } from './model.js';
-import { DIFFERENCE_SCATTER, windowScatter, type Samples } from './windows.js';
+import { DIFFERENCE_SCATTER, windowScatter } from './windows.js';
 
 const LONGEST_WINDOW = 128;
+const SHORTEST_WINDOW = 24;
 /** Windows looked at for the check of a stated sigma: some 15 000 samples, enough for a few per cent. */
 const CHECKED_WINDOWS = 120;
 /** A stated sigma is left alone when the scatter agrees with it within this factor. */
 const TOLERATED = 1.2;
+/** Lines everywhere raise the scatter of direct neighbours by this much, rarely more. */
+const LARGEST_BY_LINES = 1.5;
 /** Neighbouring windows that are smoothed together, to each side, and the quantile of them that is taken: lines only raise a window. */
 const NEIGHBOURS = 7;
 const LOW_QUANTILE = 0.35;
@@ -16,33 +19,60 @@ const LOW_QUANTILE_SIGMA = 0.385;
 
 /**
  * Noise of a spectrum: the stated sigma, checked against the scatter in the windows with the fewest lines and rescaled only when clearly
- * off; or, when none is stated, an estimate from the scatter in windows (DER_SNR, Stoehr et al. 2008), smoothed along the spectrum.
- * Correlation from sample to sample is measured in both cases. With a continuum `level` the scatter is that of flux over level.
+ * off; or, when none is stated, an estimate from the scatter in windows (after DER_SNR, Stoehr et al. 2008, with neighbours at distance
+ * 1, less touched by lines), smoothed along the spectrum. Correlation from sample to sample is measured in both cases.
+ * With a continuum `level` the scatter is that of flux over level.
  */
 export function estimateNoise(spectrum: Spectrum, level?: Float64Array): NoiseModel {
-  const n = spectrum.flux.length;
-  const length = Math.max(24, Math.min(LONGEST_WINDOW, n >> 6));
-  if (spectrum.sigma) return checked(spectrum, filled(spectrum.sigma, spectrum.bad, smallestSigma(spectrum)), length);
+  const { flux, bad } = spectrum;
+  const value = level ? flux.map((f, i) => f / level[i]!) : flux;
+  const scale = (sigma: Float64Array) => (level ? sigma.map((s, i) => s / Math.abs(level[i]!)) : sigma);
+  const length = Math.max(SHORTEST_WINDOW, Math.min(LONGEST_WINDOW, flux.length >> 6));
+  const structureFor = (sigma: Float64Array) => noiseStructure({ value, sigma, bad }, length, strideFor(flux.length, length));
   const floor = smallestSigma(spectrum);
-  const value = level ? spectrum.flux.map((f, i) => f / level[i]!) : spectrum.flux;
-  const scatter = windowScatter({ value, sigma: null, bad: spectrum.bad }, length, 1, 2);
-  const smooth = smoothed(scatter, length);
-  const sigma = interpolated(smooth, length, n);
-  const structure = noiseStructure({ value, sigma, bad: spectrum.bad }, length, strideFor(n, length));
-  const { correlation } = structure;
-  const factor = correlation.length > 1 && structure.near > 0 ? structure.sigma / structure.near : 1;
-  for (let i = 0; i < n; i++) sigma[i] = Math.max(floor, sigma[i]! * factor * (level ? Math.abs(level[i]!) : 1)) || floor;
+  if (spectrum.sigma) {
+    const sigma = filled(spectrum.sigma, bad, floor);
+    return checked(sigma, structureFor(scale(sigma)));
+  }
+  const perWindow = smoothed(windowScatter({ value, sigma: null, bad }, length, 1, 1), length);
+  const white = interpolated(perWindow, length, flux.length);
+  const { correlation, factor } = estimated(structureFor(white));
+  const sigma = white.map((s, i) => Math.max(floor, s * factor * (level ? Math.abs(level[i]!) : 1)) || floor);
   return { sigma, how: 'estimated', correlation, rescale: 1 };
 }
 
 const strideFor = (n: number, length: number) => Math.max(1, Math.floor(n / length / CHECKED_WINDOWS));
 
-function checked(spectrum: Spectrum, sigma: Float64Array, length: number): NoiseModel {
-  const samples: Samples = { value: spectrum.flux, sigma, bad: spectrum.bad };
-  const { correlation, sigma: ratio } = noiseStructure(samples, length, strideFor(sigma.length, length));
-  const clearlyOff = ratio > TOLERATED || (ratio > 0 && ratio < 1 / TOLERATED);
-  if (!clearlyOff) return { sigma, how: 'stated', correlation, rescale: 1 };
-  return { sigma: sigma.map((s) => s * ratio), how: 'stated_rescaled', correlation, rescale: ratio };
+/** A stated sigma against what the scatter tells. */
+function checked(sigma: Float64Array, structure: NoiseStructure): NoiseModel {
+  const { correlation, factor } = verdict(structure);
+  if (factor === 1) return { sigma, how: 'stated', correlation, rescale: 1 };
+  return { sigma: sigma.map((s) => s * factor), how: 'stated_rescaled', correlation, rescale: factor };
+}
+
+interface Tied {
+  readonly correlation: readonly number[];
+  readonly factor: number;
+}
+const AS_STATED: Tied = { correlation: [1], factor: 1 };
+
+function verdict({ neighbours, sigma, correlation, lineFree }: NoiseStructure): Tied {
+  if (!(neighbours > 0)) return AS_STATED;
+  const white = correlation.length === 1;
+  const measured = white ? Math.min(neighbours, sigma) : sigma;
+  if (lineFree) return { correlation, factor: clearlyOff(measured) ? measured : 1 };
+  // lines everywhere: neighbours that scatter as stated, or a little more, agree with white noise of the stated size
+  if (neighbours > LARGEST_BY_LINES) return { correlation: [1], factor: neighbours };
+  if (neighbours > 1 / TOLERATED) return AS_STATED;
+  return { correlation, factor: measured < 1 / TOLERATED ? measured : 1 };
+}
+
+const clearlyOff = (ratio: number) => ratio > TOLERATED || ratio < 1 / TOLERATED;
+
+/** The same for a sigma that was itself taken from neighbours as if the noise were white. */
+function estimated({ sigma, correlation, lineFree, smooth }: NoiseStructure): Tied {
+  if (correlation.length === 1 || !(sigma > 0) || (smooth && !lineFree)) return AS_STATED;
+  return { correlation, factor: Math.max(1, sigma) };
 }
 
 /** What stands for the noise of a spectrum that shows none: far below any real one, yet not 0. */
