@@ -2,7 +2,7 @@ import type { FluxKind, Spectrum } from '../spectrum/index.js';
 import { AIR_STARTS_NM, hzPerNm, toVacuumInPlace, type Medium } from '../units/index.js';
 import { cgsPerHz } from './columns/flux-unit.js';
 import { assumed, notStated } from './columns/medium.js';
-import { checkAxis, checkFlux, checkSize } from './checks.js';
+import { checkAxis, checkFlux, checkSize, isWavelength } from './checks.js';
 import { mergeDuplicates, type Columns } from './merge.js';
 import { ascendingOrder } from './order.js';
 import type { RawSpectrum } from './raw.js';
@@ -17,7 +17,6 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
   checkAxis(raw, warnings);
   checkFlux(raw, warnings);
   const sigma = sigmaOf(raw, warnings);
-  const { bad, maskUsed } = badSamples(raw, sigma, warnings);
   const { firstNm, lastNm } = ends(raw.axis.nm);
   const medium = settleMedium(raw, corrections, Math.max(firstNm, lastNm));
   toVacuumInPlace(raw.axis.nm, medium.value);
@@ -26,6 +25,7 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
     : raw.fluxKind;
   const convertedFluxUnit = fluxKind.value === 'per_frequency' ? perWavelength(raw, sigma, warnings) : undefined;
 
+  const { bad, maskUsed } = badSamples(raw, sigma, warnings);
   const index = ascendingOrder(raw, bad, warnings);
   const columns = mergeDuplicates(inOrder({ wavelength: raw.axis.nm, flux: raw.flux, sigma, bad }, index), raw.axisName, warnings);
   checkSize(columns.wavelength.length, warnings);
@@ -78,8 +78,7 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
 }
 
 function ends(nm: Float64Array): { firstNm: number; lastNm: number } {
-  const usable = (value: number) => value > 0 && value < Infinity;
-  return { firstNm: nm.find(usable) ?? NaN, lastNm: nm.findLast(usable) ?? NaN };
+  return { firstNm: nm.find(isWavelength) ?? NaN, lastNm: nm.findLast(isWavelength) ?? NaN };
 }
 
 function settleMedium(raw: RawSpectrum, corrections: ReadingCorrections, longestNm: number): Stated<Medium> {
@@ -98,7 +97,8 @@ function perWavelength(raw: RawSpectrum, sigma: Float64Array | null, warnings: R
   const nm = raw.axis.nm;
   for (let i = 0; i < flux.length; i++) {
     const factor = scale * hzPerNm(nm[i]!);
-    flux[i] = flux[i]! * factor;
+    const converted = flux[i]! * factor;
+    flux[i] = Number.isFinite(converted) ? converted : NaN;
     if (sigma) sigma[i] = sigma[i]! * factor;
   }
   const unit = perHz === null ? '' : 'erg s-1 cm-2 Angstrom-1';

@@ -2,6 +2,11 @@ import type { RawSpectrum } from './raw.js';
 import { quoted, refuse } from './refusal.js';
 import type { ReadWarning } from './types.js';
 
+/** From gamma rays to the longest radio waves, nm: what lies beyond is no wavelength, and squares of it may overflow. */
+const SHORTEST_NM = 1e-6;
+const LONGEST_NM = 1e14;
+export const isWavelength = (nm: number): boolean => nm > SHORTEST_NM && nm < LONGEST_NM;
+
 /** Wavelengths must be positive; samples without one are left out with a warning. */
 export function checkAxis(raw: RawSpectrum, warnings: ReadWarning[]) {
   const nm = raw.axis.nm;
@@ -20,7 +25,7 @@ export function checkAxis(raw: RawSpectrum, warnings: ReadWarning[]) {
         },
       );
     }
-    if (value > 0 && value < Infinity) usable++;
+    if (isWavelength(value)) usable++;
     else if (firstUnusable < 0) firstUnusable = i;
   }
   if (usable === 0 && nm.length > 0)
@@ -35,7 +40,7 @@ export function checkAxis(raw: RawSpectrum, warnings: ReadWarning[]) {
   const at = raw.locate(firstUnusable);
   warnings.push({
     code: 'no_wavelength',
-    sentence: `${nm.length - usable} samples were left out because their wavelength is missing, zero or not finite (first at ${at.words}).`,
+    sentence: `${nm.length - usable} samples were left out because their wavelength is missing, zero, out of range or not finite (first at ${at.words}).`,
     row: at.row,
     column: raw.axisName,
   });

@@ -39,17 +39,21 @@ export function mergeDuplicates(columns: Columns, axisName: string, warnings: Re
 
 const sampleAt = (c: Columns, i: number) => ({ flux: c.flux[i]!, sigma: c.sigma ? c.sigma[i]! : NaN, bad: c.bad[i]! });
 
+/** The samples `from` to `to` as one; weights relative to the best sigma, so that no sigma is too small to be squared. */
 function meanOf(c: Columns, from: number, to: number) {
+  let best = Infinity;
+  for (let i = from; i < to; i++) if (!c.bad[i] && c.sigma) best = Math.min(best, c.sigma[i]!);
   let weights = 0;
   let sum = 0;
   for (let i = from; i < to; i++) {
     if (c.bad[i]) continue;
-    const weight = c.sigma ? 1 / c.sigma[i]! ** 2 : 1;
+    const weight = c.sigma ? (best / c.sigma[i]!) ** 2 : 1;
     weights += weight;
     sum += weight * c.flux[i]!;
   }
-  if (!(weights > 0)) return sampleAt(c, from);
-  return { flux: sum / weights, sigma: c.sigma ? 1 / Math.sqrt(weights) : NaN, bad: 0 };
+  const flux = sum / weights;
+  if (!Number.isFinite(flux)) return { flux: NaN, sigma: NaN, bad: 1 };
+  return { flux, sigma: c.sigma ? best / Math.sqrt(weights) : NaN, bad: 0 };
 }
 
 /** Equal wavelengths beyond this share mean that the column is not what it seems. */

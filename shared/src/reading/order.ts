@@ -1,3 +1,4 @@
+import { isWavelength } from './checks.js';
 import type { RawSpectrum } from './raw.js';
 import type { ReadWarning } from './types.js';
 
@@ -30,7 +31,7 @@ export function ascendingOrder(raw: RawSpectrum, bad: Uint8Array, warnings: Read
 function usableIndices(nm: Float64Array): Uint32Array {
   const index = new Uint32Array(nm.length);
   let n = 0;
-  for (let i = 0; i < nm.length; i++) if (nm[i]! > 0 && nm[i]! < Infinity) index[n++] = i;
+  for (let i = 0; i < nm.length; i++) if (isWavelength(nm[i]!)) index[n++] = i;
   return index.slice(0, n);
 }
 

@@ -1,7 +1,7 @@
 import type { ReadContext } from '../context.js';
 import { latin1 } from '../platform.js';
 import { quoted, refuse } from '../refusal.js';
-import { fieldCount } from './binary-table.js';
+import { tableSize } from './binary-table.js';
 import type { Hdu } from './hdu.js';
 import type { ColumnValues, FitsTable } from './table.js';
 
@@ -20,11 +20,10 @@ interface AsciiColumn {
 /** An ASCII table, FITS Standard 4.0 section 7.2. */
 export function asciiTable(hdu: Hdu, { bytes, limits }: ReadContext): FitsTable {
   const { header } = hdu;
-  const rowBytes = header.count('NAXIS1');
-  const rows = header.count('NAXIS2');
+  const { rowBytes, rows, fields } = tableSize(hdu);
   if (rows > limits.points)
     refuse('too_large', `${hdu.place} has ${rows} rows, more than the limit of ${limits.points}: too large for one spectrum.`);
-  const columns = Array.from({ length: fieldCount(hdu) }, (_, i) => asciiColumn(hdu, i + 1, rowBytes));
+  const columns = Array.from({ length: fields }, (_, i) => asciiColumn(hdu, i + 1, rowBytes));
   return {
     rows,
     infos: columns.map((column, i) => ({

@@ -16,9 +16,7 @@ const NUMERIC = new Set('L X B I J K E D'.split(' '));
 /** A binary table, FITS Standard 4.0 section 7.3. The structure is checked as a whole before any value is read. */
 export function binaryTable(hdu: Hdu, { bytes, limits }: ReadContext): FitsTable {
   const { header } = hdu;
-  const rowBytes = header.count('NAXIS1');
-  const rows = header.count('NAXIS2');
-  const fields = fieldCount(hdu);
+  const { rowBytes, rows, fields } = tableSize(hdu);
   const columns: BinaryColumn[] = [];
   let offset = 0;
   for (let n = 1; n <= fields; n++) {
@@ -48,11 +46,17 @@ export function binaryTable(hdu: Hdu, { bytes, limits }: ReadContext): FitsTable
   };
 }
 
-export function fieldCount(hdu: Hdu): number {
-  const fields = hdu.header.count('TFIELDS');
+/** The cards that both kinds of table must have; BITPIX and NAXIS are fixed, or the size of the data would be another. */
+export function tableSize({ header, place }: Hdu): { rowBytes: number; rows: number; fields: number } {
+  for (const [card, value] of [
+    ['BITPIX', 8],
+    ['NAXIS', 2],
+  ] as const)
+    if (header.get(card) !== value) refuse('card_invalid', `${card} of the table in ${place} is invalid: it must be ${value}.`, { card });
+  const fields = header.count('TFIELDS');
   if (fields > 999)
-    refuse('card_invalid', `TFIELDS = ${fields} in ${hdu.place}: too many columns, the FITS Standard allows 999.`, { card: 'TFIELDS' });
-  return fields;
+    refuse('card_invalid', `TFIELDS = ${fields} in ${place}: too many columns, the FITS Standard allows 999.`, { card: 'TFIELDS' });
+  return { rowBytes: header.count('NAXIS1'), rows: header.count('NAXIS2'), fields };
 }
 
 function scalingOf(hdu: Hdu, n: number): Scaling {

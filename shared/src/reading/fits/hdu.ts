@@ -96,7 +96,9 @@ function sizeOfData(header: Header, place: string): number {
   for (let axis = 1; axis <= naxis; axis++) elements *= header.count(`NAXIS${axis}`);
   if (header.get('GROUPS') === true)
     refuse('random_groups', `${place} holds random groups, which are not spectra and not supported.`, { card: 'GROUPS' });
-  return (Math.abs(bitpix) / 8) * header.count('GCOUNT', 1) * (header.count('PCOUNT', 0) + elements);
+  const groups = header.count('GCOUNT', 1);
+  if (groups !== 1) refuse('card_invalid', `GCOUNT = ${groups} in the header of ${place} is invalid: it must be 1.`, { card: 'GCOUNT' });
+  return (Math.abs(bitpix) / 8) * (header.count('PCOUNT', 0) + elements);
 }
 
 function refuseShort(header: Header, place: string, present: number, needed: number): never {

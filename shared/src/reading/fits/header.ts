@@ -83,7 +83,14 @@ export interface HeaderAt {
 
 /** The header that starts at `start`, up to its END card. `place` names it in sentences. */
 export function readHeader(bytes: Uint8Array, start: number, place: string, limits: ReadLimits): HeaderAt {
+  const endCard = findEnd(bytes, start, place, limits);
   const cards: string[] = [];
+  for (let at = start; at < endCard; at += CARD) cards.push(latin1(bytes, at, at + CARD).trimEnd());
+  return { header: new Header(cards), end: endOfBlocks(bytes, start, endCard + CARD, place) };
+}
+
+/** Where the END card is. Nothing is made of the cards before it is found, for it may never come. */
+function findEnd(bytes: Uint8Array, start: number, place: string, limits: ReadLimits): number {
   for (let at = start; ; at += CARD) {
     if (at + CARD > bytes.length)
       refuse(
@@ -91,16 +98,16 @@ export function readHeader(bytes: Uint8Array, start: number, place: string, limi
         `The file is incomplete: it ends inside the header of ${place}, before the END card. Copy or download it again.`,
         { card: 'END' },
       );
-    if (isEnd(bytes, at)) return { header: new Header(cards), end: endOfBlocks(bytes, start, at + CARD, place) };
-    if (cards.length >= limits.headerCards)
+    if (isEnd(bytes, at)) return at;
+    const count = (at - start) / CARD;
+    if (count >= limits.headerCards)
       refuse('header_too_long', `The header of ${place} is too long: no END card within ${limits.headerCards} cards, the limit.`, {
         card: 'END',
       });
     if (!isKeywordField(bytes, at))
-      refuse('no_end', `The header of ${place} has no END card: card ${cards.length + 1} is not text. The file is damaged or not FITS.`, {
+      refuse('no_end', `The header of ${place} has no END card: card ${count + 1} is not text. The file is damaged or not FITS.`, {
         card: 'END',
       });
-    cards.push(latin1(bytes, at, at + CARD).trimEnd());
   }
 }
 
