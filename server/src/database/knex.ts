@@ -12,6 +12,10 @@ interface Limits {
   readonly applicationName?: string;
 }
 
+const ignore = () => undefined;
+/** Everything that knex would print reaches its caller as an error too. */
+const SILENT: Knex.Logger = { warn: ignore, error: ignore, debug: ignore, deprecate: ignore };
+
 /** A connection pool; every connection carries its limits, so a runaway statement or a forgotten transaction ends by itself. */
 export function createKnex(url: string, { pool = 10, statementSeconds = 30, applicationName = 'foreveil' }: Limits = {}): Knex {
   return knexModule({
@@ -26,6 +30,7 @@ export function createKnex(url: string, { pool = 10, statementSeconds = 30, appl
     } as Knex.PgConnectionConfig, // knex does not know the two last limits by name, pg does
     pool: { min: 0, max: pool },
     acquireConnectionTimeout: 3_000,
+    log: SILENT,
     migrations: { directory: join(repoRoot, 'migrations'), extension: 'ts', loadExtensions: ['.ts'] },
   });
 }

@@ -9,6 +9,7 @@ export function toDomainError(error: unknown): DomainError | null {
   if (error instanceof MulterError) return fromMulter(error);
   if (isUnavailable(error))
     return new DomainError('unavailable', 'The database does not answer. Try again in a moment.', { retryAfter: 2 });
+  if (isUnstorable(error)) return new DomainError('invalid_request', 'The text holds characters that cannot be stored.');
   const status = statusOf(error);
   if (status === null || status >= 500) return null;
   const code = CODE_OF_STATUS[status] ?? 'invalid_request';
@@ -28,6 +29,9 @@ function fromMulter(error: MulterError): DomainError {
   if (error.code === 'LIMIT_FILE_SIZE') return new DomainError('too_large', 'The file is larger than this server accepts.');
   return new DomainError('invalid_request', 'The upload must be one file in the part "file" and one JSON text in the part "meta".');
 }
+
+/** NUL, or half of a surrogate pair, in text on its way into the database. */
+const isUnstorable = (error: unknown): boolean => ['22021', '22P05'].includes((error as { code?: string } | null)?.code ?? '');
 
 /** Nest's own exceptions and those of the body parsers both say which status they mean. */
 function statusOf(error: unknown): number | null {

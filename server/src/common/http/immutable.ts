@@ -13,6 +13,7 @@ export class Immutable implements NestInterceptor {
     const response = context.switchToHttp().getResponse<Response>();
     response.setHeader('ETag', `"${request.path.split('/').slice(-2).join('-')}"`);
     response.setHeader('Cache-Control', 'private, no-cache');
+    delete request.headers['cache-control']; // asking caches for a fresh answer; ours says whether the bytes are still these
     return request.fresh ? of(undefined) : next.handle(); // express answers an empty body for a fresh request with 304
   }
 }

@@ -29,7 +29,7 @@ export async function readInThread(
   job: ReadJob,
   { readSeconds, readMemoryMb }: Limits,
   onFailure: (error: unknown) => void = () => undefined,
-  script = READER_THREAD,
+  script: string | URL = READER_THREAD,
 ): Promise<ThreadResult> {
   const resourceLimits = { maxOldGenerationSizeMb: readMemoryMb };
   const thread = new Worker(script, { workerData: job, resourceLimits, execArgv: [] });
