@@ -1,6 +1,6 @@
-import type { Line, LineList } from '../linelist/index.js';
+import type { LineList } from '../linelist/index.js';
 import type { Candidate, Feature, VelocitySystem } from './analysis.js';
-import { argue, companionsOf, sumUp } from './evidence.js';
+import { argue, companionsOf, sumUp, uncoveredLines, type Uncovered } from './evidence.js';
 import type { Identified } from './identify.js';
 import type { Measured } from './measure.js';
 import type { FeatureRanking, Ranked } from './rank.js';
@@ -15,7 +15,7 @@ const ARGUED = 4; // candidates that get their companions listed; the argument i
 
 /** Turns the inner result into what is stored and shown. */
 export function describe(identified: Identified, measured: readonly Measured[], views: readonly FeatureView[], coverage: Coverage, list: LineList): Told {
-  const uncovered = list.lines.filter((l) => l.wavelengthNm < coverage.fromNm || l.wavelengthNm > coverage.toNm);
+  const uncovered = uncoveredLines(list.lines, coverage);
   const features = measured.map((m, i) => featureOf(m, views[i]!, identified.rankings[i]!, coverage, uncovered));
   const systems = identified.systems
     .map(({ system }): VelocitySystem => ({
@@ -31,7 +31,7 @@ export function describe(identified: Identified, measured: readonly Measured[], 
   return { systems, features };
 }
 
-function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: readonly Line[]): Feature {
+function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: Uncovered): Feature {
   const c = m.component;
   return {
     index: view.index,
@@ -55,7 +55,7 @@ function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, cove
   };
 }
 
-function candidateOf(r: Ranked, full: boolean, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: readonly Line[]): Candidate {
+function candidateOf(r: Ranked, full: boolean, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: Uncovered): Candidate {
   const c = r.contender;
   const { line } = c.expected;
   const evidence = argue(r, view, ranking.contenders, ranking.unidentified, coverage);

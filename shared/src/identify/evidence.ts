@@ -70,15 +70,30 @@ function strengthSentence(c: Contender, f: FeatureView): string {
 
 const round = (x: number): string => (x >= 100 ? x.toFixed(0) : x >= 10 ? x.toFixed(1) : x.toFixed(2));
 
+interface Tally {
+  readonly seen: number;
+  readonly missing: readonly string[];
+  readonly below: number;
+}
+const tallies = new WeakMap<SpeciesState, Tally>();
+
+function tallyOf(state: SpeciesState): Tally {
+  let tally = tallies.get(state);
+  if (!tally) {
+    const count = (...outcomes: LineTerm['outcome'][]) => state.terms.filter((t) => outcomes.includes(t.outcome));
+    tally = { seen: count('seen', 'merged').length, missing: count('missing').map((t) => t.expected.line.wavelengthNm.toFixed(2)), below: count('below_limit').length };
+    tallies.set(state, tally);
+  }
+  return tally;
+}
+
 function companionSentence(state: SpeciesState, own: LineTerm | null): string {
-  const others = state.terms.filter((t) => t !== own);
-  const due = others.filter((t) => t.outcome === 'seen' || t.outcome === 'missing' || t.outcome === 'merged');
-  const seen = due.filter((t) => t.outcome !== 'missing').length;
-  const below = others.filter((t) => t.outcome === 'below_limit').length;
-  if (due.length === 0) return below ? `no other line of ${state.model.species} should show above the noise` : `no other line of ${state.model.species} is covered`;
-  const missing = due.filter((t) => t.outcome === 'missing').map((t) => t.expected.line.wavelengthNm.toFixed(2));
+  const { seen: all, missing, below } = tallyOf(state);
+  const seen = all - (own?.outcome === 'seen' || own?.outcome === 'merged' ? 1 : 0);
+  const due = seen + missing.length;
+  if (due === 0) return below ? `no other line of ${state.model.species} should show above the noise` : `no other line of ${state.model.species} is covered`;
   const lost = missing.length ? `; missing: ${missing.slice(0, 3).join(', ')} nm${missing.length > 3 ? ` and ${missing.length - 3} more` : ''}` : '';
-  return `${seen} of ${due.length} due ${state.model.species} lines are seen${lost}`;
+  return `${seen} of ${due} due ${state.model.species} lines are seen${lost}`;
 }
 
 function chanceSentence(f: FeatureView, rivals: readonly Contender[], unidentified: number): string {
@@ -88,11 +103,43 @@ function chanceSentence(f: FeatureView, rivals: readonly Contender[], unidentifi
 
 const percent = (p: number): string => (p >= 0.995 ? 'almost certain' : `${(100 * p).toFixed(p < 0.1 ? 1 : 0)} %`);
 
+/** Lines of each species outside the data that would tell most, strongest first. */
+export type Uncovered = ReadonlyMap<string, readonly Line[]>;
+
+const STRONGEST_UNCOVERED = 2;
+
+export function uncoveredLines(lines: readonly Line[], coverage: Coverage): Uncovered {
+  const out = new Map<string, Line[]>();
+  for (const l of lines) {
+    if (l.wavelengthNm >= coverage.fromNm && l.wavelengthNm <= coverage.toNm) continue;
+    const list = out.get(l.species);
+    if (list) list.push(l);
+    else out.set(l.species, [l]);
+  }
+  for (const [species, list] of out) {
+    list.sort((a, b) => (b.oscillatorStrength ?? 0) - (a.oscillatorStrength ?? 0) || a.wavelengthNm - b.wavelengthNm);
+    out.set(species, list.slice(0, STRONGEST_UNCOVERED));
+  }
+  return out;
+}
+
+const ranked = new WeakMap<SpeciesState, LineTerm[]>();
+
+/** The strongest lines of a species, sorted once. */
+function strongest(state: SpeciesState): LineTerm[] {
+  let list = ranked.get(state);
+  if (!list) {
+    list = [...state.terms].sort((a, b) => b.expected.logW - a.expected.logW || a.expected.wavelength - b.expected.wavelength).slice(0, COMPANIONS + 1);
+    ranked.set(state, list);
+  }
+  return list;
+}
+
 /** The other lines of the species that should show, strongest first, then the strongest that the data do not cover. */
-export function companionsOf(c: Contender, f: FeatureView, uncovered: readonly Line[]): Companion[] {
+export function companionsOf(c: Contender, f: FeatureView, uncovered: Uncovered): Companion[] {
   const own = c.term.feature === f ? c.term : null;
   const { mean, sigma } = offsetMoments(c.state, own);
-  const terms = c.state.terms.filter((t) => t !== c.term).sort((a, b) => b.expected.logW - a.expected.logW || a.expected.wavelength - b.expected.wavelength);
+  const terms = strongest(c.state).filter((t) => t !== c.term);
   const covered = terms.slice(0, COMPANIONS).map((t): Companion => {
     const expectedNm = 10 ** (t.expected.logW + mean);
     const seen = t.outcome === 'seen' || t.outcome === 'merged';
@@ -106,11 +153,7 @@ export function companionsOf(c: Contender, f: FeatureView, uncovered: readonly L
       measuredSigmaNm: seen && t.feature ? 10 ** t.feature.logW * t.feature.sigmaLogW * Math.LN10 : Number.isFinite(t.logMeasured) ? 10 ** t.logMeasured : null,
     };
   });
-  const out = uncovered
-    .filter((l) => l.species === c.expected.line.species)
-    .sort((a, b) => (b.oscillatorStrength ?? 0) - (a.oscillatorStrength ?? 0) || a.wavelengthNm - b.wavelengthNm)
-    .slice(0, 2)
-    .map((l): Companion => ({ species: l.species, restNm: l.wavelengthNm, outcome: 'not_covered', expectedNm: 0, expectedSigmaNm: 0, measuredNm: null, measuredSigmaNm: null }));
+  const out = (uncovered.get(c.expected.line.species) ?? []).map((l): Companion => ({ species: l.species, restNm: l.wavelengthNm, outcome: 'not_covered', expectedNm: 0, expectedSigmaNm: 0, measuredNm: null, measuredSigmaNm: null }));
   return [...covered, ...out];
 }
 

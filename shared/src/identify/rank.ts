@@ -45,6 +45,7 @@ const MAIN_SHARE = 0.3;
 const UNLISTED_SHARE = 0.06; // of all features, made by lines that no list holds: a prior, shown as "not in the list"
 const LOG_W_SPREAD = 0.55; // dex, as in offsets.ts
 const MODEL_ERROR = 0.14; // natural log: profile misfit and blending at the 14 % level
+const NEGLIGIBLE = 1.5; // dex: a line that is this much too weak even at 2 sigma takes no part
 const LEAST = 0.002; // candidates below this chance are not listed
 const MOST = 8;
 
@@ -107,7 +108,12 @@ function partOf(e: Expected, f: FeatureView, features: readonly FeatureView[]): 
  * how well they give the feature's equivalent width, centroid and width, and counted. "Unidentified" competes as a flat density.
  */
 export function rankFeature(f: FeatureView, contenders: readonly Contender[], coverage: Coverage, background: Background): FeatureRanking {
-  if (contenders.length === 0) return { ranked: [], contenders, unidentified: 1 };
+  const weighty = contenders.filter((c) => c.logW + 2 * c.sigmaLog + Math.log10(c.part) > f.logW - NEGLIGIBLE);
+  if (weighty.length === 0) return { ranked: [], contenders, unidentified: 1 };
+  return { ...draw(f, weighty, coverage, background), contenders };
+}
+
+function draw(f: FeatureView, contenders: readonly Contender[], coverage: Coverage, background: Background): Omit<FeatureRanking, 'contenders'> {
   const n = contenders.length;
   const lnW = f.logW * LN10;
   const sigmaLn = Math.hypot(f.sigmaLogW * LN10, MODEL_ERROR);
@@ -124,8 +130,7 @@ export function rankFeature(f: FeatureView, contenders: readonly Contender[], co
     let top = 0;
     for (let k = 0; k < n; k++) {
       const c = contenders[k]!;
-      const draw = normalDraws(j, k);
-      w[k] = uniform(j, k) < c.presence ? c.part * 10 ** (c.logW + c.sigmaLog * draw) : 0;
+      w[k] = uniform(j, k) < c.presence ? c.part * Math.exp(LN10 * (c.logW + c.sigmaLog * normalDraws(j, k))) : 0;
       sum += w[k]!;
       centroid += w[k]! * offset[k]!;
       if (w[k]! > w[top]!) top = k;
@@ -145,12 +150,12 @@ export function rankFeature(f: FeatureView, contenders: readonly Contender[], co
   }
   const flat = (UNLISTED_SHARE * background.rate(f.kind, f.wavelength) * idle) / (LOG_W_SPREAD * LN10 * Math.sqrt(2 * Math.PI));
   const norm = total + flat;
-  if (!(norm > 0)) return { ranked: [], contenders, unidentified: 1 };
+  if (!(norm > 0)) return { ranked: [], unidentified: 1 };
   const ranked = contenders
     .map((contender, k) => ({ contender, probability: wins[k]! / norm, share: total > 0 ? shares[k]! / total : 0 }))
     .filter((r) => r.probability >= LEAST)
     .sort((a, b) => b.probability - a.probability || b.share - a.share || a.contender.expected.wavelength - b.contender.expected.wavelength);
-  return { ranked: ranked.slice(0, MOST), contenders, unidentified: flat / norm };
+  return { ranked: ranked.slice(0, MOST), unidentified: flat / norm };
 }
 
 /** A fixed low-discrepancy number in (0, 1) a draw and contender: the golden ratio's multiples, shifted a contender. */

@@ -1,6 +1,6 @@
 import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
 import { look, settle, type Component } from './component.js';
-import { dampedExtent, dampedInto, dampedPeak, type DampedPeak } from './damped.js';
+import { dampedExtent, dampedInto, dampedTable, type DampedTable } from './damped.js';
 import { addComponent, indexAt, type NormalisedSamples } from './samples.js';
 
 export interface BlendLimits {
@@ -65,7 +65,7 @@ interface Slot {
   readonly size: number;
   readonly startCentre: number;
   readonly startFwhm: number;
-  peak: DampedPeak | null;
+  table: DampedTable | null;
 }
 
 /**
@@ -81,7 +81,7 @@ export function fitBlend(data: NormalisedSamples, free: Component[], others: rea
   let parameters = 0;
   const slots = free.map((c): Slot => {
     const size = c.damped ? DAMPED : SIMPLE;
-    const slot = { c, at: parameters, size, startCentre: c.centre, startFwhm: c.fwhm, peak: null };
+    const slot = { c, at: parameters, size, startCentre: c.centre, startFwhm: c.fwhm, table: null };
     parameters += size;
     return slot;
   });
@@ -155,7 +155,7 @@ function accumulate(data: NormalisedSamples, slots: readonly Slot[], p: number, 
   const { normal, gradient, base, add, derivative } = scratch;
   normal.fill(0, 0, p * p);
   gradient.fill(0, 0, p);
-  for (const s of slots) s.peak = s.c.damped ? dampedPeak(s.c.damped) : null;
+  for (const s of slots) s.table = s.c.damped ? dampedTable(s.c.damped) : null;
   const active: Slot[] = new Array(slots.length);
   const clear = new Float64Array(slots.length);
   let chi2 = 0;
@@ -205,12 +205,12 @@ function accumulate(data: NormalisedSamples, slots: readonly Slot[], p: number, 
 }
 
 /** phi at a distance; derivatives of amplitude * phi by amplitude, centre (in scales), ln scale (and ln tau, a) go to `out` from `at`. */
-function derivatives({ c, peak }: Slot, dx: number, out: Float64Array, at: number): number {
+function derivatives({ c, table }: Slot, dx: number, out: Float64Array, at: number): number {
   const u = Math.abs(dx) / c.scale;
   let value: number;
   let slope: number;
-  if (c.damped) {
-    dampedInto(damped4, c.damped, u, peak!);
+  if (table) {
+    dampedInto(damped4, table, u);
     value = damped4[0]!;
     slope = damped4[1]!;
     out[at + 3] = c.amplitude * damped4[2]!;

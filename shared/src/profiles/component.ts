@@ -1,4 +1,4 @@
-import { dampedExtent, dampedInto, dampedPeak, type DampedShape } from './damped.js';
+import { dampedTable, dampedValue, type DampedShape } from './damped.js';
 import { GAUSSIAN, type Shape } from './shapes.js';
 
 /**
@@ -52,7 +52,7 @@ export function newComponent(kind: Component['kind'], centre: number, fwhm: numb
 /** Brings FWHM, area and reach in line with scale and shape. */
 export function settle(c: Component): void {
   if (c.damped) {
-    const extent = dampedExtent(c.damped);
+    const extent = dampedTable(c.damped);
     c.fwhm = extent.fwhm * c.scale;
     c.area = extent.area * c.scale;
     c.reach = extent.reach * c.scale;
@@ -66,7 +66,7 @@ export function settle(c: Component): void {
 /** A copy with a damped profile of about the same FWHM: moderately saturated, moderately winged. */
 export function asDamped(c: Component): Component {
   const shape = { tau: 4, a: 0.6 };
-  const out: Component = { ...c, damped: shape, scale: c.fwhm / dampedExtent(shape).fwhm };
+  const out: Component = { ...c, damped: shape, scale: c.fwhm / dampedTable(shape).fwhm };
   settle(out);
   return out;
 }
@@ -92,12 +92,8 @@ export function profileOf(c: Component): (wavelength: number) => number {
   const { centre, core, damped } = c;
   const inverse = 1 / c.scale;
   if (!damped) return (x) => look(core.value, core, Math.abs(x - centre) * inverse);
-  const peak = dampedPeak(damped);
-  const out = new Float64Array(4);
-  return (x) => {
-    dampedInto(out, damped, Math.abs(x - centre) * inverse, peak);
-    return out[0]!;
-  };
+  const table = dampedTable(damped);
+  return (x) => dampedValue(table, Math.abs(x - centre) * inverse);
 }
 
 /** Equivalent width, nm, positive in absorption. */
