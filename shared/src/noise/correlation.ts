@@ -1,4 +1,5 @@
-import { crowdedValue, DIFFERENCE_SCATTER, sigmaOfSquares, squaredDifferences, windowScatter, type Samples } from './windows.js';
+import { quantile } from '../numeric/select.js';
+import { crowdedValue, sigmaOfSquares, squaredDifferences, windowScatter, type Samples } from './windows.js';
 
 /** Noise is taken to be independent over this many samples and more. */
 const FAR_LAG = 12;
@@ -7,6 +8,8 @@ const LINE_LAGS = [3, 4, 5, 6];
 /** Correlations below this never matter; chance alone makes them about 2.1 over the root of the number of samples. */
 const SMALLEST = 0.12;
 const CHANCE = 2.8 * 2.1;
+/** Tails that differ by more than this part of their distance are not those of noise. */
+const LOPSIDED = 0.12;
 /** Ties weaker than this come from interpolation between neighbours. */
 const WEAK = 0.3;
 /** A smooth part larger than this is no remnant of lines: the noise itself was smoothed. */
@@ -50,9 +53,23 @@ export function noiseStructure(samples: Samples, length: number, stride: number)
   const seen = new Float64Array(2 * FAR_LAG);
   for (let lag = FAR_LAG - 1; lag > 0; lag--) seen[lag] = 0.75 * (1 + seen[2 * lag]! / 3 - varianceAt(lag) / plateau);
   const { correlation, lineShare, smooth } = withoutLines(seen, Math.max(SMALLEST, CHANCE / Math.sqrt(quiet.length * length)));
-  // 35 % of normal deviates lie within 0.91 sigma about the middle
-  const spread = Math.log(far.high / far.low) / ((0.91 * DIFFERENCE_SCATTER) / Math.sqrt(length));
-  return { neighbours, sigma: Math.sqrt(plateau * (1 - lineShare)), correlation, lineFree: spread < FREE_OF_LINES, smooth };
+  // correlated samples count for fewer
+  const independent = length / correlation.reduce((sum, r, lag) => sum + (lag ? 2 * r * r : 1), 0);
+  const lineFree = far.spread * Math.sqrt(independent) < FREE_OF_LINES && !(smooth && lopsided(samples, quiet, length));
+  return { neighbours, sigma: Math.sqrt(plateau * (1 - lineShare)), correlation, lineFree, smooth };
+}
+
+/** Whether differences at the far lag have one tail longer than the other, as lines make them and noise does not. */
+function lopsided({ value, bad }: Samples, quiet: readonly number[], length: number): boolean {
+  const differences: number[] = [];
+  for (const from of quiet) {
+    for (let i = Math.max(FAR_LAG, from), end = Math.min(from + length, value.length - FAR_LAG); i < end; i++) {
+      if (!bad[i] && !bad[i - FAR_LAG] && !bad[i + FAR_LAG]) differences.push(2 * value[i]! - value[i - FAR_LAG]! - value[i + FAR_LAG]!);
+    }
+  }
+  const low = quantile(differences, 0.05);
+  const high = quantile(differences, 0.95);
+  return Math.abs(low + high) > LOPSIDED * (high - low);
 }
 
 /**

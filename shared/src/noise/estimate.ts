@@ -5,14 +5,14 @@ import type { NoiseModel } from './model.js';
 import { DIFFERENCE_SCATTER, windowScatter } from './windows.js';
 
 const LONGEST_WINDOW = 128;
-const SHORTEST_WINDOW = 24;
+const SHORTEST_WINDOW = 40;
 /** Windows looked at for the check of a stated sigma: some 15 000 samples, enough for a few per cent. */
 const CHECKED_WINDOWS = 120;
 /** A stated sigma is left alone when the scatter agrees with it within this factor. */
 const TOLERATED = 1.2;
 /** Lines everywhere raise the scatter of direct neighbours by this much, rarely more. */
 const LARGEST_BY_LINES = 1.5;
-/** Neighbouring windows that are smoothed together, to each side, and the quantile of them that is taken: lines only raise a window. */
+/** Neighbouring windows that are smoothed together, to each side (an eighth of all, if that is fewer), and the quantile of them that is taken: lines only raise a window. */
 const NEIGHBOURS = 7;
 const LOW_QUANTILE = 0.35;
 const LOW_QUANTILE_SIGMA = 0.385;
@@ -56,14 +56,16 @@ interface Tied {
 }
 const AS_STATED: Tied = { correlation: [1], factor: 1 };
 
-function verdict({ neighbours, sigma, correlation, lineFree }: NoiseStructure): Tied {
+function verdict({ neighbours, sigma, correlation, lineFree, smooth }: NoiseStructure): Tied {
   if (!(neighbours > 0)) return AS_STATED;
+  const asStated = neighbours > 1 / TOLERATED && neighbours < LARGEST_BY_LINES;
+  if (smooth && asStated) return AS_STATED; // white noise as stated, and nothing but lines above it
   const white = correlation.length === 1;
   const measured = white ? Math.min(neighbours, sigma) : sigma;
   if (lineFree) return { correlation, factor: clearlyOff(measured) ? measured : 1 };
   // lines everywhere: neighbours that scatter as stated, or a little more, agree with white noise of the stated size
   if (neighbours > LARGEST_BY_LINES) return { correlation: [1], factor: neighbours };
-  if (neighbours > 1 / TOLERATED) return AS_STATED;
+  if (asStated) return AS_STATED;
   return { correlation, factor: measured < 1 / TOLERATED ? measured : 1 };
 }
 
@@ -104,7 +106,8 @@ function filled(sigma: Float64Array, bad: Uint8Array, floor: number): Float64Arr
 
 /** Low quantile over neighbouring windows, freed of the bias that picking a low one brings; windows without a value take their neighbours'. */
 function smoothed(scatter: Float64Array, length: number): Float64Array {
-  const scratch = new Float64Array(2 * NEIGHBOURS + 1);
+  const neighbours = Math.max(1, Math.min(NEIGHBOURS, scatter.length >> 3));
+  const scratch = new Float64Array(2 * neighbours + 1);
   const bias = 1 - (LOW_QUANTILE_SIGMA * DIFFERENCE_SCATTER) / Math.sqrt(length);
   const all =
     quantileInPlace(
@@ -114,7 +117,7 @@ function smoothed(scatter: Float64Array, length: number): Float64Array {
     ) / bias;
   return scatter.map((_, w) => {
     let m = 0;
-    for (let k = Math.max(0, w - NEIGHBOURS); k < Math.min(scatter.length, w + NEIGHBOURS + 1); k++) {
+    for (let k = Math.max(0, w - neighbours); k < Math.min(scatter.length, w + neighbours + 1); k++) {
       if (scatter[k] === scatter[k]) scratch[m++] = scatter[k]!;
     }
     return m > 0 ? quantileInPlace(scratch, m, LOW_QUANTILE) / bias : all;

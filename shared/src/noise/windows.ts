@@ -1,4 +1,5 @@
-import { MAD_TO_SIGMA, selectInPlace } from '../numeric/select.js';
+import { normalQuantile } from '../numeric/normal.js';
+import { MAD_TO_SIGMA, medianInPlace } from '../numeric/select.js';
 
 /** Relative scatter of a noise estimate from second differences of `n` samples of white noise is this over the root of n. */
 export const DIFFERENCE_SCATTER = 1.39;
@@ -36,7 +37,7 @@ export function squaredDifferences(
 
 /** Robust sigma from `n` squares of deviates of mean 0: of all, NaN when there are too few to tell. */
 export function sigmaOfSquares(squares: Float64Array, n: number): number {
-  return n < 6 ? NaN : MAD_TO_SIGMA * Math.sqrt(selectInPlace(squares, n >> 1, 0, n));
+  return n < 6 ? NaN : MAD_TO_SIGMA * Math.sqrt(medianInPlace(squares, n));
 }
 
 /** Scatter in units of sigma for windows of `length` samples, every `stride`-th window; NaN where a window has too few samples. */
@@ -51,14 +52,29 @@ export function windowScatter(samples: Samples, length: number, stride: number, 
   return out;
 }
 
+/** What many windows agree on. */
+export interface Crowd {
+  readonly mean: number;
+  readonly low: number;
+  readonly high: number;
+  /** length of the interval in ln, over what chance alone makes it for white noise in windows of one sample: divide by root length */
+  readonly spread: number;
+}
+
+/** Part of the windows that the crowd is made of: a third of many, more of few. */
+const SHARE = 0.35;
+const SHARE_OF_FEW = 0.6;
+const FEW = 40;
+
 /**
- * The value about which the windows crowd closest: the mean of the shortest interval that holds `share` of them. Windows full of lines
+ * The value about which the windows crowd closest: the mean of the shortest interval that holds a share of them. Windows full of lines
  * only make the upper tail longer. NaN without values.
  */
-export function crowdedValue(values: Float64Array, share = 0.35): { mean: number; low: number; high: number } {
+export function crowdedValue(values: Float64Array): Crowd {
   const sorted = values.filter((v) => v === v).sort();
   const n = sorted.length;
-  if (n === 0) return { mean: NaN, low: NaN, high: NaN };
+  if (n === 0) return { mean: NaN, low: NaN, high: NaN, spread: NaN };
+  const share = n < FEW ? SHARE_OF_FEW : SHARE;
   const span = Math.min(n - 1, Math.max(1, Math.round(share * n)));
   let at = 0;
   for (let i = 0; i + span < n; i++) {
@@ -67,5 +83,8 @@ export function crowdedValue(values: Float64Array, share = 0.35): { mean: number
   }
   let sum = 0;
   for (let i = at; i <= at + span; i++) sum += sorted[i]!;
-  return { mean: sum / (span + 1), low: sorted[at]!, high: sorted[at + span]! };
+  const low = sorted[at]!;
+  const high = sorted[at + span]!;
+  const byChance = 2 * normalQuantile(0.5 + share / 2) * DIFFERENCE_SCATTER;
+  return { mean: sum / (span + 1), low, high, spread: Math.log(high / low) / byChance };
 }
