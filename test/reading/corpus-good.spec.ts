@@ -77,7 +77,7 @@ describe('what some of the files ask for', () => {
   it('says how many duplicates were found and what was done', () => {
     const result = readGood('good/csv_duplicates.csv');
     expect(result.spectrum.wavelength.length).toBe(1000);
-    expect(sentences(result)).toMatch(/4 duplicate wavelengths were found; .* merged into their mean/);
+    expect(sentences(result)).toMatch(/4 duplicate wavelengths were found \(first at 403.003 nm in vacuum\); .* merged into their mean/);
   });
 
   it.each(['good/echelle_orders.fits', 'good/csv_echelle.csv'])(

@@ -1,4 +1,5 @@
 import { gzipSync } from 'fflate';
+import { cpuSeconds } from './support/cpu.js';
 import { codes, range, read, refusal } from './support/read.js';
 
 const N = 20;
@@ -216,6 +217,15 @@ describe('order, duplicates and faults', () => {
     expect(sentence).toContain('"fur long"');
   });
 
+  it('lets a person say which column of a table without headings is which', () => {
+    const content = table((w, f, s) => `${s} ${f} ${w}`);
+    const { reading, spectrum } = read(content, { wavelengthColumn: 'column 3', uncertaintyColumn: 'column 1', fluxColumn: 'column 2' });
+    expect([reading.wavelengthColumn, reading.fluxColumn, reading.uncertaintyColumn]).toEqual(['column 3', 'column 2', 'column 1']);
+    expect([...spectrum.wavelength]).toEqual(WAVE);
+    expect(read(content, { wavelengthColumn: 'column 3' }).reading).toMatchObject({ wavelengthColumn: 'column 3', fluxColumn: 'column 1' });
+    expect(refusal(content, { wavelengthColumn: 'column 4' }).code).toBe('column_not_found');
+  });
+
   it('takes a third column without heading for the error only when it can be one', () => {
     expect(read(table((...r) => r.join(' '))).reading.uncertaintyColumn).toBe('column 3');
     const other = read(table((w, f) => `${w} ${f} ${f * 2}`));
@@ -229,7 +239,7 @@ describe('order, duplicates and faults', () => {
     expect(refusal(gzipSync(gzipSync(bytes('a,b\n1,2\n')))).code).toBe('nested_gzip');
   });
 
-  it('answers hostile lines fast', () => {
+  it('answers hostile lines of 100 000 characters within 0.1 s of processor time', () => {
     const long = 100_000;
     const hostile = [
       ' '.repeat(long),
@@ -242,11 +252,9 @@ describe('order, duplicates and faults', () => {
       `1${'e1'.repeat(long / 2)}`,
       '-'.repeat(long),
     ];
-    for (const line of hostile) {
-      const started = performance.now();
-      for (const content of [line, `${line}\n1 2\n2 3\n`, `wave flux\n1 2\n${line}\n3 4\n`]) refusalOrSpectrum(content);
-      expect(performance.now() - started).toBeLessThan(500);
-    }
+    const contents = hostile.flatMap((line) => [line, `${line}\n1 2\n2 3\n`, `wave flux\n1 2\n${line}\n3 4\n`]);
+    contents.forEach(refusalOrSpectrum);
+    for (const content of contents) expect(cpuSeconds(() => refusalOrSpectrum(content)).seconds).toBeLessThan(0.1);
   });
 });
 

@@ -29,9 +29,10 @@ export function mergeDuplicates(columns: Columns, axisName: string, warnings: Re
     out.bad[g] = mean.bad;
     if (out.sigma) out.sigma[g] = mean.sigma;
   }
+  const first = columns.wavelength[starts.findIndex((start, g) => (starts[g + 1] ?? columns.wavelength.length) - start > 1)];
   warnings.push({
     code: 'duplicates_merged',
-    sentence: `${duplicates} duplicate wavelengths were found; samples of the same wavelength were merged into their mean${columns.sigma ? ', weighted by 1/sigma^2' : ''}.`,
+    sentence: `${duplicates} duplicate wavelengths were found (first at ${first} nm in vacuum); samples of the same wavelength were merged into their mean${columns.sigma ? ', weighted by 1/sigma^2' : ''}.`,
     column: axisName,
   });
   return out;

@@ -18,4 +18,4 @@ export function refusal(bytes: Uint8Array, corrections: ReadingCorrections = {})
 
 export const codes = (result: Read): string[] => result.reading.warnings.map((warning) => warning.code);
 
-export const range = (n: number, value: (i: number) => number): number[] => Array.from({ length: n }, (_, i) => value(i));
+export const range = <T>(n: number, value: (i: number) => T): T[] => Array.from({ length: n }, (_, i) => value(i));

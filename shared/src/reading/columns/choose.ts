@@ -98,7 +98,7 @@ function byUnit(info: ColumnInfo): Claim[] {
 }
 
 /** Quantity of an axis whose name does not tell: by its unit, else a length. */
-export function quantityOfUnit(unitText: string): SpectralQuantity {
+function quantityOfUnit(unitText: string): SpectralQuantity {
   const parsed = parseAxisUnit(unitText);
   if (!parsed) return 'length';
   if (parsed.log10) return 'log10_length';

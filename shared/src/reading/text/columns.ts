@@ -1,4 +1,4 @@
-import { chooseColumns, quantityOfUnit, type ColumnChoice, type ColumnInfo } from '../columns/choose.js';
+import { chooseColumns, type ColumnChoice, type ColumnInfo } from '../columns/choose.js';
 import { axisQuantity, nameRole } from '../columns/words.js';
 import { quoted, refuse } from '../refusal.js';
 import type { ReadingCorrections, ReadWarning } from '../types.js';
@@ -21,21 +21,19 @@ export function chooseTextColumns(preamble: Preamble, corrections: ReadingCorrec
       'one_column',
       `The table has ${numeric.length === 1 ? 'one numeric column' : 'no numeric column'}; a spectrum needs two, wavelength and flux.`,
     );
-  const named = preamble.headings || corrections.wavelengthColumn || corrections.fluxColumn ? chooseColumns(infos, corrections) : null;
-  if (named) return { infos, choice: named, byPosition: false };
-  if (preamble.headings) return { infos, choice: guessed(preamble, infos, numeric, corrections, warnings), byPosition: false };
-  return { infos, choice: byPosition(preamble, numeric, corrections, warnings), byPosition: true };
+  if (!preamble.headings) return { infos, choice: byPosition(preamble, infos, numeric, corrections, warnings), byPosition: true };
+  const choice = chooseColumns(infos, corrections) ?? guessed(preamble, infos, numeric, corrections, warnings);
+  return { infos, choice, byPosition: false };
 }
 
 function columnInfos({ headings, sample, dialect }: Preamble): ColumnInfo[] {
   const cells = sample.reduce((most, row) => Math.max(most, row.length), 0);
   if (headings) checkFields(headings.length, sample, dialect.delimiter);
   const count = Math.max(headings?.length ?? 0, cells);
-  const infos = Array.from({ length: count }, (_, i): ColumnInfo => {
+  return Array.from({ length: count }, (_, i): ColumnInfo => {
     const heading = headings?.[i];
     return { name: heading?.name || `column ${i + 1}`, unit: heading?.unit ?? '', ucd: '', utype: '', numeric: isNumeric(i) };
   });
-  return infos;
 
   function isNumeric(column: number): boolean {
     let numbers = 0;
@@ -60,7 +58,7 @@ function checkFields(headings: number, sample: readonly string[][], delimiter: s
   );
 }
 
-/** Headings are there, but none tells which column is the wavelength or the flux. */
+/** Headings are there, but they do not tell which column is the wavelength or the flux. */
 function guessed(
   preamble: Preamble,
   infos: readonly ColumnInfo[],
@@ -68,37 +66,29 @@ function guessed(
   corrections: ReadingCorrections,
   warnings: ReadWarning[],
 ): ColumnChoice {
+  const nameOf = (i: number | undefined) => (i === undefined ? undefined : infos[i]!.name);
   const role = (i: number) => nameRole(infos[i]!.name)?.role;
-  const byName = (name: string | undefined) => (name === undefined ? -1 : infos.findIndex((info) => info.name === name));
-  const known = numeric.find((i) => axisQuantity(infos[i]!.name) !== null);
-  const corrected = byName(corrections.wavelengthColumn);
-  const axis = corrected >= 0 ? corrected : (known ?? numeric.find((i) => role(i) === undefined && runsOneWay(preamble, i)));
-  if (axis === undefined)
+  const free = numeric.filter((i) => infos[i]!.name !== corrections.fluxColumn);
+  const wavelengthColumn =
+    corrections.wavelengthColumn ??
+    nameOf(free.find((i) => axisQuantity(infos[i]!.name) !== null) ?? free.find((i) => role(i) === undefined && runsOneWay(preamble, i)));
+  if (wavelengthColumn === undefined)
     refuse(
       'no_wavelength_column',
       `No column is known to be the wavelength (the columns are ${quoted(infos.map((info) => info.name).join(', '), 120)}). Choose it.`,
     );
-  const free = numeric.filter((i) => i !== axis);
-  const correctedFlux = byName(corrections.fluxColumn);
-  const flux =
-    correctedFlux >= 0 ? correctedFlux : (free.find((i) => role(i) === 'flux') ?? free.find((i) => role(i) === undefined) ?? free[0]!);
+  const others = numeric.filter((i) => infos[i]!.name !== wavelengthColumn);
+  const fluxColumn =
+    corrections.fluxColumn ?? nameOf(others.find((i) => role(i) === 'flux') ?? others.find((i) => role(i) === undefined) ?? others[0]);
   warnings.push({
     code: 'columns_assumed',
-    sentence: `The headings do not say which column is which; ${quoted(infos[axis]!.name)} was taken as wavelength and ${quoted(infos[flux]!.name)} as flux. Correct them if that is wrong.`,
+    sentence: `The headings do not say which column is which; ${quoted(wavelengthColumn)} was taken as wavelength and ${quoted(fluxColumn ?? '')} as flux. Correct them if that is wrong.`,
   });
-  const uncertainty =
-    corrections.uncertaintyColumn === null
-      ? undefined
-      : free.find((i) => i !== flux && ['sigma', 'variance', 'inverse_variance'].includes(role(i) ?? ''));
-  const kind = uncertainty === undefined ? undefined : role(uncertainty);
-  return {
-    axis,
-    quantity: axisQuantity(infos[axis]!.name) ?? quantityOfUnit(infos[axis]!.unit),
-    flux,
-    uncertainty: uncertainty ?? null,
-    uncertaintyKind: corrections.uncertaintyKind ?? (kind === 'variance' || kind === 'inverse_variance' ? kind : 'sigma'),
-    mask: free.find((i) => role(i) === 'mask') ?? null,
-  };
+  return chosen(infos, { ...corrections, wavelengthColumn, fluxColumn });
+}
+
+function chosen(infos: readonly ColumnInfo[], corrections: ReadingCorrections): ColumnChoice {
+  return chooseColumns(infos, corrections) ?? refuse('no_flux_column', 'No column is known to be the flux. Choose it.');
 }
 
 const valuesOf = ({ sample, dialect }: Preamble, column: number): number[] =>
@@ -116,27 +106,27 @@ function runsOneWay(preamble: Preamble, column: number): boolean {
 /** No headings: wavelength and flux come first, as everywhere in the trade, and a third column may be the error. */
 function byPosition(
   preamble: Preamble,
+  infos: readonly ColumnInfo[],
   numeric: readonly number[],
   corrections: ReadingCorrections,
   warnings: ReadWarning[],
 ): ColumnChoice {
   checkWholeNumbers(preamble);
-  const [axis, flux, third] = [numeric[0]!, numeric[1]!, numeric[2]];
-  const isError = third !== undefined && corrections.uncertaintyColumn !== null && looksLikeError(preamble, flux, third);
-  const rest =
-    numeric.length > 2 ? (isError ? ', the third as the uncertainty' : '; what the others hold is not known, they were not used') : '';
+  const said = [corrections.wavelengthColumn, corrections.fluxColumn];
+  const free = numeric.filter((i) => !said.includes(infos[i]!.name));
+  const next = () => infos[free.shift() ?? -1]?.name;
+  const wavelengthColumn = corrections.wavelengthColumn ?? next();
+  const fluxColumn = corrections.fluxColumn ?? next();
+  const flux = infos.findIndex((info) => info.name === fluxColumn);
+  const third = free[0];
+  const isError = third !== undefined && corrections.uncertaintyColumn === undefined && looksLikeError(preamble, flux, third);
+  const uncertaintyColumn = corrections.uncertaintyColumn ?? (isError ? infos[third]!.name : null);
+  const rest = isError ? `, ${infos[third]!.name} as the uncertainty` : free.length > 0 ? '; the others were not used' : '';
   warnings.push({
     code: 'columns_assumed',
-    sentence: `The table has no headings; the first column was taken as wavelength and the second as flux${rest}.`,
+    sentence: `The table has no headings; ${quoted(wavelengthColumn ?? '')} was taken as wavelength and ${quoted(fluxColumn ?? '')} as flux${rest}. Correct them if that is wrong.`,
   });
-  return {
-    axis,
-    quantity: 'length',
-    flux,
-    uncertainty: isError ? third : null,
-    uncertaintyKind: corrections.uncertaintyKind ?? 'sigma',
-    mask: null,
-  };
+  return chosen(infos, { ...corrections, wavelengthColumn, fluxColumn, uncertaintyColumn });
 }
 
 /** An error is positive nearly everywhere and smaller than the flux it belongs to. */
