@@ -1,4 +1,5 @@
 import { binaryTable, concat, header, primary, unit, type Card, type Column } from './support/fits-builder.js';
+import { bytesOf } from './support/corpus.js';
 import { codes, range, read, refusal } from './support/read.js';
 
 const N = 30;
@@ -370,6 +371,24 @@ describe('parts of a file', () => {
     expect(codes(read(concat(whole, new Uint8Array(100).fill(65))))).toContain('trailing_bytes');
     expect(codes(read(concat(whole, new Uint8Array(2880))))).not.toContain('trailing_bytes');
     expect(codes(read(whole.subarray(0, whole.length - 10)))).toContain('not_padded');
+  });
+});
+
+describe('checksums (FITS Standard 4.0 appendix J)', () => {
+  // the sums in the file were written by astropy 5.2.1 and confirmed by fitsverify 4.20
+  it('are right in a whole file, and one changed bit in data or header is noticed', () => {
+    const bytes = bytesOf('good/checksum.fits');
+    expect(codes(read(bytes))).toEqual([]);
+    const flipped = (at: number) => {
+      const copy = bytes.slice();
+      copy[at]! ^= 1;
+      return copy;
+    };
+    const sentence = (at: number) => read(flipped(at)).reading.warnings.find((warning) => warning.code === 'checksum_wrong')?.sentence;
+    // the last byte of a flux; the comment of a card in the table's header; the same in the primary header
+    expect(sentence(5760 + 2880 + 15)).toContain('DATASUM and CHECKSUM of HDU 1');
+    expect(sentence(2880 + 79)).toContain('CHECKSUM of HDU 1');
+    expect(sentence(79)).toContain('CHECKSUM of HDU 0');
   });
 });
 

@@ -49,7 +49,7 @@ export function parseAxisUnit(text: string): (ScaledAxisUnit & { log10: boolean 
   const factor = /^(?:(\d+(?:\.\d+)?)|10(?:\*\*|\^)(?:\(([+-]?\d+)\)|([+-]?\d+)))\s*[*. ]?\s*(?=\D)/.exec(plain.slice(0, 60));
   const scale = factor ? (factor[1] !== undefined ? Number(factor[1]) : 10 ** Number(factor[2] ?? factor[3])) : 1;
   const isReciprocal = plain.startsWith('1/');
-  const name = (factor && !isReciprocal ? plain.slice(factor[0].length) : plain).trim();
+  const name = (factor && !isReciprocal ? plain.slice(factor[0].length) : plain).trim().replace(/\.$/, '');
   const unit =
     SPELLINGS[name] ?? BY_WORD.get(name.toLowerCase().replace(/\s+/g, ' ')) ?? BY_WORD.get(name.toLowerCase().replace(/\s+/g, ''));
   if (!unit) return null;

@@ -31,7 +31,7 @@ export function readFits(context: ReadContext): RawSpectrum {
   const { hdu } = best.of;
   const headers = hdu.index === 0 ? [hdu.header] : [hdu.header, hdus[0]!.header];
   noteHeader(headers, warnings);
-  verifyChecksums(bytes, hdu, warnings);
+  for (const one of hdu.index === 0 ? [hdu] : [hdus[0]!, hdu]) verifyChecksums(bytes, one, warnings);
   const others = wanted ? look(hdus, hdus, null, { ...context, corrections: {} }).candidates : candidates;
   const otherPlaces = others.flatMap((other) => placesOf(other)).filter((place) => place !== corrections.place && place !== hdu.place);
   if (best.kind === 'table') return rawFromTable(best.of, headers, [...new Set([...best.of.places, ...otherPlaces])], context);
