@@ -30,7 +30,7 @@ describe('every page, by day and by night, on a desk and on a phone', () => {
   let browser: Browser;
   beforeAll(async () => {
     [fleet, browser] = await Promise.all([startFleet(), launch()]);
-  });
+  }, 120_000);
   afterAll(async () => {
     await browser?.close();
     await fleet?.close();
@@ -61,7 +61,7 @@ describe('every page, by day and by night, on a desk and on a phone', () => {
       await expectSound('sign-in');
       await signIn(seen.page, 'lead');
       demo = await analysedDemonstration(seen.page);
-    });
+    }, 200_000);
 
     it.each(SUBJECTS)('$page', async ({ page, path, heading }) => {
       await seen.page.goto(path(demo));

@@ -12,6 +12,9 @@ export interface Fleet {
   readonly databaseUrl: string;
   /** what the processes wrote */
   readonly log: readonly string[];
+  /** holds the worker still, so that a test can look at work that waits, and lets it go on */
+  pauseWorker(): void;
+  resumeWorker(): void;
   close(): Promise<void>;
 }
 
@@ -29,10 +32,19 @@ export async function startFleet(): Promise<Fleet> {
     const filled = run(['--import', 'tsx', '--conditions=foreveil-source', 'scripts/db.ts', 'migrate', 'seed-if-empty'], env, log);
     const [status] = (await once(filled, 'exit')) as [number];
     if (status !== 0) throw new Error(`the database could not be filled:\n${log.join('')}`);
-    processes.push(run(['server/dist/main.js'], env, log), run(['server/dist/worker.js'], env, log));
+    const api = run(['server/dist/main.js'], env, log);
+    const worker = run(['server/dist/worker.js'], env, log);
+    processes.push(api, worker);
     const url = `http://127.0.0.1:${env.PORT}`;
     await ready(url, processes, log);
-    return { url, databaseUrl: database.url, log, close };
+    return {
+      url,
+      databaseUrl: database.url,
+      log,
+      pauseWorker: () => void worker.kill('SIGSTOP'),
+      resumeWorker: () => void worker.kill('SIGCONT'),
+      close,
+    };
   } catch (error) {
     await close();
     throw error;
@@ -52,6 +64,7 @@ function run(args: string[], env: Record<string, string>, log: string[]): ChildP
 async function stop(child: ChildProcess): Promise<void> {
   if (child.exitCode !== null || child.signalCode !== null) return;
   const ended = once(child, 'exit');
+  child.kill('SIGCONT'); // one that is held still would not hear the next
   child.kill('SIGTERM');
   const force = setTimeout(() => child.kill('SIGKILL'), 10_000);
   await ended;
