@@ -1,3 +1,4 @@
+import './app/layers.css';
 import '@mantine/core/styles.layer.css';
 import '@mantine/dropzone/styles.layer.css';
 import '@mantine/notifications/styles.layer.css';

@@ -16,7 +16,7 @@ export function App() {
   return (
     <MantineProvider theme={theme} cssVariablesResolver={cssVariables} colorSchemeManager={schemes} defaultColorScheme="auto">
       <QueryClientProvider client={queryClient}>
-        <ModalsProvider>
+        <ModalsProvider modalProps={{ centered: true }} labels={{ confirm: 'Yes', cancel: 'No' }}>
           <Notifications position="bottom-right" autoClose={8000} />
           <RouterProvider router={router} />
         </ModalsProvider>

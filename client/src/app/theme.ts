@@ -1,4 +1,10 @@
-import { createTheme, type CSSVariablesResolver, type MantineColorsTuple } from '@mantine/core';
+import {
+  createTheme,
+  defaultVariantColorsResolver,
+  type CSSVariablesResolver,
+  type MantineColorsTuple,
+  type VariantColorsResolver,
+} from '@mantine/core';
 
 /** Our one colour of the interface: ink, from paper to full. There is no blue anywhere. */
 const INK: MantineColorsTuple = [
@@ -16,7 +22,17 @@ const INK: MantineColorsTuple = [
 
 const FONT = "'Inter Variable', system-ui, sans-serif";
 
+/** Ink on paper for `default`, paper on ink for `filled`; what else Mantine offers stays as it is. */
+const variants: VariantColorsResolver = (input) => {
+  if (input.variant === 'filled')
+    return { background: 'var(--act)', hover: 'var(--ink-2)', color: 'var(--on-act)', border: '1px solid transparent' };
+  if (input.variant === 'subtle')
+    return { background: 'transparent', hover: 'var(--hover)', color: 'var(--ink)', border: '1px solid transparent' };
+  return defaultVariantColorsResolver(input);
+};
+
 export const theme = createTheme({
+  variantColorResolver: variants,
   fontFamily: FONT,
   fontFamilyMonospace: FONT, // figures are tabular everywhere; a second face would only add noise
   headings: { fontFamily: FONT, fontWeight: '620' },

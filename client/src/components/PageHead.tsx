@@ -26,7 +26,7 @@ export function PageHead({ title, tab = title, simulated = false, sub, facts = [
       <title>{`${tab} · Foreveil`}</title>
       <div className={classes.name}>
         <h1>
-          {title} {simulated && <Simulated />}
+          <span>{title}</span> {simulated && <Simulated />}
         </h1>
         {sub && <p>{sub}</p>}
       </div>

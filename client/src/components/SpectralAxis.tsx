@@ -16,11 +16,12 @@ const LABEL_ROOM = 0.08;
 export function SpectralAxis({ axis, display }: Props) {
   return (
     <div className={classes.axis}>
-      {axis.map((piece) => {
+      {axis.map((piece, p) => {
         const ticks = axisTicks(piece.fromNm, piece.toNm, display, Math.max(2, Math.floor((piece.end - piece.start) / LABEL_ROOM)));
-        return ticks.map(({ nm, label }) => (
+        return ticks.map(({ nm, label }, t) => (
           <span key={nm} style={{ left: at(placeOf(nm, axis) ?? piece.start) }}>
             {label}
+            {p === 0 && t === 0 && <i>{display.unitLabel}</i>}
           </span>
         ));
       })}

@@ -25,10 +25,12 @@ const GROUPS: readonly Group[] = [
       ['n p', 'next, previous undecided line'],
       ['1 to 9', 'choose a candidate'],
       ['u', 'not in the list'],
+      ['o', 'propose'],
       ['a', 'accept'],
       ['x', 'reject'],
+      ['b', 'open a decided line again'],
       ['r', 'write a remark'],
-      ['Ctrl Z', 'take the last decision back'],
+      ['Ctrl Z', 'take your last decision back'],
     ],
   },
   {

@@ -30,7 +30,7 @@ export function Shell() {
         </div>
         <Pending />
       </AppShell.Header>
-      <AppShell.Main id="content" ref={main} tabIndex={-1}>
+      <AppShell.Main id="content" ref={main} tabIndex={-1} className={classes.page}>
         <ConnectionNote liveness={liveness} />
         <Outlet />
       </AppShell.Main>

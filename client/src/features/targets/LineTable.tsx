@@ -96,7 +96,9 @@ function LineRow({ programmeId, line, display }: { programmeId: string; line: Id
         <Link to={pagePaths.spectrum(programmeId, line.spectrumId)}>{line.spectrumLabel}</Link>
       </td>
       <td>{line.decidedBy ?? NO_NUMBER}</td>
-      <td className={classes.quiet}>{line.lineSource ?? NO_NUMBER}</td>
+      <td className={classes.source} title={line.lineSource ?? undefined}>
+        {line.lineSource ?? NO_NUMBER}
+      </td>
     </tr>
   );
 }

@@ -7,7 +7,7 @@ import { FileFace } from './FileFace.js';
 import { ReadingFacts } from './ReadingFacts.js';
 import classes from './upload.module.css';
 import { VerdictColumn } from './VerdictColumn.js';
-import { withCorrection } from './words.js';
+import { FRAME_WORD, MEDIUM_WORD, withCorrection } from './words.js';
 
 export interface BandActs {
   onCorrect: (corrections: ReadingCorrections) => void;
@@ -28,23 +28,20 @@ interface Props extends BandActs {
 export function FileBand({ programmeId, targets, entry, ...acts }: Props) {
   const { file, read, corrections } = entry;
   const state = verdict(entry);
-  const closed = state === 'sending' || state === 'added' || state === 'duplicate';
+  const done = state === 'added' || state === 'duplicate';
   return (
     <section className={classes.file} aria-label={file.name} data-state={state} aria-busy={state === 'reading' || undefined}>
       <div className={classes.face}>
         <h2>
           {file.name} <span>{sizeWords(entry)}</span>
         </h2>
-        {read?.ok ? <FileFace face={read.face} name={file.name} /> : <NoCurve words={read ? 'no curve: it cannot be read' : 'reading'} />}
+        {read?.ok ? (
+          <FileFace face={read.face} name={file.name} small={done} />
+        ) : (
+          <NoCurve words={read ? 'no curve: it cannot be read' : 'reading'} />
+        )}
       </div>
-      {read?.ok ? (
-        <fieldset disabled={closed} className={classes.fields}>
-          <legend className={classes.unseen}>What was read of {file.name}</legend>
-          <ReadingFacts entry={entry} reading={read.reading} targets={targets} {...acts} />
-        </fieldset>
-      ) : (
-        <Offending lines={read?.lines ?? []} />
-      )}
+      <BandMiddle targets={targets} entry={entry} {...acts} />
       <VerdictColumn
         programmeId={programmeId}
         entry={entry}
@@ -53,6 +50,30 @@ export function FileBand({ programmeId, targets, entry, ...acts }: Props) {
         onTakeBack={() => acts.onCorrect(NO_CORRECTIONS)}
       />
     </section>
+  );
+}
+
+/** The reading with its controls; what it was sent as, once it is sent; the lines at fault of a file that cannot be read. */
+function BandMiddle({ targets, entry, ...acts }: Omit<Props, 'programmeId'>) {
+  const { file, read, target, label } = entry;
+  const state = verdict(entry);
+  if (!read?.ok) return <Offending lines={read?.lines ?? []} />;
+  const { medium, frame } = read.reading;
+  if (state === 'added' || state === 'duplicate') {
+    return (
+      <div className={classes.sent}>
+        <b>{state === 'added' ? `${target.name}, ${label}` : file.name}</b>
+        <span>
+          {MEDIUM_WORD[medium.value]}, frame {FRAME_WORD[frame.value]}
+        </span>
+      </div>
+    );
+  }
+  return (
+    <fieldset disabled={state === 'sending'} className={classes.fields}>
+      <legend className={classes.unseen}>What was read of {file.name}</legend>
+      <ReadingFacts entry={entry} reading={read.reading} targets={targets} {...acts} />
+    </fieldset>
   );
 }
 

@@ -1,6 +1,7 @@
-import { Button, Select, TextInput } from '@mantine/core';
+import { Button, TextInput } from '@mantine/core';
 import type { Reading, ReadingCorrections, TargetSummary } from '@foreveil/shared';
 import { useState } from 'react';
+import { Pick } from '../../components/Pick.js';
 import { counted, fixed, NO_NUMBER, parseNumber } from '../../lib/number.js';
 import { day } from '../../lib/time.js';
 import { NO_CORRECTIONS } from './entries.js';
@@ -61,12 +62,7 @@ const columnOptions = (columns: readonly string[]) => [...new Set(columns)].map(
 const PlaceFact = ({ reading: { place, otherPlaces }, correct }: PartProps) => (
   <FactRow label="Part of the file" how={{ words: counted(otherPlaces.length, 'more part'), loud: false }}>
     {(id) => (
-      <Select
-        aria-labelledby={id}
-        data={columnOptions([place, ...otherPlaces])}
-        value={place}
-        onChange={(value) => correct('place', value ?? undefined)}
-      />
+      <Pick labelledBy={id} options={columnOptions([place, ...otherPlaces])} value={place} onPick={(value) => correct('place', value)} />
     )}
   </FactRow>
 );
@@ -76,23 +72,13 @@ function AxisFact({ reading: { wavelengthColumn, columns, axisUnit, firstNm, las
     <FactRow label="Wavelength" how={howKnown(axisUnit)}>
       {(id) => (
         <>
-          {columns.length > 1 ? (
-            <Select
-              aria-label="Wavelength column"
-              data={columnOptions(columns.includes(wavelengthColumn) ? columns : [wavelengthColumn, ...columns])}
-              value={wavelengthColumn}
-              onChange={(value) => correct('wavelengthColumn', value ?? undefined)}
-            />
-          ) : (
-            <span>{wavelengthColumn}</span>
-          )}
-          <Select
-            aria-labelledby={id}
-            className={classes.short}
-            data={optionsOf(UNIT_WORD)}
-            value={axisUnit.value}
-            onChange={(value) => correct('axisUnit', value ?? undefined)}
+          <ColumnPick
+            label="Wavelength column"
+            columns={columns}
+            value={wavelengthColumn}
+            onPick={(value) => correct('wavelengthColumn', value)}
           />
+          <Pick labelledBy={id} options={optionsOf(UNIT_WORD)} value={axisUnit.value} onPick={(value) => correct('axisUnit', value)} />
           <span className={classes.range}>
             {fixed(Math.min(firstNm, lastNm), 2)}–{fixed(Math.max(firstNm, lastNm), 2)} nm
           </span>
@@ -102,17 +88,29 @@ function AxisFact({ reading: { wavelengthColumn, columns, axisUnit, firstNm, las
   );
 }
 
+interface ColumnProps {
+  label: string;
+  columns: readonly string[];
+  value: string;
+  onPick: (column: string) => void;
+}
+
+/** A choice among the file's columns; where there is none, the name alone. */
+function ColumnPick({ label, columns, value, onPick }: ColumnProps) {
+  if (columns.length < 2) return <span>{value}</span>;
+  return <Pick label={label} options={columnOptions([value, ...columns])} value={value} onPick={onPick} />;
+}
+
 const MediumFact = ({ reading: { medium }, correct }: PartProps) => (
   <FactRow label="Medium" how={howKnown(medium)}>
     {(id) => (
-      <Select
-        aria-labelledby={id}
-        className={classes.medium}
-        data-ask={medium.how === 'not_stated' || undefined}
-        placeholder="choose"
-        data={optionsOf(MEDIUM_WORD)}
+      <Pick
+        labelledBy={id}
+        options={optionsOf(MEDIUM_WORD)}
         value={medium.how === 'not_stated' ? null : medium.value}
-        onChange={(value) => correct('medium', value ?? undefined)}
+        placeholder="choose"
+        asks={medium.how === 'not_stated'}
+        onPick={(value) => correct('medium', value)}
       />
     )}
   </FactRow>
@@ -120,38 +118,20 @@ const MediumFact = ({ reading: { medium }, correct }: PartProps) => (
 
 const FrameFact = ({ reading: { frame }, correct }: PartProps) => (
   <FactRow label="Frame" how={howKnown(frame)}>
-    {(id) => (
-      <Select
-        aria-labelledby={id}
-        data={optionsOf(FRAME_WORD)}
-        value={frame.value}
-        onChange={(value) => correct('frame', value ?? undefined)}
-      />
-    )}
+    {(id) => <Pick labelledBy={id} options={optionsOf(FRAME_WORD)} value={frame.value} onPick={(value) => correct('frame', value)} />}
   </FactRow>
 );
 
 function FluxFact({ reading: { fluxColumn, columns, fluxKind, fluxUnit }, correct }: PartProps) {
-  const unit = fluxUnit.value || 'no unit';
+  const { words, loud } = howKnown(fluxKind);
+  const how = { words: fluxKind.value === 'unknown' ? `${words}; taken as per wavelength` : words, loud };
   return (
-    <FactRow label="Flux" how={howKnown(fluxKind)}>
+    <FactRow label="Flux" how={how}>
       {(id) => (
         <>
-          {columns.length > 1 && (
-            <Select
-              aria-label="Flux column"
-              data={columnOptions([fluxColumn, ...columns])}
-              value={fluxColumn}
-              onChange={(value) => correct('fluxColumn', value ?? undefined)}
-            />
-          )}
-          <Select
-            aria-labelledby={id}
-            data={optionsOf(FLUX_WORD)}
-            value={fluxKind.value}
-            onChange={(value) => correct('fluxKind', value ?? undefined)}
-          />
-          <span className={classes.range}>{unit}</span>
+          <ColumnPick label="Flux column" columns={columns} value={fluxColumn} onPick={(value) => correct('fluxColumn', value)} />
+          <Pick labelledBy={id} options={optionsOf(FLUX_WORD)} value={fluxKind.value} onPick={(value) => correct('fluxKind', value)} />
+          <span className={classes.range}>{fluxUnit.value || 'no unit'}</span>
         </>
       )}
     </FactRow>
@@ -162,25 +142,23 @@ const NO_COLUMN = '(none)';
 
 function ErrorFact({ reading: { uncertaintyColumn, uncertaintyKind, columns }, correct }: PartProps) {
   const how = uncertaintyColumn === null ? { words: 'from the scatter', loud: true } : howKnown(uncertaintyKind);
+  const names = uncertaintyColumn === null ? columns : [uncertaintyColumn, ...columns];
   return (
     <FactRow label="Error" how={how}>
       {(id) => (
         <>
-          <Select
-            aria-labelledby={id}
-            data={[
-              { value: NO_COLUMN, label: 'none in the file' },
-              ...columnOptions(uncertaintyColumn === null ? columns : [uncertaintyColumn, ...columns]),
-            ]}
+          <Pick
+            labelledBy={id}
+            options={[{ value: NO_COLUMN, label: 'none in the file' }, ...columnOptions(names)]}
             value={uncertaintyColumn ?? NO_COLUMN}
-            onChange={(value) => correct('uncertaintyColumn', value === NO_COLUMN ? null : (value ?? undefined))}
+            onPick={(value) => correct('uncertaintyColumn', value === NO_COLUMN ? null : value)}
           />
           {uncertaintyColumn !== null && (
-            <Select
-              aria-label="Kind of error"
-              data={optionsOf(ERROR_WORD)}
+            <Pick
+              label="Kind of error"
+              options={optionsOf(ERROR_WORD)}
               value={uncertaintyKind.value}
-              onChange={(value) => correct('uncertaintyKind', value ?? undefined)}
+              onPick={(value) => correct('uncertaintyKind', value)}
             />
           )}
         </>

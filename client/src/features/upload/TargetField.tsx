@@ -1,5 +1,6 @@
-import { Autocomplete, Select, TextInput } from '@mantine/core';
-import type { TargetKind, TargetSummary } from '@foreveil/shared';
+import { Autocomplete, TextInput } from '@mantine/core';
+import type { TargetSummary } from '@foreveil/shared';
+import { Pick } from '../../components/Pick.js';
 import { KIND_WORD } from '../../lib/kinds.js';
 import { sameTarget, type Entry, type TargetChoice } from './entry.js';
 import { FactRow } from './FactRow.js';
@@ -33,18 +34,18 @@ export function TargetField({ entry: { target, read }, targets, onRetarget }: Pr
             aria-labelledby={id}
             data={targets.map(({ name }) => name)}
             value={target.name}
+            className={classes.text}
             maxLength={120}
             limit={30}
             error={!target.name.trim() && 'Name the target.'}
             onChange={(name) => onRetarget({ name, kind: sameTarget(name, targets)?.kind ?? target.kind, why: 'chosen' })}
           />
           {!existing && (
-            <Select
-              aria-label="Kind of the new target"
-              className={classes.short}
-              data={optionsOf(KIND_WORD)}
+            <Pick
+              label="Kind of the new target"
+              options={optionsOf(KIND_WORD)}
               value={target.kind}
-              onChange={(kind) => onRetarget({ ...target, kind: kind as TargetKind, why: 'chosen' })}
+              onPick={(kind) => onRetarget({ ...target, kind, why: 'chosen' })}
             />
           )}
         </>
@@ -58,6 +59,7 @@ export const LabelField = ({ label, onRelabel }: { label: string; onRelabel: (la
     {(id) => (
       <TextInput
         aria-labelledby={id}
+        className={classes.text}
         value={label}
         maxLength={120}
         error={!label.trim() && 'Give it a name.'}

@@ -19,6 +19,7 @@ export function useLeaveGuard(entries: readonly Entry[]) {
         </p>
       ),
       labels: { confirm: 'Leave', cancel: 'Stay' },
+      confirmProps: { variant: 'filled' },
       onConfirm: () => blocker.proceed(),
       onCancel: () => blocker.reset(),
     });
