@@ -1,4 +1,4 @@
-import { newComponent, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
+import { newComponent, ROUGH, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
 import { C_KM_PER_S } from '../units/index.js';
 import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
@@ -50,7 +50,7 @@ export function detect(input: DetectionInput): Detection {
     if (fresh.length === 0 && !zeroMean) break;
     if (rotation) applyRotation(fresh, rotation);
     model.add(fresh);
-    model.refit(2, round === 0 ? undefined : nearTo(model, fresh));
+    model.refit(2, round === 0 ? undefined : nearTo(model, fresh), ROUGH);
     pruneWeak(model, threshold * 0.8);
     if (round === 0) {
       rotation = findRotation(model, resolvingPower);
@@ -59,7 +59,7 @@ export function detect(input: DetectionInput): Detection {
       model.refresh();
       gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
       dropNeedless(model, threshold, tolerantOf(model), rotation);
-      model.refit(1);
+      model.refit(1, undefined, ROUGH);
     }
     model.refresh();
   }
@@ -69,7 +69,7 @@ export function detect(input: DetectionInput): Detection {
   dropNeedless(model, threshold, tolerantOf(model), rotation);
   mergeShreds(model, threshold, tolerantOf(model));
   splitBlends(model, threshold, resolvingPower);
-  model.refit(2);
+  model.refit(1, undefined, ROUGH);
   pruneWeak(model, threshold);
   model.refit(1);
   model.refresh();

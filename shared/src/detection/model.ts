@@ -36,7 +36,7 @@ export class LineModel {
   }
 
   /** Refits all blends that hold one of `touched` (all when absent), `sweeps` times over; broad profiles first in each sweep. */
-  refit(sweeps: number, touched?: ReadonlySet<Component>): void {
+  refit(sweeps: number, touched?: ReadonlySet<Component>, precision?: number): void {
     for (let sweep = 0; sweep < sweeps; sweep++) {
       this.components.sort((a, b) => a.centre - b.centre);
       const blends = blendsOf(this.components).filter((b) => !touched || b.some((c) => touched.has(c)));
@@ -44,7 +44,7 @@ export class LineModel {
       const near = new Neighbours(this.components);
       for (const blend of blends) {
         const middle = blend[blend.length >> 1]!;
-        fitBlend(this.data, blend, near.of(blend), this.limitsAt(middle.centre));
+        fitBlend(this.data, blend, near.of(blend), this.limitsAt(middle.centre), undefined, precision);
       }
     }
     this.components.sort((a, b) => a.centre - b.centre);

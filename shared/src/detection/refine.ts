@@ -1,4 +1,4 @@
-import { asDamped, fitBlend, GAUSSIAN, newComponent, rangeOf, rotationShape, settle, withCore, type Component, type NormalisedSamples, type Shape } from '../profiles/index.js';
+import { asDamped, chi2Of, fitBlend, GAUSSIAN, newComponent, rangeOf, rotationShape, ROUGH, settle, withCore, type Component, type NormalisedSamples, type Shape } from '../profiles/index.js';
 import type { LineModel } from './model.js';
 
 /** Takes out components that the joint fit no longer supports. */
@@ -13,7 +13,7 @@ export function pruneWeak(model: LineModel, threshold: number): void {
   if (gone.size === 0) return;
   const touched = new Set(model.components.filter((c) => !gone.has(c) && [...gone].some((g) => Math.abs(g.centre - c.centre) < 1.5 * (g.fwhm + c.fwhm))));
   model.remove(gone);
-  model.refit(1, touched);
+  model.refit(1, touched, ROUGH);
 }
 
 const SPECIAL_SIGNIFICANCE = 25; // a shape can be told from a Gaussian only in strong lines
@@ -120,7 +120,7 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
     let best: Component | null = null;
     let bestChi2 = Infinity;
     for (const trial of trials) {
-      const chi2 = fitBlend(model.data, [trial], others, model.limitsAt(c.centre), range).chi2 + (trial.damped ? DAMPED_GAIN : 0);
+      const chi2 = fitBlend(model.data, [trial], others, model.limitsAt(c.centre), range, ROUGH).chi2 + (trial.damped ? DAMPED_GAIN : 0);
       if (chi2 < bestChi2) [best, bestChi2] = [trial, chi2];
     }
     if (best) Object.assign(c, best);
@@ -129,6 +129,7 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
 
 const CROWD_WIDTH = 0.18; // of the strong line's FWHM: narrower components are lines of their own
 const CROWD_REACH = 1.8; // FWHM
+const LARGEST_CROWD = 6; // refitted together before the comparison
 
 /**
  * One damped profile in place of a crowd of broad components around a strong line, where the data are content with it. Real lines that
@@ -145,7 +146,7 @@ export function gatherDamped(model: LineModel, threshold: number, tolerant: Norm
     const others = model.overlapping([c, ...crowd]);
     const limits = model.limitsAt(c.centre);
     const range = rangeOf([c, ...crowd]);
-    const now = fitBlend(tolerant, [{ ...c }, ...crowd.map((o) => ({ ...o }))], others, limits, range).chi2;
+    const now = Math.min(chi2Of(tolerant, [c, ...crowd, ...others], range), fitBlend(tolerant, [{ ...c }, ...crowd.slice(0, LARGEST_CROWD).map((o) => ({ ...o }))], [...others, ...crowd.slice(LARGEST_CROWD)], limits, range, ROUGH).chi2);
     const one = c.damped ? { ...c } : asDamped(c);
     const alone = fitBlend(tolerant, [one], others, limits, range).chi2;
     if (alone > now + threshold * threshold * crowd.length) continue;

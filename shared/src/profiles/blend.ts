@@ -1,6 +1,6 @@
 import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
 import { look, settle, type Component } from './component.js';
-import { dampedExtent, dampedInto, dampedTable, type DampedTable } from './damped.js';
+import { dampedInto, dampedTable, type DampedTable } from './damped.js';
 import { addComponent, indexAt, type NormalisedSamples } from './samples.js';
 
 export interface BlendLimits {
@@ -15,6 +15,9 @@ export interface BlendFit {
 }
 
 const MAX_ITERATIONS = 14;
+const FINE = 1e-3;
+/** Chi-square that a step must gain for the fit to go on, while features are still being found. */
+export const ROUGH = 0.02;
 const DAMPED_RANGE = 4; // FWHM; wings further out carry hardly any weight on the parameters
 const SIMPLE = 3; // parameters: amplitude, centre, ln scale
 const DAMPED = 5; // and ln tau, a
@@ -31,6 +34,20 @@ export function rangeOf(components: readonly Component[]): readonly [number, num
     high = Math.max(high, c.centre + r);
   }
   return [low, high];
+}
+
+/** Chi-square of components as they stand over a range (nm). */
+export function chi2Of(data: NormalisedSamples, components: readonly Component[], range: readonly [number, number]): number {
+  const from = indexAt(data.wavelength, range[0]);
+  const to = indexAt(data.wavelength, range[1]);
+  grow(to - from, 0);
+  const { base, add } = scratch;
+  base.fill(1, 0, to - from);
+  add.fill(0, 0, to - from);
+  for (const c of components) addComponent(c, data.wavelength, from, to, base, add);
+  let chi2 = 0;
+  for (let i = from; i < to; i++) chi2 += data.weight[i]! * (data.flux[i]! - base[i - from]! - add[i - from]!) ** 2;
+  return chi2;
 }
 
 /** Scratch of one fit, grown when needed and reused: a loop over blends allocates nothing big. */
@@ -73,9 +90,10 @@ interface Slot {
  * analytic derivatives. Writes parameters and their 1-sigma errors into the free components; errors come from the undamped normal matrix.
  * @param free components to move
  * @param others components that overlap their range
+ * @param precision chi-square that a step must gain for the fit to go on
  * @param range wavelengths (nm) whose samples count; by default what the free components cover. Fits to be compared need the same range
  */
-export function fitBlend(data: NormalisedSamples, free: Component[], others: readonly Component[], limits: BlendLimits, range = rangeOf(free)): BlendFit {
+export function fitBlend(data: NormalisedSamples, free: Component[], others: readonly Component[], limits: BlendLimits, range = rangeOf(free), precision = FINE): BlendFit {
   const from = indexAt(data.wavelength, range[0]);
   const to = indexAt(data.wavelength, range[1]);
   let parameters = 0;
@@ -113,7 +131,7 @@ export function fitBlend(data: NormalisedSamples, free: Component[], others: rea
       const gain = chi2 - next;
       chi2 = next;
       damping = Math.max(damping * 0.2, 1e-9);
-      if (gain < 1e-3 + 1e-6 * chi2) {
+      if (gain < precision + 1e-6 * chi2) {
         end = 'converged';
         break;
       }
@@ -253,7 +271,7 @@ function shapeDerivatives(c: Component): { fwhm: number[]; area: number[] } {
   if (!c.damped) return { fwhm: [], area: [] };
   const { tau, a } = c.damped;
   const h = 0.01;
-  const here = dampedExtent(c.damped);
-  const there = [dampedExtent({ tau: tau * Math.exp(h), a }), dampedExtent({ tau, a: a + h })];
+  const here = dampedTable(c.damped);
+  const there = [dampedTable({ tau: tau * Math.exp(h), a }), dampedTable({ tau, a: a + h })];
   return { fwhm: there.map((t) => Math.log(t.fwhm / here.fwhm) / h), area: there.map((t) => Math.log(t.area / here.area) / h) };
 }

@@ -43,38 +43,14 @@ function dampedPeak({ tau, a }: DampedShape): DampedPeak {
   return { norm: -Math.expm1(-tau * h), byLogTau: tau * h * left, byA: tau * slopeA * left };
 }
 
-/** FWHM and area in Doppler widths, and the distance beyond which less than `TAIL` of the peak is left. */
-export function dampedExtent(shape: DampedShape): { fwhm: number; area: number; reach: number } {
-  const peak = dampedPeak(shape);
-  const value = (u: number): number => {
-    faddeevaInto(held, u, shape.a);
-    return -Math.expm1(-shape.tau * held[0]!) / peak.norm;
-  };
-  let low = 0;
-  let high = 1;
-  while (value(high) > 0.5) high *= 2;
-  for (let i = 0; i < 40; i++) {
-    const mid = 0.5 * (low + high);
-    if (value(mid) > 0.5) low = mid;
-    else high = mid;
-  }
-  const wing = (shape.tau * shape.a) / Math.sqrt(Math.PI) / peak.norm; // phi -> wing / u^2
-  const reach = Math.max(3.5 * high, Math.min(Math.sqrt(wing / TAIL), 24 * high));
-  const steps = 160;
-  // Simpson on a stretched grid, dense at the core, then the wing beyond
-  let area = 0;
-  let before = 0;
-  const at = (k: number): number => reach * (k / steps) ** 2;
-  for (let k = 0; k < steps; k++) {
-    const [x0, x1] = [at(k), at(k + 1)];
-    const [f0, fm, f1] = [k ? before : 1, value(0.5 * (x0 + x1)), value(x1)];
-    area += ((x1 - x0) / 6) * (f0 + 4 * fm + f1);
-    before = f1;
-  }
-  return { fwhm: 2 * high, area: 2 * (area + wing / reach), reach };
-}
-
 const TAIL = 7e-4;
+
+/** Distance beyond which less than TAIL of the peak is left, in Doppler widths; at least the core, at most 80 Doppler widths. */
+function reachOf({ tau, a }: DampedShape, norm: number): number {
+  const wing = (tau * a) / Math.sqrt(Math.PI) / norm; // phi tends to wing / u^2
+  const core = Math.sqrt(Math.max(1, Math.log(Math.max(tau, 1) / TAIL)));
+  return Math.min(Math.max(core, Math.sqrt(wing / TAIL)), Math.max(core, 80));
+}
 
 const NODES = 384;
 const COLUMNS = 4;
@@ -87,21 +63,35 @@ export interface DampedTable {
   readonly values: Float64Array;
 }
 
+/** FWHM and area from the nodes; what the wings hold beyond the table, phi u^2 being constant there, is added to the area. */
+function extentOf(values: Float64Array, reach: number): { fwhm: number; area: number } {
+  const node = (k: number): number => reach * (k / NODES) ** 2;
+  const last = NODES - 1;
+  let half = last;
+  let area = 0;
+  for (let k = 0; k < last; k++) {
+    const [now, next] = [values[k * COLUMNS]!, values[(k + 1) * COLUMNS]!];
+    area += 0.5 * (now + next) * (node(k + 1) - node(k));
+    if (half === last && next < 0.5) half = k + (now - 0.5) / (now - next);
+  }
+  return { fwhm: 2 * node(half), area: 2 * (area + values[last * COLUMNS]! * node(last)) };
+}
+
 const tables = new WeakMap<DampedShape, DampedTable>();
 
 /** The table of a shape, made when first asked for; shapes are never changed in place. */
 export function dampedTable(shape: DampedShape): DampedTable {
   let table = tables.get(shape);
   if (!table) {
-    const extent = dampedExtent(shape);
     const peak = dampedPeak(shape);
+    const reach = reachOf(shape, peak.norm);
     const values = new Float64Array((NODES + 2) * COLUMNS);
     const row = new Float64Array(COLUMNS);
     for (let k = 0; k < NODES; k++) {
-      exactInto(row, shape, extent.reach * (k / NODES) ** 2, peak);
+      exactInto(row, shape, reach * (k / NODES) ** 2, peak);
       values.set(row, k * COLUMNS);
     }
-    table = { ...extent, values };
+    table = { reach, values, ...extentOf(values, reach) };
     tables.set(shape, table);
   }
   return table;
