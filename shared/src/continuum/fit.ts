@@ -2,6 +2,7 @@ import type { AnalysisSettings, Continuum } from '../identify/analysis.js';
 import type { NoiseModel } from '../noise/index.js';
 import type { Spectrum } from '../spectrum/index.js';
 import { cutBlocks, type Blocks } from './blocks.js';
+import { trustBesideHydrogen } from './hydrogen.js';
 import { extinctionCurve } from './extinction.js';
 import { flatLevel, tracedLevel } from './fallback.js';
 import { lnPlanck, wienPeakNm } from './planck.js';
@@ -43,7 +44,9 @@ export function fitContinuum(spectrum: Spectrum, noise: NoiseModel, settings: An
   const planck = startPlanck(blocks, start.values, known);
   const reason = reasonForLocal(spectrum, settings, start, planck);
   const fit = reason ? null : fitPlanckModel(spectrum, noise, settings.extinctionAv, blocks, start, planck.temperatureK, known);
-  return fit ?? fitLocalModel(spectrum, noise, blocks, start, reason ?? 'no_fit') ?? tracedLevel(spectrum, noise, blocks);
+  return (
+    fit ?? fitLocalModel(spectrum, noise, blocks, start, planck.temperatureK, reason ?? 'no_fit') ?? tracedLevel(spectrum, noise, blocks)
+  );
 }
 
 /** Why no Planck curve is tried, or null. */
@@ -69,14 +72,16 @@ function fitPlanckModel(
   startK: number,
   known: (nm: number) => number,
 ): ContinuumFit | null {
-  const model = makeSmoothModel(blocks, (nm) => lnPlanck(nm, startK) + known(nm), startK, ORDERS);
+  const trust = trustBesideHydrogen(blocks, start, startK);
+  const base = (nm: number) => lnPlanck(nm, startK) + known(nm);
+  const model = makeSmoothModel(blocks, base, startK, ORDERS);
   const free = { temperature: true, extinction: given === null, response: CALIBRATED };
-  const refined = refine(spectrum, noise, blocks, model, start.values, start.pull, free);
+  const refined = refine(spectrum, noise, blocks, model, start, free, trust);
   if (!refined) return null;
   const quality = describeQuality(spectrum, blocks, refined);
   const placement = placementSigma(refined, model, noise, quality);
   const extinction = given === null ? beliefInExtinction(spectrum, refined.space, placement) : GIVEN_EXTINCTION;
-  const belief = judgeTemperature(blocks, model, refined.values, extinction, known);
+  const belief = judgeTemperature(blocks, model, refined, extinction, known);
   const verdict = verdictOn(belief, quality, { fromNm: blocks.edgeNm[0]!, toNm: blocks.edgeNm[blocks.count]!, givenAv: given });
   return assemble('planck', refined, blocks, quality, placement, verdict);
 }
@@ -89,10 +94,17 @@ const LOCAL_STATEMENTS: Record<LocalReason, string> = {
   no_fit: 'No Planck curve could be fitted, and the continuum was traced locally.',
 };
 
-function fitLocalModel(spectrum: Spectrum, noise: NoiseModel, blocks: Blocks, start: Start, reason: LocalReason): ContinuumFit | null {
-  const model = makeSmoothModel(blocks, () => 0, 6000, ORDERS);
+function fitLocalModel(
+  spectrum: Spectrum,
+  noise: NoiseModel,
+  blocks: Blocks,
+  start: Start,
+  startK: number,
+  reason: LocalReason,
+): ContinuumFit | null {
+  const model = makeSmoothModel(blocks, () => 0, startK, ORDERS);
   const free = { temperature: false, extinction: false, response: ANY_SHAPE };
-  const refined = refine(spectrum, noise, blocks, model, start.values, start.pull, free);
+  const refined = refine(spectrum, noise, blocks, model, start, free, trustBesideHydrogen(blocks, start, startK));
   if (!refined) return null;
   const quality = describeQuality(spectrum, blocks, refined);
   return assemble('local', refined, blocks, quality, placementSigma(refined, model, noise, quality), {

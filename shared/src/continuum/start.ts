@@ -62,7 +62,8 @@ export function startValues(spectrum: Spectrum, noise: NoiseModel, blocks: Block
     const v = quartiles[3 * b + which]! - (which - 1) * QUARTILE_SIGMA * sigma(b);
     if (!(v > 0)) continue;
     values.value[b] = Math.log(v);
-    values.weight[b] = (v / sigma(b)) ** 2;
+    // a quartile of m samples is good to 1.36 sigma / sqrt(m)
+    values.weight[b] = (v / sigma(b)) ** 2 * (Math.min(SAMPLES, blocks.first[b + 1]! - blocks.first[b]!) / 1.85);
   }
   return { values, pull };
 }

@@ -24,6 +24,12 @@ export interface TemperatureBelief {
   readonly av: number;
 }
 
+/** Block values of the continuum, and the ripple among them if there is one. */
+interface Fitted {
+  readonly values: BlockValues;
+  readonly ripple: Float64Array | null;
+}
+
 const LN_HIGH = Math.log(200_000);
 /** The coolest temperature tried has its peak at this many times the longest wavelength. */
 const COOLEST = 8;
@@ -65,11 +71,11 @@ function cellsFor({ av, width, mass }: ExtinctionBelief, { q2 }: Nuisance): Cell
 export function judgeTemperature(
   blocks: Blocks,
   model: SmoothModel,
-  values: BlockValues,
+  fitted: Fitted,
   extinction: ExtinctionBelief,
   known: (nm: number) => number,
 ): TemperatureBelief {
-  const problem = makeProblem(blocks, model, values, known);
+  const problem = makeProblem(blocks, model, fitted, known);
   const lnLow = Math.log(wienPeakNm(blocks.edgeNm[blocks.count]!) / COOLEST);
   const middling = [problem.nuisances[MIDDLING]!];
   const probability = (belief: ExtinctionBelief, nuisances: readonly Nuisance[]) => {
@@ -103,11 +109,25 @@ interface Problem {
   readonly solved: Float64Array;
 }
 
-function makeProblem(blocks: Blocks, model: SmoothModel, values: BlockValues, known: (nm: number) => number): Problem {
+/** Extra variance of a block for a ripple that is not averaged over: its mean square, times the number of blocks in half a wave. */
+function rippleVariance(ripple: Float64Array | null): number {
+  if (!ripple) return 0;
+  let squares = 0;
+  let halfWaves = 1;
+  for (let b = 0; b < ripple.length; b++) {
+    squares += ripple[b]! * ripple[b]!;
+    if (b > 0 && ripple[b]! * ripple[b - 1]! < 0) halfWaves++;
+  }
+  return squares / halfWaves;
+}
+
+function makeProblem(blocks: Blocks, model: SmoothModel, { values, ripple }: Fitted, known: (nm: number) => number): Problem {
   const pick = [SCALE, ...(model.hasJump ? [JUMP] : []), ...Array.from({ length: ORDERS }, (_, k) => RESPONSE + k)];
   const m = pick.length;
   const perRow = Math.max(1, Math.floor(blocks.count / ROWS));
   const groups = Math.ceil(blocks.count / perRow);
+  const excess = rippleVariance(ripple);
+  const weightOf = (b: number) => (values.weight[b]! > 0 ? 1 / (1 / values.weight[b]! + excess) : 0);
   const centreNm = new Float64Array(groups);
   const value = new Float64Array(groups);
   const weight = new Float64Array(groups);
@@ -118,11 +138,11 @@ function makeProblem(blocks: Blocks, model: SmoothModel, values: BlockValues, kn
     const from = g * perRow;
     const to = Math.min(blocks.count, from + perRow);
     let sum = 0;
-    for (let b = from; b < to; b++) sum += values.weight[b]!;
+    for (let b = from; b < to; b++) sum += weightOf(b);
     if (!(sum > 0)) continue;
     weight[used] = sum;
     for (let b = from; b < to; b++) {
-      const share = values.weight[b]! / sum;
+      const share = weightOf(b) / sum;
       if (share === 0) continue;
       const nm = blocks.centreNm[b]!;
       centreNm[used] = centreNm[used]! + share * nm;

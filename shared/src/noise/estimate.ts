@@ -10,6 +10,8 @@ const SHORTEST_WINDOW = 40;
 const CHECKED_WINDOWS = 120;
 /** A stated sigma is left alone when the scatter agrees with it within this factor. */
 const TOLERATED = 1.2;
+/** The scatter of n samples is measured to this over root n, three sigma. */
+const MEASURED_TO = 4;
 /** Lines everywhere raise the scatter of direct neighbours by this much, rarely more. */
 const LARGEST_BY_LINES = 1.5;
 /** Neighbouring windows that are smoothed together, to each side (an eighth of all, if that is fewer), and the quantile of them that is taken: lines only raise a window. */
@@ -45,7 +47,7 @@ const strideFor = (n: number, length: number) => Math.max(1, Math.floor(n / leng
 
 /** A stated sigma against what the scatter tells. */
 function checked(sigma: Float64Array, structure: NoiseStructure): NoiseModel {
-  const { correlation, factor } = verdict(structure);
+  const { correlation, factor } = verdict(structure, TOLERATED * (1 + MEASURED_TO / Math.sqrt(sigma.length)));
   if (factor === 1) return { sigma, how: 'stated', correlation, rescale: 1 };
   return { sigma: sigma.map((s) => s * factor), how: 'stated_rescaled', correlation, rescale: factor };
 }
@@ -56,20 +58,18 @@ interface Tied {
 }
 const AS_STATED: Tied = { correlation: [1], factor: 1 };
 
-function verdict({ neighbours, sigma, correlation, lineFree, smooth }: NoiseStructure): Tied {
+function verdict({ neighbours, sigma, correlation, lineFree, smooth }: NoiseStructure, tolerated: number): Tied {
   if (!(neighbours > 0)) return AS_STATED;
-  const asStated = neighbours > 1 / TOLERATED && neighbours < LARGEST_BY_LINES;
+  const asStated = neighbours > 1 / tolerated && neighbours < LARGEST_BY_LINES;
   if (smooth && asStated) return AS_STATED; // white noise as stated, and nothing but lines above it
   const white = correlation.length === 1;
   const measured = white ? Math.min(neighbours, sigma) : sigma;
-  if (lineFree) return { correlation, factor: clearlyOff(measured) ? measured : 1 };
+  if (lineFree) return { correlation, factor: measured > tolerated || measured < 1 / tolerated ? measured : 1 };
   // lines everywhere: neighbours that scatter as stated, or a little more, agree with white noise of the stated size
   if (neighbours > LARGEST_BY_LINES) return { correlation: [1], factor: neighbours };
   if (asStated) return AS_STATED;
-  return { correlation, factor: measured < 1 / TOLERATED ? measured : 1 };
+  return { correlation, factor: measured < 1 / tolerated ? measured : 1 };
 }
-
-const clearlyOff = (ratio: number) => ratio > TOLERATED || ratio < 1 / TOLERATED;
 
 /** The same for a sigma that was itself taken from neighbours as if the noise were white. */
 function estimated({ sigma, correlation, lineFree, smooth }: NoiseStructure): Tied {
