@@ -7,7 +7,7 @@ import type { Api } from './api.js';
 /** A line of the default list that the made-up candidates name: Na I D2, vacuum nm. */
 export const SODIUM = { lineId: 'NaI-5889.951', species: 'Na I', restNm: 589.158325 };
 /** Another one: D1. */
-export const SODIUM_D1 = { lineId: 'NaI-5895.924', species: 'Na I', restNm: 589.755808 };
+export const SODIUM_D1 = { lineId: 'NaI-5895.924', species: 'Na I', restNm: 589.755815 };
 
 export const candidate = (changes: Partial<Candidate> = {}): Candidate => ({
   ...SODIUM,

@@ -27,7 +27,7 @@ export class AnalysisThread {
 
   constructor(
     private readonly memoryMb: number,
-    private readonly script = existsSync(beside) ? beside : built,
+    private readonly script: string | URL = existsSync(beside) ? beside : built,
   ) {}
 
   /** Gives the thread, now and after every replacement, a list to keep. */
