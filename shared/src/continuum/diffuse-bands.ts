@@ -43,20 +43,20 @@ interface BandMeasure {
 }
 
 /**
- * ln likelihood of each trial extinction from the diffuse bands that the spectrum covers, seen or not; all 0 when it covers none.
- * The clouds' velocity is where the bands together stand out most. A band that is too strong may be blended, one too weak may not.
+ * ln likelihood of each trial extinction over that of none, from the diffuse bands that the spectrum covers, seen or not; all 0 when it
+ * covers none. The clouds' velocity is not known and is averaged over. A band that is too strong may be blended, one too weak may not.
  */
 export function lnLikelihoodOfExtinction(spectrum: Spectrum, space: Workspace, placement: number, trialAv: Float64Array): Float64Array {
-  let bands: BandMeasure[] = [];
-  let most = -1;
-  for (const velocity of VELOCITIES) {
-    const here = BANDS.map((band) => measureBand(spectrum, space, band, velocity, placement)).filter((m) => m !== null);
-    const standsOut = here.reduce((sum, m) => sum + Math.max(0, m.widthNm / m.sigmaNm) ** 2, 0);
-    if (standsOut <= most) continue;
-    most = standsOut;
-    bands = here;
-  }
-  return trialAv.map((av) => bands.reduce((sum, m) => sum + lnLikelihood(m, av), 0));
+  const perVelocity = VELOCITIES.map((velocity) => {
+    const bands = BANDS.map((band) => measureBand(spectrum, space, band, velocity, placement)).filter((m) => m !== null);
+    const lnL = (av: number) => bands.reduce((sum, m) => sum + lnLikelihood(m, av), 0);
+    const none = lnL(0);
+    return trialAv.map((av) => lnL(av) - none);
+  });
+  return trialAv.map((_, j) => {
+    const best = perVelocity.reduce((most, l) => Math.max(most, l[j]!), -Infinity);
+    return best + Math.log(perVelocity.reduce((sum, l) => sum + Math.exp(l[j]! - best), 0) / VELOCITIES.length);
+  });
 }
 
 function lnLikelihood({ widthNm, sigmaNm, nmPerMag, areaNm }: BandMeasure, av: number): number {

@@ -11,9 +11,12 @@ const SAME_RIPPLE = 1;
 /** Departures to one side are at most this many times those to the other. */
 const LOPSIDED = 2;
 const FEWEST_BLOCKS = 40;
+/** Over a range shorter than this, in ln wavelength, a broad line is as wide as a ripple. */
+const SHORTEST_RANGE = 0.1;
 
 /** Whether the first guesses ripple about the smooth model, as a response with fringes, or with joints between orders, makes them. */
 export function ripples(blocks: Blocks, model: SmoothModel, start: Start, free: Freedom): boolean {
+  if (Math.log(blocks.edgeNm[blocks.count]! / blocks.edgeNm[0]!) < SHORTEST_RANGE) return false;
   const values = makeBlockValues(blocks.count);
   for (let b = 0; b < blocks.count; b++) values.value[b] = start.values.value[b]! - model.baseCentre[b]!;
   values.weight.set(start.values.weight);

@@ -1,7 +1,7 @@
 import type { Spectrum } from '../spectrum/index.js';
 import { lnLikelihoodOfExtinction, RELATION_SCATTER } from './diffuse-bands.js';
 import type { Workspace } from './line-free.js';
-import type { ExtinctionBelief } from './temperature.js';
+import type { ExtinctionBelief } from './colour-problem.js';
 
 const CELLS = 48;
 const FINEST = 0.004;
@@ -10,9 +10,6 @@ const GROWTH = 0.155;
 const NEAR_SHARE = 0.5;
 const NEAR_MAG = 0.01;
 const FAR_MAG = 0.7;
-
-/** Extinction as a person gave it: the model applies it, nothing further is allowed for. */
-export const GIVEN_EXTINCTION: ExtinctionBelief = { av: Float64Array.of(0), width: Float64Array.of(0), mass: Float64Array.of(1) };
 
 /** What the diffuse bands of the spectrum, seen or not, say of the visual extinction before the shape of the continuum is asked. */
 export function beliefInExtinction(spectrum: Spectrum, space: Workspace, placement: number): ExtinctionBelief {

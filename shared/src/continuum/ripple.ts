@@ -6,7 +6,7 @@ import type { BlockValues } from './blocks.js';
  */
 
 /** Second differences tried, in ln flux: from a curve that is nearly straight to one that turns within a few blocks. */
-const SIZES = [1e-5, 3e-5, 1e-4, 3e-4, 1e-3, 3e-3, 1e-2];
+const SIZES = [1e-5, 3e-5, 1e-4, 3e-4, 1e-3, 3e-3];
 
 /** Where nothing is known the curve comes back to 0: every block is 0 within 3 %. */
 const REST = 1 / 0.03 ** 2;

@@ -1,5 +1,5 @@
 import { MAD_TO_SIGMA, medianInPlace } from '../numeric/select.js';
-import type { BlockValues } from './blocks.js';
+import type { Blocks, BlockValues } from './blocks.js';
 import {
   evaluateRows,
   normalSums,
@@ -21,10 +21,14 @@ export interface Freedom {
   readonly response: readonly ResponsePrior[];
 }
 /** Deviations of a calibrated flux from a Planck curve: per mille to some per cent. */
-export const CALIBRATED: readonly ResponsePrior[] = [
-  { amplitude: 0.03, order: 4 },
-  ...responses([0.002, 0.006, 0.02, 0.06], [2.5, 4, 7, 12]),
-];
+const CALIBRATED: readonly ResponsePrior[] = [{ amplitude: 0.03, order: 4 }, ...responses([0.002, 0.006, 0.02, 0.06], [2.5, 4, 7, 12])];
+/** A response turns once in some per cent of wavelength, not more often: over a short range it has few orders. */
+const LN_PER_ORDER = 0.03;
+const FEWEST_ORDERS = 1.5;
+export function calibratedOver({ edgeNm, count }: Blocks): readonly ResponsePrior[] {
+  const most = Math.max(FEWEST_ORDERS, Math.log(edgeNm[count]! / edgeNm[0]!) / LN_PER_ORDER);
+  return CALIBRATED.map(({ amplitude, order }) => ({ amplitude, order: Math.min(order, most) }));
+}
 /** Shapes of a flux that was never calibrated, or was divided by some other continuum. */
 export const ANY_SHAPE: readonly ResponsePrior[] = [{ amplitude: 0.5, order: 4 }, ...responses([0.005, 0.05, 0.5, 2], [2.5, 4, 7, 12, 20])];
 

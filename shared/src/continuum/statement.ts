@@ -15,7 +15,7 @@ export interface FittedRange {
 }
 
 /** A temperature whose error is larger than this is not called constrained. */
-const LARGEST_SIGMA = 0.1;
+const LARGEST_SIGMA = 0.08;
 /** Bounds beyond these say nothing and are not told, K. */
 const LOWEST_BOUND_K = 1000;
 const HIGHEST_BOUND_K = 80_000;
@@ -29,7 +29,7 @@ const MOST_EMPTY = 0.5;
 /** Turns what is believed of the temperature into numbers, bounds and sentences. */
 export function verdictOn(belief: TemperatureBelief, quality: Quality, range: FittedRange): Verdict {
   const temperatureK = Math.exp(belief.lnT);
-  const lnSigma = Math.hypot(belief.lnSigma, lawSigma(belief, range));
+  const lnSigma = Math.hypot(belief.lnSigma, belief.lnSystematic, lawSigma(belief, range));
   const reasons = reasonsAgainst(lnSigma, belief, quality, range);
   const constrained = reasons.length === 0;
   const sigmaK = temperatureK * lnSigma;
