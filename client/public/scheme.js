@@ -3,7 +3,7 @@
   var kept = null;
   try {
     kept = localStorage.getItem('foreveil-scheme');
-  } catch (error) {
+  } catch {
     // storage is blocked: follow the system
   }
   var dark = kept === 'dark' || (kept !== 'light' && matchMedia('(prefers-color-scheme: dark)').matches);
