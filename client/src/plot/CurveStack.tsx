@@ -3,7 +3,7 @@ import { useMemo } from 'react';
 import type { WavelengthDisplay } from '../lib/wavelength.js';
 import { AXIS_HEIGHT, WavelengthAxis } from './WavelengthAxis.js';
 import { Curve } from './Curve.js';
-import { Residual, RESIDUAL_LABELS } from './Residual.js';
+import { Residual, RESIDUAL_BAND, RESIDUAL_LABELS } from './Residual.js';
 import { StaveHeads } from './StaveHeads.js';
 import { STAVE_HEIGHT, STAVES_TOP, Staves } from './Staves.js';
 import type { CurveData } from './curve-data.js';
@@ -62,6 +62,7 @@ export function CurveStack(props: CurveStackProps) {
     <div ref={ref} className={classes.stack}>
       {plotWidth > 60 && curveHeight > 40 && (
         <>
+          {hasResidual && <NoiseBand left={gutter} width={plotWidth} top={curveBottom + 8} height={residualHeight} />}
           {preview && (
             <Band feature={preview} view={view} left={gutter} width={plotWidth} height={height - AXIS_HEIGHT} colour="var(--hover)" />
           )}
@@ -131,6 +132,12 @@ function Band({ feature, view, left, width, height, colour }: BandProps) {
   const [from, to] = [Math.max(0, x - half), Math.min(width, x + half)];
   if (to <= from) return null;
   return <div className={classes.band} style={{ left: left + from, width: to - from, height, background: colour }} />;
+}
+
+/** The stretch that holds 95 % of pure noise, behind the chosen feature. */
+function NoiseBand({ left, width, top, height }: { left: number; width: number; top: number; height: number }) {
+  const style = { left, width, top: top + RESIDUAL_BAND.from * height, height: RESIDUAL_BAND.height * height, background: 'var(--sink)' };
+  return <div className={classes.band} style={style} />;
 }
 
 /** Where the data cursor is. */

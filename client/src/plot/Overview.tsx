@@ -10,7 +10,6 @@ import type { CurveData } from './curve-data.js';
 import type { MarkFamily } from './marks.js';
 import { usePalette } from './palette.js';
 import type { PlotFeature } from './plot-feature.js';
-import { columnsOf } from './pyramid.js';
 import { useCanvas, type Surface } from './useCanvas.js';
 import type { ViewStore } from './view.js';
 import classes from './plot.module.css';
@@ -20,12 +19,10 @@ const LANES: readonly { family: MarkFamily; word: string }[] = [
   { family: 'interstellar', word: 'clouds' },
   { family: 'nebular', word: 'nebula' },
   { family: 'telluric', word: 'air' },
-  { family: 'unidentified', word: 'unidentified' },
 ];
 const STRIP_HEIGHT = 30;
-const CURVE_HEIGHT = 36;
-/** Columns of the strip: enough for any screen, and a strip keeps the deepest of what falls into one. */
-const STRIP_COLUMNS = 2600;
+const NONE: (number | null)[] = [];
+const CURVE_HEIGHT = 34;
 
 interface Props {
   data: CurveData;
@@ -39,25 +36,13 @@ interface Props {
   label: string;
 }
 
-const orNull = (v: number) => (Number.isNaN(v) ? null : v);
-
 /** Strip, one lane of ticks a family, and the whole curve, with the frame of the window that the panels below show. */
 export function Overview({ data, features, view, display, emission, preview, label }: Props) {
   const { ref, width } = useElementSize<HTMLDivElement>();
   const palette = usePalette();
   const { whole } = view;
   const lanes = useMemo(() => LANES.filter(({ family }) => features.some((f) => f.family === family)), [features]);
-  const face = useMemo(() => {
-    if (!data.fitted) return preview ?? { low: [], high: [] };
-    const { low, high } = columnsOf(
-      data.wavelength,
-      data.fitted.normalised,
-      whole.fromNm,
-      whole.toNm,
-      Math.min(STRIP_COLUMNS, data.wavelength.length),
-    );
-    return { low: Array.from(low, orNull), high: Array.from(high, orNull) };
-  }, [data, preview, whole]);
+  const face = data.fitted ? data.face : preview;
   const families = useMemo(() => lanes.map((l) => l.family), [lanes]);
   const draw = useCallback(
     (surface: Surface) => drawOverview(surface, { data, features, lanes: families, whole, emission }, palette),
@@ -77,7 +62,8 @@ export function Overview({ data, features, view, display, emission, preview, lab
       <LightStrip
         wavelengthFromNm={whole.fromNm}
         wavelengthToNm={whole.toNm}
-        {...face}
+        low={face?.low ?? NONE}
+        high={face?.high ?? NONE}
         height={STRIP_HEIGHT}
         emission={emission}
         label={label}

@@ -11,21 +11,22 @@ const LIMIT = 6;
 
 function drawPoints(context: CanvasRenderingContext2D, f: Frame, data: CurveData, ratio: number, y: (sigma: number) => number) {
   const residual = data.fitted!.residual;
-  const path = new Path2D();
   if (isDense(data.wavelength, f)) {
     const { low, high } = columnsOf(data.wavelength, residual, f.fromNm, f.toNm, Math.round(f.width));
-    for (let c = 0; c < low.length; c++)
-      if (!Number.isNaN(low[c]!)) path.rect(c, y(high[c]!), 1, Math.max(ratio, y(low[c]!) - y(high[c]!)));
+    context.globalAlpha = 0.45;
+    for (let c = 0; c < low.length; c++) {
+      const top = y(high[c]!);
+      if (!Number.isNaN(top)) context.fillRect(c, top, 1, Math.max(ratio, y(low[c]!) - top));
+    }
   } else {
     const [first, end] = samplesInView(data.wavelength, f);
     const dot = 1.7 * ratio;
+    context.globalAlpha = 0.8;
     for (let i = first; i < end; i++) {
       const value = residual.values[i]!;
-      if (!data.bad[i] && !Number.isNaN(value)) path.rect(xOf(f, data.wavelength[i]!) - dot / 2, y(value) - dot / 2, dot, dot);
+      if (!data.bad[i] && !Number.isNaN(value)) context.fillRect(xOf(f, data.wavelength[i]!) - dot / 2, y(value) - dot / 2, dot, dot);
     }
   }
-  context.globalAlpha = isDense(data.wavelength, f) ? 0.45 : 0.8;
-  context.fill(path);
   context.globalAlpha = 1;
 }
 
@@ -37,8 +38,6 @@ function draw(canvas: HTMLCanvasElement, data: CurveData, view: ViewStore, palet
   if (canvas.width !== width || canvas.height !== height) [canvas.width, canvas.height] = [width, height];
   context.clearRect(0, 0, width, height);
   const y = (sigma: number) => height / 2 - (Math.max(-LIMIT, Math.min(LIMIT, sigma)) * height) / 2 / (LIMIT + 0.4);
-  context.fillStyle = palette.sink;
-  context.fillRect(0, y(2), width, y(-2) - y(2));
   context.fillStyle = palette.line;
   for (const sigma of [-5, 0, 5]) context.fillRect(0, Math.round(y(sigma)), width, Math.max(1, Math.round(ratio)));
   context.fillStyle = palette.curve;
@@ -53,7 +52,7 @@ interface Props {
   height: number;
 }
 
-/** What is left of the curve when continuum and fits are taken away, in sigma; the band holds 95 % of pure noise. */
+/** What is left of the curve when continuum and fits are taken away, in sigma. */
 export function Residual({ data, view, width, height }: Props) {
   const canvas = useRef<HTMLCanvasElement>(null);
   const palette = usePalette();
@@ -66,6 +65,9 @@ export function Residual({ data, view, width, height }: Props) {
   }, [follow, view, width, height]);
   return <canvas ref={canvas} className={classes.residual} style={{ width, height }} aria-hidden="true" />;
 }
+
+/** Where the band of +-2 sigma stands, as fractions of the height. */
+export const RESIDUAL_BAND = { from: 0.5 - 1 / (LIMIT + 0.4), height: 2 / (LIMIT + 0.4) };
 
 /** Where the labels of -5, 0 and +5 sigma stand, as fractions of the height. */
 export const RESIDUAL_LABELS = [5, 0, -5].map((sigma) => ({

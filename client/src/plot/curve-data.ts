@@ -1,5 +1,5 @@
 import type { Continuum, Samples } from '@foreveil/shared';
-import { buildPyramid, lowerBound, type Pyramid } from './pyramid.js';
+import { buildPyramid, columnsOf, lowerBound, type Pyramid } from './pyramid.js';
 import { drawnProfile, type ProfileNumbers } from './profile.js';
 
 /** All that the panels draw, one value a sample, prepared once per spectrum and analysis. */
@@ -12,7 +12,18 @@ export interface CurveData {
   readonly fitted: FittedCurve | null;
   /** power of ten taken out of flux labels */
   readonly fluxExponent: number;
+  /** columns of the light strip over the whole range; null before an analysis */
+  readonly face: StripColumns | null;
 }
+
+/** Normalised flux per column of a strip; null where masked. */
+export interface StripColumns {
+  readonly low: (number | null)[];
+  readonly high: (number | null)[];
+}
+
+/** Columns of the strip: enough for any screen, and a strip keeps the deepest of what falls into one. */
+const STRIP_COLUMNS = 2600;
 
 export interface FittedCurve {
   /** continuum flux */
@@ -79,16 +90,26 @@ function exponentOf(flux: Float32Array, bad: Uint8Array): number {
   return Math.floor(Math.log10(greatest));
 }
 
+function faceOf(wavelength: Float64Array, normalised: Pyramid): StripColumns {
+  const n = Math.min(STRIP_COLUMNS, wavelength.length);
+  const { low, high } = columnsOf(wavelength, normalised, wavelength[0]!, wavelength.at(-1)!, n);
+  const orNull = (v: number) => (Number.isNaN(v) ? null : v);
+  return { low: Array.from(low, orNull), high: Array.from(high, orNull) };
+}
+
+/** Takes about 0.2 s for 200 000 samples in a cold engine; `prepareCurve` does it beside the page. */
 export function buildCurveData(samples: Samples, continuum: Continuum | null, features: readonly ProfileNumbers[]): CurveData {
   const { wavelength, flux, sigma } = samples;
   const bad = samples.bad.slice();
   for (let i = 0; i < bad.length; i++) if (!Number.isFinite(flux[i])) bad[i] = 1;
+  const fit = continuum && continuum.sampleNm.length > 0 ? fitted({ ...samples, bad }, continuum, features) : null;
   return {
     wavelength,
     bad,
     sigma,
     flux: buildPyramid(flux, bad),
-    fitted: continuum && continuum.sampleNm.length > 0 ? fitted({ ...samples, bad }, continuum, features) : null,
+    fitted: fit,
     fluxExponent: exponentOf(flux, bad),
+    face: fit && faceOf(wavelength, fit.normalised),
   };
 }

@@ -19,6 +19,10 @@ export interface CurveScene {
   emission: boolean;
 }
 
+/** Stroke of single steps, and of the band of extremes that a wide stretch is; CSS px. */
+export const STEP_WIDTH = 1.15;
+export const DENSE_WIDTH = 0.7;
+
 export const FONT = "12px 'Inter Variable', sans-serif";
 
 /** Plot area and scales of a uPlot in device pixels. */
@@ -51,7 +55,6 @@ export function curveOptions(
   size: { width: number; height: number; gutter: number },
   onSelect: (leftPx: number, widthPx: number) => void,
 ): uPlot.Options {
-  const { palette } = scene;
   const labelled = size.gutter > 0;
   return {
     ...size,
@@ -79,7 +82,7 @@ export function curveOptions(
       { stroke: () => scene.palette.cont, width: 1.3, dash: [7, 4], points: { show: false }, paths: (u) => continuumPath(u, scene) },
       {
         stroke: () => scene.palette.curve,
-        width: palette.scheme === 'dark' ? 1.05 : 1.15,
+        width: STEP_WIDTH,
         points: { show: false },
         paths: (u) => curvePath(u, scene),
       },

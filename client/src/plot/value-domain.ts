@@ -39,7 +39,8 @@ export function valueDomain(data: CurveData, mode: CurveMode, base: Base, { from
     high = Math.max(high, level[i]!);
   }
   if (!(high >= low)) return [0, 1];
-  if (base === 'zero') return high > 0 ? [Math.min(0, low * 1.04), high * 1.05] : [low * 1.05, 0];
+  // a little below zero, so that the axis' own zero can be read
+  if (base === 'zero') return high > 0 ? [Math.min(-0.05 * high, low * 1.04), high * 1.05] : [low * 1.05, 0];
   const air = 0.07 * (high - low) || Math.abs(high) * 0.05 || 1;
   return [low - air, high + air];
 }

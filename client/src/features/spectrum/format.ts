@@ -1,11 +1,16 @@
 import type { How } from '@foreveil/shared';
-import { errorParts, type NumberParts } from '../../lib/number.js';
+import { errorParts, fixed, signed, type NumberParts } from '../../lib/number.js';
 
-/** As `errorParts`, for a column of one number of decimals: figure spaces let the decimal points stand under each other. */
+/**
+ * As `errorParts`, for a column of at most so many decimals, on which the decimal points stand under each other by figure spaces.
+ * An error too small for the column is rounded up to its last place, never to nothing.
+ */
 export function columnParts(value: number | null, sigma: number | null, decimals: number, sign = false): NumberParts {
   const parts = errorParts(value, sigma, sign);
-  if (parts.sigma === null) return parts;
+  if (value === null || parts.sigma === null) return parts;
   const shown = /\.(\d+)$/.exec(parts.value)?.[1]?.length ?? 0;
+  if (shown > decimals)
+    return { value: (sign ? signed : fixed)(value, decimals), sigma: fixed(Math.max(sigma ?? 0, 10 ** -decimals), decimals) };
   const missing = decimals - shown + (shown === 0 && decimals > 0 ? 0.5 : 0); // a point is about half a figure wide
   return { ...parts, value: parts.value + '\u2007'.repeat(Math.max(0, Math.floor(missing))) };
 }

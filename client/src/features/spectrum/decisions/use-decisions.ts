@@ -38,7 +38,7 @@ export function useDecisions({ programmeId, spectrumId, analysisId, by }: Where)
   const { queryKey } = identificationQueries.list(programmeId, spectrumId);
   const [conflict, setConflict] = useState<Conflict | null>(null);
   const [pending, setPending] = useState<ReadonlySet<number>>(new Set());
-  const undoable = useRef<{ featureIndex: number; steps: UndoStep[] }[]>([]);
+  const undoable = useRef<{ analysisId: string; featureIndex: number; steps: UndoStep[] }[]>([]);
   const inFlight = useRef(new Set<number>());
 
   const mutation = useMutation({
@@ -99,11 +99,11 @@ export function useDecisions({ programmeId, spectrumId, analysisId, by }: Where)
       if (inFlight.current.has(act.featureIndex)) return false;
       const saved = await send(row, act);
       if (!saved) return false;
-      undoable.current.push({ featureIndex: act.featureIndex, steps: undoSteps(row, act) });
+      undoable.current.push({ analysisId, featureIndex: act.featureIndex, steps: undoSteps(row, act) });
       if (undoable.current.length > UNDO_STEPS) undoable.current.shift();
       return true;
     },
-    [send],
+    [analysisId, send],
   );
 
   /** Takes back the last decision made here; resolves to the index of its feature, null when there is none or it could not be. */
@@ -111,10 +111,10 @@ export function useDecisions({ programmeId, spectrumId, analysisId, by }: Where)
     async (rows: readonly LineRow[]): Promise<number | null> => {
       const last = undoable.current.pop();
       const row = rows.find((r) => r.feature.index === last?.featureIndex);
-      if (!last || !row) return null;
+      if (!last || !row || last.analysisId !== analysisId) return null; // a new analysis numbers its features anew
       return (await walk(row, last.steps, '')) ? last.featureIndex : null;
     },
-    [walk],
+    [analysisId, walk],
   );
 
   const keepTheirs = useCallback(() => setConflict(null), []);

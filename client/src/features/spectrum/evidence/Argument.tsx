@@ -3,11 +3,11 @@ import { probability } from '../../../lib/number.js';
 import { barLength, factorLabel, oddsLabel, PART_WORD, together } from './odds.js';
 import classes from './evidence.module.css';
 
-const BAR = { width: 100, middle: 46, reach: 50 };
+const BAR = { width: 96, middle: 44, reach: 50 };
 
 /** One factor on the odds: solid bar to the right for, hollow bar to the left against. */
 export function OddsBar({ logOdds }: { logOdds: number }) {
-  const isFor = logOdds >= 0;
+  const isFor = logOdds > -0.05;
   const length = Math.max(1, Math.abs(barLength(logOdds)) * (isFor ? BAR.reach : BAR.middle - 4));
   const label = factorLabel(logOdds);
   return (
@@ -25,15 +25,19 @@ export function OddsBar({ logOdds }: { logOdds: number }) {
   );
 }
 
-/** The first numbers of a sentence stand out, so the column can be read down. */
+const NUMBER = '[+\u2212<>~±≥≤]?\\s?\\d[\\d.,\u202f]*';
+const FIRST_FIGURE = new RegExp(`${NUMBER}(?:\\s(?:±|of|to)\\s${NUMBER})?(?:\\s(?:km/s|mÅ|Å|nm|%|σ))?`);
+
+/** The first figure of a sentence stands out, so the column can be read down. */
 function Emphasised({ sentence }: { sentence: string }) {
-  const match = /^(.{1,48}?)([,;:.](?=\s|$)|$)(.*)$/s.exec(sentence);
+  const match = FIRST_FIGURE.exec(sentence);
   if (!match) return sentence;
+  const end = match.index + match[0].length;
   return (
     <>
-      <b>{match[1]}</b>
-      {match[2]}
-      {match[3]}
+      {sentence.slice(0, match.index)}
+      <b>{match[0]}</b>
+      {sentence.slice(end)}
     </>
   );
 }

@@ -1,6 +1,7 @@
 import { useElementSize } from '@mantine/hooks';
 import { useMemo } from 'react';
 import type { Candidate, Companion, VelocitySystem } from '@foreveil/shared';
+import { speciesName } from '../../../lib/species.js';
 import { fixed, MILLIANGSTROM_PER_NM, withError } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
 import { shownWavelength } from '../../../plot/axis-ticks.js';
@@ -9,7 +10,6 @@ import { lightPath, stepPath, xOf, yOf, type Frame } from '../../../plot/curve-p
 import { FILL_CAP, lightCss, visibility } from '../../../plot/light.js';
 import { usePalette, type Palette } from '../../../plot/palette.js';
 import { niceTicks } from '../../../plot/ticks.js';
-import { speciesName } from '../lines/reading.js';
 import { SvgPen, velocityProfile } from './velocity-profile.js';
 import classes from './evidence.module.css';
 
@@ -157,12 +157,14 @@ export function Companions({ candidate, system, systems, data, display, frameNam
               </g>
             ))}
             <line x1={LABEL} x2={LABEL + inner} y1={bottom + 0.5} y2={bottom + 0.5} stroke="var(--line-2)" />
-            {niceTicks(range[0], range[1], Math.max(2, inner / 42)).map((v) => (
+            {niceTicks(range[0], range[1], Math.max(2, inner / 50)).map((v) => (
               <g key={v} transform={`translate(${x(v).toFixed(1)} ${bottom})`}>
                 <line y1={0} y2={4} stroke="var(--line-2)" />
-                <text y={16} textAnchor="middle" fill="var(--ink-3)">
-                  {fixed(v, 0)}
-                </text>
+                {x(v) > LABEL + 12 && (
+                  <text y={16} textAnchor="middle" fill="var(--ink-3)">
+                    {fixed(v, 0)}
+                  </text>
+                )}
               </g>
             ))}
             <text x={0} y={bottom + 16} fill="var(--ink-3)">

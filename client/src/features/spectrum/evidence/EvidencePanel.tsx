@@ -48,16 +48,10 @@ export function EvidencePanel(props: EvidenceProps) {
           <p className={classes.measurement}>{measurement(row.feature, display)}</p>
         </div>
         <Acts {...props} />
+        <p className={classes.sentence}>{chosen.candidate ? chosen.candidate.sentence : withoutArgument(props)}</p>
       </div>
       <div className={classes.argument} tabIndex={0} role="group" aria-label="Argument and candidates">
-        {chosen.candidate ? (
-          <>
-            <p className={classes.sentence}>{chosen.candidate.sentence}</p>
-            <Argument candidate={chosen.candidate} />
-          </>
-        ) : (
-          <WithoutArgument {...props} />
-        )}
+        {chosen.candidate && <Argument candidate={chosen.candidate} />}
         <Candidates choices={choices(row.feature)} chosen={chosen} systems={analysis.systems} display={display} onChoose={props.onChoose} />
       </div>
       <div className={classes.side} tabIndex={0} role="group" aria-label="Companions and history">
@@ -98,23 +92,15 @@ export function EvidencePanel(props: EvidenceProps) {
   );
 }
 
-/** 'Unidentified', or a reading that the newest analysis no longer offers. */
-function WithoutArgument({ row, chosen, display }: EvidenceProps) {
-  const [best] = row.feature.candidates;
+/** Said of 'unidentified', and of a reading that the newest analysis no longer offers. */
+function withoutArgument({ row, chosen, display }: EvidenceProps): string {
   if (chosen.lineId !== null)
-    return (
-      <p className={classes.sentence}>
-        This reading was decided earlier; the newest analysis no longer offers it, so there is no argument for it here.
-      </p>
-    );
-  return (
-    <p className={classes.sentence}>
-      No listed line explains this feature well: {probability(chosen.probability)}.{' '}
-      {best
-        ? `The best listed reading is ${readingName({ ...chosen, ...best }, display)} at ${probability(best.probability)}; choose it to see its argument.`
-        : 'No listed line comes near it in a velocity system.'}
-    </p>
-  );
+    return 'This reading was decided earlier; the newest analysis no longer offers it, so there is no argument for it here.';
+  const [best] = row.feature.candidates;
+  const listed = best
+    ? `The best listed reading is ${readingName({ ...chosen, ...best }, display)} at ${probability(best.probability)}; choose it to see its argument.`
+    : 'No listed line comes near it in a velocity system.';
+  return `No listed line explains this feature well: ${probability(chosen.probability)}. ${listed}`;
 }
 
 const ACTS: readonly { action: ReviewAction; word: string; key: string; when: (row: LineRow) => boolean; main?: true }[] = [

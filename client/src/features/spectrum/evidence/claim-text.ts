@@ -1,8 +1,9 @@
 import { C_KM_PER_S, type Feature, type FeatureFlag } from '@foreveil/shared';
+import { speciesName } from '../../../lib/species.js';
 import { MILLIANGSTROM_PER_NM, probability, signed, withError } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
 import { shownPerNm, shownWavelength } from '../../../plot/axis-ticks.js';
-import { speciesName, type Reading } from '../lines/reading.js';
+import { type Reading } from '../lines/reading.js';
 
 const WHERE: Record<Reading['family'], string> = {
   stellar: 'in the star',

@@ -20,7 +20,10 @@ function twoFigures(v: number): string {
 }
 
 /** A factor on the odds: '×20' speaks for the reading, '÷4' against it. */
-export const factorLabel = (logOdds: number) => (logOdds >= 0 ? `×${twoFigures(Math.exp(logOdds))}` : `÷${twoFigures(Math.exp(-logOdds))}`);
+export function factorLabel(logOdds: number): string {
+  if (Math.abs(logOdds) < 0.05) return '×1';
+  return logOdds > 0 ? `×${twoFigures(Math.exp(logOdds))}` : `÷${twoFigures(Math.exp(-logOdds))}`;
+}
 
 /** Odds in words: '36 to 1', '1 to 4'. */
 export const oddsLabel = (logOdds: number) =>

@@ -1,7 +1,8 @@
 import { REVIEW_STATES, type ReviewState } from '@foreveil/shared';
+import { speciesName } from '../../../lib/species.js';
 import { STATE_WORD, type MarkFamily } from '../../../plot/marks.js';
 import type { Range } from '../../../plot/view.js';
-import { speciesName, type LineRow } from './reading.js';
+import { type LineRow } from './reading.js';
 
 export const FAMILIES = ['stellar', 'interstellar', 'nebular', 'telluric', 'unidentified'] as const satisfies readonly MarkFamily[];
 export const SORT_KEYS = ['wavelength', 'width', 'fwhm', 'reading', 'velocity', 'probability', 'state'] as const;

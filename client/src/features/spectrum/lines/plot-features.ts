@@ -1,10 +1,11 @@
 import { shifted, type Analysis, type KmPerS, type VacuumNm } from '@foreveil/shared';
+import { speciesName } from '../../../lib/species.js';
 import { fixed, MILLIANGSTROM_PER_NM } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
 import { shownWavelength } from '../../../plot/axis-ticks.js';
 import { FAMILY_WORD } from '../../../plot/marks.js';
 import type { DueLine, PlotFeature, Stave } from '../../../plot/plot-feature.js';
-import { speciesName, UNIDENTIFIED_STAVE, type LineRow } from './reading.js';
+import { UNIDENTIFIED_STAVE, type LineRow } from './reading.js';
 
 const shown = (nm: number, display: WavelengthDisplay) => shownWavelength(nm, display, 3);
 

@@ -106,7 +106,3 @@ export function lineRows(analysis: Analysis, identifications: readonly Identific
 
 export const sameReading = (a: Pick<Reading, 'lineId' | 'systemId'>, b: Pick<Reading, 'lineId' | 'systemId'>) =>
   a.lineId === b.lineId && (a.lineId === null || a.systemId === b.systemId);
-
-/** 'H2O' as 'H₂O', 'CH+' as 'CH⁺'; forbidden lines keep their brackets where the list writes them. */
-export const speciesName = (species: string) =>
-  species.replace(/(?<=[A-Za-z])\d+/g, (d) => [...d].map((c) => '₀₁₂₃₄₅₆₇₈₉'[Number(c)]).join('')).replace(/\+/g, '⁺');

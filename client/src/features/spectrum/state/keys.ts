@@ -11,8 +11,7 @@ export type Command =
   | { do: 'whole' }
   | { do: 'history'; direction: 1 | -1 }
   | { do: 'open' }
-  | { do: 'leave' }
-  | { do: 'keys' };
+  | { do: 'leave' };
 
 export interface Key {
   readonly key: string;
@@ -41,7 +40,6 @@ const PLAIN: Record<string, Command> = {
   ']': { do: 'history', direction: 1 },
   Enter: { do: 'open' },
   Escape: { do: 'leave' },
-  '?': { do: 'keys' },
 };
 
 /** null: the key means nothing here and is left to the browser. */
@@ -56,23 +54,3 @@ export function commandFor({ key, shiftKey, ctrlKey, metaKey, altKey }: Key): Co
   if (/^[1-9]$/.test(key)) return { do: 'choose', candidate: Number(key) };
   return PLAIN[key] ?? null;
 }
-
-/** The sheet of keys, in the order of use. */
-export const KEY_SHEET: readonly { keys: readonly string[]; what: string }[] = [
-  { keys: ['n', 'p'], what: 'next, previous line still to be decided' },
-  { keys: ['1', '9'], what: 'choose a candidate; its argument is shown' },
-  { keys: ['u'], what: 'choose “unidentified”' },
-  { keys: ['a'], what: 'accept the chosen reading and go on' },
-  { keys: ['x'], what: 'reject the chosen reading and go on' },
-  { keys: ['o'], what: 'propose the chosen reading and go on' },
-  { keys: ['b'], what: 'back to proposed' },
-  { keys: ['r'], what: 'write a remark that goes with the next decision' },
-  { keys: ['Ctrl', 'Z'], what: 'undo the last decision' },
-  { keys: ['←', '→'], what: 'data cursor by a pixel; with Shift ten, with Ctrl to the next line' },
-  { keys: ['↑', '↓'], what: 'staff above, below on the curve; row above, below in the table' },
-  { keys: ['Enter'], what: 'select the line at the data cursor' },
-  { keys: ['+', '−'], what: 'zoom in, out' },
-  { keys: ['0'], what: 'the whole spectrum' },
-  { keys: ['[', ']'], what: 'view before, after' },
-  { keys: ['Esc'], what: 'leave' },
-];
