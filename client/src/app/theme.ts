@@ -63,7 +63,7 @@ export const theme = createTheme({
         overlayProps: { backgroundOpacity: 0.35 },
       },
     },
-    Menu: { defaultProps: { position: 'bottom-start', offset: 4, withinPortal: true } },
+    Menu: { defaultProps: { position: 'bottom-start', offset: 4, withinPortal: true, withInitialFocusPlaceholder: false } },
     Select: { defaultProps: { comboboxProps: { offset: 2 }, allowDeselect: false, checkIconPosition: 'right' } },
     Tooltip: { defaultProps: { openDelay: 300, multiline: true, maw: 320, events: { hover: true, focus: true, touch: true } } },
     Notification: { defaultProps: { closeButtonProps: { 'aria-label': 'Dismiss' } } },

@@ -1,8 +1,7 @@
 import { Menu, UnstyledButton, useMantineColorScheme, type MantineColorScheme } from '@mantine/core';
 import { notifications } from '@mantine/notifications';
-import { IconCheck } from '@tabler/icons-react';
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
-import type { Medium, WavelengthUnit } from '@foreveil/shared';
+import type { Medium } from '@foreveil/shared';
 import { useNavigate } from 'react-router-dom';
 import { Initials } from '../../components/Initials.js';
 import { errorSentence } from '../../lib/error-sentences.js';
@@ -12,7 +11,7 @@ import { UNIT_LABEL, useWavelengthDisplay } from '../../lib/wavelength.js';
 import classes from './shell.module.css';
 
 const SCHEMES: Record<MantineColorScheme, string> = { auto: 'As the system', light: 'Day', dark: 'Night' };
-const MEDIA: Record<Medium, string> = { vacuum: 'in vacuum', air: 'in air' };
+const MEDIA: Record<Medium, string> = { vacuum: 'vacuum', air: 'air' };
 
 export function AccountMenu() {
   const me = useQuery(accountQueries.me()).data;
@@ -52,32 +51,32 @@ function useSignOut() {
   });
 }
 
-interface ChoiceProps {
-  checked: boolean;
+interface ChoicesProps<V extends string> {
   label: string;
-  onChoose: () => void;
+  words: Record<V, string>;
+  value: V;
+  onChoose: (value: V) => void;
 }
 
-function Choice({ checked, label, onChoose }: ChoiceProps) {
-  const mark = checked ? <IconCheck size={14} aria-hidden /> : <span />;
+function Choices<V extends string>({ label, words, value, onChoose }: ChoicesProps<V>) {
   return (
-    <Menu.Item role="menuitemradio" aria-checked={checked} closeMenuOnClick={false} onClick={onChoose} rightSection={mark}>
-      {label}
-    </Menu.Item>
+    <>
+      <Menu.Divider />
+      <Menu.Label>{label}</Menu.Label>
+      <Menu.RadioGroup value={value} onChange={(chosen) => onChoose(chosen as V)}>
+        {(Object.entries(words) as [V, string][]).map(([one, word]) => (
+          <Menu.RadioItem key={one} value={one}>
+            {word}
+          </Menu.RadioItem>
+        ))}
+      </Menu.RadioGroup>
+    </>
   );
 }
 
 function SchemeChoice() {
   const { colorScheme, setColorScheme } = useMantineColorScheme();
-  return (
-    <>
-      <Menu.Divider />
-      <Menu.Label>Appearance</Menu.Label>
-      {(Object.keys(SCHEMES) as MantineColorScheme[]).map((scheme) => (
-        <Choice key={scheme} label={SCHEMES[scheme]} checked={scheme === colorScheme} onChoose={() => setColorScheme(scheme)} />
-      ))}
-    </>
-  );
+  return <Choices label="Appearance" words={SCHEMES} value={colorScheme} onChoose={setColorScheme} />;
 }
 
 /** How wavelengths are shown on every page; stored values never change. */
@@ -85,15 +84,8 @@ function WavelengthChoice() {
   const { unit, medium, setUnit, setMedium } = useWavelengthDisplay();
   return (
     <>
-      <Menu.Divider />
-      <Menu.Label>Wavelengths shown</Menu.Label>
-      {(Object.keys(UNIT_LABEL) as WavelengthUnit[]).map((one) => (
-        <Choice key={one} label={`in ${UNIT_LABEL[one]}`} checked={one === unit} onChoose={() => setUnit(one)} />
-      ))}
-      {unit !== 'wavenumber' &&
-        (Object.keys(MEDIA) as Medium[]).map((one) => (
-          <Choice key={one} label={MEDIA[one]} checked={one === medium} onChoose={() => setMedium(one)} />
-        ))}
+      <Choices label="Wavelengths shown in" words={UNIT_LABEL} value={unit} onChoose={setUnit} />
+      {unit !== 'wavenumber' && <Choices label="Wavelengths shown for" words={MEDIA} value={medium} onChoose={setMedium} />}
     </>
   );
 }

@@ -27,8 +27,12 @@ export function Waits({ programmeId, role, targets }: Props) {
         <h2>{roleAllows(role, 'reviewer') ? 'Waiting for your decision' : 'Waiting for people'}</h2>
         <WaitList programmeId={programmeId} role={role} waits={people} none={nothingWaits(role, targets)} />
       </section>
-      <section aria-live="polite">
+      <section>
         <h2>At work</h2>
+        {/* said when one starts or ends; the percentages would never stop talking */}
+        <p role="status" className={classes.unseen}>
+          {counted(machine.length, 'analysis', 'analyses')} at work
+        </p>
         <WaitList programmeId={programmeId} role={role} waits={machine} none="No analysis is running." />
       </section>
     </div>

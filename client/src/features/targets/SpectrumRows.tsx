@@ -99,7 +99,7 @@ function SpectrumRow({ programmeId, spectrum, agreed, axis }: RowProps) {
         {count(points)}
       </td>
       <td data-label="Analysis">
-        <span aria-live="polite">{analysisWords(analysis)}</span>
+        {analysisWords(analysis)}
         {analysis && isAtWork(analysis) && (
           <Progress value={analysis.progress * 100} aria-label={`Analysis of ${label}`} className={classes.progress} />
         )}

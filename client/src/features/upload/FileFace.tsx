@@ -10,6 +10,8 @@ const HEIGHT = 92;
 const BASE = 74;
 const TOP = 6;
 const TICKS = 6;
+/** Share of the axis beyond which its unit stands. */
+const UNIT_FROM = 0.86;
 
 interface Props {
   face: Face;
@@ -43,8 +45,8 @@ function SmallCurve({ face, label }: { face: Face; label: string }) {
   const display = useWavelengthDisplay();
   const { fromNm, toNm } = face;
   const share = (nm: number) => (nm - fromNm) / (toNm - fromNm);
-  // labels stand under their ticks, so none at the very ends
-  const ticks = axisTicks(fromNm, toNm, display, TICKS).filter(({ nm }) => share(nm) > 0.03 && share(nm) < 0.97);
+  // labels stand under their ticks, so none at the very start, nor where the unit stands
+  const ticks = axisTicks(fromNm, toNm, display, TICKS).filter(({ nm }) => share(nm) > 0.03 && share(nm) < UNIT_FROM);
   return (
     <svg className={classes.curve} height={HEIGHT} role="img" aria-label={label}>
       <svg viewBox={`0 0 ${face.fluxHigh.length} ${HEIGHT}`} width="100%" height={HEIGHT} preserveAspectRatio="none">
@@ -58,14 +60,16 @@ function SmallCurve({ face, label }: { face: Face; label: string }) {
         />
       </svg>
       <line x1={0} x2="100%" y1={BASE + 0.5} y2={BASE + 0.5} stroke="var(--line-2)" />
-      {ticks.map(({ nm, label: text }, i) => {
+      <text x="100%" y={HEIGHT - 3} fontSize={12} textAnchor="end" fill="var(--ink-3)">
+        {display.shortLabel}
+      </text>
+      {ticks.map(({ nm, label: text }) => {
         const x = `${(share(nm) * 100).toFixed(2)}%`;
         return (
           <g key={nm}>
             <line x1={x} x2={x} y1={BASE} y2={BASE + 4} stroke="var(--line-2)" />
             <text x={x} y={HEIGHT - 3} fontSize={12} textAnchor="middle" fill="var(--ink-3)">
               {text}
-              {i === 0 && ` ${display.shortLabel}`}
             </text>
           </g>
         );

@@ -2,7 +2,7 @@ import { Button, TextInput } from '@mantine/core';
 import type { Reading, ReadingCorrections, TargetSummary } from '@foreveil/shared';
 import { useState } from 'react';
 import { Pick } from '../../components/Pick.js';
-import { counted, fixed, NO_NUMBER, parseNumber } from '../../lib/number.js';
+import { counted, fixed, parseNumber } from '../../lib/number.js';
 import { day } from '../../lib/time.js';
 import { NO_CORRECTIONS } from './entries.js';
 import type { Entry, TargetChoice } from './entry.js';
@@ -199,9 +199,10 @@ function ResolvingPowerFact({ reading: { resolvingPower }, correct }: PartProps)
 
 function ObservedFact({ reading: { observedAt, instrument, telescope } }: { reading: Reading }) {
   const words = [observedAt.value && day(observedAt.value), instrument, telescope].filter(Boolean).join(', ');
+  if (!words) return null;
   return (
-    <FactRow label="Observed" {...(words ? { how: howKnown(observedAt) } : {})}>
-      {() => <span>{words || NO_NUMBER}</span>}
+    <FactRow label="Observed" how={howKnown(observedAt)}>
+      {() => <span>{words}</span>}
     </FactRow>
   );
 }

@@ -1,6 +1,6 @@
 import { Button } from '@mantine/core';
 import { count, counted } from '../../lib/number.js';
-import { verdict, type Entry } from './entry.js';
+import { verdict, type Entry, type Verdict } from './entry.js';
 import classes from './upload.module.css';
 
 interface Props {
@@ -28,12 +28,11 @@ export function SendBar({ entries, programmeName, onSend, onCancel }: Props) {
 
 /** The bar's sentence. */
 export function standing(entries: readonly Entry[]): string {
-  const of = (state: ReturnType<typeof verdict>) => entries.filter((entry) => verdict(entry) === state).length;
-  const [ready, busy, added, reading] = [of('ready'), of('sending'), of('added'), of('reading')];
+  const of = (...states: Verdict[]) => entries.filter((entry) => states.includes(verdict(entry))).length;
+  const [ready, busy, added, reading, stay] = [of('ready'), of('sending'), of('added'), of('reading'), of('asks', 'unreadable', 'refused')];
   if (busy) return `${count(busy)} on ${busy === 1 ? 'its' : 'their'} way, ${count(added)} added.`;
   if (reading) return `Reading ${counted(reading, 'file')}.`;
-  const left = entries.length - ready - added;
-  if (ready) return `${count(ready)} of ${count(entries.length)} can go now${left ? '; the others stay on this page' : ''}.`;
-  if (added === entries.length) return 'All are added; their analyses run.';
-  return added ? `${count(added)} added; ${count(left)} stay on this page.` : 'None can go yet.';
+  if (ready) return `${count(ready)} of ${count(entries.length)} can go now${stay ? '; the others stay on this page' : ''}.`;
+  if (stay) return `${added ? `${count(added)} added; ` : ''}${counted(stay, 'file needs', 'files need')} a look.`;
+  return added ? 'All are added; their analyses run.' : 'Nothing is left to add.';
 }

@@ -1,13 +1,15 @@
+import { Button } from '@mantine/core';
 import { Dropzone } from '@mantine/dropzone';
 import { roleAllows } from '@foreveil/shared';
 import { IconDownload } from '@tabler/icons-react';
 import { useSuspenseQueries } from '@tanstack/react-query';
 import { useEffect, useRef } from 'react';
-import { useParams, useSearchParams } from 'react-router-dom';
-import { PageHead } from '../../components/PageHead.js';
+import { Link, useParams, useSearchParams } from 'react-router-dom';
+import { PageHead, type Fact } from '../../components/PageHead.js';
 import { roleReason } from '../../components/RoleButton.js';
 import { takeHandedOver } from '../../lib/handed-over.js';
 import { count, counted } from '../../lib/number.js';
+import { pagePaths } from '../../lib/paths.js';
 import { programmeQueries, targetQueries } from '../../lib/queries/programmes.js';
 import { verdict, type Entry, type Verdict } from './entry.js';
 import { FileBand } from './FileBand.js';
@@ -27,10 +29,14 @@ export function UploadPage() {
   const { entries, add } = uploads;
   useLeaveGuard(entries);
   useFilesHandedOver(add);
-  const number = (state: Verdict) => entries.filter((entry) => verdict(entry) === state).length;
 
   if (!roleAllows(programme.role, 'analyst')) {
-    return <PageHead title="Add spectra" sub={roleReason(programme.role, 'analyst')} />;
+    const back = (
+      <Button component={Link} to={pagePaths.programme(programmeId)}>
+        Back to {programme.name}
+      </Button>
+    );
+    return <PageHead title="Add spectra" sub={roleReason(programme.role, 'analyst')} actions={back} />;
   }
   return (
     <>
@@ -39,16 +45,7 @@ export function UploadPage() {
         tab={`Add spectra · ${programme.name}`}
         simulated={programme.simulated}
         sub="Correct what was read wrongly; the original bytes are kept as they are"
-        facts={
-          entries.length
-            ? [
-                { label: 'Ready', value: count(number('ready')) },
-                { label: 'Need an answer', value: count(number('asks')) },
-                { label: 'Cannot be read', value: count(number('unreadable')) },
-                { label: 'Added', value: count(number('added')) },
-              ]
-            : []
-        }
+        facts={standingFacts(entries)}
       />
       <FileDrop empty={!entries.length} onFiles={add} />
       {entries.map((entry) => (
@@ -75,6 +72,23 @@ export function UploadPage() {
       )}
     </>
   );
+}
+
+const FACT_WORDS: Partial<Record<Verdict, string>> = {
+  ready: 'Ready',
+  asks: 'Need an answer',
+  unreadable: 'Cannot be read',
+  added: 'Added',
+  duplicate: 'Already here',
+  refused: 'Not added',
+};
+
+/** How many files stand where; only what there is. */
+function standingFacts(entries: readonly Entry[]): Fact[] {
+  return (Object.entries(FACT_WORDS) as [Verdict, string][])
+    .map(([state, label]) => ({ label, n: entries.filter((entry) => verdict(entry) === state).length }))
+    .filter(({ n }) => n > 0)
+    .map(({ label, n }) => ({ label, value: count(n) }));
 }
 
 function titleOf(entries: readonly Entry[]): string {
