@@ -93,7 +93,9 @@ function placementError(continuum: ContinuumFit): number {
 
 function measureAll(detection: Detection, data: NormalisedSamples, resolvingPower: number, placement: number): Measured[] {
   const { model } = detection;
-  return [...model.components].sort((a, b) => a.centre - b.centre).map((c) => measure(c, data, model.overlapping([c]), resolvingPower, placement));
+  return [...model.components]
+    .sort((a, b) => a.centre - b.centre)
+    .map((c) => measure(c, data, model.overlapping([c]), resolvingPower, placement));
 }
 
 function viewOf(m: Measured, index: number): FeatureView {

@@ -4,7 +4,9 @@ import { C_KM_PER_S } from '../units/index.js';
 const LOG_MIN = -4;
 const LOG_MAX = 8;
 const PER_DEX = 40;
-const TABLE: Float64Array = Float64Array.from({ length: (LOG_MAX - LOG_MIN) * PER_DEX + 1 }, (_, i) => saturationIntegral(10 ** (LOG_MIN + i / PER_DEX)));
+const TABLE: Float64Array = Float64Array.from({ length: (LOG_MAX - LOG_MIN) * PER_DEX + 1 }, (_, i) =>
+  saturationIntegral(10 ** (LOG_MIN + i / PER_DEX)),
+);
 
 function saturationIntegral(tau: number): number {
   const h = 0.02;
@@ -26,7 +28,8 @@ export function saturation(tau: number): number {
  * @param column cm^-2; @param f oscillator strength; @param wavelengthNm vacuum nm; @param b Doppler parameter, km/s
  * Source: tau_0 = sqrt(pi) e^2 / (m_e c) N f lambda / b; 1.497e-15 for lambda in Angstrom and b in km/s (Spitzer 1978, eq. 3-50; from memory).
  */
-export const centralDepth = (column: number, f: number, wavelengthNm: number, b: number): number => (1.4974e-14 * column * f * wavelengthNm) / b;
+export const centralDepth = (column: number, f: number, wavelengthNm: number, b: number): number =>
+  (1.4974e-14 * column * f * wavelengthNm) / b;
 
 /**
  * Equivalent width, nm, of one absorbing component: Doppler core and, where stronger, radiation-damped wings.

@@ -9,7 +9,17 @@ const H_BETA = 1.24e-25; // erg cm^3/s per n_e n_p, Case B at 10^4 K (Osterbrock
 /** Share of an element in each stage of a common H II region or planetary nebula, I to VI; rough on purpose, the data move every ion. */
 const STAGE_SHARE = [0.02, 0.45, 0.45, 0.06, 0.01, 0.003];
 /** Elements that mostly sit in dust, and the share left in the gas, dex (common practice; e.g. Osterbrock & Ferland 2006, section 7). */
-const DEPLETION: Readonly<Record<string, number>> = { Fe: -1.8, Ni: -1.8, Cr: -1.8, Mn: -1.5, Ca: -2.5, Ti: -2.5, Al: -1.5, Si: -0.6, Mg: -0.7 };
+const DEPLETION: Readonly<Record<string, number>> = {
+  Fe: -1.8,
+  Ni: -1.8,
+  Cr: -1.8,
+  Mn: -1.5,
+  Ca: -2.5,
+  Ti: -2.5,
+  Al: -1.5,
+  Si: -0.6,
+  Mg: -0.7,
+};
 const COLLISION_STRENGTH = 0.25; // per statistical weight of the upper level, typical of strong nebular transitions
 const RECOMBINATION_LINE = -0.8; // log10 intensity (H beta = 100) of a permitted metal line without a listed intensity
 

@@ -1,7 +1,10 @@
 // Written by scripts/make-atom-tables.mjs from seeds/data; sources are named there row by row.
 
 /** Temperatures of the partition functions, K. */
-export const PARTITION_TEMPERATURES: readonly number[] = [3000, 3500, 4000, 4500, 5000, 5500, 6000, 6500, 7000, 7500, 8000, 9000, 10000, 11000, 12000, 13000, 14000, 15000, 16000, 18000, 20000, 22000, 24000, 26000, 28000, 30000];
+export const PARTITION_TEMPERATURES: readonly number[] = [
+  3000, 3500, 4000, 4500, 5000, 5500, 6000, 6500, 7000, 7500, 8000, 9000, 10000, 11000, 12000, 13000, 14000, 15000, 16000, 18000, 20000,
+  22000, 24000, 26000, 28000, 30000,
+];
 
 /** Species: ionisation energy in eV (NIST ASD), then partition functions at the temperatures above (sums over NIST ASD levels; absent where unknown). */
 // prettier-ignore

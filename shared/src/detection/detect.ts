@@ -2,7 +2,17 @@ import { newComponent, ROUGH, type BlendLimits, type Component, type NormalisedS
 import { C_KM_PER_S } from '../units/index.js';
 import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
-import { applyRotation, dropNeedless, findRotation, gatherDamped, mergeShreds, pruneWeak, splitBlends, trySpecialShapes, type Rotation } from './refine.js';
+import {
+  applyRotation,
+  dropNeedless,
+  findRotation,
+  gatherDamped,
+  mergeShreds,
+  pruneWeak,
+  splitBlends,
+  trySpecialShapes,
+  type Rotation,
+} from './refine.js';
 
 export interface DetectionInput {
   /** flux over continuum, inverse variances */
@@ -35,7 +45,10 @@ export function detect(input: DetectionInput): Detection {
   const sigmaPx = instrumentSigmaPx(data.wavelength, resolvingPower);
   const range = data.wavelength[n - 1]! - data.wavelength[0]!;
   const widestNm = Math.min(WIDEST_NM, range / 8);
-  const limits = (at: number): BlendLimits => ({ narrowest: (0.5 * at) / resolvingPower, widest: Math.max(widestNm * 1.3, (2 * at) / resolvingPower) });
+  const limits = (at: number): BlendLimits => ({
+    narrowest: (0.5 * at) / resolvingPower,
+    widest: Math.max(widestNm * 1.3, (2 * at) / resolvingPower),
+  });
   const model = new LineModel(data, limits);
   let usable = 0;
   for (let i = 0; i < n; i++) if (data.weight[i]! > 0) usable++;
@@ -46,7 +59,9 @@ export function detect(input: DetectionInput): Detection {
     const zeroMean = round < ROUNDS - 2;
     const residual = residualOf(model, input.continuumSigma);
     const excesses = findExcesses(residual, { instrumentSigmaPx: sigmaPx, widestNm, zeroMean, threshold, correlation: input.correlation });
-    const fresh = chosen(excesses, model, threshold).map((e) => newComponent(e.kind, e.centre, Math.max(e.fwhm, e.centre / resolvingPower), start(e)));
+    const fresh = chosen(excesses, model, threshold).map((e) =>
+      newComponent(e.kind, e.centre, Math.max(e.fwhm, e.centre / resolvingPower), start(e)),
+    );
     if (fresh.length === 0 && !zeroMean) break;
     if (rotation) applyRotation(fresh, rotation);
     model.add(fresh);
@@ -118,7 +133,17 @@ function chosen(excesses: readonly Excess[], model: LineModel, threshold: number
       return wide < 3 * narrow ? Math.abs(centre - e.centre) < 0.6 * wide : Math.abs(centre - e.centre) < 0.5 * narrow;
     };
     if (out.some((o) => clash(o.centre, o.fwhm))) continue;
-    if (model.components.some((c) => c.kind === e.kind && clash(c.centre, c.fwhm) && c.fwhm < 3 * e.fwhm && c.fwhm > e.fwhm / 3 && Math.abs(c.centre - e.centre) < 0.35 * c.fwhm)) continue;
+    if (
+      model.components.some(
+        (c) =>
+          c.kind === e.kind &&
+          clash(c.centre, c.fwhm) &&
+          c.fwhm < 3 * e.fwhm &&
+          c.fwhm > e.fwhm / 3 &&
+          Math.abs(c.centre - e.centre) < 0.35 * c.fwhm,
+      )
+    )
+      continue;
     if (beyondContinuum(e, model.data) < threshold) continue;
     if (e.amplitude / Math.hypot(e.amplitude / e.significance, placementFloor(e)) < threshold) continue;
     out.push(e);

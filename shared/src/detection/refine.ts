@@ -1,4 +1,18 @@
-import { asDamped, chi2Of, fitBlend, GAUSSIAN, newComponent, rangeOf, rotationShape, ROUGH, settle, withCore, type Component, type NormalisedSamples, type Shape } from '../profiles/index.js';
+import {
+  asDamped,
+  chi2Of,
+  fitBlend,
+  GAUSSIAN,
+  newComponent,
+  rangeOf,
+  rotationShape,
+  ROUGH,
+  settle,
+  withCore,
+  type Component,
+  type NormalisedSamples,
+  type Shape,
+} from '../profiles/index.js';
 import type { LineModel } from './model.js';
 
 /** Takes out components that the joint fit no longer supports. */
@@ -11,7 +25,9 @@ export function pruneWeak(model: LineModel, threshold: number): void {
     if (impossible) gone.add(c);
   }
   if (gone.size === 0) return;
-  const touched = new Set(model.components.filter((c) => !gone.has(c) && [...gone].some((g) => Math.abs(g.centre - c.centre) < 1.5 * (g.fwhm + c.fwhm))));
+  const touched = new Set(
+    model.components.filter((c) => !gone.has(c) && [...gone].some((g) => Math.abs(g.centre - c.centre) < 1.5 * (g.fwhm + c.fwhm))),
+  );
   model.remove(gone);
   model.refit(1, touched, ROUGH);
 }
@@ -32,11 +48,15 @@ export interface Rotation {
  * @returns null when no width is shared or Gaussians serve as well
  */
 export function findRotation(model: LineModel, resolvingPower: number): Rotation | null {
-  const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > RESOLVED * c.centre && c.amplitude / c.sigmaAmplitude > 12);
+  const broad = model.components.filter(
+    (c) => c.kind === 'dip' && c.fwhm * resolvingPower > RESOLVED * c.centre && c.amplitude / c.sigmaAmplitude > 12,
+  );
   let best: Rotation | null = null;
   let bestGain = ROTATION_GAIN;
   for (const width of commonWidths(broad)) {
-    const members = broad.filter((c) => near(c.fwhm / c.centre, width, SAME_WIDTH)).sort((a, b) => b.amplitude / b.sigmaAmplitude - a.amplitude / a.sigmaAmplitude);
+    const members = broad
+      .filter((c) => near(c.fwhm / c.centre, width, SAME_WIDTH))
+      .sort((a, b) => b.amplitude / b.sigmaAmplitude - a.amplitude / a.sigmaAmplitude);
     const shapes = [GAUSSIAN, ...BLURS.map((b) => rotationOfBlur(b * blurOf(width * resolvingPower)))];
     const gains = new Float64Array(shapes.length);
     const widths = shapes.map((): number[] => []);
@@ -54,7 +74,8 @@ export function findRotation(model: LineModel, resolvingPower: number): Rotation
     }
     for (let k = 1; k < shapes.length; k++) {
       const gain = gains[k]!;
-      if (gain > bestGain) [best, bestGain] = [{ relativeWidth: widths[k]!.sort((a, b) => a - b)[widths[k]!.length >> 1]!, shape: shapes[k]! }, gain];
+      if (gain > bestGain)
+        [best, bestGain] = [{ relativeWidth: widths[k]!.sort((a, b) => a - b)[widths[k]!.length >> 1]!, shape: shapes[k]! }, gain];
     }
   }
   return best;
@@ -69,7 +90,8 @@ const MEMBERS = 30;
 const BLURS = [1, 1.8, 3];
 
 /** Whether a weak component may be the corner of a profile whose shape was not right yet. */
-const isShredOf = (o: Component, c: Component): boolean => o.kind === c.kind && Math.abs(o.centre - c.centre) < 1.3 * c.fwhm && o.amplitude * o.area < 0.35 * c.amplitude * c.area;
+const isShredOf = (o: Component, c: Component): boolean =>
+  o.kind === c.kind && Math.abs(o.centre - c.centre) < 1.3 * c.fwhm && o.amplitude * o.area < 0.35 * c.amplitude * c.area;
 
 const near = (a: number, b: number, factor: number): boolean => a < b * factor && a > b / factor;
 
@@ -103,7 +125,9 @@ function rotationOfBlur(blur: number): Shape {
 
 /** Dips of the star's width take its rotation profile. */
 export function applyRotation(components: readonly Component[], rotation: Rotation): void {
-  for (const c of components) if (c.kind === 'dip' && !c.damped && near(c.fwhm / c.centre, rotation.relativeWidth, 1.6)) Object.assign(c, withCore(c, rotation.shape));
+  for (const c of components)
+    if (c.kind === 'dip' && !c.damped && near(c.fwhm / c.centre, rotation.relativeWidth, 1.6))
+      Object.assign(c, withCore(c, rotation.shape));
 }
 
 const DAMPED_SIGNIFICANCE = 40;
@@ -111,10 +135,20 @@ const DAMPED_GAIN = 40; // chi-square asked of two more parameters, with room fo
 
 /** Broad strong dips get the shape the data prefer: Gaussian, rotation-broadened, or saturated with damping wings. */
 export function trySpecialShapes(model: LineModel, resolvingPower: number, rotation: Rotation | null): void {
-  const broad = model.components.filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > BROAD * c.centre && c.amplitude / c.sigmaAmplitude > SPECIAL_SIGNIFICANCE);
+  const broad = model.components.filter(
+    (c) => c.kind === 'dip' && c.fwhm * resolvingPower > BROAD * c.centre && c.amplitude / c.sigmaAmplitude > SPECIAL_SIGNIFICANCE,
+  );
   for (const c of broad.sort((a, b) => b.amplitude * b.fwhm - a.amplitude * a.fwhm || a.centre - b.centre)) {
     const others = model.overlapping([c]);
-    const trials = [withCore(c, GAUSSIAN), withCore(c, rotation && near(c.fwhm / c.centre, rotation.relativeWidth, 1.8) ? rotation.shape : rotationOfBlur(blurOf((c.fwhm * resolvingPower) / c.centre)))];
+    const trials = [
+      withCore(c, GAUSSIAN),
+      withCore(
+        c,
+        rotation && near(c.fwhm / c.centre, rotation.relativeWidth, 1.8)
+          ? rotation.shape
+          : rotationOfBlur(blurOf((c.fwhm * resolvingPower) / c.centre)),
+      ),
+    ];
     if (c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE) trials.push(c.damped ? { ...c } : asDamped(c));
     const range = [c.centre - 4 * c.fwhm, c.centre + 4 * c.fwhm] as const;
     let best: Component | null = null;
@@ -137,16 +171,35 @@ const LARGEST_CROWD = 6; // refitted together before the comparison
  */
 export function gatherDamped(model: LineModel, threshold: number, tolerant: NormalisedSamples, resolvingPower: number): void {
   const strong = model.components
-    .filter((c) => c.kind === 'dip' && c.fwhm * resolvingPower > 2 * BROAD * c.centre && c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE)
+    .filter(
+      (c) => c.kind === 'dip' && c.fwhm * resolvingPower > 2 * BROAD * c.centre && c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE,
+    )
     .sort((a, b) => b.amplitude * b.area - a.amplitude * a.area || a.centre - b.centre);
   for (const c of strong) {
     if (!model.components.includes(c)) continue;
-    const crowd = model.components.filter((o) => o !== c && o.kind === 'dip' && o.fwhm > CROWD_WIDTH * c.fwhm && Math.abs(o.centre - c.centre) < CROWD_REACH * Math.max(c.fwhm, 0.5 * o.fwhm) && o.amplitude * o.area < c.amplitude * c.area);
+    const crowd = model.components.filter(
+      (o) =>
+        o !== c &&
+        o.kind === 'dip' &&
+        o.fwhm > CROWD_WIDTH * c.fwhm &&
+        Math.abs(o.centre - c.centre) < CROWD_REACH * Math.max(c.fwhm, 0.5 * o.fwhm) &&
+        o.amplitude * o.area < c.amplitude * c.area,
+    );
     if (crowd.length === 0) continue;
     const others = model.overlapping([c, ...crowd]);
     const limits = model.limitsAt(c.centre);
     const range = rangeOf([c, ...crowd]);
-    const now = Math.min(chi2Of(tolerant, [c, ...crowd, ...others], range), fitBlend(tolerant, [{ ...c }, ...crowd.slice(0, LARGEST_CROWD).map((o) => ({ ...o }))], [...others, ...crowd.slice(LARGEST_CROWD)], limits, range, ROUGH).chi2);
+    const now = Math.min(
+      chi2Of(tolerant, [c, ...crowd, ...others], range),
+      fitBlend(
+        tolerant,
+        [{ ...c }, ...crowd.slice(0, LARGEST_CROWD).map((o) => ({ ...o }))],
+        [...others, ...crowd.slice(LARGEST_CROWD)],
+        limits,
+        range,
+        ROUGH,
+      ).chi2,
+    );
     const one = c.damped ? { ...c } : asDamped(c);
     const alone = fitBlend(tolerant, [one], others, limits, range).chi2;
     if (alone > now + threshold * threshold * crowd.length) continue;
@@ -163,12 +216,21 @@ const NEIGHBOURS = 3;
  * weighed with the profile error allowed for beside strong lines, so that a misfit of a few per cent is no feature.
  */
 export function dropNeedless(model: LineModel, threshold: number, tolerant: NormalisedSamples, rotation: Rotation | null): void {
-  const weakFirst = [...model.components].sort((a, b) => a.amplitude / a.sigmaAmplitude - b.amplitude / b.sigmaAmplitude || a.centre - b.centre);
+  const weakFirst = [...model.components].sort(
+    (a, b) => a.amplitude / a.sigmaAmplitude - b.amplitude / b.sigmaAmplitude || a.centre - b.centre,
+  );
   const gone = new Set<Component>();
   for (const c of weakFirst) {
     if (c.amplitude / c.sigmaAmplitude > NEEDED_SIGNIFICANCE) break;
     const strong = model.components
-      .filter((o) => o !== c && !gone.has(o) && o.kind === c.kind && o.amplitude * o.area > 1.5 * c.amplitude * c.area && Math.abs(o.centre - c.centre) < 0.7 * (o.fwhm + c.fwhm))
+      .filter(
+        (o) =>
+          o !== c &&
+          !gone.has(o) &&
+          o.kind === c.kind &&
+          o.amplitude * o.area > 1.5 * c.amplitude * c.area &&
+          Math.abs(o.centre - c.centre) < 0.7 * (o.fwhm + c.fwhm),
+      )
       .sort((a, b) => Math.abs(a.centre - c.centre) / a.fwhm - Math.abs(b.centre - c.centre) / b.fwhm)
       .slice(0, NEIGHBOURS);
     if (strong.length === 0) continue;
@@ -180,7 +242,9 @@ export function dropNeedless(model: LineModel, threshold: number, tolerant: Norm
     let alone = strong.map((o) => ({ ...o }));
     let without = fitBlend(tolerant, alone, others, limits, wide).chi2;
     if (rotation && without - withIt.chi2 > threshold * threshold) {
-      const rotating = strong.map((o) => (o.damped || !near(o.fwhm / o.centre, rotation.relativeWidth, 1.8) ? { ...o } : withCore(o, rotation.shape)));
+      const rotating = strong.map((o) =>
+        o.damped || !near(o.fwhm / o.centre, rotation.relativeWidth, 1.8) ? { ...o } : withCore(o, rotation.shape),
+      );
       const chi2 = fitBlend(tolerant, rotating, others, limits, wide).chi2;
       if (chi2 < without) [alone, without] = [rotating, chi2];
     }
@@ -239,7 +303,9 @@ export function splitBlends(model: LineModel, threshold: number, resolvingPower:
     const limits = model.limitsAt(c.centre);
     const range = rangeOf([c]);
     const one = fitBlend(model.data, [{ ...c }], others, limits, range);
-    const pair = [-1, 1].map((side) => newComponent(c.kind, c.centre + side * 0.35 * c.fwhm, Math.max(0.6 * c.fwhm, element), 0.7 * c.amplitude, c.core));
+    const pair = [-1, 1].map((side) =>
+      newComponent(c.kind, c.centre + side * 0.35 * c.fwhm, Math.max(0.6 * c.fwhm, element), 0.7 * c.amplitude, c.core),
+    );
     const two = fitBlend(model.data, pair, others, limits, range);
     const [a, b] = pair as [Component, Component];
     const apart = Math.abs(b.centre - a.centre) > 0.8 * Math.min(a.fwhm, b.fwhm);

@@ -7,7 +7,16 @@ import { refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
 import { dopplerFactor, type Coverage } from './views.js';
 
 /** Largest velocity the Earth can have against the frame, km/s: its orbit and rotation, with room for the solar motion in LSR frames. */
-const REACH: Record<Frame, number> = { topocentric: 2, geocentric: 3, heliocentric: 33, barycentric: 33, lsrk: 55, lsrd: 55, source: 300, unknown: 60 };
+const REACH: Record<Frame, number> = {
+  topocentric: 2,
+  geocentric: 3,
+  heliocentric: 33,
+  barycentric: 33,
+  lsrk: 55,
+  lsrd: 55,
+  source: 300,
+  unknown: 60,
+};
 const ENOUGH = 8;
 const FULL_ABSORPTION_LOG_W = -2.1; // log10 nm of an absorption line of relative strength 1 near one air mass, typical
 const SKY_LOG_W = -2.3; // log10 nm of the brightest sky lines against a faint source: moved by the data over decades
@@ -44,7 +53,16 @@ function airModel(lines: readonly Line[], kind: 'dip' | 'peak', velocity: number
     priorSigma: kind === 'peak' ? 1 : 0.45,
     presence: 0.8,
   }));
-  return { id: kind === 'dip' ? 'air' : 'sky', family: 'telluric', kind, velocity, velocitySigma: sigma, significance: 0, fwhmV: coverage.elementV, species };
+  return {
+    id: kind === 'dip' ? 'air' : 'sky',
+    family: 'telluric',
+    kind,
+    velocity,
+    velocitySigma: sigma,
+    significance: 0,
+    fwhmV: coverage.elementV,
+    species,
+  };
 }
 
 /** The Earth's air, if its lines show: its velocity is what the frame took off. */
@@ -57,11 +75,19 @@ export function findAir(lines: readonly Line[], kind: 'dip' | 'peak', scene: Sce
   const grid: VelocityGrid = { from: -reach - 3 * step, step, count: 2 * Math.ceil(reach / step) + 7 };
   const template = {
     wavelength: listed.map((l) => l.wavelengthNm),
-    weight: listed.map((l) => (l.relativeIntensity === null ? 0.2 : Math.sqrt(l.type === 'telluric' ? l.relativeIntensity : l.relativeIntensity / 100))),
+    weight: listed.map((l) =>
+      l.relativeIntensity === null ? 0.2 : Math.sqrt(l.type === 'telluric' ? l.relativeIntensity : l.relativeIntensity / 100),
+    ),
   };
-  const weight = features.map((f) => Math.sqrt(Math.min((10 ** f.logW / f.wavelength) * C_KM_PER_S, 20)) * (1 - scene.background.explained(f.index, { id: '' } as SystemModel)));
+  const weight = features.map(
+    (f) =>
+      Math.sqrt(Math.min((10 ** f.logW / f.wavelength) * C_KM_PER_S, 20)) *
+      (1 - scene.background.explained(f.index, { id: '' } as SystemModel)),
+  );
   const spread = features.map((f) => Math.hypot(f.sigmaV, 0.2 * scene.coverage.elementV));
-  const peaks = peaksOf(correlate(features, weight, spread, template, grid), grid, 0.5 * scene.coverage.elementV, 6).filter((p) => Math.abs(p.velocity) <= reach + step);
+  const peaks = peaksOf(correlate(features, weight, spread, template, grid), grid, 0.5 * scene.coverage.elementV, 6).filter(
+    (p) => Math.abs(p.velocity) <= reach + step,
+  );
   let best: Weighed | null = null;
   for (const p of peaks) {
     const first = weigh(airModel(listed, kind, p.velocity, 0.1 * scene.coverage.elementV, scene.coverage), scene);

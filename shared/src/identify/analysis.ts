@@ -13,7 +13,12 @@ export interface AnalysisSettings {
   readonly velocityRangeKmPerS: number;
 }
 
-export const DEFAULT_SETTINGS: AnalysisSettings = { falseFeatures: 0.5, extinctionAv: null, localContinuum: false, velocityRangeKmPerS: 300 };
+export const DEFAULT_SETTINGS: AnalysisSettings = {
+  falseFeatures: 0.5,
+  extinctionAv: null,
+  localContinuum: false,
+  velocityRangeKmPerS: 300,
+};
 
 /** Continuum under a spectrum, and what it tells of the temperature. Arrays sample the model for drawing. */
 export interface Continuum {

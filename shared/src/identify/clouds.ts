@@ -24,22 +24,32 @@ const REDDENING = 0.3; // mag at the typical column
 export function findClouds(lines: readonly Line[], scene: Scene, rangeV: number): SystemModel[] {
   const atoms = lines.filter((l) => l.type !== 'band' && isCommonInClouds(l.species) && (l.oscillatorStrength ?? 0) > 0);
   const found: SystemModel[] = [];
-  const grid: VelocityGrid = { from: -rangeV, step: 0.2 * scene.coverage.elementV, count: 2 * Math.ceil(rangeV / (0.2 * scene.coverage.elementV)) + 1 };
+  const grid: VelocityGrid = {
+    from: -rangeV,
+    step: 0.2 * scene.coverage.elementV,
+    count: 2 * Math.ceil(rangeV / (0.2 * scene.coverage.elementV)) + 1,
+  };
   const used = new Set<FeatureView>();
   for (let n = 0; n < MOST_CLOUDS; n++) {
     const peaks = peaksOf(votes(atoms, scene, grid, used), grid, 0.6 * scene.coverage.elementV, CANDIDATES);
     const spaced = peaks.filter((p) => found.every((c) => Math.abs(c.velocity - p.velocity) > 0.7 * scene.coverage.elementV));
     let best: Weighed | null = null;
     for (const p of spaced) {
-      const w = bestVariant(p.velocity, (v, sigma) => [cloudModel(`cloud${n + 1}`, atoms, v, sigma, 2.2, 0, scene.coverage)], withoutUsed(scene, used));
+      const w = bestVariant(
+        p.velocity,
+        (v, sigma) => [cloudModel(`cloud${n + 1}`, atoms, v, sigma, 2.2, 0, scene.coverage)],
+        withoutUsed(scene, used),
+      );
       if (w && (!best || w.evidence > best.evidence)) best = w;
     }
     if (!best) break;
     const apart = (v: number): boolean => found.every((c) => Math.abs(c.velocity - v) > 0.7 * scene.coverage.elementV);
     const settled = settle(best, `cloud${n + 1}`, atoms, withoutUsed(scene, used));
-    if (settled.weighed.evidence < ENOUGH + Math.log(spaced.length + 1) || settled.members < 2 || !apart(settled.weighed.system.velocity)) break;
+    if (settled.weighed.evidence < ENOUGH + Math.log(spaced.length + 1) || settled.members < 2 || !apart(settled.weighed.system.velocity))
+      break;
     found.push({ ...settled.weighed.system, significance: Math.sqrt(2 * settled.weighed.evidence) });
-    for (const s of settled.weighed.states) for (const t of s.terms) if (t.feature && t.outcome === 'seen' && s.logEvidence > 1) used.add(t.feature);
+    for (const s of settled.weighed.states)
+      for (const t of s.terms) if (t.feature && t.outcome === 'seen' && s.logEvidence > 1) used.add(t.feature);
   }
   return found;
 }
@@ -47,7 +57,10 @@ export function findClouds(lines: readonly Line[], scene: Scene, rangeV: number)
 /** Features that a cloud found before has claimed count as explained for the next. */
 function withoutUsed(scene: Scene, used: ReadonlySet<FeatureView>): Scene {
   const { background } = scene;
-  return { ...scene, background: { ...background, explained: (i, without) => (used.has(scene.features[i]!) ? 0.95 : background.explained(i, without)) } };
+  return {
+    ...scene,
+    background: { ...background, explained: (i, without) => (used.has(scene.features[i]!) ? 0.95 : background.explained(i, without)) },
+  };
 }
 
 /** Improves velocity, Doppler parameter and column scale in turn. */
@@ -72,7 +85,10 @@ function settle(start: Weighed, id: string, atoms: readonly Line[], scene: Scene
 
 function shifted(system: SystemModel, velocity: number, sigma: number): SpeciesModel[] {
   const factor = dopplerFactor(velocity);
-  return system.species.map((s) => ({ ...s, lines: s.lines.map((e) => ({ ...e, wavelength: e.line.wavelengthNm * factor, sigmaV: Math.hypot(sigma, 0.1) })) }));
+  return system.species.map((s) => ({
+    ...s,
+    lines: s.lines.map((e) => ({ ...e, wavelength: e.line.wavelengthNm * factor, sigmaV: Math.hypot(sigma, 0.1) })),
+  }));
 }
 
 /** Votes of narrow dips for velocities: pairs of dip and line, weighed by how well the strength suits a typical cloud. */
@@ -82,11 +98,17 @@ function votes(atoms: readonly Line[], scene: Scene, grid: VelocityGrid, used: R
   const widest = 3.2 * coverage.elementV + 25;
   const rangeV = -grid.from;
   for (const line of atoms) {
-    const logW = Math.log10(growthWidth(10 ** typicalColumn(line), line.oscillatorStrength!, line.wavelengthNm, 2.2, line.einsteinA ?? 1e8));
+    const logW = Math.log10(
+      growthWidth(10 ** typicalColumn(line), line.oscillatorStrength!, line.wavelengthNm, 2.2, line.einsteinA ?? 1e8),
+    );
     const limit = coverage.sigmaW(line.wavelengthNm, (line.wavelengthNm * coverage.elementV) / C_KM_PER_S);
     if (!(logW > Math.log10(limit) - 0.3)) continue;
     const nm = (line.wavelengthNm * rangeV) / C_KM_PER_S;
-    for (let i = featureAt(features, line.wavelengthNm - nm); i < features.length && features[i]!.wavelength < line.wavelengthNm + nm; i++) {
+    for (
+      let i = featureAt(features, line.wavelengthNm - nm);
+      i < features.length && features[i]!.wavelength < line.wavelengthNm + nm;
+      i++
+    ) {
       const f = features[i]!;
       if (f.kind !== 'dip' || f.fwhmV > widest || used.has(f) || f.flags.includes('cosmic')) continue;
       const free = 1 - background.explained(f.index, NOBODY);
@@ -94,7 +116,8 @@ function votes(atoms: readonly Line[], scene: Scene, grid: VelocityGrid, used: R
       const v = velocityOf(f.wavelength, line.wavelengthNm);
       const centre = (v - grid.from) / grid.step;
       const s = Math.max(f.sigmaV, 0.25 * coverage.elementV) / grid.step;
-      for (let k = Math.max(0, Math.ceil(centre - 3 * s)); k <= Math.min(grid.count - 1, centre + 3 * s); k++) out[k]! += weight * Math.exp(-0.5 * ((k - centre) / s) ** 2);
+      for (let k = Math.max(0, Math.ceil(centre - 3 * s)); k <= Math.min(grid.count - 1, centre + 3 * s); k++)
+        out[k]! += weight * Math.exp(-0.5 * ((k - centre) / s) ** 2);
     }
   }
   return out;
@@ -103,7 +126,15 @@ function votes(atoms: readonly Line[], scene: Scene, grid: VelocityGrid, used: R
 const NOBODY = { id: '' } as SystemModel;
 
 /** A cloud at a velocity: all species at typical columns times a common factor, through a curve of growth. */
-export function cloudModel(id: string, atoms: readonly Line[], velocity: number, sigma: number, b: number, shift: number, coverage: Coverage): SystemModel {
+export function cloudModel(
+  id: string,
+  atoms: readonly Line[],
+  velocity: number,
+  sigma: number,
+  b: number,
+  shift: number,
+  coverage: Coverage,
+): SystemModel {
   const factor = dopplerFactor(velocity);
   const bySpecies = new Map<string, Expected[]>();
   for (const line of atoms) {

@@ -19,7 +19,13 @@ export interface Template {
  * @param spread km/s, 1 sigma allowed to each feature
  * @returns correlation coefficient-like score at each velocity
  */
-export function correlate(features: readonly FeatureView[], featureWeight: ArrayLike<number>, spread: ArrayLike<number>, template: Template, grid: VelocityGrid): Float64Array {
+export function correlate(
+  features: readonly FeatureView[],
+  featureWeight: ArrayLike<number>,
+  spread: ArrayLike<number>,
+  template: Template,
+  grid: VelocityGrid,
+): Float64Array {
   const out = new Float64Array(grid.count);
   const low = dopplerFactor(grid.from);
   const high = dopplerFactor(grid.from + grid.step * (grid.count - 1));

@@ -14,7 +14,13 @@ export interface Told {
 const ARGUED = 4; // candidates that get their companions listed; the argument is given for all
 
 /** Turns the inner result into what is stored and shown. */
-export function describe(identified: Identified, measured: readonly Measured[], views: readonly FeatureView[], coverage: Coverage, list: LineList): Told {
+export function describe(
+  identified: Identified,
+  measured: readonly Measured[],
+  views: readonly FeatureView[],
+  coverage: Coverage,
+  list: LineList,
+): Told {
   const uncovered = uncoveredLines(list.lines, coverage);
   const features = measured.map((m, i) => featureOf(m, views[i]!, identified.rankings[i]!, coverage, uncovered));
   const systems = identified.systems
@@ -24,7 +30,8 @@ export function describe(identified: Identified, measured: readonly Measured[], 
       velocityKmPerS: system.velocity,
       velocitySigmaKmPerS: system.velocitySigma,
       significance: system.significance,
-      members: features.filter((f) => f.candidates[0]?.systemId === system.id && f.candidates[0].probability > f.unidentifiedProbability).length,
+      members: features.filter((f) => f.candidates[0]?.systemId === system.id && f.candidates[0].probability > f.unidentifiedProbability)
+        .length,
       fwhmKmPerS: Math.max(system.fwhmV, coverage.elementV),
     }))
     .filter((s) => s.members > 0);
@@ -55,7 +62,14 @@ function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, cove
   };
 }
 
-function candidateOf(r: Ranked, full: boolean, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: Uncovered): Candidate {
+function candidateOf(
+  r: Ranked,
+  full: boolean,
+  view: FeatureView,
+  ranking: FeatureRanking,
+  coverage: Coverage,
+  uncovered: Uncovered,
+): Candidate {
   const c = r.contender;
   const { line } = c.expected;
   const evidence = argue(r, view, ranking.contenders, ranking.unidentified, coverage);

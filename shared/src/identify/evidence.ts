@@ -37,15 +37,26 @@ export function argue(r: Ranked, f: FeatureView, rivals: readonly Contender[], u
   const spreadPrior = Math.hypot(priorSigma, e.scatter, f.sigmaLogW, 0.06);
   const spreadLearned = Math.hypot(learned.sigma, e.scatter, f.sigmaLogW, 0.06);
   const strength = lnNormal(f.logW, e.logW + priorMean, spreadPrior) + Math.log(FLAT_LOG_W);
-  const companions = lnNormal(f.logW, e.logW + learned.mean, spreadLearned) - lnNormal(f.logW, e.logW + priorMean, spreadPrior) + Math.log(c.presence / presence);
+  const companions =
+    lnNormal(f.logW, e.logW + learned.mean, spreadLearned) -
+    lnNormal(f.logW, e.logW + priorMean, spreadPrior) +
+    Math.log(c.presence / presence);
   const width = Math.log(widthRatio(e, f, coverage));
   const total = logit(r.probability);
   const chance = total - position - strength - companions - width;
   return [
-    { part: 'position', logOdds: position, sentence: `${signed(dv, sigmaV < 0.1 ? 2 : 1)} ± ${sigmaV.toFixed(sigmaV < 0.1 ? 2 : 1)} km/s from where ${placeOf(c)} puts it` },
+    {
+      part: 'position',
+      logOdds: position,
+      sentence: `${signed(dv, sigmaV < 0.1 ? 2 : 1)} ± ${sigmaV.toFixed(sigmaV < 0.1 ? 2 : 1)} km/s from where ${placeOf(c)} puts it`,
+    },
     { part: 'strength', logOdds: strength, sentence: strengthSentence(c, f) },
     { part: 'companions', logOdds: companions, sentence: companionSentence(c.state, own) },
-    { part: 'width', logOdds: width, sentence: `${f.fwhmV.toFixed(1)} km/s wide; lines of the system are ${Math.max(e.fwhmV, coverage.elementV).toFixed(1)} km/s here` },
+    {
+      part: 'width',
+      logOdds: width,
+      sentence: `${f.fwhmV.toFixed(1)} km/s wide; lines of the system are ${Math.max(e.fwhmV, coverage.elementV).toFixed(1)} km/s here`,
+    },
     { part: 'chance', logOdds: chance, sentence: chanceSentence(f, rivals, unidentified) },
   ];
 }
@@ -56,7 +67,12 @@ export function logit(p: number): number {
   return Math.log(q / (1 - q));
 }
 
-const PLACE: Record<string, string> = { stellar: 'the star', interstellar: 'the cloud', nebular: 'the nebula', telluric: "the Earth's air" };
+const PLACE: Record<string, string> = {
+  stellar: 'the star',
+  interstellar: 'the cloud',
+  nebular: 'the nebula',
+  telluric: "the Earth's air",
+};
 const placeOf = (c: Contender): string => `${PLACE[c.system.family]} at ${signed(c.system.velocity, 1)} km/s`;
 
 function strengthSentence(c: Contender, f: FeatureView): string {
@@ -64,7 +80,12 @@ function strengthSentence(c: Contender, f: FeatureView): string {
   const expected = 10 ** c.logW * MILLI_ANGSTROM;
   const ratio = measured / expected;
   const factor = 10 ** Math.hypot(c.sigmaLog, f.sigmaLogW);
-  const verdict = ratio > factor ** 2 ? `, ${ratio.toFixed(1)} times too strong` : ratio < factor ** -2 ? `, ${(1 / ratio).toFixed(1)} times too weak` : '';
+  const verdict =
+    ratio > factor ** 2
+      ? `, ${ratio.toFixed(1)} times too strong`
+      : ratio < factor ** -2
+        ? `, ${(1 / ratio).toFixed(1)} times too weak`
+        : '';
   return `${withError(measured, measured * f.sigmaLogW * Math.LN10)} mÅ measured, ${round(expected)} mÅ expected within a factor ${factor.toFixed(1)}${verdict}`;
 }
 
@@ -81,7 +102,11 @@ function tallyOf(state: SpeciesState): Tally {
   let tally = tallies.get(state);
   if (!tally) {
     const count = (...outcomes: LineTerm['outcome'][]) => state.terms.filter((t) => outcomes.includes(t.outcome));
-    tally = { seen: count('seen', 'merged').length, missing: count('missing').map((t) => t.expected.line.wavelengthNm.toFixed(2)), below: count('below_limit').length };
+    tally = {
+      seen: count('seen', 'merged').length,
+      missing: count('missing').map((t) => t.expected.line.wavelengthNm.toFixed(2)),
+      below: count('below_limit').length,
+    };
     tallies.set(state, tally);
   }
   return tally;
@@ -91,8 +116,13 @@ function companionSentence(state: SpeciesState, own: LineTerm | null): string {
   const { seen: all, missing, below } = tallyOf(state);
   const seen = all - (own?.outcome === 'seen' || own?.outcome === 'merged' ? 1 : 0);
   const due = seen + missing.length;
-  if (due === 0) return below ? `no other line of ${state.model.species} should show above the noise` : `no other line of ${state.model.species} is covered`;
-  const lost = missing.length ? `; missing: ${missing.slice(0, 3).join(', ')} nm${missing.length > 3 ? ` and ${missing.length - 3} more` : ''}` : '';
+  if (due === 0)
+    return below
+      ? `no other line of ${state.model.species} should show above the noise`
+      : `no other line of ${state.model.species} is covered`;
+  const lost = missing.length
+    ? `; missing: ${missing.slice(0, 3).join(', ')} nm${missing.length > 3 ? ` and ${missing.length - 3} more` : ''}`
+    : '';
   return `${seen} of ${due} due ${state.model.species} lines are seen${lost}`;
 }
 
@@ -129,7 +159,9 @@ const ranked = new WeakMap<SpeciesState, LineTerm[]>();
 function strongest(state: SpeciesState): LineTerm[] {
   let list = ranked.get(state);
   if (!list) {
-    list = [...state.terms].sort((a, b) => b.expected.logW - a.expected.logW || a.expected.wavelength - b.expected.wavelength).slice(0, COMPANIONS + 1);
+    list = [...state.terms]
+      .sort((a, b) => b.expected.logW - a.expected.logW || a.expected.wavelength - b.expected.wavelength)
+      .slice(0, COMPANIONS + 1);
     ranked.set(state, list);
   }
   return list;
@@ -150,16 +182,35 @@ export function companionsOf(c: Contender, f: FeatureView, uncovered: Uncovered)
       expectedNm,
       expectedSigmaNm: expectedNm * Math.hypot(sigma, t.expected.scatter) * Math.LN10,
       measuredNm: seen && t.feature ? 10 ** t.feature.logW : null,
-      measuredSigmaNm: seen && t.feature ? 10 ** t.feature.logW * t.feature.sigmaLogW * Math.LN10 : Number.isFinite(t.logMeasured) ? 10 ** t.logMeasured : null,
+      measuredSigmaNm:
+        seen && t.feature
+          ? 10 ** t.feature.logW * t.feature.sigmaLogW * Math.LN10
+          : Number.isFinite(t.logMeasured)
+            ? 10 ** t.logMeasured
+            : null,
     };
   });
-  const out = (uncovered.get(c.expected.line.species) ?? []).map((l): Companion => ({ species: l.species, restNm: l.wavelengthNm, outcome: 'not_covered', expectedNm: 0, expectedSigmaNm: 0, measuredNm: null, measuredSigmaNm: null }));
+  const out = (uncovered.get(c.expected.line.species) ?? []).map((l): Companion => ({
+    species: l.species,
+    restNm: l.wavelengthNm,
+    outcome: 'not_covered',
+    expectedNm: 0,
+    expectedSigmaNm: 0,
+    measuredNm: null,
+    measuredSigmaNm: null,
+  }));
   return [...covered, ...out];
 }
 
 /** One sentence: why the reading ranks where it does, and what would settle it. */
 export function sumUp(c: Contender, parts: readonly EvidencePart[], companions: readonly Companion[], probability: number): string {
-  const words: Record<EvidencePart['part'], string> = { position: 'its place', strength: 'its strength', companions: 'its companions', width: 'its width', chance: 'the rivals' };
+  const words: Record<EvidencePart['part'], string> = {
+    position: 'its place',
+    strength: 'its strength',
+    companions: 'its companions',
+    width: 'its width',
+    chance: 'the rivals',
+  };
   const sorted = [...parts].sort((a, b) => b.logOdds - a.logOdds);
   const best = sorted[0]!;
   const worst = sorted[sorted.length - 1]!;

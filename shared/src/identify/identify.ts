@@ -20,6 +20,8 @@ export interface IdentifyInput {
   readonly temperature: TemperatureHint | null;
   readonly velocityRangeKmPerS: number;
   readonly logContinuum: LogContinuum;
+  /** set when a first pass took a cloud's lines for a star's */
+  readonly withoutStar?: boolean;
 }
 
 export interface Identified {
@@ -42,7 +44,14 @@ export function identify(input: IdentifyInput): Identified {
   };
   const scene = (): Scene => ({ features, coverage, background: explainedBy(systems) });
 
-  const star = findStar(features, of('stellar').filter((l) => l.logGf !== null && l.type === 'allowed'), coverage, input.temperature, input.velocityRangeKmPerS);
+  const star = input.withoutStar
+    ? null
+    : findStar(
+        scene(),
+        of('stellar').filter((l) => l.logGf !== null && l.type === 'allowed'),
+        input.temperature,
+        input.velocityRangeKmPerS,
+      );
   if (star) systems.push(star);
   const airLines = of('telluric');
   const absorbing = findAir(airLines, 'dip', scene(), input.frame);
@@ -55,19 +64,49 @@ export function identify(input: IdentifyInput): Identified {
   const glowing = findAir(airLines, 'peak', scene(), input.frame);
   if (glowing) systems.push(glowing);
 
+  if (star && clouds.length && !hasOwnLines(star, systems, input, explainedBy(systems))) return identify({ ...input, withoutStar: true });
+
   const first = rankAll(systems, input, explainedBy(systems));
   const settled: Background = { rate, explained: (i, without) => othersShare(first.rankings[i]!, without) };
   return rankAll(systems, input, settled);
 }
 
+const EXCITED_PER_CM = 1500; // above what cold gas fills
+const OWN_LINES = 4;
+
+/** Whether a star shows lines that cold gas cannot make: from excited levels, claimed for it against all other systems. */
+function hasOwnLines(star: SystemModel, systems: readonly SystemModel[], input: IdentifyInput, background: Background): boolean {
+  const { rankings } = rankAll(systems, input, background);
+  const own = rankings.filter((r) => {
+    const best = r.ranked[0];
+    return (
+      best?.contender.system === star && best.probability > 0.5 && (best.contender.expected.line.lowerEnergyPerCm ?? 0) > EXCITED_PER_CM
+    );
+  });
+  return own.length >= OWN_LINES;
+}
+
 /** Diffuse bands go with the main cloud, or stand alone where no cloud's lines are covered. */
 function addBands(systems: SystemModel[], clouds: readonly SystemModel[], bands: SystemModel['species'][number]): void {
   if (clouds[0]) clouds[0].species.push(bands);
-  else systems.push({ id: 'bands', family: 'interstellar', kind: 'dip', velocity: 0, velocitySigma: 15, significance: 0, fwhmV: 100, species: [bands] });
+  else
+    systems.push({
+      id: 'bands',
+      family: 'interstellar',
+      kind: 'dip',
+      velocity: 0,
+      velocitySigma: 15,
+      significance: 0,
+      fwhmV: 100,
+      species: [bands],
+    });
 }
 
 function rankAll(systems: readonly SystemModel[], input: IdentifyInput, background: Background): Identified {
-  const states: SystemState[] = systems.map((system) => ({ system, states: system.species.map((s) => speciesState(s, system, input.features, input.coverage, background)) }));
+  const states: SystemState[] = systems.map((system) => ({
+    system,
+    states: system.species.map((s) => speciesState(s, system, input.features, input.coverage, background)),
+  }));
   const rankings = input.features.map((f) => rankFeature(f, contendersOf(f, states, input.features), input.coverage, background));
   return { systems: states, rankings };
 }
@@ -75,7 +114,8 @@ function rankAll(systems: readonly SystemModel[], input: IdentifyInput, backgrou
 /** Chance that systems other than one make a feature. */
 function othersShare(ranking: FeatureRanking, without: SystemModel): number {
   let sum = 0;
-  for (const r of ranking.ranked) if (r.contender.system.id !== without.id || r.contender.system.kind !== without.kind) sum += r.probability * Math.min(1, r.share * 1.2);
+  for (const r of ranking.ranked)
+    if (r.contender.system.id !== without.id || r.contender.system.kind !== without.kind) sum += r.probability * Math.min(1, r.share * 1.2);
   return Math.min(sum, 1);
 }
 

@@ -24,7 +24,13 @@ const BAND_KM_S = 450;
  * @param others components sharing the range: their light is divided out of the direct sum
  * @param continuumSigma relative error of the continuum's placement
  */
-export function measure(c: Component, data: NormalisedSamples, others: readonly Component[], resolvingPower: number, continuumSigma: number): Measured {
+export function measure(
+  c: Component,
+  data: NormalisedSamples,
+  others: readonly Component[],
+  resolvingPower: number,
+  continuumSigma: number,
+): Measured {
   const fitted = equivalentWidth(c);
   const half = Math.min(c.reach, (c.damped ? 4 : 1.5) * c.fwhm);
   const from = indexAt(data.wavelength, c.centre - half);
@@ -61,11 +67,25 @@ export function measure(c: Component, data: NormalisedSamples, others: readonly 
   };
 }
 
-function flagsOf(c: Component, data: NormalisedSamples, others: readonly Component[], resolvingPower: number, from: number, to: number, lost: number): FeatureFlag[] {
+function flagsOf(
+  c: Component,
+  data: NormalisedSamples,
+  others: readonly Component[],
+  resolvingPower: number,
+  from: number,
+  to: number,
+  lost: number,
+): FeatureFlag[] {
   const flags: FeatureFlag[] = [];
   const element = c.centre / resolvingPower;
   if (c.kind === 'peak' && c.fwhm + 2 * c.fwhm * c.sigmaLogFwhm < COSMIC_WIDTH * element) flags.push('cosmic');
-  if (others.some((o) => o.kind === c.kind && Math.abs(o.centre - c.centre) < 0.6 * (o.fwhm + c.fwhm) && o.amplitude * o.fwhm > 0.1 * c.amplitude * c.fwhm)) flags.push('blend');
+  if (
+    others.some(
+      (o) =>
+        o.kind === c.kind && Math.abs(o.centre - c.centre) < 0.6 * (o.fwhm + c.fwhm) && o.amplitude * o.fwhm > 0.1 * c.amplitude * c.fwhm,
+    )
+  )
+    flags.push('blend');
   if (c.kind === 'dip' && c.amplitude > SATURATED_DEPTH) flags.push('saturated');
   if (from === 0 || to >= data.wavelength.length || lost > 0.15 * (to - from)) flags.push('edge');
   if ((c.fwhm / c.centre) * C_KM_PER_S > BAND_KM_S) flags.push('band');

@@ -34,7 +34,10 @@ export function findNebulae(lines: readonly Line[], scene: Scene, rangeV: number
     const weight = free.map((f) => Math.sqrt(f.significance));
     const spread = free.map((f) => Math.hypot(f.sigmaV, 0.25 * scene.coverage.elementV));
     const places = peaksOf(correlate(free, weight, spread, template, grid), grid, scene.coverage.elementV, 10);
-    const left: Scene = { ...scene, background: { ...scene.background, explained: (i, w) => (used.has(scene.features[i]!) ? 0.95 : scene.background.explained(i, w)) } };
+    const left: Scene = {
+      ...scene,
+      background: { ...scene.background, explained: (i, w) => (used.has(scene.features[i]!) ? 0.95 : scene.background.explained(i, w)) },
+    };
     let best: { weighed: Weighed; members: number } | null = null;
     for (const p of places) {
       const tried = settle(`nebula${n + 1}`, chosen, logI, p.velocity, left, logContinuum);
@@ -43,18 +46,29 @@ export function findNebulae(lines: readonly Line[], scene: Scene, rangeV: number
     }
     if (!best || best.members < 2 || best.weighed.evidence < ENOUGH + Math.log(places.length)) break;
     found.push({ ...best.weighed.system, significance: Math.sqrt(2 * best.weighed.evidence) });
-    for (const s of best.weighed.states) for (const t of s.terms) if (t.feature && t.outcome === 'seen' && s.logEvidence > 1) used.add(t.feature);
+    for (const s of best.weighed.states)
+      for (const t of s.terms) if (t.feature && t.outcome === 'seen' && s.logEvidence > 1) used.add(t.feature);
   }
   return found;
 }
 
 /** Brightness scale by the strongest lines, velocity by the members. */
-function settle(id: string, lines: readonly Line[], logI: Float64Array, velocity: number, scene: Scene, logContinuum: LogContinuum): { weighed: Weighed; members: number } | null {
+function settle(
+  id: string,
+  lines: readonly Line[],
+  logI: Float64Array,
+  velocity: number,
+  scene: Scene,
+  logContinuum: LogContinuum,
+): { weighed: Weighed; members: number } | null {
   const zero = brightnessScale(lines, logI, velocity, scene, logContinuum);
   if (zero === null) return null;
   let best: Weighed | null = null;
   for (const scale of SCALES) {
-    const w = weigh(nebulaModel(id, lines, logI, velocity, 0.1 * scene.coverage.elementV, zero + scale, scene.coverage, logContinuum), scene);
+    const w = weigh(
+      nebulaModel(id, lines, logI, velocity, 0.1 * scene.coverage.elementV, zero + scale, scene.coverage, logContinuum),
+      scene,
+    );
     if (!best || w.evidence > best.evidence) best = w;
   }
   const { velocity: v, sigma, members } = refinedVelocity(best!);
@@ -65,7 +79,13 @@ function settle(id: string, lines: readonly Line[], logI: Float64Array, velocity
 }
 
 /** Median of log W - log I over the brightest listed lines that coincide with a peak; null when none does. */
-function brightnessScale(lines: readonly Line[], logI: Float64Array, velocity: number, scene: Scene, logContinuum: LogContinuum): number | null {
+function brightnessScale(
+  lines: readonly Line[],
+  logI: Float64Array,
+  velocity: number,
+  scene: Scene,
+  logContinuum: LogContinuum,
+): number | null {
   const factor = dopplerFactor(velocity);
   const order = [...logI.keys()].sort((a, b) => logI[b]! - logI[a]!).slice(0, 60);
   const found: number[] = [];
@@ -78,7 +98,16 @@ function brightnessScale(lines: readonly Line[], logI: Float64Array, velocity: n
   return found.length ? found.sort((a, b) => a - b)[found.length >> 1]! : null;
 }
 
-function nebulaModel(id: string, lines: readonly Line[], logI: Float64Array, velocity: number, sigma: number, zero: number, coverage: Coverage, logContinuum: LogContinuum): SystemModel {
+function nebulaModel(
+  id: string,
+  lines: readonly Line[],
+  logI: Float64Array,
+  velocity: number,
+  sigma: number,
+  zero: number,
+  coverage: Coverage,
+  logContinuum: LogContinuum,
+): SystemModel {
   const factor = dopplerFactor(velocity);
   const bySpecies = new Map<string, Expected[]>();
   lines.forEach((line, k) => {
@@ -88,11 +117,24 @@ function nebulaModel(id: string, lines: readonly Line[], logI: Float64Array, vel
     const limit = coverage.sigmaW(wavelength, (wavelength / 299792.458) * coverage.elementV);
     if (!(logW > Math.log10(limit) - 1.2)) return;
     const certain = line.relativeIntensity !== null;
-    const e: Expected = { line, wavelength, logW, scatter: certain ? LINE_SCATTER : line.type === 'forbidden' ? 0.25 : 0.5, sigmaV: Math.hypot(sigma, 0.3), fwhmV: Math.hypot(coverage.elementV, 18) };
+    const e: Expected = {
+      line,
+      wavelength,
+      logW,
+      scatter: certain ? LINE_SCATTER : line.type === 'forbidden' ? 0.25 : 0.5,
+      sigmaV: Math.hypot(sigma, 0.3),
+      fwhmV: Math.hypot(coverage.elementV, 18),
+    };
     const list = bySpecies.get(line.species);
     if (list) list.push(e);
     else bySpecies.set(line.species, [e]);
   });
-  const species = [...bySpecies].map(([name, list]) => ({ species: name, lines: list, priorMean: 0, priorSigma: SPECIES_SIGMA, presence: list.some((e) => e.line.relativeIntensity !== null) ? 0.97 : 0.7 }));
+  const species = [...bySpecies].map(([name, list]) => ({
+    species: name,
+    lines: list,
+    priorMean: 0,
+    priorSigma: SPECIES_SIGMA,
+    presence: list.some((e) => e.line.relativeIntensity !== null) ? 0.97 : 0.7,
+  }));
   return { id, family: 'nebular', kind: 'peak', velocity, velocitySigma: sigma, significance: zero, fwhmV: coverage.elementV, species };
 }

@@ -15,6 +15,8 @@ export interface Background {
   explained(featureIndex: number, without: SystemModel): number;
 }
 
+/** ln odds that missing emission lines of one species can weigh at most: they share their cause, the star's absorption that fills them in. */
+const MOST_AGAINST = 12;
 const LOG_W_SPREAD = 0.55; // dex, spread of log W among features at large
 const LOG_FWHM_SPREAD = 0.5; // natural log, spread of widths among features at large
 const WIDTH_SCATTER = 0.22; // natural log, scatter of widths about a system's own
@@ -40,7 +42,13 @@ export function normalCdf(x: number): number {
 }
 
 /** ln likelihood ratios of one line at all offsets: the line is there against a chance feature or none. */
-export function lineTerm(e: Expected, system: SystemModel, features: readonly FeatureView[], coverage: Coverage, background: Background): LineTerm {
+export function lineTerm(
+  e: Expected,
+  system: SystemModel,
+  features: readonly FeatureView[],
+  coverage: Coverage,
+  background: Background,
+): LineTerm {
   const fwhmNm = (e.wavelength * Math.max(e.fwhmV, coverage.elementV)) / C_KM_PER_S;
   const feature = nearest(e, system.kind, features);
   const sigmaW = coverage.sigmaW(e.wavelength, fwhmNm);
@@ -110,11 +118,24 @@ export interface SpeciesState {
   readonly logEvidence: number;
 }
 
-export function speciesState(model: SpeciesModel, system: SystemModel, features: readonly FeatureView[], coverage: Coverage, background: Background): SpeciesState {
+export function speciesState(
+  model: SpeciesModel,
+  system: SystemModel,
+  features: readonly FeatureView[],
+  coverage: Coverage,
+  background: Background,
+): SpeciesState {
   const terms = model.lines.map((e) => lineTerm(e, system, features, coverage, background));
   const logPosterior = Float64Array.from(OFFSETS, (d) => -0.5 * ((d - model.priorMean) / model.priorSigma) ** 2);
   const norm = logSumExp(logPosterior);
-  for (const t of terms) if (t.term) for (let i = 0; i < logPosterior.length; i++) logPosterior[i]! += t.term[i]!;
+  const absence = new Float64Array(OFFSETS.length);
+  for (const t of terms) {
+    if (!t.term) continue;
+    const sum = t.feature ? logPosterior : absence;
+    for (let i = 0; i < sum.length; i++) sum[i]! += t.term[i]!;
+  }
+  const most = system.kind === 'peak' ? MOST_AGAINST : Infinity;
+  for (let i = 0; i < absence.length; i++) logPosterior[i]! += most === Infinity ? absence[i]! : most * Math.expm1(absence[i]! / most);
   return { model, terms, logPosterior, logEvidence: logSumExp(logPosterior) - norm };
 }
 

@@ -42,14 +42,20 @@ export interface FeatureRanking {
 
 const DRAWS = 400;
 const MAIN_SHARE = 0.3;
-const UNLISTED_SHARE = 0.06; // of all features, made by lines that no list holds: a prior, shown as "not in the list"
+const UNLISTED_SHARE = 0.08; // of all features, made by lines that no list holds: a prior, shown as "not in the list"
 const LOG_W_SPREAD = 0.55; // dex, as in offsets.ts
 const MODEL_ERROR = 0.14; // natural log: profile misfit and blending at the 14 % level
+const BLEND_PULL = 0.35; // of the spread of blended lines: how far a single profile's centroid strays from theirs
 const NEGLIGIBLE = 1.5; // dex: a line that is this much too weak even at 2 sigma takes no part
 const LEAST = 0.002; // candidates below this chance are not listed
 const MOST = 8;
 
 const LN10 = Math.LN10;
+/** Chance that a line which the strength model promises is not there: wrong gf, wrong level, a list's slip. */
+const PROMISE_BROKEN = 0.05;
+
+/** Student's t density with 30 degrees of freedom: somewhat more than Gaussian errors allow. */
+const heavyTail = (z: number): number => 0.3956 * (1 + (z * z) / 30) ** -15.5;
 
 /** Lines of all systems that reach into a feature. */
 export function contendersOf(f: FeatureView, systems: readonly SystemState[], features: readonly FeatureView[]): Contender[] {
@@ -68,7 +74,16 @@ export function contendersOf(f: FeatureView, systems: readonly SystemState[], fe
         const { mean, sigma, logEvidence } = offsetMoments(state, own);
         const p = state.model.presence;
         const odds = (p / (1 - p)) * Math.exp(Math.max(-30, Math.min(30, logEvidence)));
-        out.push({ expected: e, system, state, term, logW: e.logW + mean, sigmaLog: Math.hypot(sigma, e.scatter), presence: odds / (1 + odds), part });
+        out.push({
+          expected: e,
+          system,
+          state,
+          term,
+          logW: e.logW + mean,
+          sigmaLog: Math.hypot(sigma, e.scatter),
+          presence: odds / (1 + odds),
+          part,
+        });
       }
     }
   }
@@ -113,10 +128,16 @@ export function rankFeature(f: FeatureView, contenders: readonly Contender[], co
   return { ...draw(f, weighty, coverage, background), contenders };
 }
 
-function draw(f: FeatureView, contenders: readonly Contender[], coverage: Coverage, background: Background): Omit<FeatureRanking, 'contenders'> {
+function draw(
+  f: FeatureView,
+  contenders: readonly Contender[],
+  coverage: Coverage,
+  background: Background,
+): Omit<FeatureRanking, 'contenders'> {
   const n = contenders.length;
   const lnW = f.logW * LN10;
   const sigmaLn = Math.hypot(f.sigmaLogW * LN10, MODEL_ERROR);
+  const settled = (f.flags.includes('blend') ? 0.05 : 0.02) * f.fwhmV; // how well a centroid holds against neighbours and profile misfit
   const offset = contenders.map((c) => velocityOf(c.expected.wavelength, f.wavelength));
   const width = contenders.map((c) => Math.max(widthRatio(c.expected, f, coverage), 1e-4));
   const wins = new Float64Array(n);
@@ -130,17 +151,20 @@ function draw(f: FeatureView, contenders: readonly Contender[], coverage: Covera
     let top = 0;
     for (let k = 0; k < n; k++) {
       const c = contenders[k]!;
-      w[k] = uniform(j, k) < c.presence ? c.part * Math.exp(LN10 * (c.logW + c.sigmaLog * normalDraws(j, k))) : 0;
+      w[k] = uniform(j, k) < c.presence * (1 - PROMISE_BROKEN) ? c.part * Math.exp(LN10 * (c.logW + c.sigmaLog * normalDraws(j, k))) : 0;
       sum += w[k]!;
       centroid += w[k]! * offset[k]!;
       if (w[k]! > w[top]!) top = k;
     }
     if (sum < 0.6 * 10 ** f.logW) idle++;
     if (sum === 0) continue;
-    const place = Math.hypot(f.sigmaV, 0.025 * f.fwhmV, contenders[top]!.expected.sigmaV, 0.2);
+    centroid /= sum;
+    let spread = 0;
+    for (let k = 0; k < n; k++) spread += w[k]! * (offset[k]! - centroid) ** 2;
+    const place = Math.hypot(f.sigmaV, settled, contenders[top]!.expected.sigmaV, 0.2, BLEND_PULL * Math.sqrt(spread / sum));
     const zW = (lnW - Math.log(sum)) / sigmaLn;
-    const zV = centroid / sum / place;
-    const weight = (Math.exp(-0.5 * (zW * zW + zV * zV)) / (sigmaLn * place * 2 * Math.PI)) * width[top]!;
+    const zV = centroid / place;
+    const weight = ((heavyTail(zW) * heavyTail(zV)) / (sigmaLn * place)) * width[top]!;
     total += weight;
     for (let k = 0; k < n; k++) {
       const share = w[k]! / sum;
@@ -154,7 +178,9 @@ function draw(f: FeatureView, contenders: readonly Contender[], coverage: Covera
   const ranked = contenders
     .map((contender, k) => ({ contender, probability: wins[k]! / norm, share: total > 0 ? shares[k]! / total : 0 }))
     .filter((r) => r.probability >= LEAST)
-    .sort((a, b) => b.probability - a.probability || b.share - a.share || a.contender.expected.wavelength - b.contender.expected.wavelength);
+    .sort(
+      (a, b) => b.probability - a.probability || b.share - a.share || a.contender.expected.wavelength - b.contender.expected.wavelength,
+    );
   return { ranked: ranked.slice(0, MOST), unidentified: flat / norm };
 }
 

@@ -40,7 +40,10 @@ export function refinedVelocity(w: Weighed): { velocity: number; sigma: number; 
     for (const t of s.terms) {
       if (t.outcome !== 'seen' || !t.feature || !t.term) continue;
       if (Math.abs(t.feature.logW - t.expected.logW - offset) > 0.5) continue;
-      pairs.push({ v: velocityOf(t.feature.wavelength, t.expected.line.wavelengthNm), sigma: positionSigma({ ...t.expected, sigmaV: 0 }, t.feature) });
+      pairs.push({
+        v: velocityOf(t.feature.wavelength, t.expected.line.wavelengthNm),
+        sigma: positionSigma({ ...t.expected, sigmaV: 0 }, t.feature),
+      });
     }
   }
   if (pairs.length === 0) return { velocity: w.system.velocity, sigma: NaN, members: 0 };

@@ -3,6 +3,7 @@ import type { Line } from '../linelist/index.js';
 import { C_KM_PER_S } from '../units/index.js';
 import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
+import { refinedVelocity, weigh, type Scene } from './search.js';
 import { dopplerFactor, velocityOf, type Coverage, type FeatureView } from './views.js';
 
 /** What the continuum says of the temperature; null when nothing. */
@@ -35,7 +36,8 @@ interface Photosphere {
  * @param lines photospheric lines within reach of the spectrum, ascending
  * @returns null when no velocity stands out
  */
-export function findStar(features: readonly FeatureView[], lines: readonly Line[], coverage: Coverage, hint: TemperatureHint | null, rangeV: number): SystemModel | null {
+export function findStar(scene: Scene, lines: readonly Line[], hint: TemperatureHint | null, rangeV: number): SystemModel | null {
+  const { features, coverage } = scene;
   const dips = features.filter((f) => f.kind === 'dip' && !f.flags.includes('cosmic'));
   if (dips.length < MEMBERS || lines.length === 0) return null;
   const best = bestPhotosphere(dips, lines, coverage, hint, rangeV);
@@ -44,10 +46,22 @@ export function findStar(features: readonly FeatureView[], lines: readonly Line[
   if (alone.length < MEMBERS) return null;
   const { velocity, sigma, fwhmV } = refine(alone);
   const scale = fitScale(aloneMatches(dips, lines, best.index, velocity, coverage, fwhmV));
-  return starModel(lines, best, velocity, sigma, fwhmV, scale, coverage);
+  let star = starModel(lines, best, velocity, sigma, fwhmV, scale, coverage);
+  for (let pass = 0; pass < 2; pass++) {
+    const moved = refinedVelocity(weigh(star, scene));
+    if (moved.members < MEMBERS) break;
+    star = starModel(lines, best, moved.velocity, moved.sigma, fwhmV, scale, coverage);
+  }
+  return star;
 }
 
-function bestPhotosphere(dips: readonly FeatureView[], lines: readonly Line[], coverage: Coverage, hint: TemperatureHint | null, rangeV: number): Photosphere | null {
+function bestPhotosphere(
+  dips: readonly FeatureView[],
+  lines: readonly Line[],
+  coverage: Coverage,
+  hint: TemperatureHint | null,
+  rangeV: number,
+): Photosphere | null {
   const weight = Float64Array.from(dips, (f) => Math.sqrt(Math.min((10 ** f.logW / f.wavelength) * C_KM_PER_S, 40)));
   const spread = Float64Array.from(dips, (f) => Math.hypot(f.sigmaV, 0.12 * f.fwhmV));
   const typical = Float64Array.from(spread).sort()[spread.length >> 1]!;
@@ -59,13 +73,19 @@ function bestPhotosphere(dips: readonly FeatureView[], lines: readonly Line[], c
   for (const temperatureK of near) {
     for (const logNe of ELECTRONS) {
       const index = photosphericIndex(lines, temperatureK, logNe);
-      const sorted = Float64Array.from(index.filter((x) => Number.isFinite(x))).sort().reverse();
+      const sorted = Float64Array.from(index.filter((x) => Number.isFinite(x)))
+        .sort()
+        .reverse();
       for (const depth of DEPTHS) {
         const cut = sorted[Math.min(sorted.length - 1, Math.round(depth * dips.length))]!;
-        const template = { wavelength, weight: Float64Array.from(index, (x) => (x > cut - 0.3 ? 10 ** (0.5 * Math.min(x - cut, 1.2)) : 0)) };
+        const template = {
+          wavelength,
+          weight: Float64Array.from(index, (x) => (x > cut - 0.3 ? 10 ** (0.5 * Math.min(x - cut, 1.2)) : 0)),
+        };
         const score = correlate(dips, weight, spread, template, grid);
         const peak = peaksOf(score, grid, 5, 1)[0];
-        if (peak && (!best || peak.height > best.height)) best = { temperatureK, logNe, velocity: peak.velocity, index, height: peak.height, significance: peak.significance };
+        if (peak && (!best || peak.height > best.height))
+          best = { temperatureK, logNe, velocity: peak.velocity, index, height: peak.height, significance: peak.significance };
       }
     }
   }
@@ -80,7 +100,14 @@ interface Match {
 }
 
 /** Dips where one photospheric line outweighs all others within the profile. */
-function aloneMatches(dips: readonly FeatureView[], lines: readonly Line[], index: Float64Array, velocity: number, coverage: Coverage, fwhmV = 0): Match[] {
+function aloneMatches(
+  dips: readonly FeatureView[],
+  lines: readonly Line[],
+  index: Float64Array,
+  velocity: number,
+  coverage: Coverage,
+  fwhmV = 0,
+): Match[] {
   const factor = dopplerFactor(velocity);
   const out: Match[] = [];
   for (const f of dips) {
@@ -89,7 +116,11 @@ function aloneMatches(dips: readonly FeatureView[], lines: readonly Line[], inde
     let total = 0;
     let top = -1;
     let topValue = 0;
-    for (let k = lineAt(lines, (f.wavelength - half) / factor); k < lines.length && lines[k]!.wavelengthNm * factor < f.wavelength + half; k++) {
+    for (
+      let k = lineAt(lines, (f.wavelength - half) / factor);
+      k < lines.length && lines[k]!.wavelengthNm * factor < f.wavelength + half;
+      k++
+    ) {
       const value = 10 ** index[k]!;
       if (!(value > 0)) continue;
       total += value;
@@ -154,7 +185,15 @@ function fitScale(matches: readonly Match[]): Scale {
   return best;
 }
 
-function starModel(lines: readonly Line[], p: Photosphere, velocity: number, sigma: number, fwhmV: number, scale: Scale, coverage: Coverage): SystemModel {
+function starModel(
+  lines: readonly Line[],
+  p: Photosphere,
+  velocity: number,
+  sigma: number,
+  fwhmV: number,
+  scale: Scale,
+  coverage: Coverage,
+): SystemModel {
   const factor = dopplerFactor(velocity);
   const bySpecies = new Map<string, Expected[]>();
   lines.forEach((line, k) => {
@@ -164,7 +203,14 @@ function starModel(lines: readonly Line[], p: Photosphere, velocity: number, sig
     const limit = coverage.sigmaW(wavelength, (wavelength * fwhmV) / C_KM_PER_S);
     if (!(logW > Math.log10(limit) - 0.7)) return; // far below the noise even with a generous offset
     const hydrogen = line.element === 'H';
-    const e: Expected = { line, wavelength, logW, scatter: hydrogen ? HYDROGEN_SCATTER : LINE_SCATTER, sigmaV: Math.hypot(sigma, 0.3), fwhmV: hydrogen ? 1.3 * fwhmV : fwhmV };
+    const e: Expected = {
+      line,
+      wavelength,
+      logW,
+      scatter: hydrogen ? HYDROGEN_SCATTER : LINE_SCATTER,
+      sigmaV: Math.hypot(sigma, 0.3),
+      fwhmV: hydrogen ? 1.3 * fwhmV : fwhmV,
+    };
     const list = bySpecies.get(line.species);
     if (list) list.push(e);
     else bySpecies.set(line.species, [e]);
@@ -178,4 +224,3 @@ function starModel(lines: readonly Line[], p: Photosphere, velocity: number, sig
   }));
   return { id: 'star', family: 'stellar', kind: 'dip', velocity, velocitySigma: sigma, significance: p.significance, fwhmV, species };
 }
-

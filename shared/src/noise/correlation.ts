@@ -1,5 +1,5 @@
 import { quantile } from '../numeric/select.js';
-import { crowdedValue, sigmaOfSquares, squaredDifferences, windowScatter, type Samples } from './windows.js';
+import { crowdedValue, fourthDifferences, secondDifferences, sigmaOfSquares, windowScatter, type Samples } from './windows.js';
 
 /** Noise is taken to be independent over this many samples and more. */
 const FAR_LAG = 12;
@@ -35,8 +35,8 @@ export interface NoiseStructure {
  * For noise of autocorrelation r the variance of 2 f(i) - f(i-k) - f(i+k) is (6 - 8 r(k) + 2 r(2k)) sigma^2.
  */
 export function noiseStructure(samples: Samples, length: number, stride: number): NoiseStructure {
-  const neighbours = crowdedValue(windowScatter(samples, length, stride, 1)).mean;
-  const farWindows = windowScatter(samples, length, stride, FAR_LAG);
+  const neighbours = crowdedValue(windowScatter(samples, length, stride, fourthDifferences)).mean;
+  const farWindows = windowScatter(samples, length, stride, secondDifferences(FAR_LAG));
   const far = crowdedValue(farWindows);
   if (!(far.mean > 0) || !(neighbours > 0)) return { neighbours, sigma: neighbours, correlation: [1], lineFree: false, smooth: false };
   const quiet: number[] = [];
@@ -45,8 +45,9 @@ export function noiseStructure(samples: Samples, length: number, stride: number)
   });
   const scratch = new Float64Array(quiet.length * length);
   const varianceAt = (lag: number) => {
+    const differences = secondDifferences(lag);
     let m = 0;
-    for (const from of quiet) m = squaredDifferences(scratch, m, samples, from, from + length, lag);
+    for (const from of quiet) m = differences(scratch, m, samples, from, from + length);
     return sigmaOfSquares(scratch, m) ** 2;
   };
   const plateau = varianceAt(FAR_LAG);

@@ -2,7 +2,7 @@ import { quantileInPlace, selectInPlace } from '../numeric/select.js';
 import type { Spectrum } from '../spectrum/index.js';
 import { noiseStructure, type NoiseStructure } from './correlation.js';
 import type { NoiseModel } from './model.js';
-import { DIFFERENCE_SCATTER, windowScatter } from './windows.js';
+import { DIFFERENCE_SCATTER, fourthDifferences, windowScatter } from './windows.js';
 
 const LONGEST_WINDOW = 128;
 const SHORTEST_WINDOW = 40;
@@ -14,6 +14,8 @@ const TOLERATED = 1.2;
 const MEASURED_TO = 4;
 /** Lines everywhere raise the scatter of direct neighbours by this much, rarely more. */
 const LARGEST_BY_LINES = 1.5;
+/** Where lines are everywhere, ties between neighbours weaker than this are taken for theirs. */
+const WEAK_TIES = 0.35;
 /** Neighbouring windows that are smoothed together, to each side (an eighth of all, if that is fewer), and the quantile of them that is taken: lines only raise a window. */
 const NEIGHBOURS = 7;
 const LOW_QUANTILE = 0.35;
@@ -21,8 +23,8 @@ const LOW_QUANTILE_SIGMA = 0.385;
 
 /**
  * Noise of a spectrum: the stated sigma, checked against the scatter in the windows with the fewest lines and rescaled only when clearly
- * off; or, when none is stated, an estimate from the scatter in windows (after DER_SNR, Stoehr et al. 2008, with neighbours at distance
- * 1, less touched by lines), smoothed along the spectrum. Correlation from sample to sample is measured in both cases.
+ * off; or, when none is stated, an estimate from the scatter in windows (after DER_SNR, Stoehr et al. 2008, with differences of higher
+ * order, less touched by lines), smoothed along the spectrum. Correlation from sample to sample is measured in both cases.
  * With a continuum `level` the scatter is that of flux over level.
  */
 export function estimateNoise(spectrum: Spectrum, level?: Float64Array): NoiseModel {
@@ -36,7 +38,7 @@ export function estimateNoise(spectrum: Spectrum, level?: Float64Array): NoiseMo
     const sigma = filled(spectrum.sigma, bad, floor);
     return checked(sigma, structureFor(scale(sigma)));
   }
-  const perWindow = smoothed(windowScatter({ value, sigma: null, bad }, length, 1, 1), length);
+  const perWindow = smoothed(windowScatter({ value, sigma: null, bad }, length, 1, fourthDifferences), length);
   const white = interpolated(perWindow, length, flux.length);
   const { correlation, factor } = estimated(structureFor(white));
   const sigma = white.map((s, i) => Math.max(floor, s * factor * (level ? Math.abs(level[i]!) : 1)) || floor);
@@ -62,18 +64,21 @@ function verdict({ neighbours, sigma, correlation, lineFree, smooth }: NoiseStru
   if (!(neighbours > 0)) return AS_STATED;
   const asStated = neighbours > 1 / tolerated && neighbours < LARGEST_BY_LINES;
   if (smooth && asStated) return AS_STATED; // white noise as stated, and nothing but lines above it
-  const white = correlation.length === 1;
+  const white = tiesOf(correlation) === 0 || (!lineFree && tiesOf(correlation) < WEAK_TIES);
   const measured = white ? Math.min(neighbours, sigma) : sigma;
   if (lineFree) return { correlation, factor: measured > tolerated || measured < 1 / tolerated ? measured : 1 };
   // lines everywhere: neighbours that scatter as stated, or a little more, agree with white noise of the stated size
-  if (neighbours > LARGEST_BY_LINES) return { correlation: [1], factor: neighbours };
+  if (neighbours >= LARGEST_BY_LINES) return { correlation: [1], factor: neighbours };
   if (asStated) return AS_STATED;
-  return { correlation, factor: measured < 1 / tolerated ? measured : 1 };
+  return { correlation: white ? [1] : correlation, factor: measured < 1 / tolerated ? measured : 1 };
 }
+
+const tiesOf = (correlation: readonly number[]) => correlation[1] ?? 0;
 
 /** The same for a sigma that was itself taken from neighbours as if the noise were white. */
 function estimated({ sigma, correlation, lineFree, smooth }: NoiseStructure): Tied {
-  if (correlation.length === 1 || !(sigma > 0) || (smooth && !lineFree)) return AS_STATED;
+  const ties = tiesOf(correlation);
+  if (ties === 0 || !(sigma > 0) || (!lineFree && (smooth || ties < WEAK_TIES))) return AS_STATED;
   return { correlation, factor: Math.max(1, sigma) };
 }
 

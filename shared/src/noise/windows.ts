@@ -1,8 +1,8 @@
 import { normalQuantile } from '../numeric/normal.js';
 import { MAD_TO_SIGMA, medianInPlace } from '../numeric/select.js';
 
-/** Relative scatter of a noise estimate from second differences of `n` samples of white noise is this over the root of n. */
-export const DIFFERENCE_SCATTER = 1.39;
+/** Relative scatter of a noise estimate from differences of `n` samples of white noise is about this over the root of n. */
+export const DIFFERENCE_SCATTER = 1.4;
 
 /** Where the samples and their presumed errors are; sigma null: errors unknown, taken as 1. */
 export interface Samples {
@@ -12,28 +12,40 @@ export interface Samples {
 }
 
 /**
- * Writes the squares of (2 f(i) - f(i-lag) - f(i+lag)), each over what its three errors make of it, for i in [from, to) to `out` and
- * returns how many. Samples that are bad, or exact zeros (padding), give none.
+ * Writes squares of differences of neighbouring samples i in [a, b), each over what the errors make of it, to `out` from `from` on and
+ * returns where it stopped. Samples that are bad, or exact zeros (padding), give none.
  */
-export function squaredDifferences(
-  out: Float64Array,
-  from: number,
-  { value, sigma, bad }: Samples,
-  a: number,
-  b: number,
-  lag: number,
-): number {
+export type SquaredDifferences = (out: Float64Array, from: number, samples: Samples, a: number, b: number) => number;
+
+/** 2 f(i) - f(i-lag) - f(i+lag): blind to slopes; for independent noise its variance is 6 sigma^2 at any lag. */
+export const secondDifferences =
+  (lag: number): SquaredDifferences =>
+  (out, from, { value, sigma, bad }, a, b) => {
+    let m = from;
+    for (let i = Math.max(a, lag), end = Math.min(b, value.length - lag); i < end; i++) {
+      if (bad[i]! + bad[i - lag]! + bad[i + lag]! > 0) continue;
+      const middle = value[i]!;
+      if (middle === 0) continue;
+      const d = 2 * middle - value[i - lag]! - value[i + lag]!;
+      const variance = sigma ? 4 * sigma[i]! * sigma[i]! + sigma[i - lag]! * sigma[i - lag]! + sigma[i + lag]! * sigma[i + lag]! : 6;
+      out[m++] = (d * d) / variance;
+    }
+    return m;
+  };
+
+/** 6 f(i) - 4 f(i-1) - 4 f(i+1) + f(i-2) + f(i+2): blind to whatever is resolved, lines too; for white noise its variance is 70 sigma^2. */
+export const fourthDifferences: SquaredDifferences = (out, from, { value, sigma, bad }, a, b) => {
   let m = from;
-  for (let i = Math.max(a, lag), end = Math.min(b, value.length - lag); i < end; i++) {
-    if (bad[i]! + bad[i - lag]! + bad[i + lag]! > 0) continue;
+  for (let i = Math.max(a, 2), end = Math.min(b, value.length - 2); i < end; i++) {
+    if (bad[i]! + bad[i - 1]! + bad[i + 1]! + bad[i - 2]! + bad[i + 2]! > 0) continue;
     const middle = value[i]!;
     if (middle === 0) continue;
-    const d = 2 * middle - value[i - lag]! - value[i + lag]!;
-    const variance = sigma ? 4 * sigma[i]! * sigma[i]! + sigma[i - lag]! * sigma[i - lag]! + sigma[i + lag]! * sigma[i + lag]! : 6;
-    out[m++] = (d * d) / variance;
+    const d = 6 * middle - 4 * (value[i - 1]! + value[i + 1]!) + value[i - 2]! + value[i + 2]!;
+    // the error changes little over five samples where it means anything
+    out[m++] = (d * d) / (70 * (sigma ? sigma[i]! * sigma[i]! : 1));
   }
   return m;
-}
+};
 
 /** Robust sigma from `n` squares of deviates of mean 0: of all, NaN when there are too few to tell. */
 export function sigmaOfSquares(squares: Float64Array, n: number): number {
@@ -41,13 +53,13 @@ export function sigmaOfSquares(squares: Float64Array, n: number): number {
 }
 
 /** Scatter in units of sigma for windows of `length` samples, every `stride`-th window; NaN where a window has too few samples. */
-export function windowScatter(samples: Samples, length: number, stride: number, lag: number): Float64Array {
+export function windowScatter(samples: Samples, length: number, stride: number, differences: SquaredDifferences): Float64Array {
   const windows = Math.max(1, Math.ceil(samples.value.length / length));
   const out = new Float64Array(Math.ceil(windows / stride));
   const squares = new Float64Array(length);
   for (let w = 0; w < out.length; w++) {
     const from = w * stride * length;
-    out[w] = sigmaOfSquares(squares, squaredDifferences(squares, 0, samples, from, from + length, lag));
+    out[w] = sigmaOfSquares(squares, differences(squares, 0, samples, from, from + length));
   }
   return out;
 }

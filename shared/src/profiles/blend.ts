@@ -93,7 +93,14 @@ interface Slot {
  * @param precision chi-square that a step must gain for the fit to go on
  * @param range wavelengths (nm) whose samples count; by default what the free components cover. Fits to be compared need the same range
  */
-export function fitBlend(data: NormalisedSamples, free: Component[], others: readonly Component[], limits: BlendLimits, range = rangeOf(free), precision = FINE): BlendFit {
+export function fitBlend(
+  data: NormalisedSamples,
+  free: Component[],
+  others: readonly Component[],
+  limits: BlendLimits,
+  range = rangeOf(free),
+  precision = FINE,
+): BlendFit {
   const from = indexAt(data.wavelength, range[0]);
   const to = indexAt(data.wavelength, range[1]);
   let parameters = 0;
@@ -112,7 +119,15 @@ export function fitBlend(data: NormalisedSamples, free: Component[], others: rea
   let chi2 = accumulate(data, slots, parameters, from, to);
   let end: BlendFit['end'] = 'iteration_limit';
   for (let iteration = 0; iteration < MAX_ITERATIONS; iteration++) {
-    const kept = free.map((c) => ({ amplitude: c.amplitude, centre: c.centre, scale: c.scale, damped: c.damped, fwhm: c.fwhm, area: c.area, reach: c.reach }));
+    const kept = free.map((c) => ({
+      amplitude: c.amplitude,
+      centre: c.centre,
+      scale: c.scale,
+      damped: c.damped,
+      fwhm: c.fwhm,
+      area: c.area,
+      reach: c.reach,
+    }));
     scratch.factor.set(scratch.normal.subarray(0, parameters * parameters));
     for (let k = 0; k < parameters; k++) scratch.factor[k * parameters + k]! *= 1 + damping;
     scratch.step.set(scratch.gradient.subarray(0, parameters));
@@ -157,7 +172,11 @@ function move({ c, at, startCentre, startFwhm }: Slot, step: Float64Array, limit
   c.centre = startCentre + clamp(c.centre + clamp(step[at + 1]! * c.scale, 0.5 * c.fwhm) - startCentre, startFwhm);
   const factor = Math.exp(clamp(step[at + 2]!, 0.4));
   c.scale *= factor;
-  if (c.damped) c.damped = { tau: within(c.damped.tau * Math.exp(clamp(step[at + 3]!, 0.7)), TAU_LIMITS), a: within(c.damped.a + clamp(step[at + 4]!, 0.3), A_LIMITS) };
+  if (c.damped)
+    c.damped = {
+      tau: within(c.damped.tau * Math.exp(clamp(step[at + 3]!, 0.7)), TAU_LIMITS),
+      a: within(c.damped.a + clamp(step[at + 4]!, 0.3), A_LIMITS),
+    };
   settle(c);
   const allowed = within(c.fwhm, [limits.narrowest, limits.widest]) / c.fwhm;
   if (allowed !== 1) {
@@ -262,7 +281,9 @@ function writeErrors(slots: readonly Slot[], p: number): void {
     c.sigmaAmplitude = Math.sqrt(variance(slot, [1]));
     c.sigmaCentre = Math.sqrt(variance(slot, [0, 1])) * c.scale;
     c.sigmaLogFwhm = Math.sqrt(variance(slot, [0, 0, 1, ...shape.fwhm]));
-    c.sigmaEquivalentWidth = Math.sqrt(variance(slot, [c.area, 0, c.amplitude * c.area, ...shape.area.map((d) => d * c.amplitude * c.area)]));
+    c.sigmaEquivalentWidth = Math.sqrt(
+      variance(slot, [c.area, 0, c.amplitude * c.area, ...shape.area.map((d) => d * c.amplitude * c.area)]),
+    );
   }
 }
 

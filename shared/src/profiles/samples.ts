@@ -21,7 +21,15 @@ export function indexAt(wavelength: Float64Array, value: number): number {
 }
 
 /** Multiplies a dip into `dips`, or adds a peak to `peaks`, over samples [from, to); both arrays begin at sample `offset`. */
-export function addComponent(c: Component, wavelength: Float64Array, from: number, to: number, dips: Float64Array, peaks: Float64Array, offset = from): void {
+export function addComponent(
+  c: Component,
+  wavelength: Float64Array,
+  from: number,
+  to: number,
+  dips: Float64Array,
+  peaks: Float64Array,
+  offset = from,
+): void {
   const a = Math.max(from, indexAt(wavelength, c.centre - c.reach));
   const z = Math.min(to, indexAt(wavelength, c.centre + c.reach));
   const phi = profileOf(c);
