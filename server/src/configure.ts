@@ -5,6 +5,7 @@ import cookieParser from 'cookie-parser';
 import type { NextFunction, Request, Response } from 'express';
 import helmet from 'helmet';
 import { cookieName } from './common/auth/session-token.js';
+import { withProblems } from './common/errors/openapi.js';
 import { DomainError } from './common/errors/domain-error.js';
 import { traced } from './common/http/trace-id.js';
 import type { Config } from './config/config.js';
@@ -24,6 +25,7 @@ export function configureApp(app: NestExpressApplication): OpenAPIObject {
   app.use(traced);
   app.use(helmet(headers(config)));
   app.use(longUrlsRefused);
+  app.use(hiddenFilesRefused);
   app.use('/api', answersNotKept);
   app.use(cookieParser());
   app.useBodyParser('json', { limit: JSON_LIMIT });
@@ -56,6 +58,11 @@ function longUrlsRefused(request: Request, _: Response, next: NextFunction): voi
   next(request.url.length > LONGEST_URL ? new DomainError('too_large', 'The address is too long.', { status: 414 }) : undefined);
 }
 
+/** Nothing of ours begins with a dot; without this such an address would be answered with the client's first page. */
+function hiddenFilesRefused(request: Request, _: Response, next: NextFunction): void {
+  next(/\/\./.test(request.path) ? new DomainError('not_found', 'There is nothing at this address.') : undefined);
+}
+
 /** Answers of the API are of the moment and of one person. Routes of unchanging bytes say otherwise themselves. */
 function answersNotKept(_: Request, response: Response, next: NextFunction): void {
   response.setHeader('Cache-Control', 'no-store');
@@ -64,7 +71,7 @@ function answersNotKept(_: Request, response: Response, next: NextFunction): voi
 
 function serveDocument(app: NestExpressApplication, config: Config): OpenAPIObject {
   const about = new DocumentBuilder().setTitle('Foreveil').setVersion(PROGRAM_VERSION).addCookieAuth(cookieName(config)).build();
-  const document = SwaggerModule.createDocument(app, about);
+  const document = withProblems(SwaggerModule.createDocument(app, about));
   SwaggerModule.setup('api/docs', app, document, { jsonDocumentUrl: 'api/openapi.json', swaggerUiEnabled: config.apiDocs, raw: ['json'] });
   return document;
 }

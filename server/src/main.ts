@@ -5,14 +5,13 @@ import { Logger } from 'nestjs-pino';
 import { AppModule } from './app.module.js';
 import { configOrExit } from './config/config-or-exit.js';
 import { configureApp } from './configure.js';
-import { exitWithin } from './stop.js';
+import { stopOnSignal } from './stop.js';
 
 const config = configOrExit();
 const app = await NestFactory.create<NestExpressApplication>(AppModule, { bufferLogs: true, bodyParser: false });
 app.useLogger(app.get(Logger));
 configureApp(app);
-app.enableShutdownHooks();
-exitWithin(10_000);
+stopOnSignal(() => app.close(), 10_000);
 const server = await app.listen(config.port, config.host);
 server.headersTimeout = 30_000;
-app.get(Logger).log(`listening on http://${config.host}:${config.port}`);
+app.get(Logger).log(`listening on ${await app.getUrl()}`);

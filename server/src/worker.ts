@@ -10,7 +10,7 @@ import { Cancellations } from './modules/analyses/work/cancellations.js';
 import { sweep } from './modules/analyses/work/sweep.js';
 import { workOnAnalysis } from './modules/analyses/work/work-on-analysis.js';
 import { defaultLineListId, loadLineList } from './modules/linelists/line-list-store.js';
-import { exitWithin } from './stop.js';
+import { stopOnSignal } from './stop.js';
 
 /** An analysis worker: takes jobs from the queue, and takes back those of workers that died. Any number may run, on any machine. */
 const config = configOrExit();
@@ -43,8 +43,7 @@ for (let i = 0; i < config.analysisThreads; i++) {
   });
 }
 void sweepForever();
-exitWithin(15_000);
-for (const signal of ['SIGTERM', 'SIGINT'] as const) process.once(signal, () => void stop());
+stopOnSignal(stop, 15_000);
 log.info('ready');
 
 async function work(analysisId: string, thread: AnalysisThread): Promise<void> {
@@ -80,5 +79,4 @@ async function stop(): Promise<void> {
   await Promise.all(threads.map((thread) => thread.end()));
   await listener.close();
   await db.destroy();
-  process.exit(0);
 }

@@ -134,3 +134,25 @@ test('is not for who is not signed in or not in the programme', async () => {
     expect((await fetch(`${api.url}${apiPaths.events(team.programmeId)}`, { headers: { Cookie: person.cookie } })).status).toBe(status);
   }
 });
+
+describe('where streams are looked after often', () => {
+  // one API at a time in a process, so this block replaces the one above
+  beforeAll(async () => {
+    await api.close();
+    api = await startApi({ eventBeatSeconds: 0.1 });
+  });
+
+  test('a stream is kept alive, and ends when its reader leaves the programme or the session runs out', async () => {
+    const [leaves, runsOut, stays] = [await open(team.reader), await open(team.analyst), await open(team.lead)];
+    await new Promise((resolve) => setTimeout(resolve, 300));
+    await api.db('memberships').where({ user_id: team.reader.userId }).delete();
+    await api
+      .db('sessions')
+      .where({ user_id: team.analyst.userId })
+      .update({ last_seen_at: api.db.raw(`now() - interval '2 days'`) });
+    await Promise.all([endsSoon(leaves), endsSoon(runsOut)]);
+    await stored(api, team);
+    await stays.next(({ type }) => type === 'spectrum');
+    stays.close();
+  });
+});

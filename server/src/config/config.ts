@@ -39,6 +39,8 @@ export interface Config {
   readonly analysisThreads: number;
   /** a worker that gives no sign of life for this long loses its analyses to others */
   readonly leaseSeconds: number;
+  /** how often an open event stream gets a sign of life, and its reader's right to it is looked at again */
+  readonly eventBeatSeconds: number;
   readonly apiDocs: boolean;
   readonly logLevel: string;
   readonly clientDir: string;
@@ -85,6 +87,7 @@ export function loadConfig(env: NodeJS.ProcessEnv = process.env): Config {
     analysisMemoryMb: number('ANALYSIS_MEMORY_MIB', 2048, 16),
     analysisThreads: number('ANALYSIS_THREADS', Math.max(1, availableParallelism() - 1), 1),
     leaseSeconds: number('LEASE_SECONDS', 15, 1),
+    eventBeatSeconds: number('EVENT_BEAT_SECONDS', 15, 0.1),
     apiDocs: env.API_DOCS === undefined ? mode !== 'production' : env.API_DOCS === '1',
     logLevel: env.LOG_LEVEL ?? (mode === 'test' ? 'silent' : 'info'),
     clientDir: env.CLIENT_DIR ?? join(repoRoot, 'client', 'dist'),

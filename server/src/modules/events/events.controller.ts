@@ -6,6 +6,9 @@ import { NeedsRole } from '../../common/auth/rules.js';
 import { UuidParam } from '../../common/http/uuid-param.js';
 import { ProgrammeEvents } from './programme-events.service.js';
 
+/** Bytes that may wait for a page that does not read them; a page that is let go connects again and loads everything anew. */
+const MOST_UNREAD = 4 * 1024 * 1024;
+
 @ApiTags('events')
 @Controller('programmes/:programmeId/events')
 export class EventsController {
@@ -25,7 +28,7 @@ export class EventsController {
     const leave = this.events.subscribe({
       actor,
       programmeId,
-      write: (text) => void response.write(text),
+      write: (text) => void (response.writableLength > MOST_UNREAD ? response.destroy() : response.write(text)),
       end: () => void response.end(),
     });
     request.once('close', leave);

@@ -19,9 +19,6 @@ export interface Subscriber {
   end(): void;
 }
 
-/** How often an open stream gets a sign of life, and its reader's right to it is looked at again. */
-const BEAT_MS = 15_000;
-
 /** Passes what any process says about a programme on to the pages that look at it. */
 @Injectable()
 export class ProgrammeEvents implements OnModuleInit, BeforeApplicationShutdown {
@@ -36,7 +33,7 @@ export class ProgrammeEvents implements OnModuleInit, BeforeApplicationShutdown 
   ) {}
 
   async onModuleInit(): Promise<void> {
-    this.beat = setInterval(() => this.subscribers.forEach((subscriber) => this.guarded(this.check(subscriber))), BEAT_MS);
+    this.beat = setInterval(() => this.checkAll(), this.config.eventBeatSeconds * 1000);
     this.beat.unref();
     await this.listener.on(EVENTS_CHANNEL, (payload) => this.guarded(this.hear(payload)));
   }
@@ -61,6 +58,10 @@ export class ProgrammeEvents implements OnModuleInit, BeforeApplicationShutdown 
     if (!readers.length) return;
     const event: ProgrammeEvent | null = await eventOf(this.db, said);
     if (event) readers.forEach((reader) => reader.write(`data: ${JSON.stringify(event)}\n\n`));
+  }
+
+  private checkAll(): void {
+    this.subscribers.forEach((subscriber) => this.guarded(this.check(subscriber)));
   }
 
   /** A comment line keeps proxies from closing the stream; a reader who lost the session or the programme is let go. */
