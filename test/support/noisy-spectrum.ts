@@ -54,7 +54,8 @@ export function noisySpectrum(recipe: Recipe): Reciped {
     (nm, i) => (planck(nm, temperatureK) / middle) * dust(nm, recipe.av) * (recipe.response?.((2 * i) / (n - 1) - 1) ?? 1),
   );
   const through = new Float64Array(n).fill(1);
-  for (const line of recipe.lines ?? []) drawLine(through, wavelength, line);
+  const indexOf = (nm: number) => Math.min(n, Math.max(0, Math.ceil(Math.log(nm / fromNm) / step)));
+  for (const line of recipe.lines ?? []) drawLine(through, wavelength, line, indexOf);
   const sigma = continuum.map((c, i) => (c / signalToNoise) * Math.sqrt(Math.max(0.04, through[i]!)));
   return {
     spectrum: {
@@ -73,11 +74,11 @@ export function noisySpectrum(recipe: Recipe): Reciped {
 
 const dust = (nm: number, av = 0) => 10 ** (-0.4 * av * extinctionCurve(nm));
 
-function drawLine(through: Float64Array, wavelength: Float64Array, { nm, depth, fwhmNm }: RecipeLine) {
+function drawLine(through: Float64Array, wavelength: Float64Array, { nm, depth, fwhmNm }: RecipeLine, indexOf: (nm: number) => number) {
   const sigma = fwhmNm / 2.3548;
-  for (let i = 0; i < through.length; i++) {
+  for (let i = indexOf(nm - 8 * sigma), end = indexOf(nm + 8 * sigma); i < end; i++) {
     const u = (wavelength[i]! - nm) / sigma;
-    if (Math.abs(u) < 8) through[i] = through[i]! * (1 - depth * Math.exp(-0.5 * u * u));
+    through[i] = through[i]! * (1 - depth * Math.exp(-0.5 * u * u));
   }
 }
 
