@@ -1,6 +1,6 @@
 import { fitContinuum, type ContinuumFit } from './continuum/index.js';
 import { detect, type Detection } from './detection/index.js';
-import { coverageOf, type Coverage, type FeatureView } from './identify/views.js';
+import { coverageOf, type FeatureView } from './identify/views.js';
 import { cautionsOf } from './identify/cautions.js';
 import { describe } from './identify/describe.js';
 import { identify } from './identify/identify.js';

@@ -131,6 +131,8 @@ export function applyRotation(components: readonly Component[], rotation: Rotati
 }
 
 const DAMPED_SIGNIFICANCE = 40;
+const DEEP = 0.45; // depth at which saturation begins to shape a profile
+const WIDE = 5; // resolution elements
 const DAMPED_GAIN = 40; // chi-square asked of two more parameters, with room for imperfect profiles
 
 /** Broad strong dips get the shape the data prefer: Gaussian, rotation-broadened, or saturated with damping wings. */
@@ -140,6 +142,8 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
   );
   for (const c of broad.sort((a, b) => b.amplitude * b.fwhm - a.amplitude * a.fwhm || a.centre - b.centre)) {
     const others = model.overlapping([c]);
+    const mayBeDamped = c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE && (c.amplitude > DEEP || c.fwhm * resolvingPower > WIDE * c.centre);
+    if (!mayBeDamped && c.fwhm * resolvingPower < RESOLVED * c.centre) continue;
     const trials = [
       withCore(c, GAUSSIAN),
       withCore(
@@ -149,7 +153,7 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
           : rotationOfBlur(blurOf((c.fwhm * resolvingPower) / c.centre)),
       ),
     ];
-    if (c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE) trials.push(c.damped ? { ...c } : asDamped(c));
+    if (mayBeDamped) trials.push(c.damped ? { ...c } : asDamped(c));
     const range = [c.centre - 4 * c.fwhm, c.centre + 4 * c.fwhm] as const;
     let best: Component | null = null;
     let bestChi2 = Infinity;

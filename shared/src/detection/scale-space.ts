@@ -27,6 +27,7 @@ export interface FilterOptions {
 
 const LADDER = 1.45; // ratio of neighbouring widths; a feature between two rungs loses under 2 % of its significance
 const FWHM_PER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
+const LEAST_CONTRAST = 0.125; // part of a profile's weight that must be left beside a local constant: less where masks cut it
 const SAME_BLOCK = 1.15; // a kernel this much off in width costs under 0.5 % of significance
 
 interface Rung {
@@ -72,46 +73,52 @@ export function findExcesses(data: NormalisedSamples, options: FilterOptions): E
 function filter(data: NormalisedSamples, from: number, to: number, sigmaPx: number, options: FilterOptions): Rung {
   const bin = Math.max(1, Math.floor(sigmaPx / 2.2));
   const n = Math.ceil((to - from) / bin);
-  const weight = new Float64Array(n);
-  const weighted = new Float64Array(n);
+  const sigma = sigmaPx / bin;
+  const half = Math.ceil(3.6 * sigma);
+  // zeros on either side stand for what is not there
+  const weight = new Float64Array(n + 2 * half);
+  const weighted = new Float64Array(n + 2 * half);
   for (let i = from; i < to; i++) {
     const w = data.weight[i]!;
     if (w === 0) continue;
-    const b = ((i - from) / bin) | 0;
+    const b = half + (((i - from) / bin) | 0);
     weight[b]! += w;
     weighted[b]! += w * data.flux[i]!;
   }
-  const sigma = sigmaPx / bin;
-  const half = Math.ceil(3.6 * sigma);
   const g = Float64Array.from({ length: half + 1 }, (_, k) => Math.exp(-0.5 * (k / sigma) ** 2));
+  const gg = g.map((v) => v * v);
   const inflation = correlationInflation(g, bin, options.correlation, options.zeroMean);
   const s = new Float64Array(n);
   const amplitude = new Float64Array(n);
+  let s1 = 0; // sums over the window, kept up from bin to bin
+  let sr = 0;
+  for (let j = 0; j < 2 * half; j++) {
+    s1 += weight[j]!;
+    sr += weighted[j]!;
+  }
   for (let i = 0; i < n; i++) {
-    let sg = 0;
-    let sgg = 0;
-    let sgr = 0;
-    let s1 = 0;
-    let sr = 0;
-    const a = Math.max(0, i - half);
-    const z = Math.min(n - 1, i + half);
-    for (let j = a; j <= z; j++) {
-      const gj = g[j < i ? i - j : j - i]!;
-      const w = weight[j]!;
-      const wg = w * gj;
-      const wr = weighted[j]!;
-      sg += wg;
-      sgg += wg * gj;
-      sgr += wr * gj;
-      s1 += w;
-      sr += wr;
+    const c = i + half;
+    s1 += weight[c + half]!;
+    sr += weighted[c + half]!;
+    let sg = weight[c]!;
+    let sgg = sg;
+    let sgr = weighted[c]!;
+    for (let k = 1; k <= half; k++) {
+      const w = weight[c - k]! + weight[c + k]!;
+      sg += g[k]! * w;
+      sgg += gg[k]! * w;
+      sgr += g[k]! * (weighted[c - k]! + weighted[c + k]!);
     }
-    if (sgg <= 0) continue;
-    const top = options.zeroMean ? sgr - (sg * sr) / s1 : sgr;
-    const bottom = options.zeroMean ? sgg - (sg * sg) / s1 : sgg;
-    if (bottom < 0.25 * sgg * (options.zeroMean ? 0.5 : 1) || bottom <= 0) continue;
-    amplitude[i] = top / bottom;
-    s[i] = top / Math.sqrt(bottom) / inflation;
+    if (sgg > 0) {
+      const top = options.zeroMean ? sgr - (sg * sr) / s1 : sgr;
+      const bottom = options.zeroMean ? sgg - (sg * sg) / s1 : sgg;
+      if (bottom > LEAST_CONTRAST * sgg) {
+        amplitude[i] = top / bottom;
+        s[i] = top / Math.sqrt(bottom) / inflation;
+      }
+    }
+    s1 -= weight[i]!;
+    sr -= weighted[i]!;
   }
   return { sigmaPx, bin, s, amplitude };
 }

@@ -36,52 +36,91 @@ export function identify(input: IdentifyInput): Identified {
   const margin = 1 + (input.velocityRangeKmPerS * 1.2) / C_KM_PER_S;
   const near = list.lines.filter((l) => l.wavelengthNm > coverage.fromNm / margin && l.wavelengthNm < coverage.toNm * margin);
   const of = (family: string) => near.filter((l) => l.settings.some((s) => s === family));
-  const rate = featureRate(features, coverage);
-  const systems: SystemModel[] = [];
-  const explainedBy = (found: readonly SystemModel[]): Background => {
-    const rankings = rankAll(found, input, { rate, explained: () => 0 }).rankings;
-    return { rate, explained: (i, without) => othersShare(rankings[i]!, without) };
-  };
-  const scene = (): Scene => ({ features, coverage, background: explainedBy(systems) });
+  const found = new Findings(input);
+  const { systems } = found;
 
-  const star = input.withoutStar
-    ? null
-    : findStar(
-        scene(),
-        of('stellar').filter((l) => l.logGf !== null && l.type === 'allowed'),
-        input.temperature,
-        input.velocityRangeKmPerS,
-      );
+  const photosphere = of('stellar').filter((l) => l.logGf !== null && l.type === 'allowed');
+  const star = input.withoutStar ? null : findStar(found.scene(), photosphere, input.temperature, input.velocityRangeKmPerS);
   if (star) systems.push(star);
   const airLines = of('telluric');
-  const absorbing = findAir(airLines, 'dip', scene(), input.frame);
+  const absorbing = findAir(airLines, 'dip', found.scene(), input.frame);
   if (absorbing) systems.push(absorbing);
-  const clouds = findClouds(of('interstellar'), scene(), Math.min(input.velocityRangeKmPerS, 200));
+  const clouds = findClouds(of('interstellar'), found.scene(), Math.min(input.velocityRangeKmPerS, 200));
   systems.push(...clouds);
   const bands = diffuseBands(near, clouds, coverage);
   if (bands) addBands(systems, clouds, bands);
-  systems.push(...findNebulae(of('nebular'), scene(), input.velocityRangeKmPerS, input.logContinuum));
-  const glowing = findAir(airLines, 'peak', scene(), input.frame);
-  if (glowing) systems.push(glowing);
+  if (features.some((f) => f.kind === 'peak')) {
+    systems.push(...findNebulae(of('nebular'), found.scene(), input.velocityRangeKmPerS, input.logContinuum));
+    const glowing = findAir(airLines, 'peak', found.scene(), input.frame);
+    if (glowing) systems.push(glowing);
+  }
 
-  if (star && clouds.length && !hasOwnLines(star, systems, input, explainedBy(systems))) return identify({ ...input, withoutStar: true });
-
-  const first = rankAll(systems, input, explainedBy(systems));
-  const settled: Background = { rate, explained: (i, without) => othersShare(first.rankings[i]!, without) };
-  return rankAll(systems, input, settled);
+  const first = rankAll(found.weighed(found.scene().background), input, found.scene().background);
+  if (star && clouds.length && !hasOwnLines(star, first)) return identify({ ...input, withoutStar: true });
+  const settled = backgroundOf(found.rate, first);
+  return rankAll(found.weighed(settled), input, settled);
 }
+
+/** The systems found so far and what they explain; asked again after each find. */
+class Findings {
+  readonly systems: SystemModel[] = [];
+  readonly rate: Background['rate'];
+  readonly #alone = new Map<SystemModel, SystemState>();
+  #scene: { of: number; scene: Scene } | null = null;
+
+  constructor(readonly input: IdentifyInput) {
+    this.rate = featureRate(input.features, input.coverage);
+  }
+
+  /** What a search for further systems stands on. */
+  scene(): Scene {
+    if (this.#scene?.of !== this.systems.length) {
+      const { features, coverage } = this.input;
+      const background = backgroundOf(this.rate, rankAll(this.#weighedAlone(), this.input, this.#nothingExplained(), FEW_DRAWS));
+      this.#scene = { of: this.systems.length, scene: { features, coverage, background } };
+    }
+    return this.#scene!.scene;
+  }
+
+  /** Every system weighed against a background. */
+  weighed(background: Background): SystemState[] {
+    return this.systems.map((system) => stateOf(system, this.input, background));
+  }
+
+  /** Every system weighed as if there were no other; kept, since it never changes. */
+  #weighedAlone(): SystemState[] {
+    return this.systems.map((system) => {
+      const state = this.#alone.get(system) ?? stateOf(system, this.input, this.#nothingExplained());
+      this.#alone.set(system, state);
+      return state;
+    });
+  }
+
+  #nothingExplained(): Background {
+    return { rate: this.rate, explained: () => 0 };
+  }
+}
+
+const FEW_DRAWS = 120; // enough to tell what is explained; the final ranking draws more
+
+const stateOf = (system: SystemModel, { features, coverage }: IdentifyInput, background: Background): SystemState => ({
+  system,
+  states: system.species.map((s) => speciesState(s, system, features, coverage, background)),
+});
+
+const backgroundOf = (rate: Background['rate'], { rankings }: Identified): Background => ({
+  rate,
+  explained: (i, without) => othersShare(rankings[i]!, without),
+});
 
 const EXCITED_PER_CM = 1500; // above what cold gas fills
 const OWN_LINES = 4;
 
 /** Whether a star shows lines that cold gas cannot make: from excited levels, claimed for it against all other systems. */
-function hasOwnLines(star: SystemModel, systems: readonly SystemModel[], input: IdentifyInput, background: Background): boolean {
-  const { rankings } = rankAll(systems, input, background);
+function hasOwnLines(star: SystemModel, { rankings }: Identified): boolean {
   const own = rankings.filter((r) => {
     const best = r.ranked[0];
-    return (
-      best?.contender.system === star && best.probability > 0.5 && (best.contender.expected.line.lowerEnergyPerCm ?? 0) > EXCITED_PER_CM
-    );
+    return best?.contender.system === star && best.probability > 0.5 && (best.contender.expected.line.lowerEnergyPerCm ?? 0) > EXCITED_PER_CM;
   });
   return own.length >= OWN_LINES;
 }
@@ -102,13 +141,8 @@ function addBands(systems: SystemModel[], clouds: readonly SystemModel[], bands:
     });
 }
 
-function rankAll(systems: readonly SystemModel[], input: IdentifyInput, background: Background): Identified {
-  const states: SystemState[] = systems.map((system) => ({
-    system,
-    states: system.species.map((s) => speciesState(s, system, input.features, input.coverage, background)),
-  }));
-  const rankings = input.features.map((f) => rankFeature(f, contendersOf(f, states, input.features), input.coverage, background));
-  return { systems: states, rankings };
+function rankAll(systems: readonly SystemState[], { features, coverage }: IdentifyInput, background: Background, draws?: number): Identified {
+  return { systems, rankings: features.map((f) => rankFeature(f, contendersOf(f, systems, features), coverage, background, draws)) };
 }
 
 /** Chance that systems other than one make a feature. */

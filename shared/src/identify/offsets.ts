@@ -41,6 +41,19 @@ export function normalCdf(x: number): number {
   return 1 / (1 + Math.exp(-x * (1.5976 + 0.07056 * x * x)));
 }
 
+/** ln (0.02 + 0.98 Phi(x)): a line that should show but does not, with room for a wrong promise; tabulated for x from -6 to 6. */
+const UNSEEN_STEPS = 1024;
+const UNSEEN: Float64Array = Float64Array.from({ length: UNSEEN_STEPS + 1 }, (_, k) => Math.log(0.02 + 0.98 * normalCdf(-6 + (12 * k) / UNSEEN_STEPS)));
+
+function unseenTerm(at: number, softness: number): Float64Array {
+  const term = new Float64Array(OFFSETS.length);
+  for (let i = 0; i < term.length; i++) {
+    const x = at - OFFSETS[i]! / softness;
+    term[i] = UNSEEN[Math.max(0, Math.min(UNSEEN_STEPS, Math.round(((x + 6) * UNSEEN_STEPS) / 12)))]!;
+  }
+  return term;
+}
+
 /** ln likelihood ratios of one line at all offsets: the line is there against a chance feature or none. */
 export function lineTerm(
   e: Expected,
@@ -56,8 +69,9 @@ export function lineTerm(
   const logLimit = Math.log10(coverage.threshold * sigmaW);
   if (!feature) {
     const softness = Math.hypot(0.12, e.scatter);
-    const term = Float64Array.from(OFFSETS, (d) => Math.log(0.02 + 0.98 * normalCdf((logLimit - e.logW - d) / softness)));
     const outcome = e.logW > logLimit ? 'missing' : 'below_limit';
+    const silent = logLimit - e.logW - OFFSETS[OFFSETS.length - 1]! > 4 * softness; // invisible at any offset
+    const term = silent ? null : unseenTerm((logLimit - e.logW) / softness, softness);
     return { expected: e, feature: null, outcome, term, logMeasured: Math.log10(sigmaW), sigmaLog: NaN };
   }
   const dv = velocityOf(feature.wavelength, e.wavelength);
@@ -67,12 +81,14 @@ export function lineTerm(
   const place = (normalPdf(dv / sigmaPos) / sigmaPos / rate) * widthRatio(e, feature, coverage);
   const sigmaLog = Math.hypot(e.scatter, feature.sigmaLogW, 0.03);
   const free = 1 - 0.97 * other;
-  const term = Float64Array.from(OFFSETS, (d) => {
-    const z = (feature.logW - e.logW - d) / sigmaLog;
-    const strength = (normalPdf(z) / sigmaLog) * LOG_W_SPREAD * Math.sqrt(2 * Math.PI);
-    const hidden = normalCdf((feature.logW - 0.2 - e.logW - d) / sigmaLog);
-    return Math.log(0.01 + free * place * strength + 0.9 * hidden);
-  });
+  const excess = feature.logW - e.logW;
+  const term = new Float64Array(OFFSETS.length);
+  const scale = (free * place * LOG_W_SPREAD) / sigmaLog;
+  for (let i = 0; i < term.length; i++) {
+    const z = (excess - OFFSETS[i]!) / sigmaLog;
+    const hidden = normalCdf(z - 0.2 / sigmaLog);
+    term[i] = Math.log(0.01 + (z * z < 80 ? scale * Math.exp(-0.5 * z * z) : 0) + 0.9 * hidden);
+  }
   const merged = feature.logW - e.logW > 0.7;
   return { expected: e, feature, outcome: merged ? 'merged' : 'seen', term, logMeasured: feature.logW, sigmaLog: feature.sigmaLogW };
 }

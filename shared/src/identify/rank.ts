@@ -122,10 +122,16 @@ function partOf(e: Expected, f: FeatureView, features: readonly FeatureView[]): 
  * Ranks the readings of a feature: many sets of line strengths are drawn from the predictions with their scatter, blended, weighed by
  * how well they give the feature's equivalent width, centroid and width, and counted. "Unidentified" competes as a flat density.
  */
-export function rankFeature(f: FeatureView, contenders: readonly Contender[], coverage: Coverage, background: Background): FeatureRanking {
+export function rankFeature(
+  f: FeatureView,
+  contenders: readonly Contender[],
+  coverage: Coverage,
+  background: Background,
+  draws = DRAWS,
+): FeatureRanking {
   const weighty = contenders.filter((c) => c.logW + 2 * c.sigmaLog + Math.log10(c.part) > f.logW - NEGLIGIBLE);
   if (weighty.length === 0) return { ranked: [], contenders, unidentified: 1 };
-  return { ...draw(f, weighty, coverage, background), contenders };
+  return { ...draw(f, weighty, coverage, background, draws), contenders };
 }
 
 function draw(
@@ -133,6 +139,7 @@ function draw(
   contenders: readonly Contender[],
   coverage: Coverage,
   background: Background,
+  draws: number,
 ): Omit<FeatureRanking, 'contenders'> {
   const n = contenders.length;
   const lnW = f.logW * LN10;
@@ -145,7 +152,7 @@ function draw(
   const w = new Float64Array(n);
   let total = 0;
   let idle = 0; // draws in which listed lines leave most of the feature unexplained
-  for (let j = 0; j < DRAWS; j++) {
+  for (let j = 0; j < draws; j++) {
     let sum = 0;
     let centroid = 0;
     let top = 0;

@@ -1,0 +1,62 @@
+// npm run bench: time and memory of the analysis, by pixels and by step. Reports, asserts nothing. Run it on a quiet machine.
+import { readFileSync } from 'node:fs';
+import { join } from 'node:path';
+import { requireNode } from './lib/node-version.mjs';
+
+requireNode();
+const { build } = await import('./lib/build.mjs');
+const { ensureDependencies } = await import('./lib/dependencies.mjs');
+const { root } = await import('./lib/paths.mjs');
+const { simulate } = await import('./lib/bench/spectrum.mjs');
+
+await ensureDependencies();
+await build(['server']);
+const { analyse, DEFAULT_SETTINGS, parseDefaultList, readSpectrum } = await import(join(root, 'shared/dist/index.js'));
+const data = (name) => readFileSync(join(root, 'seeds/data', name), 'utf8');
+const list = parseDefaultList(data('lines.csv'), data('telluric.csv'));
+
+const median = (x) => [...x].sort((a, b) => a - b)[x.length >> 1];
+const megabytes = (bytes) => (bytes / 2 ** 20).toFixed(0);
+
+/** One run: processor milliseconds in all and by step. Processor time, since a shared machine's clock tells of its neighbours too. */
+function timed(spectrum) {
+  const now = () => process.cpuUsage().user / 1000;
+  const steps = {};
+  let last = now();
+  let name = '';
+  const began = last;
+  const wall = performance.now();
+  const lap = (next) => {
+    const t = now();
+    if (name) steps[name] = (steps[name] ?? 0) + t - last;
+    [last, name] = [t, next];
+  };
+  const analysis = analyse(spectrum, list, DEFAULT_SETTINGS, lap);
+  lap('');
+  return { ms: now() - began, wall: performance.now() - wall, steps, features: analysis.features.length };
+}
+
+function report(label, spectrum, repeats = 5) {
+  const runs = Array.from({ length: repeats }, () => timed(spectrum));
+  const ms = median(runs.map((r) => r.ms));
+  const total = Object.values(runs[0].steps).reduce((a, b) => a + b, 0);
+  const shares = Object.entries(runs[0].steps).map(([s, t]) => `${s} ${((100 * t) / total).toFixed(0)} %`);
+  const wall = median(runs.map((r) => r.wall));
+  console.log(`${label.padEnd(34)} ${ms.toFixed(0).padStart(6)} ms cpu ${wall.toFixed(0).padStart(6)} ms wall ${String(runs[0].features).padStart(5)} features   ${shares.join(', ')}`);
+  return ms;
+}
+
+console.log(`line list: ${list.lines.length} lines; Node ${process.version}; median of 5 after warming`);
+const warm = simulate(10_000, 60, list.lines);
+for (let k = 0; k < 12; k++) timed(warm);
+
+const sizes = [10_000, 30_000, 100_000, 300_000];
+const times = sizes.map((n) => report(`simulated, ${n} pixels, ${Math.round(n / 200)} lines`, simulate(n, Math.round(n / 200), list.lines), n > 100_000 ? 3 : 5));
+const growth = Math.log(times.at(-1) / times[0]) / Math.log(sizes.at(-1) / sizes[0]);
+console.log(`growth with pixels and lines together: exponent ${growth.toFixed(2)}`);
+
+for (const file of ['heron4a-echelle.fits.gz'].filter(() => false)) {
+  const read = readSpectrum(readFileSync(join(root, 'seeds/data/spectra', file)), file);
+  if (read.ok) report(file, read.spectrum);
+}
+console.log(`memory: ${megabytes(process.memoryUsage().rss)} MB resident, ${megabytes(process.resourceUsage().maxRSS * 1024)} MB at most`);
