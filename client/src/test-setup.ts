@@ -25,5 +25,6 @@ class NoResize {
 }
 window.ResizeObserver = NoResize as unknown as typeof ResizeObserver;
 window.HTMLElement.prototype.scrollIntoView = () => {};
+Object.defineProperty(document, 'fonts', { value: { addEventListener: vi.fn(), removeEventListener: vi.fn(), ready: Promise.resolve() } });
 // strips and curves are drawn on canvases; jsdom has none, and what they show is tested without a screen
 window.HTMLCanvasElement.prototype.getContext = () => null;

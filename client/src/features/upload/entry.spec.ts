@@ -1,0 +1,148 @@
+import { describe, expect, it } from 'vitest';
+import { aFace, aReading, aSpectrumDetail, aTargetSummary } from '../../test/things.js';
+import type { FileRead } from '../../workers/protocol.js';
+import { changeEntries, newcomers, NO_CORRECTIONS } from './entries.js';
+import { guessTarget, isUnfinished, metaOf, questions, sameTarget, verdict, type Entry } from './entry.js';
+import { makeQueue } from './send-entry.js';
+import { standing } from './SendBar.js';
+import { howKnown, withCorrection } from './words.js';
+
+const good: FileRead = { ok: true, reading: aReading(), face: aFace(), hint: null };
+const noMedium: FileRead = { ...good, reading: aReading({ medium: { value: 'vacuum', how: 'not_stated', where: '' } }) };
+const bad: FileRead = { ok: false, problem: { code: 'x', sentence: 'At line 4 a number is missing.', row: 4 }, lines: [] };
+const file = (name = 'heron4b_ech.fits.gz') => new File(['x'], name, { lastModified: 1 });
+const target = { name: 'Heron 4 A', kind: 'star', why: 'object' } as const;
+
+const entry = (parts: Partial<Entry> = {}): Entry => ({
+  ...{
+    id: 1,
+    file: file(),
+    label: 'heron4b_ech',
+    corrections: NO_CORRECTIONS,
+    target,
+    read: good,
+    rereading: false,
+    sending: { at: 'not_sent' },
+  },
+  ...parts,
+});
+
+describe('what a file still needs', () => {
+  it('nothing, when all is stated', () => {
+    expect(questions(entry())).toEqual([]);
+    expect(verdict(entry())).toBe('ready');
+  });
+  it('the medium when the file does not say it, a target and a name when there is none', () => {
+    expect(questions(entry({ read: noMedium, target: { ...target, name: ' ' }, label: '' }))).toEqual(['medium', 'target', 'label']);
+    expect(verdict(entry({ read: noMedium }))).toBe('asks');
+  });
+  it('below 200 nm vacuum is the convention and no question', () => {
+    const uv = { ...good, reading: aReading({ medium: { value: 'vacuum', how: 'assumed', where: 'below 200 nm' } }) };
+    expect(verdict(entry({ read: uv }))).toBe('ready');
+  });
+  it('is being read before it is judged, also again after a correction', () => {
+    expect(verdict(entry({ read: null }))).toBe('reading');
+    expect(verdict(entry({ rereading: true }))).toBe('reading');
+    expect(verdict(entry({ read: bad }))).toBe('unreadable');
+  });
+});
+
+describe('where a spectrum goes', () => {
+  const known = aTargetSummary({ name: 'Heron 4 A' });
+  it('to the target whose page one came from', () => {
+    expect(guessTarget(aReading(), 'x.fits', [known], aTargetSummary({ name: 'Heron 7' }))).toMatchObject({ name: 'Heron 7', why: 'page' });
+  });
+  it('to the target that OBJECT names, however it is written', () => {
+    const reading = aReading({ objectName: { value: 'HERON_4  a', how: 'stated', where: 'OBJECT' } });
+    expect(guessTarget(reading, 'x.fits', [known], undefined)).toEqual({ name: 'Heron 4 A', kind: 'star', why: 'object' });
+    expect(sameTarget('Heron 4 B', [known])).toBeUndefined();
+  });
+  it('to a new target of the file’s name when nothing is said', () => {
+    const reading = aReading({ objectName: { value: null, how: 'not_stated', where: '' } });
+    expect(guessTarget(reading, 'heron33_r5000.csv', [known], undefined)).toMatchObject({ name: 'heron33_r5000', why: 'file_name' });
+  });
+  it('is told to the server by id when it exists, else by name and kind', () => {
+    expect(metaOf(entry(), [known])).toEqual({ targetId: 'target-1', label: 'heron4b_ech' });
+    expect(metaOf(entry({ corrections: { medium: 'air' } }), [])).toEqual({
+      ...{ targetName: 'Heron 4 A', targetKind: 'star', label: 'heron4b_ech', corrections: { medium: 'air' } },
+    });
+  });
+});
+
+describe('the files on the page', () => {
+  it('a file chosen twice shows once', () => {
+    expect(newcomers([entry()], [file(), file('b'), file('b')]).map(({ name }) => name)).toEqual(['b']);
+  });
+  it('an answer to corrections that have changed since is out of date', () => {
+    const corrected = changeEntries([entry()], { type: 'corrected', id: 1, corrections: { medium: 'air' } });
+    const late = changeEntries(corrected, { type: 'read', id: 1, corrections: NO_CORRECTIONS, read: bad, guess: null });
+    expect(late[0]!.read).toBe(good);
+    expect(verdict(late[0]!)).toBe('reading');
+    const right = changeEntries(late, { type: 'read', id: 1, corrections: corrected[0]!.corrections, read: bad, guess: null });
+    expect(verdict(right[0]!)).toBe('unreadable');
+  });
+  it('a target that a person chose stays through later readings', () => {
+    const chosen = { name: 'Mine', kind: 'nebula', why: 'chosen' } as const;
+    const [after] = changeEntries([entry({ target: chosen })], {
+      type: 'read',
+      id: 1,
+      corrections: NO_CORRECTIONS,
+      read: good,
+      guess: target,
+    });
+    expect(after!.target).toBe(chosen);
+  });
+  it('after a refusal a correction makes it ready again', () => {
+    const refused = entry({ sending: { at: 'refused', error: new Error('no') } });
+    const [after] = changeEntries([refused], { type: 'targeted', id: 1, target: { ...target, name: 'Other' } });
+    expect(verdict(after!)).toBe('ready');
+  });
+  it('only what is done or hopeless may be left without asking', () => {
+    expect(isUnfinished(entry({ sending: { at: 'added', spectrum: aSpectrumDetail() } }))).toBe(false);
+    expect(isUnfinished(entry({ sending: { at: 'duplicate', existing: null } }))).toBe(false);
+    expect(isUnfinished(entry({ read: bad }))).toBe(false);
+    for (const open of [entry(), entry({ read: noMedium }), entry({ sending: { at: 'sending', sent: 0.4 } })])
+      expect(isUnfinished(open)).toBe(true);
+  });
+  it('says how all of them stand', () => {
+    expect(standing([entry(), entry({ read: bad })])).toBe('1 of 2 can go now; the others stay on this page.');
+    expect(standing([entry({ sending: { at: 'waiting' } }), entry()])).toBe('1 on its way, 0 added.');
+    expect(standing([entry({ sending: { at: 'added', spectrum: aSpectrumDetail() } })])).toBe('All are added; their analyses run.');
+    expect(standing([entry({ sending: { at: 'duplicate', existing: null } })])).toBe('Nothing is left to add.');
+    expect(standing([entry({ read: noMedium })])).toBe('1 file needs a look.');
+  });
+});
+
+describe('how a fact is known', () => {
+  it('stands out when the file does not say it', () => {
+    expect(howKnown({ how: 'stated', where: 'TUNIT1' })).toEqual({ words: 'stated, TUNIT1', loud: false });
+    expect(howKnown({ how: 'assumed', where: 'range' })).toEqual({ words: 'assumed, range', loud: true });
+    expect(howKnown({ how: 'not_stated', where: '' })).toEqual({ words: 'not stated', loud: true });
+    expect(howKnown({ how: 'corrected', where: 'correction' })).toEqual({ words: 'said by you', loud: false });
+  });
+  it('a correction taken back is no correction', () => {
+    expect(withCorrection({ medium: 'air' }, 'medium', undefined)).toEqual({});
+    expect(withCorrection({}, 'uncertaintyColumn', null)).toEqual({ uncertaintyColumn: null });
+  });
+});
+
+describe('sending', () => {
+  it('runs so many at a time and starts the next when one ends, however it ends', async () => {
+    const queue = makeQueue(2);
+    const ends: (() => void)[] = [];
+    const started: number[] = [];
+    for (const n of [0, 1, 2, 3]) {
+      queue(() => {
+        started.push(n);
+        return new Promise((resolve, reject) => ends.push(n === 0 ? () => reject(new Error('x')) : resolve)).catch(
+          () => undefined,
+        ) as Promise<void>;
+      });
+    }
+    expect(started).toEqual([0, 1]);
+    ends[0]!();
+    await Promise.resolve();
+    await new Promise((resolve) => setTimeout(resolve));
+    expect(started).toEqual([0, 1, 2]);
+  });
+});
