@@ -20,7 +20,7 @@ export function ripples(blocks: Blocks, model: SmoothModel, start: Start, free: 
   const values = makeBlockValues(blocks.count);
   for (let b = 0; b < blocks.count; b++) values.value[b] = start.values.value[b]! - model.baseCentre[b]!;
   values.weight.set(start.values.weight);
-  const fit = robustFit(model, values, precisionOf(model, free.response[0]!, free), start.pull, 3);
+  const fit = robustFit(model, values, [precisionOf(model, free.response[0]!, free)], start.pull, 2);
   if (!fit) return false;
   const fitted = evaluateRows(new Float64Array(blocks.count), model.centre, model.columns, fit.coefficients);
   const { weight } = start.values;

@@ -5,8 +5,16 @@ import { makeBlockValues, type BlockValues, type Blocks } from './blocks.js';
 import { makeWorkspace, measureAgainst, rejectBoxes, type Rejection, type Workspace } from './line-free.js';
 import { ripples } from './evenness.js';
 import { smoothRipple } from './ripple.js';
-import { likeliestResponse, robustFit, type Freedom } from './robust-fit.js';
-import { evaluateRows, precisionOf, RESPONSE, type ResponsePrior, type SmoothFit, type SmoothModel } from './smooth-model.js';
+import { robustFit, type Freedom } from './robust-fit.js';
+import {
+  evaluateRows,
+  precisionOf,
+  RESPONSE,
+  type Precision,
+  type ResponsePrior,
+  type SmoothFit,
+  type SmoothModel,
+} from './smooth-model.js';
 import type { Pull, Start } from './start.js';
 import { binned, type Binned } from './binned.js';
 
@@ -28,6 +36,8 @@ const FINE_FLOORS = [0.002, 0.001];
 const COARSE_ORDERS = { calibrated: 7, uncalibrated: 14 };
 const COARSE_SAMPLES = 16_000;
 const MOST_BINNED = 6;
+/** Re-weightings of the very first fit, which starts with whole blocks in lines. */
+const FIRST_ROUNDS = 5;
 const BOX_SIGMAS = 3.2;
 /** Weight of a first guess where it stands in for lost samples, as part of what its noise would give it. */
 const HOLD = 0.1;
@@ -70,12 +80,12 @@ export function refine(
   };
   const uneven = ripples(blocks, model, start, free);
   let ripple: Float64Array | null = null;
-  let response: ResponsePrior = free.response[0]!;
+  const belief = (response: ResponsePrior, columns: number) => precisionOf(model, response, free, columns);
   let values: BlockValues = { value: first.value, weight: first.weight.slice() };
   let fit: SmoothFit;
 
-  const fitSmooth = (columns: number, rounds: number) => {
-    const found = robustFit(model, values, precisionOf(model, response, free, columns), pull, rounds);
+  const fitSmooth = (beliefs: readonly Precision[], rounds: number) => {
+    const found = robustFit(model, values, beliefs, pull, rounds);
     if (found) fit = found;
     if (found && uneven) ripple = rippleAbout(model, found, values, first);
     return found !== null;
@@ -89,7 +99,9 @@ export function refine(
   };
 
   const coarseColumns = RESPONSE + (free.temperature ? COARSE_ORDERS.calibrated : COARSE_ORDERS.uncalibrated);
-  if (!fitSmooth(coarseColumns, 6)) return null;
+  const coarsely = [belief(free.response[0]!, coarseColumns)];
+  const finely = free.response.map((response) => belief(response, model.columns));
+  if (!fitSmooth(coarsely, FIRST_ROUNDS)) return null;
   const factor = Math.min(MOST_BINNED, Math.floor(spectrum.flux.length / COARSE_SAMPLES));
   const full = binned(spectrum, noise.sigma, blocks, 1, 1);
   const space = makeWorkspace(full);
@@ -97,12 +109,11 @@ export function refine(
   const coarseSpace = factor > 1 ? makeWorkspace(coarse) : space;
   for (const floor of COARSE_FLOORS) {
     lookAgain(coarse, coarseSpace, floor, factor > 1 ? 1 : inflation);
-    fitSmooth(coarseColumns, 2);
+    fitSmooth(coarsely, 1);
   }
   for (const floor of FINE_FLOORS) {
     lookAgain(full, space, floor, inflation);
-    response = likeliestResponse(model, values, response, free);
-    fitSmooth(model.columns, 2);
+    fitSmooth(finely, 2);
   }
   setEdges(edgeLevel, offset, model, fit!, ripple);
   measureAgainst(edgeLevel, full, space);

@@ -3,8 +3,8 @@ import type { Blocks, BlockValues } from './blocks.js';
 import {
   evaluateRows,
   normalSums,
-  precisionOf,
   solveSmooth,
+  type Precision,
   type ResponsePrior,
   type SmoothFit,
   type SmoothModel,
@@ -32,25 +32,47 @@ export function calibratedOver({ edgeNm, count }: Blocks): readonly ResponsePrio
 /** Shapes of a flux that was never calibrated, or was divided by some other continuum. */
 export const ANY_SHAPE: readonly ResponsePrior[] = [{ amplitude: 0.5, order: 4 }, ...responses([0.005, 0.05, 0.5, 2], [2.5, 4, 7, 12, 20])];
 
-/** Fit by re-weighting: blocks far off, most of all on the side to which features pull, lose their say. Writes the final weights back. */
-export function robustFit(model: SmoothModel, values: BlockValues, precision: Float64Array, pull: Pull, rounds: number): SmoothFit | null {
+/**
+ * Fit by re-weighting: blocks far off, most of all on the side to which features pull, lose their say; the final weights are written back.
+ * @param beliefs what is believed of the coefficients: the first is used for re-weighting, in the end the one that makes the block values
+ *   most probable
+ */
+export function robustFit(
+  model: SmoothModel,
+  values: BlockValues,
+  beliefs: readonly Precision[],
+  pull: Pull,
+  rounds: number,
+): SmoothFit | null {
   const stated = values.weight.slice();
   const fitted = new Float64Array(stated.length);
-  let fit = solveSmooth(normalSums(model, values, precision.length), precision);
+  const [first] = beliefs as [Precision, ...Precision[]];
+  let sums = normalSums(model, values, first.length);
+  let fit = solveSmooth(sums, first);
   for (let round = 0; round < rounds && fit; round++) {
     evaluateRows(fitted, model.centre, model.columns, fit.coefficients);
-    const extra = extraVariance(values.value, fitted, stated);
-    for (let b = 0; b < stated.length; b++) {
-      if (!(stated[b]! > 0)) continue;
-      const variance = 1 / stated[b]! + extra;
-      const d = (values.value[b]! - fitted[b]!) / Math.sqrt(variance);
-      const reach = pull === 'neither' ? 5 : d < 0 === (pull === 'dips') ? 4 : 6;
-      const u = (d / reach) ** 2;
-      values.weight[b] = u < 1 ? (1 - u) ** 2 / variance : 0;
-    }
-    fit = solveSmooth(normalSums(model, values, precision.length), precision);
+    reweigh(values, fitted, stated, pull);
+    sums = normalSums(model, values, first.length);
+    fit = solveSmooth(sums, first);
+  }
+  for (const belief of beliefs.slice(1)) {
+    const other = solveSmooth(sums, belief);
+    if (other && !(fit && other.lnEvidence <= fit.lnEvidence)) fit = other;
   }
   return fit;
+}
+
+/** Tukey's biweight (Beaton & Tukey 1974, Technometrics 16, 147), with a longer reach on the side to which features do not pull. */
+function reweigh({ value, weight }: BlockValues, fitted: Float64Array, stated: Float64Array, pull: Pull) {
+  const extra = extraVariance(value, fitted, stated);
+  for (let b = 0; b < stated.length; b++) {
+    if (!(stated[b]! > 0)) continue;
+    const variance = 1 / stated[b]! + extra;
+    const d = (value[b]! - fitted[b]!) / Math.sqrt(variance);
+    const reach = pull === 'neither' ? 5 : d < 0 === (pull === 'dips') ? 4 : 6;
+    const u = (d / reach) ** 2;
+    weight[b] = u < 1 ? (1 - u) ** 2 / variance : 0;
+  }
 }
 
 /** Variance that the blocks scatter beyond what their noise explains, from the median of squares. */
@@ -65,20 +87,4 @@ function extraVariance(value: Float64Array, fitted: Float64Array, weight: Float6
   }
   if (!m) return 0;
   return Math.max(0, (MAD_TO_SIGMA * medianInPlace(squares, m)) ** 2 - medianInPlace(variances, m));
-}
-
-/** The size and smoothness of the response that make the block values most probable. */
-export function likeliestResponse(model: SmoothModel, values: BlockValues, before: ResponsePrior, free: Freedom): ResponsePrior {
-  const trial = { value: values.value, weight: values.weight.slice() };
-  if (!robustFit(model, trial, precisionOf(model, before, free), 'neither', 1)) return before;
-  const sums = normalSums(model, trial);
-  let best = -Infinity;
-  let chosen = before;
-  for (const response of free.response) {
-    const fit = solveSmooth(sums, precisionOf(model, response, free));
-    if (!fit || fit.lnEvidence <= best) continue;
-    best = fit.lnEvidence;
-    chosen = response;
-  }
-  return chosen;
 }
