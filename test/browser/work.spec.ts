@@ -92,6 +92,7 @@ describe('from a file to a report', () => {
     await linesOf(reviewer.page).focus();
     await reviewer.page.keyboard.press('x');
     await row(reviewer.page, /Na I 589\.75.*rejected/).waitFor();
+    await reviewer.page.getByText('Rejected Na I 589.75').first().waitFor(); // saved, not only shown
     await row(reviewer.page, /Na I 589\.75/).click();
     await linesOf(reviewer.page).focus();
     await reviewer.page.keyboard.press('b');
