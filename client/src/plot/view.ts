@@ -59,10 +59,10 @@ export class ViewStore {
     return { fromNm: aroundNm - (aroundNm - fromNm) * factor, toNm: aroundNm + (toNm - aroundNm) * factor };
   }
 
-  /** Shifted by a fraction of its own length. */
+  /** Shifted by a fraction of its own length, as far as the spectrum goes; an infinite fraction is its end. */
   shifted(fraction: number): Range {
-    const by = fraction * (this.range.toNm - this.range.fromNm); // may be infinite: the end of the spectrum
-    return this.within({ fromNm: this.range.fromNm + by, toNm: this.range.toNm + by });
+    const { fromNm, toNm } = this.range;
+    return this.placed(fromNm + fraction * (toNm - fromNm), toNm - fromNm);
   }
 
   /** Brings a wavelength into view, only when it is out of it or near the edge. */
@@ -70,8 +70,7 @@ export class ViewStore {
     const { fromNm, toNm } = this.range;
     const margin = 0.04 * (toNm - fromNm);
     if (nm > fromNm + margin && nm < toNm - margin) return;
-    const half = (toNm - fromNm) / 2;
-    this.show(this.within({ fromNm: nm - half, toNm: nm + half }));
+    this.show(this.placed(nm - (toNm - fromNm) / 2, toNm - fromNm));
   }
 
   back() {
@@ -106,9 +105,8 @@ export class ViewStore {
     for (const listener of this.listeners) listener();
   }
 
-  /** Moved, not cut, at the ends of the spectrum. */
-  private within({ fromNm, toNm }: Range): Range {
-    const length = Math.min(toNm - fromNm, this.whole.toNm - this.whole.fromNm);
+  /** A stretch of this length starting there; moved, not cut, at the ends of the spectrum. */
+  private placed(fromNm: number, length: number): Range {
     const from = Math.min(Math.max(fromNm, this.whole.fromNm), this.whole.toNm - length);
     return { fromNm: from, toNm: from + length };
   }

@@ -30,18 +30,13 @@ interface Props {
   frameName: string;
 }
 
-const OUTCOME: Record<Companion['outcome'], string> = {
-  seen: 'seen',
-  missing: 'missing',
-  not_covered: 'not covered',
-  below_limit: 'below the limit',
-};
+const expectedWidth = (c: Companion) => fixed(c.expectedNm * MILLIANGSTROM_PER_NM, c.expectedNm < 1e-3 ? 1 : 0);
 
 /** The number at the right: what was measured, or what is due. */
 function amount(c: Companion): string {
   if (c.outcome === 'not_covered') return 'not covered';
   if (c.measuredNm !== null) return withError(c.measuredNm * MILLIANGSTROM_PER_NM, (c.measuredSigmaNm ?? NaN) * MILLIANGSTROM_PER_NM);
-  const due = `${fixed(c.expectedNm * MILLIANGSTROM_PER_NM, c.expectedNm < 1e-3 ? 1 : 0)} due`;
+  const due = `${expectedWidth(c)} due`;
   return c.outcome === 'missing' ? `missing, ${due}` : due;
 }
 
@@ -180,7 +175,18 @@ export function Companions({ candidate, system, systems, data, display, frameNam
   );
 }
 
+const OUTCOME: Record<Companion['outcome'], string> = {
+  seen: 'seen',
+  missing: 'missing',
+  not_covered: 'not covered',
+  below_limit: 'below the limit',
+};
+
+/** The panel in words, with the same numbers. */
 function spoken({ companions }: Candidate, shown: (nm: number) => string): string {
-  const each = companions.map((c) => `${c.species} ${shown(c.restNm)} ${OUTCOME[c.outcome]}, ${amount(c)}`);
+  const each = companions.map((c) => {
+    const width = c.outcome === 'not_covered' ? '' : c.measuredNm !== null ? `, ${amount(c)} mÅ` : `, ${expectedWidth(c)} mÅ due`;
+    return `${c.species} ${shown(c.restNm)} ${OUTCOME[c.outcome]}${width}`;
+  });
   return `Companions in velocity space: ${each.join('; ')}`;
 }

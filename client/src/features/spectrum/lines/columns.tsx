@@ -123,10 +123,13 @@ export const COLUMNS: readonly Column[] = [
   },
 ];
 
+/** Twelve digits: all that a measurement has, without the tail of binary fractions. */
+const plainText = (v: string | number | null) => (v === null ? '' : typeof v === 'number' ? String(Number(v.toPrecision(12))) : v);
+
 /** The rows as tab-separated text with a header that names units, at full precision. */
 export function asTsv(rows: readonly LineRow[], display: WavelengthDisplay): string {
   const copied = COLUMNS.filter((c) => c.plain !== null);
   const head = copied.flatMap((c) => c.plainTitles(display));
-  const body = rows.map((row) => copied.flatMap((c) => c.plain!(row, display)).map((v) => (v === null ? '' : String(v))));
+  const body = rows.map((row) => copied.flatMap((c) => c.plain!(row, display)).map(plainText));
   return [head, ...body].map((line) => line.join('\t')).join('\n');
 }
