@@ -1,6 +1,6 @@
 import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
 import type { BlockValues, Blocks } from './blocks.js';
-import { lnPlanck } from './planck.js';
+import { C2_NM_K, lnExpm1 } from './planck.js';
 import { AV, JUMP, RESPONSE, SCALE, type SmoothModel } from './smooth-model.js';
 
 /** Trial visual extinctions with the probability of each cell around them; a single cell at 0 when the extinction is given. */
@@ -189,17 +189,20 @@ function cellsFor({ av, width, mass }: ExtinctionBelief, { q2 }: Nuisance): Cell
 
 /** ln probability of ln T, up to a constant, averaged over the nuisances and the extinction; allocates nothing when called. */
 export function lnProbabilityOf(problem: ColourProblem, nuisances: readonly Nuisance[], belief: ExtinctionBelief): (lnT: number) => number {
-  const { weight, value, centreNm, extinctionColumn, columns: m } = problem;
+  const { weight, centreNm, extinctionColumn, columns: m } = problem;
+  // ln B_lambda = constant - 5 ln lambda - ln(exp(x) - 1); the constant goes into the scale
+  const value = problem.value.map((v, r) => v + 5 * Math.log(centreNm[r]!));
+  const perKelvin = centreNm.map((nm) => C2_NM_K / nm);
   const cells = nuisances.map((nuisance) => cellsFor(belief, nuisance));
   const z = new Float64Array(value.length);
   const right = new Float64Array(m);
   const solved = new Float64Array(m);
   return (lnT) => {
-    const temperature = Math.exp(lnT);
+    const inverse = Math.exp(-lnT);
     let zz = 0;
     let zk = 0;
     for (let r = 0; r < z.length; r++) {
-      const d = value[r]! - lnPlanck(centreNm[r]!, temperature);
+      const d = value[r]! + lnExpm1(perKelvin[r]! * inverse);
       z[r] = d;
       const wd = weight[r]! * d;
       zz += wd * d;

@@ -15,7 +15,7 @@ interface DiffuseBand {
  * Strengths per E(B-V) as in the line list (Jenniskens & Desert 1994, A&AS 106, 39; Hobbs et al. 2008, ApJ 680, 1256; from memory),
  * over R_V = 3.1. The band at 628.6 nm lies among lines of molecular oxygen of the air and is left out.
  */
-export const BANDS: readonly DiffuseBand[] = [
+const BANDS: readonly DiffuseBand[] = [
   { vacuumNm: 443.004, fwhmNm: 1.75, nmPerMag: 0.223 / 3.1 },
   { vacuumNm: 472.812, fwhmNm: 0.27, nmPerMag: 0.0128 / 3.1 },
   { vacuumNm: 578.21, fwhmNm: 0.21, nmPerMag: 0.0579 / 3.1 },
@@ -47,8 +47,9 @@ interface BandMeasure {
  * covers none. The clouds' velocity is not known and is averaged over. A band that is too strong may be blended, one too weak may not.
  */
 export function lnLikelihoodOfExtinction(spectrum: Spectrum, space: Workspace, placement: number, trialAv: Float64Array): Float64Array {
+  const samples = scratch();
   const perVelocity = VELOCITIES.map((velocity) => {
-    const bands = BANDS.map((band) => measureBand(spectrum, space, band, velocity, placement)).filter((m) => m !== null);
+    const bands = BANDS.map((band) => measureBand(samples, spectrum, space, band, velocity, placement)).filter((m) => m !== null);
     const lnL = (av: number) => bands.reduce((sum, m) => sum + lnLikelihood(m, av), 0);
     const none = lnL(0);
     return trialAv.map((av) => lnL(av) - none);
@@ -70,56 +71,88 @@ function lnLikelihood({ widthNm, sigmaNm, nmPerMag, areaNm }: BandMeasure, av: n
   return Math.log((1 - BLEND_CHANCE) * alone + BLEND_CHANCE * blended + 1e-6 / areaNm);
 }
 
+/** The samples of one band, thinned out where there are many: depth below the continuum, profile of depth 1, and weight. */
+interface BandSamples {
+  count: number;
+  readonly depth: Float64Array;
+  readonly shape: Float64Array;
+  /** 1 / sigma of the depth */
+  readonly inverse: Float64Array;
+}
+const MOST_SAMPLES = 120;
+const scratch = (): BandSamples => ({
+  count: 0,
+  depth: new Float64Array(2 * MOST_SAMPLES),
+  shape: new Float64Array(2 * MOST_SAMPLES),
+  inverse: new Float64Array(2 * MOST_SAMPLES),
+});
+
+/** Gathers every k-th sample within 1.8 sigma of a band's middle and returns k; 0 where the band is not covered. */
+function gatherBand(out: BandSamples, spectrum: Spectrum, space: Workspace, centreNm: number, sigmaNm: number): number {
+  const { wavelength, flux } = spectrum;
+  const first = lowerBound(wavelength, centreNm - 1.8 * sigmaNm);
+  const last = lowerBound(wavelength, centreNm + 1.8 * sigmaNm);
+  if (last - first < 5 || first === 0 || last === wavelength.length) return 0;
+  const thinned = Math.max(1, Math.floor((last - first) / MOST_SAMPLES));
+  let m = 0;
+  for (let i = first; i < last; i += thinned) {
+    const level = space.level[i]!;
+    const inverse = space.inverseSigma[i]! * level;
+    if (inverse === 0) continue;
+    const u = (wavelength[i]! - centreNm) / sigmaNm;
+    out.depth[m] = 1 - flux[i]! / level;
+    out.shape[m] = Math.exp(-0.5 * u * u);
+    out.inverse[m++] = inverse;
+  }
+  out.count = m;
+  return m > 0 ? thinned : 0;
+}
+
+const ROUNDS = 5;
+
 /**
  * Equivalent width of a band at one velocity by a matched Gaussian, from the samples that are not far below it: narrow lines on top of
  * the band are left out. `placement` is the relative error of the continuum there. Null when the band is not covered.
  */
-export function measureBand(
+function measureBand(
+  samples: BandSamples,
   spectrum: Spectrum,
   space: Workspace,
   band: DiffuseBand,
   velocity: number,
   placement: number,
 ): BandMeasure | null {
-  const { wavelength, flux } = spectrum;
-  const { level, inverseSigma } = space;
   const centre = band.vacuumNm * (1 + velocity / C_KM_PER_S);
   const instrument = spectrum.resolvingPower ? centre / spectrum.resolvingPower : 0;
-  const sigma = Math.hypot(band.fwhmNm, instrument) / 2.354820045;
-  const first = lowerBound(wavelength, centre - 1.8 * sigma);
-  const last = lowerBound(wavelength, centre + 1.8 * sigma);
-  if (last - first < 5 || first === 0 || last === wavelength.length) return null;
-  let depth = Math.max(0, startDepth(spectrum, space, first, last, centre, sigma));
+  const sigmaNm = Math.hypot(band.fwhmNm, instrument) / 2.354820045;
+  const thinned = gatherBand(samples, spectrum, space, centre, sigmaNm);
+  if (thinned === 0) return null;
+  const { count, depth, shape, inverse } = samples;
+  let amplitude = Math.max(0, startDepth(samples));
   let weights = 0;
-  for (let round = 0; round < 6; round++) {
+  for (let round = 0; round < ROUNDS; round++) {
     let top = 0;
     weights = 0;
-    for (let i = first; i < last; i++) {
-      const inverse = inverseSigma[i]! * level[i]!;
-      if (inverse === 0) continue;
-      const u = (wavelength[i]! - centre) / sigma;
-      const shape = Math.exp(-0.5 * u * u);
-      const seen = 1 - flux[i]! / level[i]!;
-      if ((seen - depth * shape) * inverse > 2.5 || (seen - depth * shape) * inverse < -4) continue;
-      const w = inverse * inverse * shape;
-      top += w * seen;
-      weights += w * shape;
+    for (let i = 0; i < count; i++) {
+      const off = (depth[i]! - amplitude * shape[i]!) * inverse[i]!;
+      if (off > 2.5 || off < -4) continue;
+      const w = inverse[i]! * inverse[i]! * shape[i]!;
+      top += w * depth[i]!;
+      weights += w * shape[i]!;
     }
     if (!(weights > 0)) return null;
-    depth = Math.max(0, top / weights);
-    if (round === 5) depth = top / weights;
+    amplitude = top / weights;
+    if (round < ROUNDS - 1) amplitude = Math.max(0, amplitude);
   }
-  const area = sigma * Math.sqrt(2 * Math.PI);
-  return { widthNm: depth * area, sigmaNm: Math.hypot(1 / Math.sqrt(weights), placement) * area, nmPerMag: band.nmPerMag, areaNm: area };
+  const areaNm = sigmaNm * Math.sqrt(2 * Math.PI);
+  const variance = 1 / (weights * thinned) + placement * placement;
+  return { widthNm: amplitude * areaNm, sigmaNm: Math.sqrt(variance) * areaNm, nmPerMag: band.nmPerMag, areaNm };
 }
 
-/** Lower third of the depths that single samples of the band's core would give. */
-function startDepth(spectrum: Spectrum, space: Workspace, first: number, last: number, centre: number, sigma: number): number {
+/** Lower third of the depths that single samples of the band's core would give it. */
+function startDepth({ count, depth, shape }: BandSamples): number {
   const depths: number[] = [];
-  for (let i = first; i < last; i++) {
-    const u = (spectrum.wavelength[i]! - centre) / sigma;
-    if (u * u < 1 && space.inverseSigma[i]! > 0) depths.push((1 - spectrum.flux[i]! / space.level[i]!) * Math.exp(0.5 * u * u));
-  }
+  for (let i = 0; i < count; i++) if (shape[i]! > 0.6) depths.push(depth[i]! / shape[i]!);
   return quantile(depths, 0.3);
 }
 

@@ -7,6 +7,7 @@ const K = 1.380649e-23;
 export const C2_NM_K = ((H * C) / K) * 1e9;
 /** 2 h c^2 scaled so that B_lambda comes out in erg s^-1 cm^-2 Angstrom^-1 sr^-1 for wavelengths in nm. */
 const C1 = 2 * H * C * C * 1e45 * 1e-7;
+const LN_C1 = Math.log(C1);
 /** Wien's displacement constant in nm K: wavelength of the peak of B_lambda times temperature. */
 export const WIEN_NM_K = 2.897771955185172e6;
 
@@ -23,9 +24,11 @@ export function planck(wavelengthNm: number, temperatureK: number): number {
 
 /** Natural log of B_lambda in the unit of `planck`; finite also where B_lambda itself underflows. */
 export function lnPlanck(wavelengthNm: number, temperatureK: number): number {
-  const x = C2_NM_K / (wavelengthNm * temperatureK);
-  return Math.log(C1) - 5 * Math.log(wavelengthNm) - (x > 30 ? x : Math.log(Math.expm1(x)));
+  return LN_C1 - 5 * Math.log(wavelengthNm) - lnExpm1(C2_NM_K / (wavelengthNm * temperatureK));
 }
+
+/** ln(exp(x) - 1): what of ln B_lambda depends on the temperature, with x = c2 / (lambda T) > 0. */
+export const lnExpm1 = (x: number): number => (x > 40 ? x : Math.log(Math.expm1(x)));
 
 /** d ln B_lambda / d ln T, from 1 in the Rayleigh-Jeans tail to x = c2 / (lambda T) on the Wien side. */
 export function planckSlope(wavelengthNm: number, temperatureK: number): number {

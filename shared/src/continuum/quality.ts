@@ -59,6 +59,8 @@ const spacing = (wavelength: Float64Array, i: number): number =>
 
 /** Dips too weak to be seen lower the level by about this much of the noise per sample, times the part of the samples clipped. */
 const UNSEEN_DIPS = 0.15;
+/** Blocks looked at for a median over all. */
+const ENOUGH_BLOCKS = 64;
 
 /**
  * Relative 1 sigma error of the level, median over the blocks: from the covariance of the smooth fit, and from dips too weak to be clipped,
@@ -66,20 +68,23 @@ const UNSEEN_DIPS = 0.15;
  */
 export function placementSigma({ fit, space }: Refined, model: SmoothModel, noise: NoiseModel, quality: Quality): number {
   const m = model.columns;
-  const rows = model.centre.length / m;
+  const blocks = model.centre.length / m;
+  const stride = Math.max(1, Math.floor(blocks / ENOUGH_BLOCKS));
+  const rows = Math.ceil(blocks / stride);
   const variances = new Float64Array(rows);
   const solved = new Float64Array(m);
-  for (let b = 0; b < rows; b++) {
+  for (let r = 0; r < rows; r++) {
     // the variance is row' (L L')^-1 row = |L^-1 row|^2: one forward substitution
+    const at = r * stride * m;
     let sum = 0;
     for (let i = 0; i < m; i++) {
-      let v = model.centre[b * m + i]!;
+      let v = model.centre[at + i]!;
       for (let k = 0; k < i; k++) v -= fit.factor[i * m + k]! * solved[k]!;
       v /= fit.factor[i * m + i]!;
       solved[i] = v;
       sum += v * v;
     }
-    variances[b] = sum;
+    variances[r] = sum;
   }
   const relativeNoise = new Float64Array(rows);
   const step = noise.sigma.length / rows;

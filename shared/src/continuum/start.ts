@@ -2,7 +2,7 @@ import type { NoiseModel } from '../noise/index.js';
 import { selectInPlace } from '../numeric/select.js';
 import type { Spectrum } from '../spectrum/index.js';
 import { makeBlockValues, type BlockValues, type Blocks } from './blocks.js';
-import { lnPlanck, wienPeakNm } from './planck.js';
+import { C2_NM_K, lnExpm1, wienPeakNm } from './planck.js';
 
 /** Whether features pull the flux down, push it up, or do neither on the whole. */
 export type Pull = 'dips' | 'peaks' | 'neither';
@@ -81,7 +81,8 @@ const HOTTEST_K = 80_000;
 
 /** Best Planck curve on a grid of temperatures in 10 % steps; `known` is the ln of all that is known beside it. */
 export function startPlanck(blocks: Blocks, { value, weight }: BlockValues, known: (nm: number) => number): PlanckStart {
-  const y = value.map((v, b) => v - known(blocks.centreNm[b]!));
+  const { centreNm } = blocks;
+  const y = value.map((v, b) => v - known(centreNm[b]!) + 5 * Math.log(centreNm[b]!));
   const stride = Math.max(1, blocks.count >> 6);
   let best: PlanckStart = { temperatureK: 6000, rms: Infinity };
   for (let t = wienPeakNm(blocks.edgeNm[blocks.count]!) / COOLEST; t < HOTTEST_K; t *= 1.1) {
@@ -90,7 +91,7 @@ export function startPlanck(blocks: Blocks, { value, weight }: BlockValues, know
     let s2 = 0;
     for (let b = 0; b < blocks.count; b += stride) {
       if (!(weight[b]! > 0)) continue;
-      const d = y[b]! - lnPlanck(blocks.centreNm[b]!, t);
+      const d = y[b]! + lnExpm1(C2_NM_K / (centreNm[b]! * t));
       m++;
       s1 += d;
       s2 += d * d;

@@ -7,6 +7,7 @@ import {
   type ColourProblem,
   type ExtinctionBelief,
   type FittedBlocks,
+  type Nuisance,
 } from './colour-problem.js';
 import { wienPeakNm } from './planck.js';
 import { gridAround, highestPoint, meanOf, quantileOf, widthAt, type Grid } from './search.js';
@@ -59,7 +60,8 @@ export function judgeTemperature(
   const unreddened = highestPoint(dustless, lnCoolest, LN_HOTTEST);
   const peak = dustyPeak(problem, extinction, unreddened);
   const step = Math.max(FINEST_STEP, Math.min(COARSEST_STEP, STEP_SIGMAS * widthAt(dustless, unreddened)));
-  const grid = gridAround(lnProbabilityOf(problem, problem.nuisances, extinction), peak, step, lnCoolest, LN_HOTTEST);
+  const likely = likelyNuisances(problem, extinction, peak);
+  const grid = gridAround(lnProbabilityOf(problem, likely, extinction), peak, step, lnCoolest, LN_HOTTEST);
   const { mean, sigma } = meanOf(grid);
   return {
     lnT: mean,
@@ -70,6 +72,14 @@ export function judgeTemperature(
     unreddenedK: Math.exp(unreddened),
     av: meanExtinction(problem, extinction, grid),
   };
+}
+
+/** Beliefs about the response that the peak itself makes less probable than the best by this much, in ln, only cost time. */
+const UNLIKELY = 7;
+function likelyNuisances(problem: ColourProblem, extinction: ExtinctionBelief, peak: number): readonly Nuisance[] {
+  const lnP = problem.nuisances.map((nuisance) => lnProbabilityOf(problem, [nuisance], extinction)(peak));
+  const best = lnP.reduce((a, b) => Math.max(a, b), -Infinity);
+  return problem.nuisances.filter((_, h) => lnP[h]! > best - UNLIKELY);
 }
 
 /** Dust only ever hides a hotter body: the search starts from the temperature without dust. */
