@@ -4,7 +4,7 @@ import { runningMedian } from '../numeric/running-quantile.js';
 import { median } from '../numeric/select.js';
 import type { Spectrum } from '../spectrum/index.js';
 import type { Blocks } from './blocks.js';
-import type { ContinuumFit } from './fit.js';
+import type { ContinuumFit } from './model.js';
 
 const nothingKnown = (statement: string, sampleNm: number[], sampleFlux: number[]): Continuum => ({
   model: 'local',

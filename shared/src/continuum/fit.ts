@@ -6,6 +6,7 @@ import { trustBesideHydrogen } from './hydrogen.js';
 import { NO_EXTINCTION } from './colour-problem.js';
 import { extinctionCurve } from './extinction.js';
 import { flatLevel, tracedLevel } from './fallback.js';
+import type { ContinuumFit } from './model.js';
 import { lnPlanck, wienPeakNm } from './planck.js';
 import { describeQuality, placementSigma, type Quality } from './quality.js';
 import { beliefInExtinction } from './reddening.js';
@@ -15,15 +16,6 @@ import { LN_PER_MAG, makeSmoothModel } from './smooth-model.js';
 import { looksNormalised, startPlanck, startValues, type PlanckStart, type Start } from './start.js';
 import { verdictOn, type Verdict } from './statement.js';
 import { judgeTemperature } from './temperature.js';
-
-/** The continuum under a spectrum: what is told and drawn, and the level per sample. */
-export interface ContinuumFit {
-  readonly summary: Continuum;
-  /** continuum flux per sample, in the unit of the flux; finite and positive everywhere */
-  readonly level: Float64Array;
-  /** relative 1 sigma error of the placement, typical of the spectrum */
-  readonly levelSigma: Float64Array | number;
-}
 
 /** Chebyshev orders of the smooth part: features narrower than about a twentieth of the range do not pull it. */
 const ORDERS = 20;

@@ -1,4 +1,5 @@
 export * from './planck.js';
 export * from './extinction.js';
 export * from './planck-fit.js';
-export { fitContinuum, type ContinuumFit } from './fit.js';
+export { fitContinuum } from './fit.js';
+export type { ContinuumFit } from './model.js';
