@@ -9,22 +9,41 @@ interface Props {
 }
 
 const at = (fraction: number) => `${(fraction * 100).toFixed(3)}%`;
-/** Room that a tick label asks for, as a share of the axis. */
-const LABEL_ROOM = 0.08;
+/** Room that a tick label asks for, as a share of the axis: some for its surroundings, some for each letter. */
+const room = (label: string) => 0.03 + 0.0146 * label.length;
 
-/** Tick labels over a column of strips. */
+interface Label {
+  readonly nm: number;
+  readonly text: string;
+  readonly place: number;
+}
+
+/** As many round numbers as fit. */
+function labelsOf(piece: AxisPiece, axis: readonly AxisPiece[], display: WavelengthDisplay): Label[] {
+  const width = piece.end - piece.start;
+  const ticks = (widest: number) => axisTicks(piece.fromNm, piece.toNm, display, Math.max(1, Math.floor(width / widest)));
+  const first = ticks(room('000'));
+  const widest = Math.max(...first.map(({ label }) => room(label)), room('000'));
+  return ticks(widest)
+    .map(({ nm, label }) => ({ nm, text: label, place: placeOf(nm, axis) ?? piece.start }))
+    .filter(({ place, text }) => place + room(text) / 2 < 1.03); // what would stand over the next column
+}
+
+/** Tick labels over a column of strips; the first carries the unit. */
 export function SpectralAxis({ axis, display }: Props) {
+  const [first, second, ...rest] = axis.flatMap((piece) => labelsOf(piece, axis, display));
+  const clear = first && second && second.place - first.place < room(first.text) + room(display.unitLabel) / 2 ? [] : [second];
   return (
     <div className={classes.axis}>
-      {axis.map((piece, p) => {
-        const ticks = axisTicks(piece.fromNm, piece.toNm, display, Math.max(2, Math.floor((piece.end - piece.start) / LABEL_ROOM)));
-        return ticks.map(({ nm, label }, t) => (
-          <span key={nm} style={{ left: at(placeOf(nm, axis) ?? piece.start) }}>
-            {label}
-            {p === 0 && t === 0 && <i>{display.unitLabel}</i>}
-          </span>
-        ));
-      })}
+      {[first, ...clear, ...rest].map(
+        (label) =>
+          label && (
+            <span key={label.nm} style={{ left: at(label.place) }}>
+              {label.text}
+              {label === first && <i>{display.unitLabel}</i>}
+            </span>
+          ),
+      )}
       <Folds axis={axis} />
     </div>
   );

@@ -8,8 +8,12 @@ export interface AxisPiece extends Range {
   readonly end: number;
 }
 
+/** Stretches are compared by the logarithm of the wavelength ratio they span, so that infrared nanometres do not outweigh all others. */
+const span = ({ fromNm, toNm }: Range): number => Math.min(MOST_SPAN, Math.log(toNm / fromNm));
+/** A piece counts no more than this, a factor of e. */
+const MOST_SPAN = 1;
 /** Uncovered stretches longer than this share of what is covered are folded away. */
-const FOLD_ABOVE = 0.15;
+const FOLD_ABOVE = 0.25;
 /** Width of a fold, and room at the ends of each piece so that tick labels do not touch. */
 const FOLD_WIDTH = 0.04;
 const PAD = 0.015;
@@ -17,9 +21,9 @@ const LEAST_WIDTH = 0.1;
 
 /** Ranges joined where they overlap or nearly meet, ascending. */
 function joined(ranges: readonly Range[]): Range[] {
-  const sorted = [...ranges].filter(({ fromNm, toNm }) => toNm > fromNm).sort((a, b) => a.fromNm - b.fromNm);
+  const sorted = [...ranges].filter(({ fromNm, toNm }) => fromNm > 0 && toNm > fromNm).sort((a, b) => a.fromNm - b.fromNm);
   const unions = merge(sorted, 0);
-  const covered = unions.reduce((sum, { fromNm, toNm }) => sum + toNm - fromNm, 0);
+  const covered = unions.reduce((sum, range) => sum + span(range), 0);
   return merge(unions, covered * FOLD_ABOVE);
 }
 
@@ -27,22 +31,23 @@ function merge(sorted: readonly Range[], reach: number): Range[] {
   const out: Range[] = [];
   for (const range of sorted) {
     const last = out.at(-1);
-    if (last && range.fromNm - last.toNm <= reach) out[out.length - 1] = { fromNm: last.fromNm, toNm: Math.max(last.toNm, range.toNm) };
+    if (last && Math.log(range.fromNm / last.toNm) <= reach)
+      out[out.length - 1] = { fromNm: last.fromNm, toNm: Math.max(last.toNm, range.toNm) };
     else out.push(range);
   }
   return out;
 }
 
 /**
- * One axis for all `ranges`: linear within a piece, long uncovered stretches folded. Pieces are as wide as the logarithm of the
- * wavelength ratio they span, so that an infrared spectrum does not crush the others.
+ * One axis for all `ranges`: linear within a piece, long uncovered stretches folded. Pieces share the width by what they span,
+ * up to a factor of e, so that an infrared spectrum does not crush the others.
  */
 export function foldAxis(ranges: readonly Range[]): AxisPiece[] {
   const parts = joined(ranges).map(({ fromNm, toNm }) => {
-    const pad = (toNm - fromNm) * PAD;
-    return { fromNm: fromNm - pad, toNm: toNm + pad };
+    const pad = (toNm / fromNm) ** PAD;
+    return { fromNm: fromNm / pad, toNm: toNm * pad };
   });
-  const weights = parts.map(({ fromNm, toNm }) => Math.log(toNm / fromNm));
+  const weights = parts.map(span);
   const total = weights.reduce((sum, w) => sum + w, 0);
   const floored = weights.map((w) => Math.max(LEAST_WIDTH, w / total));
   const scale = (1 - FOLD_WIDTH * (parts.length - 1)) / floored.reduce((sum, w) => sum + w, 0);

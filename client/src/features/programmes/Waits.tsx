@@ -24,7 +24,7 @@ export function Waits({ programmeId, role, targets }: Props) {
   return (
     <div className={classes.waits}>
       <section>
-        <h2>{roleAllows(role, 'reviewer') ? 'Waiting for your decision' : 'Waiting for people'}</h2>
+        <h2>{roleAllows(role, 'reviewer') ? 'Waiting for you' : 'Waiting for people'}</h2>
         <WaitList programmeId={programmeId} role={role} waits={people} none={nothingWaits(role, targets)} />
       </section>
       <section>

@@ -132,11 +132,10 @@ describe('sending', () => {
     const ends: (() => void)[] = [];
     const started: number[] = [];
     for (const n of [0, 1, 2, 3]) {
-      queue(() => {
+      queue(async () => {
         started.push(n);
-        return new Promise((resolve, reject) => ends.push(n === 0 ? () => reject(new Error('x')) : resolve)).catch(
-          () => undefined,
-        ) as Promise<void>;
+        await new Promise<void>((resolve) => ends.push(resolve));
+        if (n === 0) throw new Error('this one failed');
       });
     }
     expect(started).toEqual([0, 1]);

@@ -40,10 +40,11 @@ export function makeQueue(most: number) {
       const job = waiting.shift();
       if (!job) return;
       running++;
-      void job().finally(() => {
+      const ended = () => {
         running--;
         next();
-      });
+      };
+      job().then(ended, ended);
     }
   };
   return (job: () => Promise<void>) => {
