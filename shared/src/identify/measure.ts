@@ -21,7 +21,7 @@ const BAND_KM_S = 450;
 /**
  * Equivalent widths (fit and direct sum), errors with the continuum's placement, and flags.
  * Direct sum after Vollmann & Eversberg 2006 (AN 327, 862): pixel noise plus continuum error times the range.
- * @param others components sharing the range: their light is divided out of the direct sum
+ * @param others components sharing the range: a dip's direct sum has their light divided out, a peak's has it taken off
  * @param continuumSigma relative error of the continuum's placement
  */
 export function measure(
@@ -49,8 +49,9 @@ export function measure(
       lost++;
       continue;
     }
-    const clear = Math.max(dips[i - from]!, 0.05);
-    direct += step * (1 - (data.flux[i]! - peaks[i - from]!) / clear);
+    const left = data.flux[i]! - peaks[i - from]!;
+    const clear = c.kind === 'dip' ? Math.max(dips[i - from]!, 0.05) : 1;
+    direct += step * (c.kind === 'dip' ? 1 - left / clear : dips[i - from]! - left);
     variance += (step / clear) ** 2 / w;
     weights += w;
   }
