@@ -1,4 +1,4 @@
-import { addComponent, fitBlend, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
+import { addComponent, fitBlend, indexAt, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
 
 /** Narrowest and widest profile allowed at a wavelength. */
 export type LimitsAt = (wavelength: number) => BlendLimits;
@@ -9,6 +9,7 @@ export class LineModel {
   /** product of the dips plus sum of the peaks, in units of the continuum */
   readonly value: Float64Array;
   readonly #peaks: Float64Array;
+  #neighbours: Neighbours | null = null;
 
   constructor(
     readonly data: NormalisedSamples,
@@ -44,56 +45,61 @@ export class LineModel {
       const near = new Neighbours(this.components);
       for (const blend of blends) {
         const middle = blend[blend.length >> 1]!;
-        fitBlend(this.data, blend, near.of(blend), this.limitsAt(middle.centre), undefined, precision);
+        fitBlend(this.data, blend, near.around(blend), this.limitsAt(middle.centre), undefined, precision);
       }
     }
     this.components.sort((a, b) => a.centre - b.centre);
   }
 
+  /** To be called after a component changed its shape, and with it its reach, in place. */
+  reshaped(): void {
+    this.#neighbours = null;
+  }
+
   /** Components other than those of the blend whose profiles reach into its range. */
   overlapping(blend: readonly Component[]): Component[] {
-    return new Neighbours(this.components).of(blend);
+    if (this.#neighbours?.of !== this.components || this.#neighbours.size !== this.components.length) this.#neighbours = new Neighbours(this.components);
+    return this.#neighbours.around(blend);
   }
 }
 
 const widest = (blend: readonly Component[]): number => Math.max(...blend.map((c) => c.fwhm));
 
-/** Finds what overlaps a blend without looking at every component. */
+/**
+ * Finds what overlaps a blend without looking at every component. Made for one list of components; these may move a little afterwards,
+ * which a margin allows for, but a component that comes or goes asks for a new one.
+ */
 class Neighbours {
+  readonly size: number;
   readonly #narrow: Component[];
+  readonly #centres: Float64Array;
   readonly #broad: Component[];
-  readonly #narrowReach: number;
+  readonly #reach: number;
 
-  constructor(components: readonly Component[]) {
-    const sorted = [...components].sort((a, b) => a.centre - b.centre);
-    const reaches = sorted.map((c) => c.reach).sort((a, b) => a - b);
-    this.#narrowReach = reaches[Math.floor(reaches.length * 0.8)] ?? 0;
-    this.#narrow = sorted.filter((c) => c.reach <= this.#narrowReach);
-    this.#broad = sorted.filter((c) => c.reach > this.#narrowReach);
+  constructor(readonly of: readonly Component[]) {
+    this.size = of.length;
+    const reaches = of.map((c) => c.reach).sort((a, b) => a - b);
+    const limit = reaches[Math.floor(reaches.length * 0.8)] ?? 0;
+    this.#reach = 1.5 * limit;
+    this.#narrow = of.filter((c) => c.reach <= limit).sort((a, b) => a.centre - b.centre);
+    this.#centres = Float64Array.from(this.#narrow, (c) => c.centre);
+    this.#broad = of.filter((c) => c.reach > limit);
   }
 
-  of(blend: readonly Component[]): Component[] {
-    const from = Math.min(...blend.map((c) => c.centre - c.reach));
-    const to = Math.max(...blend.map((c) => c.centre + c.reach));
-    const out = this.#broad.filter((c) => c.centre + c.reach > from && c.centre - c.reach < to && !blend.includes(c));
-    let i = lowerBound(this.#narrow, from - this.#narrowReach);
-    for (; i < this.#narrow.length && this.#narrow[i]!.centre < to + this.#narrowReach; i++) {
-      const c = this.#narrow[i]!;
-      if (!blend.includes(c)) out.push(c);
+  around(blend: readonly Component[]): Component[] {
+    let from = Infinity;
+    let to = -Infinity;
+    for (const c of blend) {
+      from = Math.min(from, c.centre - c.reach);
+      to = Math.max(to, c.centre + c.reach);
+    }
+    const reaches = (c: Component): boolean => c.centre + c.reach > from && c.centre - c.reach < to && !blend.includes(c);
+    const out = this.#broad.filter(reaches);
+    for (let i = indexAt(this.#centres, from - this.#reach); i < this.#narrow.length && this.#centres[i]! < to + this.#reach; i++) {
+      if (reaches(this.#narrow[i]!)) out.push(this.#narrow[i]!);
     }
     return out;
   }
-}
-
-function lowerBound(sorted: readonly Component[], centre: number): number {
-  let low = 0;
-  let high = sorted.length;
-  while (low < high) {
-    const mid = (low + high) >> 1;
-    if (sorted[mid]!.centre < centre) low = mid + 1;
-    else high = mid;
-  }
-  return low;
 }
 
 const LARGEST_BLEND = 7; // parameters fitted together; longer chains are cut at their widest gap and settled by sweeps
@@ -128,9 +134,11 @@ function cut(chain: Component[], out: Component[][]): void {
     if (chain.length) out.push(chain);
     return;
   }
-  let best = 1;
+  // within the middle half, so that long chains fall apart evenly
+  const quarter = Math.max(2, chain.length >> 2);
+  let best = quarter;
   let gap = -Infinity;
-  for (let i = Math.min(2, chain.length - 1); i <= chain.length - 2; i++) {
+  for (let i = quarter; i <= chain.length - quarter; i++) {
     const d = (chain[i]!.centre - chain[i - 1]!.centre) / (chain[i]!.fwhm + chain[i - 1]!.fwhm);
     if (d > gap) [gap, best] = [d, i];
   }

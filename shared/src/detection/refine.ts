@@ -162,6 +162,7 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
       if (chi2 < bestChi2) [best, bestChi2] = [trial, chi2];
     }
     if (best) Object.assign(c, best);
+    if (c.damped) model.reshaped();
   }
 }
 
@@ -209,6 +210,7 @@ export function gatherDamped(model: LineModel, threshold: number, tolerant: Norm
     if (alone > now + threshold * threshold * crowd.length) continue;
     model.remove(new Set(crowd));
     Object.assign(c, one);
+    model.reshaped();
   }
 }
 
