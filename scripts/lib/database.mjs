@@ -5,7 +5,7 @@ import { runForOutput } from './supervisor.mjs';
 
 /**
  * The database of `npm start`, its tables up to date: the one DATABASE_URL names, else the private one of this checkout.
- * @returns {Promise<{ url: string, accounts: string, close(): Promise<void> }>} `accounts`: the demonstration's, one a line; '' without it
+ * @returns {Promise<{ url: string, accounts: Promise<string>, close(): Promise<void> }>} `accounts`: the demonstration's, one a line; '' without it
  */
 export async function openDatabase() {
   const given = process.env.DATABASE_URL;
@@ -15,8 +15,10 @@ export async function openDatabase() {
   };
   try {
     say('bringing the tables up to date');
-    await commandDatabase(url, 'migrate', 'seed-if-empty');
-    return { url, accounts: await commandDatabase(url, 'accounts'), close };
+    await commandDatabase(url, 'migrate', 'seed');
+    // asked for while the rest starts; a start that is interrupted meanwhile has nobody to show them to
+    const accounts = commandDatabase(url, 'accounts').catch(() => '');
+    return { url, accounts, close };
   } catch (error) {
     await close();
     throw error;

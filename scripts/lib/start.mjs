@@ -46,7 +46,7 @@ async function serve({ url, accounts }, port, interruption) {
 
   const address = `http://127.0.0.1:${port}`;
   const first = await Promise.race([death, interruption.interrupted, isReady(address, interruption)]);
-  if (first === 'ready') greet(address, accounts);
+  if (first === 'ready') greet(address, await accounts);
   const end = first === 'ready' ? await Promise.race([death, interruption.interrupted]) : first;
   if (interruption.was()) return;
   if (end === null) throw new Complaint(`The API did not get ready within a minute at ${address}/api/health/ready.`);

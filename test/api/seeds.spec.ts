@@ -26,7 +26,7 @@ test('fills an empty database with the demonstration, once', async () => {
     return Object.fromEntries(tables.map((table, i) => [table, Number(found[i]![0]!.n)]));
   };
   expect(await counts()).toEqual({ users: 5, programmes: 1, memberships: 4, targets: 6, spectra: 6, analyses: 6, line_lists: 1 });
-  expect(await command(api.database.url, 'seed-if-empty', 'seed')).not.toContain('demonstration installed');
+  expect(await command(api.database.url, 'seed', 'seed')).not.toContain('demonstration installed');
   expect(await counts()).toMatchObject({ users: 5, spectra: 6, line_lists: 1 });
 });
 

@@ -29,7 +29,7 @@ export async function startFleet(): Promise<Fleet> {
     await database.drop();
   };
   try {
-    const filled = run(['--import', 'tsx', '--conditions=foreveil-source', 'scripts/db.ts', 'migrate', 'seed-if-empty'], env, log);
+    const filled = run(['--import', 'tsx', '--conditions=foreveil-source', 'scripts/db.ts', 'migrate', 'seed'], env, log);
     const [status] = (await once(filled, 'exit')) as [number];
     if (status !== 0) throw new Error(`the database could not be filled:\n${log.join('')}`);
     const api = run(['server/dist/main.js'], env, log);
