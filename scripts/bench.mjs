@@ -42,7 +42,9 @@ function report(label, spectrum, repeats = 5) {
   const total = Object.values(runs[0].steps).reduce((a, b) => a + b, 0);
   const shares = Object.entries(runs[0].steps).map(([s, t]) => `${s} ${((100 * t) / total).toFixed(0)} %`);
   const wall = median(runs.map((r) => r.wall));
-  console.log(`${label.padEnd(34)} ${ms.toFixed(0).padStart(6)} ms cpu ${wall.toFixed(0).padStart(6)} ms wall ${String(runs[0].features).padStart(5)} features   ${shares.join(', ')}`);
+  console.log(
+    `${label.padEnd(34)} ${ms.toFixed(0).padStart(6)} ms cpu ${wall.toFixed(0).padStart(6)} ms wall ${String(runs[0].features).padStart(5)} features   ${shares.join(', ')}`,
+  );
   return ms;
 }
 
@@ -51,7 +53,9 @@ const warm = simulate(10_000, 60, list.lines);
 for (let k = 0; k < 12; k++) timed(warm);
 
 const sizes = [10_000, 30_000, 100_000, 300_000];
-const times = sizes.map((n) => report(`simulated, ${n} pixels, ${Math.round(n / 200)} lines`, simulate(n, Math.round(n / 200), list.lines), n > 100_000 ? 3 : 5));
+const times = sizes.map((n) =>
+  report(`simulated, ${n} pixels, ${Math.round(n / 200)} lines`, simulate(n, Math.round(n / 200), list.lines), n > 100_000 ? 3 : 5),
+);
 const growth = Math.log(times.at(-1) / times[0]) / Math.log(sizes.at(-1) / sizes[0]);
 console.log(`growth with pixels and lines together: exponent ${growth.toFixed(2)}`);
 
