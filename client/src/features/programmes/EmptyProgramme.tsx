@@ -38,6 +38,7 @@ function FirstFiles({ programmeId }: { programmeId: string }) {
         onDrop={take}
         openRef={choose}
         activateOnClick={false}
+        tabIndex={-1}
         enablePointerEvents
         className={classes.firstDrop}
         inputProps={{ 'aria-label': 'Spectrum files' }}

@@ -108,23 +108,43 @@ function useFilesHandedOver(add: (files: readonly File[]) => void) {
   }, []);
 }
 
+const TAKES = 'FITS tables and images, CSV, plain text, gzip; to 200 MB each.';
+
 function FileDrop({ empty, onFiles }: { empty: boolean; onFiles: (files: File[]) => void }) {
+  const choose = useRef<() => void>(null);
+  const open = () => choose.current?.();
   return (
     <div className={classes.dropFrame}>
       <Dropzone
         onDrop={onFiles}
         className={classes.drop}
         data-empty={empty || undefined}
-        aria-label="Drop spectrum files here, or choose them"
+        openRef={choose}
+        activateOnClick={false}
+        enablePointerEvents
+        tabIndex={-1}
         inputProps={{ 'aria-label': 'Spectrum files' }}
       >
-        <div className={classes.dropText}>
-          <IconDownload size={18} aria-hidden />
-          <span>
-            Drop {empty ? 'reduced spectra' : 'more files'} here, or <u>choose</u>. FITS tables and images, CSV, plain text, gzip; to 200 MB
-            each.
-          </span>
-        </div>
+        {empty ? (
+          <div className={classes.firstDrop}>
+            <p>Drop reduced spectra here, one or many. {TAKES}</p>
+            <p>Each is read on this computer first: you see the columns, the medium and the frame before anything is sent.</p>
+            <Button variant="filled" onClick={open}>
+              Choose files
+            </Button>
+          </div>
+        ) : (
+          <div className={classes.dropText}>
+            <IconDownload size={18} aria-hidden />
+            <span>
+              Drop more files here, or{' '}
+              <button type="button" className={classes.choose} onClick={open}>
+                choose
+              </button>
+              . {TAKES}
+            </span>
+          </div>
+        )}
       </Dropzone>
     </div>
   );
