@@ -9,11 +9,15 @@ const LOG_SAHA = 15.683890127356488;
 
 export const speciesName = (element: string, stage: number): string => `${element} ${STAGES[stage - 1] ?? '?'}`;
 
+/** Bare nuclei: they have one state, and no levels in the tables. */
+const BARE: ReadonlySet<string> = new Set(['H II', 'He III', 'Li IV', 'Be V', 'B VI']);
+
 /**
  * Partition function of a species, linear in ln T between tabulated temperatures, the end values held outside 3000-30000 K.
  * @returns NaN when the species has none
  */
 export function partitionFunction(species: string, temperatureK: number): number {
+  if (BARE.has(species)) return 1;
   const row = SPECIES[species];
   if (!row || row.length < 2) return NaN;
   const t = PARTITION_TEMPERATURES;
