@@ -70,6 +70,9 @@ export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSe
   return { ...result, cautions: cautionsOf(result) };
 }
 
+/** Scatter below this share of the continuum tells of smoothing or resampling, not of a signal to noise above 400 a sample. */
+const SMOOTHEST = 1 / 400;
+
 /** Flux over continuum; samples that must not count get weight 0. */
 function normalise(spectrum: Spectrum, continuum: ContinuumFit, noise: NoiseModel): NormalisedSamples {
   const n = spectrum.flux.length;
@@ -77,7 +80,7 @@ function normalise(spectrum: Spectrum, continuum: ContinuumFit, noise: NoiseMode
   const weight = new Float64Array(n);
   for (let i = 0; i < n; i++) {
     const level = continuum.level[i]!;
-    const sigma = noise.sigma[i]!;
+    const sigma = noise.how === 'estimated' ? Math.max(noise.sigma[i]!, SMOOTHEST * level) : noise.sigma[i]!;
     if (spectrum.bad[i] || !(sigma > 0) || !(level > 0) || !Number.isFinite(spectrum.flux[i]!)) continue;
     flux[i] = spectrum.flux[i]! / level;
     weight[i] = (level / sigma) ** 2;

@@ -23,6 +23,8 @@ export interface DetectionInput {
   readonly falseFeatures: number;
   /** relative 1-sigma error of the continuum's placement */
   readonly continuumSigma: number;
+  /** one round of plain profiles, enough to see how wide lines are */
+  readonly quick?: boolean;
 }
 
 export interface Detection {
@@ -56,6 +58,7 @@ export function detect(input: DetectionInput): Detection {
 
   let rotation: Rotation | null = null;
   for (let round = 0; round < ROUNDS; round++) {
+    if (input.quick && round > 0) return { model, threshold };
     const zeroMean = round < ROUNDS - 2;
     const residual = residualOf(model, input.continuumSigma);
     const excesses = findExcesses(residual, { instrumentSigmaPx: sigmaPx, widestNm, zeroMean, threshold, correlation: input.correlation });
@@ -67,7 +70,7 @@ export function detect(input: DetectionInput): Detection {
     model.add(fresh);
     model.refit(2, round === 0 ? undefined : nearTo(model, fresh), ROUGH);
     pruneWeak(model, threshold * 0.8);
-    if (round === 0) {
+    if (round === 0 && !input.quick) {
       rotation = findRotation(model, resolvingPower);
       if (rotation) applyRotation(model.components, rotation);
       trySpecialShapes(model, resolvingPower, rotation);

@@ -15,7 +15,7 @@ const ENOUGH = 5;
 export function resolvingPowerOf(spectrum: Spectrum, data: NormalisedSamples): Resolution {
   if (spectrum.resolvingPower !== null && spectrum.resolvingPower > 0) return { value: spectrum.resolvingPower, how: 'stated' };
   const bySampling = samplingPower(data.wavelength) / SAMPLES_PER_ELEMENT;
-  const trial = detect({ data: part(data), resolvingPower: bySampling, correlation: [1], falseFeatures: 0.5, continuumSigma: 1e-3 });
+  const trial = detect({ data: part(data), resolvingPower: bySampling, correlation: [1], falseFeatures: 0.5, continuumSigma: 1e-3, quick: true });
   const widths = trial.model.components
     .filter((c) => c.amplitude / c.sigmaAmplitude > 12 && c.sigmaLogFwhm < 0.15)
     .map((c) => c.fwhm / c.centre)
@@ -24,7 +24,7 @@ export function resolvingPowerOf(spectrum: Spectrum, data: NormalisedSamples): R
   return { value: Math.min(1 / widths[Math.floor(widths.length * 0.15)]!, samplingPower(data.wavelength) / 1.5), how: 'estimated' };
 }
 
-const SAMPLES = 12_000; // enough lines to tell the instrument's width from
+const SAMPLES = 8_000; // enough lines to tell the instrument's width from
 
 /** The middle of long spectra: the widths of lines are much the same elsewhere. */
 function part(data: NormalisedSamples): NormalisedSamples {

@@ -116,6 +116,8 @@ export interface Feature {
   readonly depthSigma: number;
   /** shape of the fitted profile: for drawing */
   readonly shape: 'gaussian' | 'voigt' | 'rotation' | 'band';
+  /** of a 'voigt' shape, for drawing: central optical depth, damping in Doppler widths, Doppler width in nm */
+  readonly damped?: { readonly tau: number; readonly a: number; readonly dopplerNm: number };
   /** matched-filter significance, sigma */
   readonly significance: number;
   /** local continuum signal to noise per pixel */

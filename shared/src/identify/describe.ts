@@ -54,6 +54,7 @@ function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, cove
     depth: c.kind === 'dip' ? c.amplitude : -c.amplitude,
     depthSigma: c.sigmaAmplitude,
     shape: c.damped ? 'voigt' : c.core.name === 'rotation' ? 'rotation' : 'gaussian',
+    ...(c.damped && { damped: { ...c.damped, dopplerNm: c.scale } }),
     significance: m.significance,
     snr: m.snr,
     flags: m.flags,

@@ -15,6 +15,7 @@ export interface BlendFit {
 }
 
 const MAX_ITERATIONS = 14;
+const ROUGH_ITERATIONS = 7;
 const FINE = 1e-3;
 /** Chi-square that a step must gain for the fit to go on, while features are still being found. */
 export const ROUGH = 0.02;
@@ -118,7 +119,8 @@ export function fitBlend(
   let damping = 1e-3;
   let chi2 = accumulate(data, slots, parameters, from, to);
   let end: BlendFit['end'] = 'iteration_limit';
-  for (let iteration = 0; iteration < MAX_ITERATIONS; iteration++) {
+  const iterations = precision > FINE ? ROUGH_ITERATIONS : MAX_ITERATIONS;
+  for (let iteration = 0; iteration < iterations; iteration++) {
     const kept = free.map((c) => ({
       amplitude: c.amplitude,
       centre: c.centre,
@@ -146,7 +148,7 @@ export function fitBlend(
       const gain = chi2 - next;
       chi2 = next;
       damping = Math.max(damping * 0.2, 1e-9);
-      if (gain < precision + 1e-6 * chi2) {
+      if (gain < precision + (precision > FINE ? 3e-4 : 1e-6) * chi2) {
         end = 'converged';
         break;
       }
