@@ -44,7 +44,11 @@ export function UploadPage() {
         title={titleOf(entries)}
         tab={`Add spectra · ${programme.name}`}
         simulated={programme.simulated}
-        sub="Correct what was read wrongly; the original bytes are kept as they are"
+        sub={
+          page
+            ? `They go to ${page.name} unless you name another target`
+            : 'Correct what was read wrongly; the original bytes are kept as they are'
+        }
         facts={standingFacts(entries)}
       />
       <FileDrop empty={!entries.length} onFiles={add} />

@@ -87,12 +87,18 @@ export function useUploads({ programmeId, targets, page }: Options) {
 /** One reader while the page is shown, started with the first file. */
 function useReader(): () => SpectrumReader {
   const current = useRef<SpectrumReader | null>(null);
-  useEffect(
-    () => () => {
-      current.current?.close();
-      current.current = null;
-    },
-    [],
-  );
+  const shown = useRef(false);
+  useEffect(() => {
+    shown.current = true;
+    return () => {
+      shown.current = false;
+      // React's strict mode takes the page away and puts it back at once: then the reader stays
+      queueMicrotask(() => {
+        if (shown.current) return;
+        current.current?.close();
+        current.current = null;
+      });
+    };
+  }, []);
   return useCallback(() => (current.current ??= startReader()), []);
 }
