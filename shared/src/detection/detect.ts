@@ -36,6 +36,7 @@ const FWHM_PER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
 const ROUNDS = 5;
 /** Relative misfit of profiles allowed for: a few per cent of the light that the model takes or adds beside strong neighbours. */
 const PROFILE_FLOOR = 0.02;
+const WIDEST_ELEMENTS = 6; // at low resolution hydrogen lines are a few resolution elements wide, whatever that is in nm
 const PEAK_PLACEMENT = 0.0025;
 const DIP_PLACEMENT = 0.0005;
 const WIDEST_NM = 2.4; // broad diffuse bands; wider structure belongs to the continuum
@@ -46,7 +47,7 @@ export function detect(input: DetectionInput): Detection {
   const n = data.wavelength.length;
   const sigmaPx = instrumentSigmaPx(data.wavelength, resolvingPower);
   const range = data.wavelength[n - 1]! - data.wavelength[0]!;
-  const widestNm = Math.min(WIDEST_NM, range / 8);
+  const widestNm = Math.min(Math.max(WIDEST_NM, (WIDEST_ELEMENTS * data.wavelength[n >> 1]!) / resolvingPower), range / 8);
   const limits = (at: number): BlendLimits => ({
     narrowest: (0.5 * at) / resolvingPower,
     widest: Math.max(widestNm * 1.3, (2 * at) / resolvingPower),

@@ -41,9 +41,9 @@ export function findStar(scene: Scene, lines: readonly Line[], hint: Temperature
   const dips = features.filter((f) => f.kind === 'dip' && !f.flags.includes('cosmic'));
   if (dips.length < MEMBERS || lines.length === 0) return null;
   const best = bestPhotosphere(dips, lines, coverage, hint, rangeV);
-  if (!best || best.significance < SIGNIFICANT) return null;
+  if (!best || best.significance < SIGNIFICANT) return hydrogenStar(dips, lines, coverage, hint, rangeV);
   const alone = aloneMatches(dips, lines, best.index, best.velocity, coverage);
-  if (alone.length < MEMBERS) return null;
+  if (alone.length < MEMBERS) return hydrogenStar(dips, lines, coverage, hint, rangeV);
   const { velocity, sigma, fwhmV } = refine(alone);
   const scale = fitScale(aloneMatches(dips, lines, best.index, velocity, coverage, fwhmV));
   let star = starModel(lines, best, velocity, sigma, fwhmV, scale, coverage);
@@ -53,6 +53,53 @@ export function findStar(scene: Scene, lines: readonly Line[], hint: Temperature
     star = starModel(lines, best, moved.velocity, moved.sigma, fwhmV, scale, coverage);
   }
   return star;
+}
+
+const HYDROGEN_MEMBERS = 3;
+const HYDROGEN_TEMPERATURE = 9500; // K, where hydrogen is strongest: assumed when the continuum does not tell
+const HYDROGEN_KNEE = -3.4; // log10 W/lambda at which hydrogen lines stop growing in proportion
+
+/**
+ * A star by its hydrogen lines alone, as low resolution shows hot and A-type stars: at least three broad dips at one velocity, and most of
+ * the first lines of the series that are covered.
+ */
+function hydrogenStar(
+  dips: readonly FeatureView[],
+  lines: readonly Line[],
+  coverage: Coverage,
+  hint: TemperatureHint | null,
+  rangeV: number,
+): SystemModel | null {
+  const series = lines.filter(
+    (l) => l.element === 'H' && l.wavelengthNm > coverage.fromNm && l.wavelengthNm < coverage.toNm && (l.oscillatorStrength ?? 0) > 0.01,
+  );
+  const first = series.filter((l) => (l.oscillatorStrength ?? 0) > 0.02);
+  if (first.length < HYDROGEN_MEMBERS) return null;
+  const step = 0.1 * coverage.elementV;
+  let best: { velocity: number; members: FeatureView[]; score: number } | null = null;
+  for (let velocity = -rangeV; velocity <= rangeV; velocity += step) {
+    const factor = dopplerFactor(velocity);
+    const members: FeatureView[] = [];
+    let score = 0;
+    for (const line of first) {
+      const at = line.wavelengthNm * factor;
+      const f = dips.find((d) => Math.abs(d.wavelength - at) < 0.3 * d.fwhmNm && d.fwhmV > 1.2 * coverage.elementV);
+      if (!f || members.includes(f)) continue;
+      members.push(f);
+      score += Math.sqrt(f.significance) * (1 - (velocityOf(f.wavelength, at) / (0.3 * f.fwhmV)) ** 2);
+    }
+    if (!best || score > best.score) best = { velocity, members, score };
+  }
+  if (!best || best.members.length < HYDROGEN_MEMBERS || best.members.length < 0.6 * first.length) return null;
+  const temperatureK = hint?.temperatureK ?? HYDROGEN_TEMPERATURE;
+  const index = photosphericIndex(lines, temperatureK, 14);
+  const strongest = lines.reduce((top, l, k) => (l.element === 'H' && index[k]! > top ? index[k]! : top), -Infinity);
+  const measured = best.members.map((f) => f.logW - Math.log10(f.wavelength)).sort((a, b) => a - b);
+  const shift = measured[measured.length - 1]! + 0.6 - strongest;
+  const fwhmV = Math.min(...best.members.map((f) => f.fwhmV));
+  const sigma = coverage.elementV * 0.2;
+  const photosphere: Photosphere = { temperatureK, logNe: 14, velocity: best.velocity, index, height: 0, significance: best.score };
+  return starModel(lines, photosphere, best.velocity, sigma, fwhmV, { shift, knee: HYDROGEN_KNEE }, coverage);
 }
 
 function bestPhotosphere(
