@@ -207,15 +207,15 @@ export function sumUp(c: Contender, parts: readonly EvidencePart[], companions: 
   const words: Record<EvidencePart['part'], string> = {
     position: 'its place',
     strength: 'its strength',
-    companions: 'its companions',
+    companions: `the other ${c.expected.line.species} lines`,
     width: 'its width',
-    chance: 'the rivals',
+    chance: 'rival readings',
   };
-  const sorted = [...parts].sort((a, b) => b.logOdds - a.logOdds);
-  const best = sorted[0]!;
-  const worst = sorted[sorted.length - 1]!;
-  const against = worst.logOdds < -0.7 ? `, against it ${words[worst.part]}` : '';
+  const own = parts.filter((p) => p.part !== 'chance').sort((a, b) => b.logOdds - a.logOdds);
+  const best = own[0]!;
+  const worst = [...parts].sort((a, b) => a.logOdds - b.logOdds)[0]!;
+  const against = worst.logOdds < -0.7 ? `; against it ${words[worst.part]}` : '';
   const open = companions.find((x) => x.outcome === 'not_covered');
   const settle = probability < 0.9 && open ? ` ${open.species} ${open.restNm.toFixed(2)} nm, not covered, would settle it.` : '';
-  return `For ${c.expected.line.species} in ${placeOf(c)} speaks ${words[best.part]} most${against}.${settle}`;
+  return `${c.expected.line.species} in ${placeOf(c)}: most for it ${words[best.part]}${against}.${settle}`;
 }
