@@ -99,7 +99,9 @@ export function CurveStack(props: CurveStackProps) {
             {narrow ? display.unitLabel : display.shortLabel}
           </div>
           <Hair {...props} left={gutter} width={plotWidth} height={height - AXIS_HEIGHT} />
-          {props.legend && !narrow && <Legend {...props} style={{ left: gutter + 12, top: curveBottom - 24 }} />}
+          {props.legend && !narrow && (
+            <Legend {...props} style={emission ? { right: 12, top: curveTop + 6 } : { left: gutter + 12, top: curveBottom - 24 }} />
+          )}
         </>
       )}
     </div>

@@ -21,6 +21,8 @@ const LANES: readonly { family: MarkFamily; word: string }[] = [
   { family: 'telluric', word: 'air' },
 ];
 const STRIP_HEIGHT = 30;
+/** Beyond these the strip is hatched far enough to say so in words. */
+const [UV_NM, IR_NM] = [372, 718];
 const NONE: (number | null)[] = [];
 const CURVE_HEIGHT = 34;
 
@@ -68,6 +70,16 @@ export function Overview({ data, features, view, display, emission, preview, lab
         emission={emission}
         label={label}
       />
+      {whole.fromNm < UV_NM && (
+        <span className={classes.beyond} style={{ left: 4, height: STRIP_HEIGHT }} aria-hidden="true">
+          <b>UV</b>
+        </span>
+      )}
+      {whole.toNm > IR_NM && (
+        <span className={classes.beyond} style={{ right: 4, height: STRIP_HEIGHT }} aria-hidden="true">
+          <b>IR</b>
+        </span>
+      )}
       <canvas ref={canvas} className={classes.overviewCurve} style={{ top: lanesTop, height: drawnHeight }} aria-hidden="true" />
       <div style={{ position: 'absolute', top: lanesTop + drawnHeight }}>
         {width > 0 && <AxisTicks range={whole} width={width} display={display} spacingPx={82} />}

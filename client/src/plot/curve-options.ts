@@ -23,6 +23,8 @@ export interface CurveScene {
 export const STEP_WIDTH = 1.15;
 export const DENSE_WIDTH = 0.7;
 
+const HALF_LABEL_PX = 7;
+
 export const FONT = "12px 'Inter Variable', sans-serif";
 
 /** Plot area and scales of a uPlot in device pixels. */
@@ -73,7 +75,11 @@ export function curveOptions(
         stroke: () => scene.palette['ink-3'],
         ticks: { show: false },
         grid: { stroke: () => scene.palette.line, width: 1, dash: [1, 3] },
-        splits: (u, _axis, low, high) => valueTicks(low, high, u.bbox.height / uPlot.pxRatio),
+        splits: (u, _axis, low, high) => {
+          const height = u.bbox.height / uPlot.pxRatio;
+          const highest = high - ((high - low) * HALF_LABEL_PX) / height; // above, the label would be cut
+          return valueTicks(low, high, height).filter((tick) => tick <= highest);
+        },
         values: (_u, splits) => valueLabels(splits, scene.mode === 'flux' ? scene.data.fluxExponent : 0),
       },
     ],

@@ -1,13 +1,14 @@
 import type { CurveData } from './curve-data.js';
 import { lowerBound } from './pyramid.js';
 import { smoothPath, type Frame } from './curve-paths.js';
+import { drawnProfile } from './profile.js';
 import type { Palette } from './palette.js';
 import type { PlotFeature } from './plot-feature.js';
 
 /** A profile narrower than this many device pixels would only smear the curve. */
 const LEAST_WIDTH_PX = 3;
-/** Half the stretch on which a fit is drawn, in FWHM. */
-const HALF_STRETCH = 1.5;
+/** No profile is drawn on more than this many FWHM to either side. */
+const WIDEST_STRETCH = 4;
 
 const productOf = new WeakMap<CurveData, { flux: Float32Array; normalised: Float32Array }>();
 /** The fit on the value axis: continuum times profiles, or the profiles alone. */
@@ -24,7 +25,8 @@ function fitValues(data: CurveData, normalised: boolean): Float32Array | null {
 
 /**
  * The fitted profiles, each in the colour of the family that claims it.
- * @param features ascending in wavelength; between two neighbours the nearer one draws
+ * All follow the same sum of profiles; a narrow line is drawn over the broad one it lies in.
+ * @param features ascending in wavelength
  */
 export function drawFits(
   context: CanvasRenderingContext2D,
@@ -46,15 +48,15 @@ export function drawFits(
   context.lineWidth = widthPx;
   context.lineJoin = 'round';
   const widest = features.reduce((most, feature) => Math.max(most, feature.fwhmNm), 0);
-  const end = lowerBound(centres, f.toNm + HALF_STRETCH * widest);
-  for (let i = lowerBound(centres, f.fromNm - HALF_STRETCH * widest); i < end; i++) {
-    const feature = features[i]!;
-    if (feature.fwhmNm * pxPerNm < LEAST_WIDTH_PX || feature.state === 'rejected') continue;
-    const half = HALF_STRETCH * feature.fwhmNm;
-    const from = Math.max(feature.wavelengthNm - half, i > 0 ? (centres[i - 1]! + feature.wavelengthNm) / 2 : -Infinity);
-    const to = Math.min(feature.wavelengthNm + half, i < features.length - 1 ? (centres[i + 1]! + feature.wavelengthNm) / 2 : Infinity);
+  const end = lowerBound(centres, f.toNm + WIDEST_STRETCH * widest);
+  const near = features
+    .slice(lowerBound(centres, f.fromNm - WIDEST_STRETCH * widest), end)
+    .filter((feature) => feature.fwhmNm * pxPerNm >= LEAST_WIDTH_PX && feature.state !== 'rejected')
+    .sort((a, b) => b.fwhmNm - a.fwhmNm);
+  for (const feature of near) {
+    const { stretchNm } = drawnProfile(feature);
     const path = new Path2D();
-    smoothPath(path, f, data.wavelength, values, from, to);
+    smoothPath(path, f, data.wavelength, values, feature.wavelengthNm - stretchNm, feature.wavelengthNm + stretchNm);
     context.strokeStyle = palette[feature.family];
     context.stroke(path);
   }

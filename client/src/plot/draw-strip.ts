@@ -32,7 +32,14 @@ function unseen(value: number, emission: boolean, luminance: number, palette: Pa
   const dark = palette.scheme === 'dark';
   const ground = hexComponents(palette.ground);
   const deepest: Components = dark ? [ground[0] * 0.55, ground[1] * 0.55, ground[2] * 0.55] : [70, 66, 62];
-  const strength = Math.min(1, Math.max(0.1, Math.min(1.15, emission ? luminance * 1.4 : Math.max(0, value)) ** 2.2));
+  if (emission) {
+    const plain = mixed(ground, dark ? hexComponents(palette.hatch) : [24, 23, 22], dark ? 0.25 : 0.9);
+    return {
+      plain: mixed(plain, hexComponents(palette.hatch), luminance),
+      stroked: mixed(plain, hexComponents(palette['hatch-ink']), 0.35 + 0.65 * luminance),
+    };
+  }
+  const strength = Math.min(1, Math.max(0.1, Math.min(1.15, Math.max(0, value)) ** 2.2));
   const plain = mixed(deepest, hexComponents(palette.hatch), strength);
   return { plain, stroked: mixed(plain, hexComponents(palette['hatch-ink']), (dark ? 0.8 : 0.75) * strength) };
 }

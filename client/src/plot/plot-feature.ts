@@ -2,7 +2,10 @@ import type { Feature, ReviewState } from '@foreveil/shared';
 import type { MarkFamily } from './marks.js';
 
 /** A feature as the panels draw it. */
-export interface PlotFeature extends Pick<Feature, 'index' | 'kind' | 'wavelengthNm' | 'fwhmNm' | 'depth' | 'equivalentWidthNm'> {
+export interface PlotFeature extends Pick<
+  Feature,
+  'index' | 'kind' | 'wavelengthNm' | 'fwhmNm' | 'depth' | 'equivalentWidthNm' | 'damped'
+> {
   readonly family: MarkFamily;
   readonly state: ReviewState;
   /** the staff it sits on */

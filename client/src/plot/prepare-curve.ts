@@ -23,7 +23,10 @@ export function transferables({ wavelength, bad, sigma, flux, fitted }: CurveDat
 
 /** Only what profiles are drawn from: the arguments for the readings need not travel. */
 const profilesOf = (features: readonly ProfileNumbers[]): ProfileNumbers[] =>
-  features.map(({ wavelengthNm, fwhmNm, depth, equivalentWidthNm, kind }) => ({ wavelengthNm, fwhmNm, depth, equivalentWidthNm, kind }));
+  features.map(({ wavelengthNm, fwhmNm, depth, equivalentWidthNm, kind, damped }) => ({
+    ...{ wavelengthNm, fwhmNm, depth, equivalentWidthNm, kind },
+    ...(damped && { damped }),
+  }));
 
 /** `buildCurveData` without blocking the page. Rejects when aborted or when the worker fails. */
 export function prepareCurve({ samples, continuum, features }: CurveRequest, signal?: AbortSignal): Promise<CurveData> {

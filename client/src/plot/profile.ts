@@ -1,7 +1,7 @@
-import type { Feature } from '@foreveil/shared';
+import { dampedTable, dampedValue, type Feature } from '@foreveil/shared';
 
 /** The measurements a fitted profile can be drawn from. */
-export type ProfileNumbers = Pick<Feature, 'wavelengthNm' | 'fwhmNm' | 'depth' | 'equivalentWidthNm' | 'kind'>;
+export type ProfileNumbers = Pick<Feature, 'wavelengthNm' | 'fwhmNm' | 'depth' | 'equivalentWidthNm' | 'kind' | 'damped'>;
 
 // Areas of profiles of unit peak and unit FWHM.
 const GAUSS_AREA = Math.sqrt(Math.PI / (4 * Math.LN2));
@@ -21,20 +21,34 @@ const rotation = (u: number) => {
 /** A profile of unit peak; `reachNm` is where it may be taken as zero. */
 export interface DrawnProfile {
   readonly reachNm: number;
+  /** nm from the centre on which it is worth drawing by itself */
+  readonly stretchNm: number;
   readonly at: (nm: number) => number;
 }
 
+/** A saturated line with damping wings, from the parameters of its fit. */
+function dampedProfile({ wavelengthNm, fwhmNm }: ProfileNumbers, { tau, a, dopplerNm }: NonNullable<Feature['damped']>): DrawnProfile {
+  const table = dampedTable({ tau, a });
+  return {
+    reachNm: table.reach * dopplerNm,
+    stretchNm: Math.min(table.reach * dopplerNm, 4 * fwhmNm),
+    at: (nm) => dampedValue(table, Math.abs(nm - wavelengthNm) / dopplerNm),
+  };
+}
+
 /**
- * The shape that has the measured centre, width, depth and equivalent width: area / (depth x FWHM) lies at 0.93 for pure rotation, 1.06
+ * The fitted shape where its parameters are known, else one that has the measured centre, width, depth and equivalent width: area / (depth x FWHM) lies at 0.93 for pure rotation, 1.06
  * for a Gaussian and 1.53 for a Lorentzian, and a mixture of neighbours fills what is between.
  */
 export function drawnProfile(f: ProfileNumbers): DrawnProfile {
+  if (f.damped) return dampedProfile(f, f.damped);
   const area = Math.abs(f.equivalentWidthNm / (f.depth * f.fwhmNm)) || GAUSS_AREA;
   const wings = Math.min(1, Math.max(0, (area - GAUSS_AREA) / (LORENTZ_AREA - GAUSS_AREA)));
   const spin = Math.min(1, Math.max(0, (GAUSS_AREA - area) / (GAUSS_AREA - ROTATION_AREA)));
   const reach = wings > 0.02 ? LORENTZ_REACH : 1.8;
   return {
     reachNm: reach * f.fwhmNm,
+    stretchNm: (wings > 0.02 ? 4 : 1.5) * f.fwhmNm,
     at: (nm) => {
       const u = Math.abs(nm - f.wavelengthNm) / f.fwhmNm;
       if (u > reach) return 0;

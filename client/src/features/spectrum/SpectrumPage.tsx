@@ -11,6 +11,7 @@ import { analysisQueries, cancelAnalysis, requestAnalysis, spectrumQueries } fro
 import { day } from '../../lib/time.js';
 import { useNow } from '../../lib/useNow.js';
 import { lineRows } from './lines/reading.js';
+import { HowDrawn } from './page/HowDrawn.js';
 import { Cautions, EmptyCurve, RunNotes } from './page/RunNotes.js';
 import { Workbench } from './page/Workbench.js';
 import { SpectrumFacts } from './page/facts.js';
@@ -59,7 +60,10 @@ function Header({ data, settings }: { data: SpectrumData; settings: PageSettings
   const spectrum = data.spectrum!;
   const result = analysis?.result ?? null;
   const rows = useMemo(() => (result ? lineRows(result, identifications) : []), [result, identifications]);
-  const about = [spectrum.label, spectrum.instrument, spectrum.observedAt && day(spectrum.observedAt)].filter(Boolean).join(', ');
+  const label = spectrum.label.startsWith(spectrum.targetName)
+    ? spectrum.label.slice(spectrum.targetName.length).replace(/^[\s,:–-]+/, '')
+    : spectrum.label;
+  const about = [label, spectrum.instrument, spectrum.observedAt && day(spectrum.observedAt)].filter(Boolean).join(', ');
   return (
     <header className={classes.header}>
       <title>{`${spectrum.targetName}, ${spectrum.label} · Foreveil`}</title>
@@ -101,6 +105,7 @@ function Strap({ data, analysis, cautions, programmeId, spectrumId }: StrapProps
         <a href={apiPaths.spectrumReport(programmeId, spectrumId)} download>
           Line report, CSV
         </a>
+        <HowDrawn />
       </div>
     </div>
   );

@@ -1,6 +1,5 @@
 import type { Candidate } from '@foreveil/shared';
-import { probability } from '../../../lib/number.js';
-import { barLength, factorLabel, oddsLabel, PART_WORD, together } from './odds.js';
+import { barLength, factorLabel, PART_WORD } from './odds.js';
 import classes from './evidence.module.css';
 
 const BAR = { width: 96, middle: 44, reach: 50 };
@@ -44,9 +43,8 @@ function Emphasised({ sentence }: { sentence: string }) {
 
 /** The five parts as an argument: factors that multiply to the odds of the stated probability. */
 export function Argument({ candidate }: { candidate: Candidate }) {
-  const total = together(candidate.evidence);
   return (
-    <ol className={classes.parts} aria-label="Evidence, as factors on the odds">
+    <ol className={classes.parts} tabIndex={0} aria-label="Evidence, as factors on the odds">
       {candidate.evidence.map(({ part, logOdds, sentence }) => (
         <li key={part} className={classes.part}>
           <span className={classes.partName}>{PART_WORD[part]}</span>
@@ -56,11 +54,6 @@ export function Argument({ candidate }: { candidate: Candidate }) {
           <OddsBar logOdds={logOdds} />
         </li>
       ))}
-      <li className={classes.total}>
-        <span className={classes.partName}>Together</span>
-        <span className={classes.partWords}>odds of {oddsLabel(total)}</span>
-        <b className={classes.totalP}>{probability(candidate.probability)}</b>
-      </li>
     </ol>
   );
 }

@@ -1,6 +1,6 @@
 import { useElementSize } from '@mantine/hooks';
 import { useMemo } from 'react';
-import type { Candidate, Companion, VelocitySystem } from '@foreveil/shared';
+import { C_KM_PER_S, type Candidate, type Companion, type Feature, type VelocitySystem } from '@foreveil/shared';
 import { speciesName } from '../../../lib/species.js';
 import { fixed, MILLIANGSTROM_PER_NM, withError } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
@@ -10,6 +10,7 @@ import { lightPath, stepPath, xOf, yOf, type Frame } from '../../../plot/curve-p
 import { FILL_CAP, lightCss, visibility } from '../../../plot/light.js';
 import { usePalette, type Palette } from '../../../plot/palette.js';
 import { niceTicks } from '../../../plot/ticks.js';
+import { widthKmPerS } from './claim-text.js';
 import { SvgPen, velocityProfile } from './velocity-profile.js';
 import classes from './evidence.module.css';
 
@@ -22,6 +23,8 @@ const GAUSS_AREA = 1.0645;
 
 interface Props {
   candidate: Candidate;
+  /** the selected line: what its companions should look like */
+  feature: Feature;
   system: VelocitySystem | null;
   systems: readonly VelocitySystem[];
   data: CurveData;
@@ -36,18 +39,18 @@ const expectedWidth = (c: Companion) => fixed(c.expectedNm * MILLIANGSTROM_PER_N
 function amount(c: Companion): string {
   if (c.outcome === 'not_covered') return 'not covered';
   if (c.measuredNm !== null) return withError(c.measuredNm * MILLIANGSTROM_PER_NM, (c.measuredSigmaNm ?? NaN) * MILLIANGSTROM_PER_NM);
-  const due = `${expectedWidth(c)} due`;
-  return c.outcome === 'missing' ? `missing, ${due}` : due;
+  return c.outcome === 'missing' ? `${expectedWidth(c)} missing` : `${expectedWidth(c)} due`;
 }
 
-/** Equivalent width that should stand there, as a Gaussian of the system's width. */
-function expectedPath(f: Frame, restNm: number, c: Companion, system: VelocitySystem): string {
-  const fwhmNm = (system.fwhmKmPerS / 299_792) * restNm;
-  const depth = Math.min(0.98, c.expectedNm / (GAUSS_AREA * fwhmNm));
+/** Equivalent width that should stand there, as a Gaussian as wide as the selected line: a dip, or a peak. */
+function expectedPath(f: Frame, c: Companion, { system, kind, fwhmKmPerS }: Pick<RowProps, 'system' | 'kind' | 'fwhmKmPerS'>): string {
+  const fwhmNm = (fwhmKmPerS / C_KM_PER_S) * c.restNm;
+  const height = c.expectedNm / (GAUSS_AREA * fwhmNm);
+  const depth = kind === 'dip' ? Math.min(0.98, height) : -height;
   const pen = new SvgPen();
   for (let k = 0; k <= 80; k++) {
     const v = f.fromNm + (k / 80) * (f.toNm - f.fromNm);
-    const flux = 1 - depth * Math.exp(-4 * Math.LN2 * ((v - system.velocityKmPerS) / system.fwhmKmPerS) ** 2);
+    const flux = 1 - depth * Math.exp(-4 * Math.LN2 * ((v - system.velocityKmPerS) / fwhmKmPerS) ** 2);
     if (k === 0) pen.moveTo(xOf(f, v), yOf(f, flux));
     else pen.lineTo(xOf(f, v), yOf(f, flux));
   }
@@ -57,6 +60,8 @@ function expectedPath(f: Frame, restNm: number, c: Companion, system: VelocitySy
 interface RowProps {
   companion: Companion;
   system: VelocitySystem;
+  kind: Feature['kind'];
+  fwhmKmPerS: number;
   data: CurveData;
   range: [number, number];
   y: number;
@@ -64,58 +69,58 @@ interface RowProps {
   palette: Palette;
 }
 
-function Profile({ companion, system, data, range, y, width, palette }: RowProps) {
+/** Value axis of a small panel: the continuum with the whole line, and a little of the noise. */
+function domainOf(good: Float32Array, kind: Feature['kind']): [number, number] {
+  const [least, most] = [Math.min(...good), Math.max(...good)];
+  if (kind === 'peak') return [Math.min(1 - 0.1 * (most - 1), Math.max(least, 2 - most)), Math.max(1 + LEAST_DEPTH, most)];
+  const low = Math.min(1 - LEAST_DEPTH, least);
+  return [low, Math.max(1 + 0.08 * (1 - low), Math.min(most, 1 + (1 - low)))];
+}
+
+function Profile({ companion, system, kind, fwhmKmPerS, data, range, y, width, palette }: RowProps) {
   const drawn = useMemo(() => {
-    const profile = velocityProfile(data, companion.restNm, range[0], range[1]);
+    const profile = velocityProfile(data, companion.restNm, range[0], range[1], kind);
     if (!profile) return null;
-    const good = profile.flux.filter((_, i) => !profile.bad[i]);
-    const [least, most] = [Math.min(...good), Math.max(...good)];
-    const low = Math.min(1 - LEAST_DEPTH, least);
+    const [low, high] = domainOf(
+      profile.flux.filter((_, i) => !profile.bad[i]),
+      kind,
+    );
     // the velocity axis takes the place of the wavelength axis
-    const frame: Frame = {
-      left: LABEL,
-      top: y + 3,
-      width,
-      height: ROW - 6,
-      fromNm: range[0],
-      toNm: range[1],
-      low,
-      high: Math.max(1 + 0.08 * (1 - low), Math.min(most, 1 + 3 * (1 - low))),
-    };
+    const frame: Frame = { left: LABEL, top: y + 3, width, height: ROW - 6, fromNm: range[0], toNm: range[1], low, high };
     const trace = { wavelength: profile.velocity, values: profile.flux, bad: profile.bad };
     const [curve, light] = [new SvgPen(), new SvgPen()];
     stepPath(curve, frame, trace);
-    lightPath(light, frame, trace, new Float32Array(profile.flux.length).fill(1), 'taken');
-    const due =
-      companion.outcome === 'missing' || companion.outcome === 'below_limit'
-        ? expectedPath(frame, companion.restNm, companion, system)
-        : null;
+    lightPath(light, frame, trace, new Float32Array(profile.flux.length).fill(1), kind === 'dip' ? 'taken' : 'given');
+    const isDue = companion.outcome === 'missing' || companion.outcome === 'below_limit';
+    const due = isDue ? expectedPath(frame, companion, { system, kind, fwhmKmPerS }) : null;
     return { curve: curve.toString(), light: light.toString(), due, level: yOf(frame, 1) };
-  }, [companion, system, data, range, y, width]);
+  }, [companion, system, kind, fwhmKmPerS, data, range, y, width]);
   if (!drawn) return null;
   const colour = visibility(companion.restNm) > 0.05 ? lightCss(companion.restNm, FILL_CAP[palette.scheme]) : 'var(--hatch)';
+  // an inner SVG cuts off what would run into the next row
   return (
-    <>
+    <svg x={LABEL} y={y} width={width} height={ROW} viewBox={`${LABEL} ${y} ${width} ${ROW}`}>
       {companion.outcome === 'seen' && <path d={drawn.light} fill={colour} />}
       <line x1={LABEL} x2={LABEL + width} y1={drawn.level} y2={drawn.level} stroke="var(--line-2)" strokeDasharray="4 3" />
       <path d={drawn.curve} fill="none" stroke="var(--curve)" strokeOpacity={companion.outcome === 'seen' ? 1 : 0.75} />
       {drawn.due && <path d={drawn.due} fill="none" stroke="var(--curve)" strokeWidth={1.2} strokeDasharray="3 2" />}
-    </>
+    </svg>
   );
 }
 
 /** The other lines of the species on one velocity axis: seen, missing (what is due is dashed), or not covered. */
-export function Companions({ candidate, system, systems, data, display, frameName }: Props) {
+export function Companions({ candidate, feature, system, systems, data, display, frameName }: Props) {
   const { ref, width } = useElementSize<HTMLDivElement>();
   const palette = usePalette();
   const { companions, family } = candidate;
   const inner = Math.max(0, width - LABEL - NUMBER);
+  const fwhmKmPerS = widthKmPerS(feature);
   const range = useMemo<[number, number]>(() => {
-    const half = Math.max(40, 2.2 * (system?.fwhmKmPerS ?? 10));
+    const half = Math.max(40, 2.2 * Math.min(fwhmKmPerS, 600));
     const centre = system?.velocityKmPerS ?? candidate.velocityKmPerS;
     return [centre - half, centre + half];
-  }, [system, candidate]);
-  if (companions.length === 0 || !system) return <p className={classes.quiet}>No other line of the species is due in this spectrum.</p>;
+  }, [system, candidate, fwhmKmPerS]);
+  if (companions.length === 0 || !system) return <p className={classes.quiet}>No companions are listed for this reading.</p>;
   const x = (v: number) => LABEL + ((v - range[0]) / (range[1] - range[0])) * inner;
   const bottom = companions.length * ROW + 2;
   const shown = (nm: number) => shownWavelength(nm, display, 2);
@@ -138,7 +143,17 @@ export function Companions({ candidate, system, systems, data, display, frameNam
             ))}
             {companions.map((c, i) => (
               <g key={c.restNm}>
-                <Profile companion={c} system={system} data={data} range={range} y={i * ROW} width={inner} palette={palette} />
+                <Profile
+                  companion={c}
+                  system={system}
+                  kind={feature.kind}
+                  fwhmKmPerS={fwhmKmPerS}
+                  data={data}
+                  range={range}
+                  y={i * ROW}
+                  width={inner}
+                  palette={palette}
+                />
                 <text x={0} y={i * ROW + 15} fill="var(--ink)">{`${speciesName(c.species)} ${shown(c.restNm)}`}</text>
                 <text
                   x={width}

@@ -1,5 +1,5 @@
 import { Button, TextInput } from '@mantine/core';
-import type { Analysis, MemberRole, ReviewAction } from '@foreveil/shared';
+import type { Analysis, Candidate, MemberRole, ReviewAction } from '@foreveil/shared';
 import { useId } from 'react';
 import { probability } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
@@ -11,6 +11,7 @@ import { Argument } from './Argument.js';
 import { Candidates } from './Candidates.js';
 import { Companions } from './Companions.js';
 import { History } from './History.js';
+import { oddsLabel, together } from './odds.js';
 import { claimTitle, measurement, readingName } from './claim-text.js';
 import classes from './evidence.module.css';
 
@@ -48,9 +49,9 @@ export function EvidencePanel(props: EvidenceProps) {
           <p className={classes.measurement}>{measurement(row.feature, display)}</p>
         </div>
         <Acts {...props} />
-        <p className={classes.sentence}>{chosen.candidate ? chosen.candidate.sentence : withoutArgument(props)}</p>
+        <p className={classes.sentence}>{chosen.candidate ? summing(chosen.candidate) : withoutArgument(props)}</p>
       </div>
-      <div className={classes.argument} tabIndex={0} role="group" aria-label="Argument and candidates">
+      <div className={classes.argument}>
         {chosen.candidate && <Argument candidate={chosen.candidate} />}
         <Candidates choices={choices(row.feature)} chosen={chosen} systems={analysis.systems} display={display} onChoose={props.onChoose} />
       </div>
@@ -58,6 +59,7 @@ export function EvidencePanel(props: EvidenceProps) {
         {chosen.candidate && (
           <Companions
             candidate={chosen.candidate}
+            feature={row.feature}
             system={system}
             systems={analysis.systems}
             data={data}
@@ -92,6 +94,10 @@ export function EvidencePanel(props: EvidenceProps) {
   );
 }
 
+/** Why it ranks where it does, and what the five factors make together. */
+const summing = ({ sentence, evidence }: Candidate) =>
+  evidence.length > 0 ? `${sentence} Together the odds are ${oddsLabel(together(evidence))}.` : sentence;
+
 /** Said of 'unidentified', and of a reading that the newest analysis no longer offers. */
 function withoutArgument({ row, chosen, display }: EvidenceProps): string {
   if (chosen.lineId !== null)
@@ -123,8 +129,6 @@ function Acts({ row, chosen, role, busy, onAct }: EvidenceProps) {
         return (
           <Button
             key={action}
-            size="compact-sm"
-            h={28}
             variant={main ? 'filled' : 'default'}
             className={main ? classes.main : undefined}
             rightSection={<kbd className={classes.key}>{key}</kbd>}

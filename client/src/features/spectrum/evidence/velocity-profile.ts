@@ -11,11 +11,17 @@ export interface VelocityProfile {
   readonly bad: Uint8Array;
 }
 
-/** More samples than this in one small panel are thinned by taking the lowest of each group, so a dip keeps its depth. */
+/** More samples than this in one small panel are thinned by taking the lowest of each group (the highest, of a peak). */
 const MOST_SAMPLES = 240;
 
 /** @returns null where the spectrum has no good sample within the range */
-export function velocityProfile(data: CurveData, restNm: number, from: number, to: number): VelocityProfile | null {
+export function velocityProfile(
+  data: CurveData,
+  restNm: number,
+  from: number,
+  to: number,
+  kind: 'dip' | 'peak' = 'dip',
+): VelocityProfile | null {
   if (!data.fitted) return null;
   const first = lowerBound(data.wavelength, shifted(restNm as VacuumNm, from as KmPerS));
   const end = lowerBound(data.wavelength, shifted(restNm as VacuumNm, to as KmPerS));
@@ -28,7 +34,8 @@ export function velocityProfile(data: CurveData, restNm: number, from: number, t
     profile.flux[k] = NaN;
     for (let i = start; i < start + group; i++) {
       const value = data.fitted.normalised.values[i]!;
-      if (data.bad[i] || Number.isNaN(value) || value > profile.flux[k]!) continue;
+      const kept = profile.flux[k]!;
+      if (data.bad[i] || Number.isNaN(value) || (kind === 'dip' ? value > kept : value < kept)) continue;
       profile.flux[k] = value;
       profile.bad[k] = 0;
     }

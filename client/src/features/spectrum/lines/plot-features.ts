@@ -18,19 +18,11 @@ export function plotFeature(row: LineRow, display: WavelengthDisplay): PlotFeatu
       : reading.family === 'telluric'
         ? speciesName(reading.species)
         : `${speciesName(reading.species)} ${reading.restNm === null ? '' : shown(reading.restNm, display)}`;
-  const { index, kind, wavelengthNm, fwhmNm, depth, equivalentWidthNm, significance } = feature;
+  const { index, kind, wavelengthNm, fwhmNm, depth, equivalentWidthNm, damped, significance } = feature;
   return {
-    index,
-    kind,
-    wavelengthNm,
-    fwhmNm,
-    depth,
-    equivalentWidthNm,
-    family: reading.family,
-    state,
-    staveId,
-    label,
-    priority: significance,
+    ...{ index, kind, wavelengthNm, fwhmNm, depth, equivalentWidthNm },
+    ...(damped && { damped }),
+    ...{ family: reading.family, state, staveId, label, priority: significance },
   };
 }
 

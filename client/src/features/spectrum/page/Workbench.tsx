@@ -1,8 +1,9 @@
 import type { AnalysisDetail, Identification, MemberRole, SpectrumDetail } from '@foreveil/shared';
 import { Splitter } from '@mantine/core';
 import { useMediaQuery } from '@mantine/hooks';
-import { startTransition, useCallback, useDeferredValue, useEffect, useId, useMemo, useState, type KeyboardEvent } from 'react';
+import { startTransition, useCallback, useDeferredValue, useEffect, useId, useRef, useMemo, useState, type KeyboardEvent } from 'react';
 import { looksLikeEmission } from '../../../lib/emission.js';
+import { useNow } from '../../../lib/useNow.js';
 import { CurveStack } from '../../../plot/CurveStack.js';
 import { Overview } from '../../../plot/Overview.js';
 import type { CurveData } from '../../../plot/curve-data.js';
@@ -21,6 +22,7 @@ import { lineRows } from '../lines/reading.js';
 import { firstView } from '../state/first-view.js';
 import { summary } from '../state/spoken.js';
 import { useActing } from '../state/use-acting.js';
+import { useFirstWeek } from '../state/use-first-week.js';
 import { useAnnouncer } from '../state/use-announcer.js';
 import { useCommands } from '../state/use-commands.js';
 import { useAddress, type PageSettings } from '../state/use-page-state.js';
@@ -88,6 +90,7 @@ export function Workbench(props: Props) {
     acting.undo();
   };
 
+  const isFirstWeek = useFirstWeek(useNow());
   const isLater = useAfterFirstPaint();
   const isPhone = useMediaQuery('(max-width: 900px)', undefined, { getInitialValueInEffect: false });
   const fluxUnit = typesetUnit(spectrum.reading.fluxUnit.value);
@@ -107,7 +110,7 @@ export function Workbench(props: Props) {
           display={choice}
           selected={selected?.feature.index ?? null}
           alone={filter.system}
-          legend
+          legend={isFirstWeek}
           onSelect={select}
           onHover={hover}
         />
@@ -219,7 +222,7 @@ function DeskLayout({ curve, lines, evidence }: Layout) {
       </Splitter.Pane>
       <Splitter.Pane defaultSize="360px" min="120px" className={classes.pane}>
         <Splitter className={classes.split} withHandle={false} lineSize={1} handleColor="var(--line-2)" step="16px">
-          <Splitter.Pane defaultSize="716px" min="420px" className={classes.pane}>
+          <Splitter.Pane defaultSize="736px" min="420px" className={classes.pane}>
             {lines}
           </Splitter.Pane>
           <Splitter.Pane defaultSize={100} min={25} className={classes.pane}>
@@ -234,9 +237,16 @@ function DeskLayout({ curve, lines, evidence }: Layout) {
 /** One column; the claim peeks from below and opens over the table, the curve stays in sight. */
 function PhoneLayout({ curve, lines, evidence, claim }: Layout & { claim: string }) {
   const [open, setOpen] = useState(false);
+  const plot = useRef<HTMLDivElement>(null);
+  const show = () => {
+    setOpen(true);
+    plot.current?.scrollIntoView({ block: 'start' }); // the curve stays in sight above the sheet
+  };
   return (
     <>
-      {curve}
+      <div ref={plot} className={classes.inSight}>
+        {curve}
+      </div>
       {lines}
       <div className={classes.sheet} data-open={open || undefined}>
         <button
@@ -244,10 +254,10 @@ function PhoneLayout({ curve, lines, evidence, claim }: Layout & { claim: string
           className={classes.grabber}
           aria-expanded={open}
           aria-label={open ? 'Close the evidence' : `Open the evidence: ${claim}`}
-          onClick={() => setOpen(!open)}
+          onClick={open ? () => setOpen(false) : show}
         />
         {/* closed, only the claim peeks out: a tap opens it, and nothing hidden takes the focus */}
-        <div onClick={open ? undefined : () => setOpen(true)}>
+        <div onClick={open ? undefined : show}>
           <div inert={!open}>{evidence}</div>
         </div>
       </div>

@@ -53,6 +53,12 @@ function Explained({ children, why }: { children: string; why: string }) {
 
 const kelvin = (value: number) => `${count(Number(value.toPrecision(3)))} K`;
 
+/** '≥ 14 500 K', '17 000–46 400 K'. */
+function boundsInWords(lower: number | null, upper: number | null): string {
+  if (lower !== null && upper !== null) return `${kelvin(lower).replace(' K', '')}–${kelvin(upper)}`;
+  return lower !== null ? `≥ ${kelvin(lower)}` : upper !== null ? `≤ ${kelvin(upper)}` : '';
+}
+
 /** A colour temperature is given only where it is constrained; else the bound that holds, and why. */
 function Temperature({ continuum }: { continuum: Continuum }) {
   const { temperatureK, temperatureSigmaK, constrained, lowerBoundK, upperBoundK, statement, model } = continuum;
@@ -69,9 +75,7 @@ function Temperature({ continuum }: { continuum: Continuum }) {
       </>
     );
   }
-  const bounds = [lowerBoundK !== null && `≥ ${kelvin(lowerBoundK)}`, upperBoundK !== null && `≤ ${kelvin(upperBoundK)}`]
-    .filter(Boolean)
-    .join(', ');
+  const bounds = boundsInWords(lowerBoundK, upperBoundK);
   return (
     <>
       {bounds}
