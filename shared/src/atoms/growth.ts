@@ -3,7 +3,7 @@ import { C_KM_PER_S } from '../units/index.js';
 /** F(tau) = integral over x >= 0 of 1 - exp(-tau exp(-x^2)): saturation of a Gaussian absorber; its ln tabulated in log10 tau. */
 const LOG_MIN = -4;
 const LOG_MAX = 8;
-const PER_DEX = 40;
+const PER_DEX = 50;
 const TABLE: Float64Array = Float64Array.from({ length: (LOG_MAX - LOG_MIN) * PER_DEX + 1 }, (_, i) =>
   Math.log(saturationIntegral(10 ** (LOG_MIN + i / PER_DEX))),
 );

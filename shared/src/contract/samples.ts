@@ -10,7 +10,12 @@ export interface Samples {
 }
 
 /** @returns the bytes described above */
-export function encodeSamples(s: { wavelength: Float64Array; flux: Float64Array; sigma: Float64Array | null; bad: Uint8Array }): Uint8Array {
+export function encodeSamples(s: {
+  wavelength: Float64Array;
+  flux: Float64Array;
+  sigma: Float64Array | null;
+  bad: Uint8Array;
+}): Uint8Array {
   const n = s.wavelength.length;
   const out = new Uint8Array(8 + n * (8 + 4 + (s.sigma ? 4 : 0) + 1));
   new Uint32Array(out.buffer, 0, 2).set([n, s.sigma ? 1 : 0]);

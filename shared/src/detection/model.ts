@@ -58,7 +58,8 @@ export class LineModel {
 
   /** Components other than those of the blend whose profiles reach into its range. */
   overlapping(blend: readonly Component[]): Component[] {
-    if (this.#neighbours?.of !== this.components || this.#neighbours.size !== this.components.length) this.#neighbours = new Neighbours(this.components);
+    if (this.#neighbours?.of !== this.components || this.#neighbours.size !== this.components.length)
+      this.#neighbours = new Neighbours(this.components);
     return this.#neighbours.around(blend);
   }
 }

@@ -142,7 +142,8 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
   );
   for (const c of broad.sort((a, b) => b.amplitude * b.fwhm - a.amplitude * a.fwhm || a.centre - b.centre)) {
     const others = model.overlapping([c]);
-    const mayBeDamped = c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE && (c.amplitude > DEEP || c.fwhm * resolvingPower > WIDE * c.centre);
+    const mayBeDamped =
+      c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE && (c.amplitude > DEEP || c.fwhm * resolvingPower > WIDE * c.centre);
     if (!mayBeDamped && c.fwhm * resolvingPower < RESOLVED * c.centre) continue;
     const trials = [
       withCore(c, GAUSSIAN),

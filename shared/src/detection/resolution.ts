@@ -15,7 +15,14 @@ const ENOUGH = 5;
 export function resolvingPowerOf(spectrum: Spectrum, data: NormalisedSamples): Resolution {
   if (spectrum.resolvingPower !== null && spectrum.resolvingPower > 0) return { value: spectrum.resolvingPower, how: 'stated' };
   const bySampling = samplingPower(data.wavelength) / SAMPLES_PER_ELEMENT;
-  const trial = detect({ data: part(data), resolvingPower: bySampling, correlation: [1], falseFeatures: 0.5, continuumSigma: 1e-3, quick: true });
+  const trial = detect({
+    data: part(data),
+    resolvingPower: bySampling,
+    correlation: [1],
+    falseFeatures: 0.5,
+    continuumSigma: 1e-3,
+    quick: true,
+  });
   const widths = trial.model.components
     .filter((c) => c.amplitude / c.sigmaAmplitude > 12 && c.sigmaLogFwhm < 0.15)
     .map((c) => c.fwhm / c.centre)

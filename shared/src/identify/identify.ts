@@ -120,7 +120,9 @@ const OWN_LINES = 4;
 function hasOwnLines(star: SystemModel, { rankings }: Identified): boolean {
   const own = rankings.filter((r) => {
     const best = r.ranked[0];
-    return best?.contender.system === star && best.probability > 0.5 && (best.contender.expected.line.lowerEnergyPerCm ?? 0) > EXCITED_PER_CM;
+    return (
+      best?.contender.system === star && best.probability > 0.5 && (best.contender.expected.line.lowerEnergyPerCm ?? 0) > EXCITED_PER_CM
+    );
   });
   return own.length >= OWN_LINES;
 }
@@ -141,7 +143,12 @@ function addBands(systems: SystemModel[], clouds: readonly SystemModel[], bands:
     });
 }
 
-function rankAll(systems: readonly SystemState[], { features, coverage }: IdentifyInput, background: Background, draws?: number): Identified {
+function rankAll(
+  systems: readonly SystemState[],
+  { features, coverage }: IdentifyInput,
+  background: Background,
+  draws?: number,
+): Identified {
   return { systems, rankings: features.map((f) => rankFeature(f, contendersOf(f, systems, features), coverage, background, draws)) };
 }
 

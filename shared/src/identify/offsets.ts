@@ -43,7 +43,9 @@ export function normalCdf(x: number): number {
 
 /** ln (0.02 + 0.98 Phi(x)): a line that should show but does not, with room for a wrong promise; tabulated for x from -6 to 6. */
 const UNSEEN_STEPS = 1024;
-const UNSEEN: Float64Array = Float64Array.from({ length: UNSEEN_STEPS + 1 }, (_, k) => Math.log(0.02 + 0.98 * normalCdf(-6 + (12 * k) / UNSEEN_STEPS)));
+const UNSEEN: Float64Array = Float64Array.from({ length: UNSEEN_STEPS + 1 }, (_, k) =>
+  Math.log(0.02 + 0.98 * normalCdf(-6 + (12 * k) / UNSEEN_STEPS)),
+);
 
 function unseenTerm(at: number, softness: number): Float64Array {
   const term = new Float64Array(OFFSETS.length);

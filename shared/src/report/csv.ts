@@ -5,9 +5,12 @@ export const digits = (text: string): Cell => ({ digits: text });
 export const text = (value: string | null): Cell => ({ text: value ?? '' });
 
 const NUMBER = /^-?\d+(\.\d+)?([eE][+-]?\d+)?$/;
-/** First characters that make a spreadsheet run a cell as a formula, in plain and in full-width form. */
+/**
+ * First characters that make a spreadsheet run a cell as a formula, in plain and in full-width form. Apostrophes before them count in, so
+ * that a reader which takes one away gives back what was written.
+ */
 // eslint-disable-next-line no-control-regex
-const FORMULA = /^[=+\-@\t\r\u0000＝＋－＠]/;
+const FORMULA = /^'*[=+\-@\t\r\u0000＝＋－＠]/;
 /** The semicolon and the tab too: some spreadsheets split at them. */
 const NEEDS_QUOTES = /[",;\t\r\n]|^\s|\s$/;
 const LINE_END = '\r\n';
