@@ -21,7 +21,7 @@ function fromLineRow(r: Row): Line {
     id: r['id']!,
     species: r['species']!,
     element: r['element'] ?? '',
-    ionStage: Number(r['ion_stage'] || 0),
+    ionStage: r['element'] ? Number(r['ion_stage'] || 0) : 0, // the list gives molecular ions their charge
     wavelengthNm: Number(r['wavelength_vac_nm']),
     type: r['type']!,
     lowerEnergyPerCm: number(r['e_low_cm1']),
