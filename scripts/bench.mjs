@@ -1,5 +1,5 @@
 // npm run bench: time and memory of the analysis, by pixels and by step. Reports, asserts nothing. Run it on a quiet machine.
-import { readFileSync } from 'node:fs';
+import { readFileSync, readdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { requireNode } from './lib/node-version.mjs';
 
@@ -59,8 +59,9 @@ const times = sizes.map((n) =>
 const growth = Math.log(times.at(-1) / times[0]) / Math.log(sizes.at(-1) / sizes[0]);
 console.log(`growth with pixels and lines together: exponent ${growth.toFixed(2)}`);
 
-for (const file of ['heron4a-echelle.fits.gz'].filter(() => false)) {
-  const read = readSpectrum(readFileSync(join(root, 'seeds/data/spectra', file)), file);
-  if (read.ok) report(file, read.spectrum);
+const demonstration = join(root, 'seeds/data/spectra');
+for (const file of readdirSync(demonstration)) {
+  const read = readSpectrum(readFileSync(join(demonstration, file)), file);
+  if (read.ok) report(`${file}, ${read.spectrum.flux.length} pixels`, read.spectrum);
 }
 console.log(`memory: ${megabytes(process.memoryUsage().rss)} MB resident, ${megabytes(process.resourceUsage().maxRSS * 1024)} MB at most`);
