@@ -49,6 +49,7 @@ export class LineModel {
       }
     }
     this.components.sort((a, b) => a.centre - b.centre);
+    this.#neighbours = null; // widths, and with them reaches, are no longer what they were
   }
 
   /** To be called after a component changed its shape, and with it its reach, in place. */
