@@ -1,15 +1,20 @@
-import type { Browser } from 'playwright-core';
+import { randomUUID } from 'node:crypto';
+import { apiPaths } from '@foreveil/shared';
+import type { Browser, Page } from 'playwright-core';
 import { startFleet, type Fleet } from '../support/browser/fleet.js';
 import { analysedDemonstration, signIn, type Demonstration } from '../support/browser/people.js';
 import { accessibilityFaults, launch, shoot, visit, type Look, type Visit } from '../support/browser/visit.js';
+import { csvOfUnstatedMedium, HOT_STAR_BEHIND_A_CLOUD } from '../support/simulated-spectrum.js';
 
 const LOOKS: Look[] = (['light', 'dark'] as const).flatMap((scheme) => [1440, 390].map((width) => ({ scheme, width })));
 
 interface Subject {
   readonly page: string;
-  readonly path: (demo: Demonstration) => string;
+  readonly path: (demo: Demonstration, page: Page) => string | Promise<string>;
   /** what stands there once the page is all there */
   readonly heading: RegExp;
+  /** brings the page into the state to be looked at */
+  readonly prepare?: (page: Page) => Promise<void>;
 }
 
 const spectrumOf = ({ programme, targets }: Demonstration, name: string) =>
@@ -18,12 +23,42 @@ const spectrumOf = ({ programme, targets }: Demonstration, name: string) =>
 const SUBJECTS: Subject[] = [
   { page: 'programmes', path: () => '/', heading: /Your programmes/ },
   { page: 'programme', path: ({ programme }) => `/programmes/${programme.id}`, heading: /Dunlin cloud/ },
+  { page: 'empty-programme', path: async (_, page) => `/programmes/${await newProgramme(page)}`, heading: /Nothing observed yet/ },
   { page: 'add-spectra', path: ({ programme }) => `/programmes/${programme.id}/add`, heading: /Add spectra/ },
+  { page: 'files-read', path: ({ programme }) => `/programmes/${programme.id}/add`, heading: /Add spectra/, prepare: chooseFiles },
   { page: 'target', path: ({ programme, targets }) => `/programmes/${programme.id}/targets/${targets[0]!.id}`, heading: /\w/ },
   { page: 'absorption-spectrum', path: (demo) => spectrumOf(demo, 'Tern 1'), heading: /Tern 1/ },
   { page: 'emission-spectrum', path: (demo) => spectrumOf(demo, 'Curlew Nebula'), heading: /Curlew Nebula/ },
+  { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];
+
+/** One file that asks about air and vacuum, one that is ready, one that cannot be read. */
+async function chooseFiles(page: Page): Promise<void> {
+  const csv = csvOfUnstatedMedium(HOT_STAR_BEHIND_A_CLOUD);
+  const file = (name: string, text: string) => ({ name, mimeType: 'text/csv', buffer: Buffer.from(text) });
+  const files = [
+    file('asks.csv', csv),
+    file('ready.csv', `# medium: air\n${csv}`),
+    file('broken.csv', 'wavelength (nm),flux\n500,1\n501,oops\n'),
+  ];
+  await page.locator('input[type=file]').setInputFiles(files);
+  await page.getByRole('region', { name: 'asks.csv' }).getByRole('heading', { name: 'Air or vacuum?' }).waitFor();
+  await page.getByRole('region', { name: 'ready.csv' }).getByRole('heading', { level: 3, name: 'Ready' }).waitFor();
+  await page.getByRole('region', { name: 'broken.csv' }).getByRole('heading', { name: 'Cannot be read' }).waitFor();
+}
+
+async function openKeys(page: Page): Promise<void> {
+  await page.keyboard.press('Shift+?'); // the button stands in a wide bar only
+  await page.getByRole('dialog').waitFor();
+}
+
+async function newProgramme(page: Page): Promise<string> {
+  const name = `Nothing observed yet ${randomUUID()}`;
+  const answer = await page.request.post(apiPaths.programmes, { data: { name }, headers: { origin: new URL(page.url()).origin } });
+  if (!answer.ok()) throw new Error(await answer.text());
+  return ((await answer.json()) as { id: string }).id;
+}
 
 describe('every page, by day and by night, on a desk and on a phone', () => {
   let fleet: Fleet;
@@ -63,10 +98,11 @@ describe('every page, by day and by night, on a desk and on a phone', () => {
       demo = await analysedDemonstration(seen.page);
     }, 200_000);
 
-    it.each(SUBJECTS)('$page', async ({ page, path, heading }) => {
-      await seen.page.goto(path(demo));
+    it.each(SUBJECTS)('$page', async ({ page, path, heading, prepare }) => {
+      await seen.page.goto(await path(demo, seen.page));
       await seen.page.getByRole('heading', { level: 1, name: heading }).waitFor();
       await seen.page.waitForFunction(() => !document.querySelector('[aria-busy=true]'));
+      await prepare?.(seen.page);
       await expectSound(page);
     });
   });
