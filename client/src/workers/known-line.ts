@@ -49,9 +49,17 @@ function conspicuous({ wavelength, flux, bad }: Pick<Spectrum, 'wavelength' | 'f
   const top = inside.reduce((a, b) => (Math.abs(b.value - level) > Math.abs(a.value - level) ? b : a), inside[0] ?? near[0]!);
   const height = top.value - level;
   if (!inside.length || !(scatter > 0)) return null;
-  const core = inside.filter(({ value }) => (value - level) / height > 0.5);
+  const core = around(inside, inside.indexOf(top), ({ value }) => (value - level) / height > 0.5);
   const weight = core.reduce((sum, { value }) => sum + (value - level), 0);
   return { nm: core.reduce((sum, { nm, value }) => sum + nm * (value - level), 0) / weight, deviation: Math.abs(height) / scatter };
+}
+
+/** The unbroken run about a place in which `holds`; another line within reach, as the second of a doublet, is not part of it. */
+function around<T>(list: readonly T[], place: number, holds: (item: T) => boolean): T[] {
+  let [from, to] = [place, place];
+  while (from > 0 && holds(list[from - 1]!)) from--;
+  while (to + 1 < list.length && holds(list[to + 1]!)) to++;
+  return list.slice(from, to + 1);
 }
 
 function lowerBound(sorted: Float64Array, value: number): number {

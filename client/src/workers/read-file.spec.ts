@@ -58,6 +58,14 @@ describe('a line that everybody knows', () => {
     expect(Math.abs(hint.velocityKmPerS - 45.67)).toBeLessThan(0.5); // a tenth of a sample of 5 nm / 1000
   });
 
+  it('is not mixed with its neighbour where both lie within reach, as the sodium doublet does', () => {
+    // both approaching at 95 km/s: 589.158 and 589.756 nm, NIST, times (1 - 95 / 299792.458)
+    const doublet = (nm: number) => dip(nm, 588.9713) + 0.8 * dip(nm, 589.5691);
+    const hint = knownLineHint(spectrum(40_000, (nm, i) => 1 + noise(i) + doublet(nm), 583, 595))!;
+    expect(hint.name).toBe('Na I');
+    expect(Math.abs(hint.velocityKmPerS + 95)).toBeLessThan(1);
+  });
+
   it('is not made up where only noise lies', () => {
     expect(knownLineHint(spectrum(40_000, (_, i) => 1 + noise(i)))).toBeNull();
   });
