@@ -45,18 +45,26 @@ export class AnalysisThread {
   async run(job: ThreadJob, onProgress: (step: AnalysisStep, done: number) => void, signal: AbortSignal): Promise<Outcome> {
     if (signal.aborted) return { end: 'stopped' };
     const thread = this.running();
+    let forget = (): void => undefined;
     const outcome = await new Promise<Outcome>((resolve) => {
-      thread.on('message', (message: FromThread) => {
+      const told = (message: FromThread) => {
         if (message.say === 'progress') onProgress(message.step, message.done);
         else if (message.say === 'done') resolve({ end: 'done', analysis: message.analysis });
         else resolve({ end: 'failed', reason: message.reason });
-      });
-      thread.once('error', (error) => resolve({ end: 'died', reason: error.message }));
-      thread.once('exit', (code) => resolve({ end: 'died', reason: `the thread ended with ${code}` }));
-      signal.addEventListener('abort', () => resolve({ end: 'stopped' }), { once: true });
+      };
+      const broke = (error: Error) => resolve({ end: 'died', reason: error.message });
+      const ended = (code: number) => resolve({ end: 'died', reason: `the thread ended with ${code}` });
+      const stopped = () => resolve({ end: 'stopped' });
+      thread.on('message', told).once('error', broke).once('exit', ended);
+      signal.addEventListener('abort', stopped, { once: true });
+      // the thread outlives the run: what listened for this one must not stay
+      forget = () => {
+        thread.off('message', told).off('error', broke).off('exit', ended);
+        signal.removeEventListener('abort', stopped);
+      };
       thread.postMessage({ say: 'run', ...job } satisfies ToThread);
     });
-    thread.removeAllListeners('message');
+    forget();
     if (outcome.end === 'stopped' || outcome.end === 'died') await this.end();
     return outcome;
   }
