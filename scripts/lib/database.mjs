@@ -4,26 +4,22 @@ import { Complaint, say } from './say.mjs';
 import { runForOutput } from './supervisor.mjs';
 
 /**
- * The database of `npm start`, its tables up to date: the one DATABASE_URL names, else the private one of this checkout.
- * @returns {Promise<{ url: string, accounts: Promise<string>, close(): Promise<void> }>} `accounts`: the demonstration's, one a line; '' without it
+ * The database of `npm start`: the one DATABASE_URL names, else the private one of this checkout, which then runs. Needs no npm package.
+ * @returns {Promise<{ url: string, close(): Promise<void> }>}
  */
 export async function openDatabase() {
-  const given = process.env.DATABASE_URL;
-  const url = given ?? (await openCluster(DEMO));
-  const close = async () => {
-    if (!given) await closeCluster(DEMO);
-  };
-  try {
-    say('bringing the tables up to date');
-    await commandDatabase(url, 'migrate', 'seed');
-    // asked for while the rest starts; a start that is interrupted meanwhile has nobody to show them to
-    const accounts = commandDatabase(url, 'accounts').catch(() => '');
-    return { url, accounts, close };
-  } catch (error) {
-    await close();
-    throw error;
-  }
+  if (process.env.DATABASE_URL) return { url: process.env.DATABASE_URL, close: async () => {} };
+  return { url: await openCluster(DEMO), close: () => closeCluster(DEMO) };
 }
+
+/** Brings the tables up to date, and fills an empty database with the line list and the demonstration. */
+export async function fillDatabase(url) {
+  say('bringing the tables up to date');
+  await commandDatabase(url, 'migrate', 'seed');
+}
+
+/** The demonstration's accounts, one a line; '' where there are none. */
+export const demoAccounts = (url) => commandDatabase(url, 'accounts');
 
 /** Runs commands of scripts/db.ts. @returns what they printed */
 async function commandDatabase(url, ...commands) {

@@ -1,5 +1,5 @@
 import { build } from './build.mjs';
-import { openDatabase } from './database.mjs';
+import { fillDatabase, openDatabase } from './database.mjs';
 import { ensureDependencies } from './dependencies.mjs';
 import { nextFreePort } from './ports.mjs';
 import { Complaint, say, tell } from './say.mjs';
@@ -12,9 +12,10 @@ const watched = ['--watch-path=server/dist', '--watch-path=shared/dist', '--watc
 export function dev() {
   const interruption = onInterruption();
   return tell(async () => {
-    await ensureDependencies();
     const database = await openDatabase();
     try {
+      await ensureDependencies();
+      await fillDatabase(database.url);
       await build(['server']);
       await watch(database.url, interruption);
     } finally {

@@ -1,5 +1,5 @@
 import { build } from './build.mjs';
-import { openDatabase } from './database.mjs';
+import { demoAccounts, fillDatabase, openDatabase } from './database.mjs';
 import { ensureDependencies } from './dependencies.mjs';
 import { nextFreePort, freePort } from './ports.mjs';
 import { until } from './processes.mjs';
@@ -11,12 +11,13 @@ export function start() {
   const interruption = onInterruption();
   return tell(async () => {
     try {
-      const port = await choosePort();
-      await ensureDependencies();
+      const wanted = await wantedPort();
       const database = await openDatabase();
       try {
+        await ensureDependencies();
+        await fillDatabase(database.url);
         await build();
-        await serve(database, port, interruption);
+        await serve(database.url, wanted ?? (await nextFreePort(3000)), interruption);
       } finally {
         await stopChildren();
         await database.close();
@@ -30,20 +31,22 @@ export function start() {
 }
 
 /** Runs the API and a worker until an interruption; one that ends by itself is a failure. */
-async function serve({ url, accounts }, port, interruption) {
+async function serve(databaseUrl, port, interruption) {
   if (interruption.was()) return;
   const env = {
     NODE_ENV: 'production',
     FOREVEIL_MODE: 'demo',
     LOG_LEVEL: 'warn',
     ...process.env,
-    DATABASE_URL: url,
+    DATABASE_URL: databaseUrl,
     PORT: String(port),
   };
   const command = (file) => [process.execPath, ['--enable-source-maps', `server/dist/${file}`], { env }];
   const running = [startChild('API', ...command('main.js')), startChild('analysis worker', ...command('worker.js'))];
   const death = Promise.race(running.map(async ({ name, ended }) => ({ name, status: await ended })));
 
+  // asked for while the rest starts; a start that is interrupted meanwhile has nobody to show them to
+  const accounts = demoAccounts(databaseUrl).catch(() => '');
   const address = `http://127.0.0.1:${port}`;
   const first = await Promise.race([death, interruption.interrupted, isReady(address, interruption)]);
   if (first === 'ready') greet(address, await accounts);
@@ -53,8 +56,9 @@ async function serve({ url, accounts }, port, interruption) {
   throw new Complaint(`The ${end.name} ended by itself (${end.status}); why stands above. Everything else was stopped.`);
 }
 
-async function choosePort() {
-  if (!process.env.PORT) return nextFreePort(3000);
+/** The port that PORT names, null when it names none. Said to be taken before anything else is done. */
+async function wantedPort() {
+  if (!process.env.PORT) return null;
   const port = Number(process.env.PORT);
   if (!Number.isInteger(port) || port < 1 || port > 65535) throw new Complaint(`PORT=${process.env.PORT} is no port number.`);
   if (!(await freePort(port)))

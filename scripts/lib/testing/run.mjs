@@ -66,15 +66,28 @@ async function provide(needs) {
   return provided;
 }
 
-/** As many steps at once as there are processors, four at most; those that want the machine for themselves come last, one by one. */
+/**
+ * As many steps at once as there are processors, four at most; those that want the machine for themselves come last, one by one. A step waits
+ * for the steps it needs, which stand before it in the list.
+ */
 async function runAll(steps, provided, interruption) {
+  const running = new Map();
+  const run = async (step) => {
+    await Promise.all(step.needs.map((need) => running.get(need)));
+    return runStep(step, provided);
+  };
+  const begin = (step) => {
+    const counts = run(step);
+    running.set(step.name, counts);
+    return counts;
+  };
   const waiting = steps.filter((step) => !step.alone);
   const counts = [];
   const lane = async () => {
-    for (let step = waiting.shift(); step && !interruption.was(); step = waiting.shift()) counts.push(await runStep(step, provided));
+    for (let step = waiting.shift(); step && !interruption.was(); step = waiting.shift()) counts.push(await begin(step));
   };
   await Promise.all(cpus().slice(0, 4).map(lane));
-  for (const step of steps.filter(({ alone }) => alone)) if (!interruption.was()) counts.push(await runStep(step, provided));
+  for (const step of steps.filter(({ alone }) => alone)) if (!interruption.was()) counts.push(await begin(step));
   return counts;
 }
 

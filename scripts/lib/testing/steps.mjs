@@ -31,10 +31,11 @@ const jest = (name, what, more, patterns) => ({
   ...more,
 });
 
-/** Everything `npm test` does, quick things first. @param {string[]} patterns paths of test files; none: all @returns {Step[]} */
+/** Everything `npm test` does; the API tests, which often wait, start early beside the rest. @param {string[]} patterns paths of test files; none: all @returns {Step[]} */
 export const allSteps = (patterns) => [
   { name: 'build', what: 'server and client compile', command: [node, 'scripts/build.mjs'], needs: [] },
   check('lint', 'ESLint', bin('eslint/bin/eslint.js'), '.', '--max-warnings=0'),
+  jest('api', 'HTTP with a real PostgreSQL', { needs: ['build', 'database'], workers: 2 }, patterns),
   check(
     'imports',
     'who imports whom',
@@ -58,7 +59,6 @@ export const allSteps = (patterns) => [
   },
   jest('unit', 'tests of shared and server', {}, patterns),
   jest('reference', 'published values and foreign fixtures', {}, patterns),
-  jest('api', 'HTTP with a real PostgreSQL', { needs: ['build', 'database'], alone: true, workers: 2 }, patterns),
   jest('browser', 'whole journeys in Chromium', { needs: ['build', 'database', 'chromium'], alone: true }, patterns),
 ];
 
