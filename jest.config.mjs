@@ -14,7 +14,7 @@ const withDatabase = { globalSetup: '<rootDir>/test/support/postgres-up.mjs', gl
 export default {
   testTimeout: 60_000,
   projects: [
-    { ...common, displayName: 'unit', testMatch: ['<rootDir>/shared/src/**/*.spec.ts', '<rootDir>/server/src/**/*.spec.ts'] },
+    { ...common, displayName: 'unit', testMatch: ['<rootDir>/{shared,server}/src/**/*.spec.ts', '<rootDir>/scripts/**/*.spec.mjs'] },
     { ...common, displayName: 'reference', testMatch: ['<rootDir>/test/{reference,reading}/**/*.spec.ts'] },
     { ...common, ...withDatabase, displayName: 'api', testMatch: ['<rootDir>/test/api/**/*.spec.ts'] },
     { ...common, ...withDatabase, displayName: 'browser', testMatch: ['<rootDir>/test/browser/**/*.spec.ts'] },
