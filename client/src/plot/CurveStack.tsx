@@ -8,6 +8,7 @@ import { StaveHeads } from './StaveHeads.js';
 import { STAVE_HEIGHT, STAVES_TOP, Staves } from './Staves.js';
 import type { CurveData } from './curve-data.js';
 import { useCursor, type CursorStore } from './cursor.js';
+import { TOP_ROOM } from './curve-options.js';
 import { FILL_CAP, lightCss } from './light.js';
 import { usePalette } from './palette.js';
 import type { DueLine, PlotFeature, Stave } from './plot-feature.js';
@@ -41,6 +42,8 @@ export interface CurveStackProps {
 }
 
 const NARROW_PX = 600;
+/** A picture with less height than this under its staves does without the residual. */
+const SHORT_PX = 130;
 
 /** Staves, curve, residual and axis on one abscissa that never moves. */
 export function CurveStack(props: CurveStackProps) {
@@ -49,7 +52,7 @@ export function CurveStack(props: CurveStackProps) {
   const narrow = width < NARROW_PX;
   const gutter = narrow ? 44 : 112;
   const plotWidth = Math.max(0, Math.floor(width - gutter));
-  const hasResidual = data.fitted !== null && data.sigma !== null;
+  const hasResidual = data.fitted !== null && data.sigma !== null && height > SHORT_PX + staves.length * STAVE_HEIGHT;
   const residualHeight = hasResidual ? (narrow ? 40 : 54) : 0;
   const curveTop = STAVES_TOP + staves.length * STAVE_HEIGHT + 4;
   const curveBottom = Math.floor(height - AXIS_HEIGHT - residualHeight - (hasResidual ? 8 : 0));
@@ -71,13 +74,13 @@ export function CurveStack(props: CurveStackProps) {
           )}
           <StaveHeadsColumn {...props} short={narrow} width={gutter} />
           <div style={{ position: 'absolute', left: gutter, top: 0 }}>
-            <Staves {...props} width={plotWidth} height={curveBottom} curveTop={curveTop} />
+            <Staves {...props} width={plotWidth} height={curveBottom} curveTop={curveTop} margin={narrow ? 14 : 22} />
           </div>
-          <div className={classes.curve} style={{ top: curveTop }}>
+          <div className={classes.curve} style={{ top: curveTop - TOP_ROOM }}>
             <Curve
               {...{ data, features, view, cursor, mode, base, emission, gutter }}
               width={plotWidth + gutter}
-              height={curveHeight}
+              height={curveHeight + TOP_ROOM}
               onPick={props.onPick}
             />
           </div>

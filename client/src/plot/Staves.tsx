@@ -12,8 +12,6 @@ import classes from './plot.module.css';
 
 export const STAVE_HEIGHT = 24;
 export const STAVES_TOP = 4;
-/** How far the count of unlabelled lines reaches into the page's margin. */
-const COUNT_PX = 22;
 /** A press within this distance of a mark means it: marks are smaller than a finger. */
 const HIT_PX = 12;
 const MARK_RADIUS = 4.6;
@@ -33,6 +31,8 @@ interface Props {
   width: number;
   height: number;
   curveTop: number;
+  /** how far the count of unlabelled lines may reach into the page's margin, CSS px */
+  margin: number;
   onSelect: (index: number) => void;
   onHover: (index: number | null) => void;
 }
@@ -41,7 +41,7 @@ const rowY = (row: number) => STAVES_TOP + row * STAVE_HEIGHT + STAVE_HEIGHT / 2
 
 /** One staff per velocity system over the curve; a line sits on the staff of its system and a stem drops to its dip. */
 export function Staves(props: Props) {
-  const { staves, features, view, selected, hovered, width, height, onSelect, onHover } = props;
+  const { staves, features, view, selected, hovered, width, height, margin, onSelect, onHover } = props;
   const range = useView(view);
   const rows = useMemo(() => layoutStaves(staves, features, range, width, selected), [staves, features, range, width, selected]);
   const stemEnd = useStemEnd(props, range);
@@ -62,13 +62,16 @@ export function Staves(props: Props) {
   return (
     <svg className={classes.staves} width={width} height={height} aria-hidden="true">
       {rows.map((row, i) => (
-        <StaveLine key={row.stave.id} row={row} y={rowY(i)} width={width} />
+        <line key={row.stave.id} x1={0} x2={width} y1={rowY(i)} y2={rowY(i)} stroke="var(--line)" />
       ))}
       {rows.map((row, i) => (
         <StaveMarks key={row.stave.id} row={row} y={rowY(i)} stemEnd={stemEnd} special={[selected, hovered]} />
       ))}
       {rows.map((row, i) => (
-        <StaveLabels key={row.stave.id} row={row} y={rowY(i)} width={width} special={[selected, hovered]} />
+        <g key={row.stave.id}>
+          <StaveLabels row={row} y={rowY(i)} width={width} special={[selected, hovered]} />
+          <Unlabelled row={row} y={rowY(i)} end={width + margin} />
+        </g>
       ))}
       <rect
         className={classes.hit}
@@ -114,19 +117,16 @@ function useStemEnd({ data, mode, base, height, curveTop }: Props, range: Range)
   }, [data, mode, base, range, height, curveTop]);
 }
 
-const StaveLine = memo(function StaveLine({ row, y, width }: { row: StaveRow; y: number; width: number }) {
+/** How many lines of the staff carry no label. */
+function Unlabelled({ row, y, end }: { row: StaveRow; y: number; end: number }) {
+  if (row.unlabelled === 0) return null;
   return (
-    <>
-      <line x1={0} x2={width} y1={y} y2={y} stroke="var(--line)" />
-      {row.unlabelled > 0 && (
-        <text x={width + COUNT_PX} y={y + 4} textAnchor="end" className={classes.quietHalo}>
-          +{row.unlabelled}
-          <title>{`${row.unlabelled} more without a label`}</title>
-        </text>
-      )}
-    </>
+    <text x={end} y={y + 4} textAnchor="end" className={classes.quietHalo}>
+      +{row.unlabelled}
+      <title>{`${row.unlabelled} more without a label`}</title>
+    </text>
   );
-});
+}
 
 const px = (x: number) => Math.round(x * 10) / 10;
 

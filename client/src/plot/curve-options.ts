@@ -23,7 +23,8 @@ export interface CurveScene {
 export const STEP_WIDTH = 1.15;
 export const DENSE_WIDTH = 0.7;
 
-const HALF_LABEL_PX = 7;
+/** Room above the plot area, so that a label at its top edge is not cut; CSS px. */
+export const TOP_ROOM = 8;
 
 export const FONT = "12px 'Inter Variable', sans-serif";
 
@@ -61,7 +62,7 @@ export function curveOptions(
   return {
     ...size,
     pxAlign: 0,
-    padding: [0, 0, 0, 0],
+    padding: [TOP_ROOM, 0, 0, 0],
     legend: { show: false },
     cursor: { x: false, y: false, points: { show: false }, drag: { x: true, y: false, setScale: false, dist: 6 } },
     scales: { x: { time: false, auto: false }, y: { auto: false } },
@@ -75,11 +76,7 @@ export function curveOptions(
         stroke: () => scene.palette['ink-3'],
         ticks: { show: false },
         grid: { stroke: () => scene.palette.line, width: 1, dash: [1, 3] },
-        splits: (u, _axis, low, high) => {
-          const height = u.bbox.height / uPlot.pxRatio;
-          const highest = high - ((high - low) * HALF_LABEL_PX) / height; // above, the label would be cut
-          return valueTicks(low, high, height).filter((tick) => tick <= highest);
-        },
+        splits: (u, _axis, low, high) => valueTicks(low, high, u.bbox.height / uPlot.pxRatio),
         values: (_u, splits) => valueLabels(splits, scene.mode === 'flux' ? scene.data.fluxExponent : 0),
       },
     ],

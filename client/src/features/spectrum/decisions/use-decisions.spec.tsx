@@ -109,7 +109,7 @@ describe('when a teammate was faster', () => {
     );
     const { hook, list, row } = start();
     await act(async () => void (await hook.result.current.decide(row(), actOn(row(), 'reject', row().reading, 'mine'))));
-    await act(() => hook.result.current.applyMine());
+    await act(async () => expect(await hook.result.current.applyMine()).toBe(true));
     expect(asked.slice(1).map((a) => [a.ifMatch, (a.body as { action: string }).action, (a.body as { remark?: string }).remark])).toEqual([
       ['"5"', 'reopen', undefined],
       ['"6"', 'reject', 'mine'],

@@ -118,10 +118,11 @@ export function useDecisions({ programmeId, spectrumId, analysisId, by }: Where)
   );
 
   const keepTheirs = useCallback(() => setConflict(null), []);
-  const applyMine = useCallback(async () => {
-    if (!conflict) return;
+  /** Puts what was wanted over the teammate's version; resolves to whether the server agreed. */
+  const applyMine = useCallback(async (): Promise<boolean> => {
+    if (!conflict) return false;
     setConflict(null);
-    await walk(conflict.row, stepsOver(conflict.theirs, conflict.mine), conflict.mine.remark);
+    return walk(conflict.row, stepsOver(conflict.theirs, conflict.mine), conflict.mine.remark);
   }, [conflict, walk]);
 
   return { decide: decideOn, undo, pending, conflict, keepTheirs, applyMine };

@@ -15,7 +15,8 @@ import { SvgPen, velocityProfile } from './velocity-profile.js';
 import classes from './evidence.module.css';
 
 const ROW = 24;
-const LABEL = 82;
+const CHARACTER_PX = 6.3;
+const LEAST_LABEL = 82;
 const NUMBER = 92;
 /** A panel is at least this deep, in normalised flux, so that noise stays small. */
 const LEAST_DEPTH = 0.06;
@@ -65,6 +66,8 @@ interface RowProps {
   data: CurveData;
   range: [number, number];
   y: number;
+  /** CSS px: where the panel starts and how wide it is */
+  left: number;
   width: number;
   palette: Palette;
 }
@@ -77,7 +80,7 @@ function domainOf(good: Float32Array, kind: Feature['kind']): [number, number] {
   return [low, Math.max(1 + 0.08 * (1 - low), Math.min(most, 1 + (1 - low)))];
 }
 
-function Profile({ companion, system, kind, fwhmKmPerS, data, range, y, width, palette }: RowProps) {
+function Profile({ companion, system, kind, fwhmKmPerS, data, range, y, left, width, palette }: RowProps) {
   const drawn = useMemo(() => {
     const profile = velocityProfile(data, companion.restNm, range[0], range[1], kind);
     if (!profile) return null;
@@ -86,7 +89,7 @@ function Profile({ companion, system, kind, fwhmKmPerS, data, range, y, width, p
       kind,
     );
     // the velocity axis takes the place of the wavelength axis
-    const frame: Frame = { left: LABEL, top: y + 3, width, height: ROW - 6, fromNm: range[0], toNm: range[1], low, high };
+    const frame: Frame = { left, top: y + 3, width, height: ROW - 6, fromNm: range[0], toNm: range[1], low, high };
     const trace = { wavelength: profile.velocity, values: profile.flux, bad: profile.bad };
     const [curve, light] = [new SvgPen(), new SvgPen()];
     stepPath(curve, frame, trace);
@@ -94,14 +97,14 @@ function Profile({ companion, system, kind, fwhmKmPerS, data, range, y, width, p
     const isDue = companion.outcome === 'missing' || companion.outcome === 'below_limit';
     const due = isDue ? expectedPath(frame, companion, { system, kind, fwhmKmPerS }) : null;
     return { curve: curve.toString(), light: light.toString(), due, level: yOf(frame, 1) };
-  }, [companion, system, kind, fwhmKmPerS, data, range, y, width]);
+  }, [companion, system, kind, fwhmKmPerS, data, range, y, left, width]);
   if (!drawn) return null;
   const colour = visibility(companion.restNm) > 0.05 ? lightCss(companion.restNm, FILL_CAP[palette.scheme]) : 'var(--hatch)';
   // an inner SVG cuts off what would run into the next row
   return (
-    <svg x={LABEL} y={y} width={width} height={ROW} viewBox={`${LABEL} ${y} ${width} ${ROW}`}>
+    <svg x={left} y={y} width={width} height={ROW} viewBox={`${left} ${y} ${width} ${ROW}`}>
       {companion.outcome === 'seen' && <path d={drawn.light} fill={colour} />}
-      <line x1={LABEL} x2={LABEL + width} y1={drawn.level} y2={drawn.level} stroke="var(--line-2)" strokeDasharray="4 3" />
+      <line x1={left} x2={left + width} y1={drawn.level} y2={drawn.level} stroke="var(--line-2)" strokeDasharray="4 3" />
       <path d={drawn.curve} fill="none" stroke="var(--curve)" strokeOpacity={companion.outcome === 'seen' ? 1 : 0.75} />
       {drawn.due && <path d={drawn.due} fill="none" stroke="var(--curve)" strokeWidth={1.2} strokeDasharray="3 2" />}
     </svg>
@@ -113,7 +116,9 @@ export function Companions({ candidate, feature, system, systems, data, display,
   const { ref, width } = useElementSize<HTMLDivElement>();
   const palette = usePalette();
   const { companions, family } = candidate;
-  const inner = Math.max(0, width - LABEL - NUMBER);
+  const labels = companions.map((c) => `${speciesName(c.species)} ${shownWavelength(c.restNm, display, 2)}`);
+  const label = Math.max(LEAST_LABEL, ...labels.map((l) => l.length * CHARACTER_PX + 8));
+  const inner = Math.max(0, width - label - NUMBER);
   const fwhmKmPerS = widthKmPerS(feature);
   const range = useMemo<[number, number]>(() => {
     const half = Math.max(40, 2.2 * Math.min(fwhmKmPerS, 600));
@@ -121,7 +126,7 @@ export function Companions({ candidate, feature, system, systems, data, display,
     return [centre - half, centre + half];
   }, [system, candidate, fwhmKmPerS]);
   if (companions.length === 0 || !system) return <p className={classes.quiet}>No companions are listed for this reading.</p>;
-  const x = (v: number) => LABEL + ((v - range[0]) / (range[1] - range[0])) * inner;
+  const x = (v: number) => label + ((v - range[0]) / (range[1] - range[0])) * inner;
   const bottom = companions.length * ROW + 2;
   const shown = (nm: number) => shownWavelength(nm, display, 2);
   const kin = systems.filter((s) => s.family === family && s.velocityKmPerS > range[0] && s.velocityKmPerS < range[1]);
@@ -151,10 +156,13 @@ export function Companions({ candidate, feature, system, systems, data, display,
                   data={data}
                   range={range}
                   y={i * ROW}
+                  left={label}
                   width={inner}
                   palette={palette}
                 />
-                <text x={0} y={i * ROW + 15} fill="var(--ink)">{`${speciesName(c.species)} ${shown(c.restNm)}`}</text>
+                <text x={0} y={i * ROW + 15} fill="var(--ink)">
+                  {labels[i]}
+                </text>
                 <text
                   x={width}
                   y={i * ROW + 15}
@@ -166,11 +174,11 @@ export function Companions({ candidate, feature, system, systems, data, display,
                 </text>
               </g>
             ))}
-            <line x1={LABEL} x2={LABEL + inner} y1={bottom + 0.5} y2={bottom + 0.5} stroke="var(--line-2)" />
+            <line x1={label} x2={label + inner} y1={bottom + 0.5} y2={bottom + 0.5} stroke="var(--line-2)" />
             {niceTicks(range[0], range[1], Math.max(2, inner / 50)).map((v) => (
               <g key={v} transform={`translate(${x(v).toFixed(1)} ${bottom})`}>
                 <line y1={0} y2={4} stroke="var(--line-2)" />
-                {x(v) > LABEL + 12 && (
+                {x(v) > label + 12 && (
                   <text y={16} textAnchor="middle" fill="var(--ink-3)">
                     {fixed(v, 0)}
                   </text>

@@ -41,56 +41,64 @@ export function EvidencePanel(props: EvidenceProps) {
   const system = analysis.systems.find((s) => s.id === chosen.systemId) ?? null;
   const titleId = useId();
   return (
-    <section className={classes.panel} aria-labelledby={titleId}>
-      <div className={classes.claim}>
-        <Mark family={chosen.family} state={sameReading(chosen, row.reading) ? row.state : 'proposed'} size={24} spoken />
-        <div className={classes.claimWords}>
-          <h2 id={titleId}>{claimTitle(chosen, system?.velocityKmPerS ?? null, display)}</h2>
-          <p className={classes.measurement}>{measurement(row.feature, display)}</p>
+    <div className={classes.box}>
+      <section className={classes.panel} aria-labelledby={titleId}>
+        <div className={classes.claim}>
+          <Mark family={chosen.family} state={sameReading(chosen, row.reading) ? row.state : 'proposed'} size={24} spoken />
+          <div className={classes.claimWords}>
+            <h2 id={titleId}>{claimTitle(chosen, system?.velocityKmPerS ?? null, display)}</h2>
+            <p className={classes.measurement}>{measurement(row.feature, display)}</p>
+          </div>
+          <Acts {...props} />
+          <p className={classes.sentence}>{chosen.candidate ? summing(chosen.candidate) : withoutArgument(props)}</p>
         </div>
-        <Acts {...props} />
-        <p className={classes.sentence}>{chosen.candidate ? summing(chosen.candidate) : withoutArgument(props)}</p>
-      </div>
-      <div className={classes.argument}>
-        {chosen.candidate && <Argument candidate={chosen.candidate} />}
-        <Candidates choices={choices(row.feature)} chosen={chosen} systems={analysis.systems} display={display} onChoose={props.onChoose} />
-      </div>
-      <div className={classes.side} tabIndex={0} role="group" aria-label="Companions and history">
-        {chosen.candidate && (
-          <Companions
-            candidate={chosen.candidate}
-            feature={row.feature}
-            system={system}
+        <div className={classes.argument}>
+          {chosen.candidate && <Argument candidate={chosen.candidate} />}
+          <Candidates
+            choices={choices(row.feature)}
+            chosen={chosen}
             systems={analysis.systems}
-            data={data}
             display={display}
-            frameName={props.frameName}
+            onChoose={props.onChoose}
           />
-        )}
-        <History
-          identification={row.identification}
-          family={row.reading.family}
-          analysedAt={props.analysedAt}
-          analysisProbability={row.reading.probability}
-        />
-        <TextInput
-          id={props.remarkId}
-          className={classes.remark}
-          size="xs"
-          maxLength={500}
-          value={props.remark}
-          placeholder="Remark, goes with your decision"
-          aria-label="Remark, goes with your decision"
-          rightSection={<kbd className={classes.key}>r</kbd>}
-          onChange={(event) => props.onRemark(event.currentTarget.value)}
-          onKeyDown={(event) => {
-            if (event.key !== 'Escape' && event.key !== 'Enter') return;
-            event.preventDefault();
-            props.onLeaveRemark();
-          }}
-        />
-      </div>
-    </section>
+        </div>
+        <div className={classes.side} tabIndex={0} role="group" aria-label="Companions and history">
+          {chosen.candidate && (
+            <Companions
+              candidate={chosen.candidate}
+              feature={row.feature}
+              system={system}
+              systems={analysis.systems}
+              data={data}
+              display={display}
+              frameName={props.frameName}
+            />
+          )}
+          <History
+            identification={row.identification}
+            family={row.reading.family}
+            analysedAt={props.analysedAt}
+            analysisProbability={row.reading.probability}
+          />
+          <TextInput
+            id={props.remarkId}
+            className={classes.remark}
+            size="xs"
+            maxLength={500}
+            value={props.remark}
+            placeholder="Remark, goes with your decision"
+            aria-label="Remark, goes with your decision"
+            rightSection={<kbd className={classes.key}>r</kbd>}
+            onChange={(event) => props.onRemark(event.currentTarget.value)}
+            onKeyDown={(event) => {
+              if (event.key !== 'Escape' && event.key !== 'Enter') return;
+              event.preventDefault();
+              props.onLeaveRemark();
+            }}
+          />
+        </div>
+      </section>
+    </div>
   );
 }
 

@@ -1,7 +1,7 @@
 import { useVirtualizer } from '@tanstack/react-virtual';
-import { memo, useEffect, useId, useRef, type KeyboardEvent } from 'react';
+import { memo, useEffect, useId, useMemo, useRef, type CSSProperties, type KeyboardEvent } from 'react';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
-import { COLUMNS, type Column } from './columns.js';
+import { columnsFor, type Column } from './columns.js';
 import type { LineFilter, SortKey } from './filters.js';
 import type { LineRow } from './reading.js';
 import classes from './lines.module.css';
@@ -15,7 +15,8 @@ interface Props {
   display: WavelengthDisplay;
   filter: LineFilter;
   rowHeight: number;
-  narrow: boolean;
+  /** of the pane, CSS px */
+  paneWidth: number;
   onSelect: (index: number) => void;
   onHover: (index: number | null) => void;
   onSort: (key: SortKey) => void;
@@ -24,6 +25,9 @@ interface Props {
 }
 
 const HEAD = 28;
+/** In a pane narrower than this the equivalent width stands without its error. */
+const SHORT_PX = 460;
+const SHORT_WIDTH = '62px';
 /** A selection that moves farther than this many rows is brought to the middle. */
 const JUMP = 3;
 
@@ -43,10 +47,11 @@ function placeAfter(key: string, place: number, last: number, page: number): num
 
 /** The lines as a grid of rows: virtual, sortable, one tab stop. The selected row is the active one. */
 export function LineTable(props: Props) {
-  const { rows, selected, display, rowHeight, narrow, onSelect } = props;
+  const { rows, selected, display, rowHeight, paneWidth, onSelect } = props;
   const scroller = useRef<HTMLDivElement>(null);
   const gridId = useId();
-  const columns = narrow ? COLUMNS.filter((c) => !c.wideOnly) : COLUMNS;
+  const columns = useMemo(() => columnsFor(paneWidth), [paneWidth]);
+  const tracks = columns.map((c) => (c.key === 'width' && paneWidth < SHORT_PX ? SHORT_WIDTH : c.width)).join(' ');
   // eslint-disable-next-line react-hooks/incompatible-library -- rows are drawn from it right here and nowhere memoised
   const virtual = useVirtualizer({
     count: rows.length,
@@ -82,7 +87,8 @@ export function LineTable(props: Props) {
     <div
       ref={scroller}
       className={classes.grid}
-      data-narrow={narrow || undefined}
+      data-short={paneWidth < SHORT_PX || undefined}
+      style={{ '--tracks': tracks } as CSSProperties}
       role="grid"
       tabIndex={0}
       aria-label="Lines"

@@ -15,8 +15,10 @@ export interface Column {
   readonly title: (display: WavelengthDisplay) => string;
   /** numbers stand right-aligned */
   readonly number: boolean;
-  /** dropped on a narrow screen */
-  readonly wideOnly: boolean;
+  /** shown where the pane has at least this many CSS px */
+  readonly from: number;
+  /** track of the grid */
+  readonly width: string;
   readonly cell: (row: LineRow, display: WavelengthDisplay) => ReactNode;
   /** full precision, for copying; null: not copied */
   readonly plain: ((row: LineRow, display: WavelengthDisplay) => readonly (string | number | null)[]) | null;
@@ -40,7 +42,8 @@ export const COLUMNS: readonly Column[] = [
     key: 'mark',
     title: () => '',
     number: false,
-    wideOnly: false,
+    from: 0,
+    width: '28px',
     cell: (row) => <Mark family={row.reading.family} state={row.state} spoken />,
     plain: null,
     plainTitles: () => [],
@@ -49,7 +52,8 @@ export const COLUMNS: readonly Column[] = [
     key: 'wavelength',
     title: (display) => (display.unit === 'wavenumber' ? 'σ, cm⁻¹' : `λ, ${display.unitLabel}`),
     number: true,
-    wideOnly: false,
+    from: 0,
+    width: '142px',
     cell: ({ feature }, display) => {
       const sigma = feature.wavelengthSigmaNm * shownPerNm(feature.wavelengthNm, display);
       return <WithError {...columnParts(display.show(feature.wavelengthNm), sigma, wavelengthColumnDecimals(display))} />;
@@ -64,7 +68,8 @@ export const COLUMNS: readonly Column[] = [
     key: 'width',
     title: () => 'W, mÅ',
     number: true,
-    wideOnly: false,
+    from: 0,
+    width: '112px',
     cell: ({ feature }) => (
       <WithError
         {...columnParts(feature.equivalentWidthNm * MILLIANGSTROM_PER_NM, feature.equivalentWidthSigmaNm * MILLIANGSTROM_PER_NM, 1)}
@@ -77,7 +82,8 @@ export const COLUMNS: readonly Column[] = [
     key: 'fwhm',
     title: () => 'FWHM, km/s',
     number: true,
-    wideOnly: true,
+    from: 630,
+    width: '78px',
     cell: ({ feature }) => {
       const width = widthKmPerS(feature);
       return fixed(width, width < 30 ? 1 : 0) + (width < 30 ? '' : '\u2007\u2005');
@@ -89,7 +95,8 @@ export const COLUMNS: readonly Column[] = [
     key: 'reading',
     title: () => 'Reading',
     number: false,
-    wideOnly: false,
+    from: 0,
+    width: 'minmax(98px, 1fr)',
     cell: ({ reading }, display) => readingName(reading, display),
     plain: ({ reading }, display) => [reading.species ?? 'unidentified', reading.restNm === null ? null : display.show(reading.restNm)],
     plainTitles: (display) => ['species', `rest wavelength (${display.shortLabel})`],
@@ -98,7 +105,8 @@ export const COLUMNS: readonly Column[] = [
     key: 'velocity',
     title: () => 'v, km/s',
     number: true,
-    wideOnly: true,
+    from: 552,
+    width: '104px',
     cell: ({ reading }) => <WithError {...columnParts(reading.velocityKmPerS, reading.velocitySigmaKmPerS, 2, true)} />,
     plain: ({ reading }) => [reading.velocityKmPerS, reading.velocitySigmaKmPerS],
     plainTitles: () => ['velocity (km/s)', 'error (km/s)'],
@@ -107,7 +115,8 @@ export const COLUMNS: readonly Column[] = [
     key: 'probability',
     title: () => 'P',
     number: true,
-    wideOnly: false,
+    from: 0,
+    width: '58px',
     cell: ({ reading }) => probability(reading.probability),
     plain: ({ reading }) => [reading.probability],
     plainTitles: () => ['probability'],
@@ -116,12 +125,16 @@ export const COLUMNS: readonly Column[] = [
     key: 'state',
     title: () => 'State',
     number: false,
-    wideOnly: true,
+    from: 700,
+    width: '72px',
     cell: ({ state }) => STATE_WORD[state],
     plain: ({ state }) => [STATE_WORD[state]],
     plainTitles: () => ['state'],
   },
 ];
+
+/** Columns for which a pane has room. */
+export const columnsFor = (paneWidth: number) => COLUMNS.filter((c) => c.from <= paneWidth);
 
 /** Twelve digits: all that a measurement has, without the tail of binary fractions. */
 const plainText = (v: string | number | null) => (v === null ? '' : typeof v === 'number' ? String(Number(v.toPrecision(12))) : v);

@@ -45,7 +45,8 @@ function Box({ label, spoken, shown, onCommit }: BoxProps) {
 /** The ends of the window as numbers, in the shown unit: the twin of dragging it. */
 export function RangeBoxes({ view, display }: { view: ViewStore; display: WavelengthDisplay }) {
   const { fromNm, toNm } = useView(view);
-  const decimals = toNm - fromNm < 0.5 ? 3 : 2;
+  const length = toNm - fromNm; // kept when a typed end lies beyond the other one
+  const decimals = length < 0.5 ? 3 : 2;
   const commit = (put: (nm: number) => { fromNm: number; toNm: number }) => (text: string) => {
     const value = parseNumber(text);
     if (value === null || value <= 0) return false;
@@ -59,13 +60,13 @@ export function RangeBoxes({ view, display }: { view: ViewStore; display: Wavele
         label="from"
         spoken={`From, ${display.unitLabel}`}
         shown={shownWavelength(fromNm, display, decimals)}
-        onCommit={commit((nm) => ({ fromNm: nm, toNm }))}
+        onCommit={commit((nm) => ({ fromNm: nm, toNm: nm < toNm ? toNm : nm + length }))}
       />
       <Box
         label="to"
         spoken={`To, ${display.unitLabel}`}
         shown={shownWavelength(toNm, display, decimals)}
-        onCommit={commit((nm) => ({ fromNm, toNm: nm }))}
+        onCommit={commit((nm) => ({ fromNm: nm > fromNm ? fromNm : nm - length, toNm: nm }))}
       />
       <span>{display.unitLabel}</span>
     </div>

@@ -124,7 +124,6 @@ export function Workbench(props: Props) {
       inView={countInView(rows, settled)}
       selected={selected?.feature.index ?? null}
       pending={decisions.pending}
-      narrow={isPhone}
       onSelect={select}
       onHover={hover}
     />
@@ -175,12 +174,7 @@ export function Workbench(props: Props) {
       <div className={classes.unseen} role="status" aria-live="polite">
         {message}
       </div>
-      <ConflictDialog
-        conflict={decisions.conflict}
-        display={choice}
-        onKeepTheirs={decisions.keepTheirs}
-        onApplyMine={() => void decisions.applyMine()}
-      />
+      <ConflictDialog conflict={decisions.conflict} display={choice} onKeepTheirs={decisions.keepTheirs} onApplyMine={acting.insist} />
     </div>
   );
 }
@@ -217,12 +211,12 @@ interface Layout {
 function DeskLayout({ curve, lines, evidence }: Layout) {
   return (
     <Splitter orientation="vertical" className={classes.split} withHandle={false} lineSize={1} handleColor="var(--line-2)" step="16px">
-      <Splitter.Pane defaultSize={100} min={20} className={classes.pane}>
+      <Splitter.Pane defaultSize={100} min={30} className={classes.pane}>
         {curve}
       </Splitter.Pane>
       <Splitter.Pane defaultSize="360px" min="120px" className={classes.pane}>
         <Splitter className={classes.split} withHandle={false} lineSize={1} handleColor="var(--line-2)" step="16px">
-          <Splitter.Pane defaultSize="736px" min="420px" className={classes.pane}>
+          <Splitter.Pane defaultSize={`${Math.min(736, Math.round(window.innerWidth * 0.52))}px`} min="360px" className={classes.pane}>
             {lines}
           </Splitter.Pane>
           <Splitter.Pane defaultSize={100} min={25} className={classes.pane}>

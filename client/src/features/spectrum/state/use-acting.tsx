@@ -26,6 +26,8 @@ interface Needs {
 export interface Acting {
   readonly act: (action: ReviewAction) => void;
   readonly undo: () => void;
+  /** puts the decision that met a teammate's over theirs */
+  readonly insist: () => void;
   /** goes to the next line still to be decided */
   readonly goOn: (direction: 1 | -1) => void;
   readonly remark: string;
@@ -94,7 +96,19 @@ export function useActing({ selection, decisions, rows, shown, role, display, sa
     [selected, chosen, role, shown, rows, display, remark, decisions, select, say, undo],
   );
 
-  return { act, undo, goOn, remark, setRemark };
+  const insist = useCallback(() => {
+    const index = decisions.conflict?.mine.featureIndex;
+    decisions.applyMine().then(
+      (agreed) => {
+        if (!agreed || index === undefined) return;
+        setRemarks(({ [index]: _sent, ...rest }) => rest);
+        say('Your decision is saved over theirs.');
+      },
+      (error: unknown) => notifications.show({ title: 'Not saved', message: errorSentence(error) }),
+    );
+  }, [decisions, say]);
+
+  return { act, undo, insist, goOn, remark, setRemark };
 }
 
 const TOAST = 'decision';
