@@ -91,6 +91,7 @@ export function detect(input: DetectionInput): Detection {
   model.refit(1, undefined, ROUGH);
   pruneWeak(model, threshold);
   model.refit(1);
+  pruneWeak(model, threshold * 0.9);
   model.refresh();
   return { model, threshold };
 }

@@ -15,22 +15,38 @@ import {
 } from '../profiles/index.js';
 import type { LineModel } from './model.js';
 
-/** Takes out components that the joint fit no longer supports. */
+const PASSES = 8;
+
+/**
+ * Takes out components that the joint fit no longer supports, of those that overlap only the weakest at a time: where three stand for two,
+ * none looks significant, and two of them are.
+ */
 export function pruneWeak(model: LineModel, threshold: number): void {
-  const gone = new Set<Component>();
-  for (const c of model.components) {
-    const significance = c.amplitude / c.sigmaAmplitude;
-    const { narrowest } = model.limitsAt(c.centre);
-    const impossible = c.amplitude <= 0 || !(significance > threshold) || c.fwhm <= narrowest * 1.001;
-    if (impossible) gone.add(c);
+  for (let pass = 0; pass < PASSES; pass++) {
+    const weak = model.components
+      .map((c) => ({ c, worth: worthOf(c, model) }))
+      .filter(({ worth }) => !(worth > threshold))
+      .sort((a, b) => a.worth - b.worth);
+    const gone = new Set<Component>();
+    for (const { c } of weak) if (pass === PASSES - 1 || ![...gone].some((g) => overlap(g, c))) gone.add(c);
+    if (gone.size === 0) return;
+    const touched = new Set(model.components.filter((c) => !gone.has(c) && [...gone].some((g) => overlap(g, c))));
+    model.remove(gone);
+    model.refit(1, touched, ROUGH);
   }
-  if (gone.size === 0) return;
-  const touched = new Set(
-    model.components.filter((c) => !gone.has(c) && [...gone].some((g) => Math.abs(g.centre - c.centre) < 1.5 * (g.fwhm + c.fwhm))),
-  );
-  model.remove(gone);
-  model.refit(1, touched, ROUGH);
 }
+
+/** Significance; nothing for what is no line at all: narrower than the instrument allows, or taking back what another one gives. */
+function worthOf(c: Component, model: LineModel): number {
+  const impossible = c.amplitude <= 0 || c.fwhm <= model.limitsAt(c.centre).narrowest * 1.001 || !(c.sigmaAmplitude > 0);
+  return impossible || model.components.some((o) => cancels(o, c)) ? 0 : c.amplitude / c.sigmaAmplitude;
+}
+
+/** Whether a dip and a peak of one place and width stand against each other: any amount of both fits as well. */
+const cancels = (o: Component, c: Component): boolean =>
+  o.kind !== c.kind && o.amplitude >= c.amplitude && Math.abs(o.centre - c.centre) < 0.25 * c.fwhm && near(o.fwhm, c.fwhm, 1.3);
+
+const overlap = (a: Component, b: Component): boolean => Math.abs(a.centre - b.centre) < 1.5 * (a.fwhm + b.fwhm);
 
 const SPECIAL_SIGNIFICANCE = 25; // a shape can be told from a Gaussian only in strong lines
 const BROAD = 1.6; // in resolution elements
