@@ -4,6 +4,7 @@ import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
 import {
   applyRotation,
+  dropBridges,
   dropNeedless,
   findRotation,
   gatherDamped,
@@ -86,6 +87,7 @@ export function detect(input: DetectionInput): Detection {
   model.refresh();
   gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
   dropNeedless(model, threshold, tolerantOf(model), rotation);
+  dropBridges(model, threshold, tolerantOf(model));
   mergeShreds(model, threshold, tolerantOf(model));
   splitBlends(model, threshold, resolvingPower);
   model.refit(1, undefined, ROUGH);

@@ -278,6 +278,30 @@ export function dropNeedless(model: LineModel, threshold: number, tolerant: Norm
   model.remove(gone);
 }
 
+/**
+ * Takes out a component that bridges two narrower ones where these, free to widen, do without it: what the first rounds make of two lines
+ * hardly apart is one broad dip with two cores on it.
+ */
+export function dropBridges(model: LineModel, threshold: number, tolerant: NormalisedSamples): void {
+  const gone = new Set<Component>();
+  for (const c of model.components) {
+    const inner = model.components.filter(
+      (o) => o !== c && !gone.has(o) && o.kind === c.kind && 1.3 * o.fwhm < c.fwhm && Math.abs(o.centre - c.centre) < 0.6 * c.fwhm,
+    );
+    if (inner.length !== 2 || !inner.some((o) => o.centre < c.centre) || !inner.some((o) => o.centre > c.centre)) continue;
+    const others = model.overlapping([c, ...inner]).filter((o) => !gone.has(o));
+    const limits = model.limitsAt(c.centre);
+    const range = rangeOf([c, ...inner]);
+    const three = fitBlend(tolerant, [{ ...c }, ...inner.map((o) => ({ ...o }))], others, limits, range);
+    const pair = inner.map((o) => newComponent(o.kind, o.centre, 1.4 * o.fwhm, Math.min(o.amplitude + 0.5 * c.amplitude, 0.95), o.core));
+    const two = fitBlend(tolerant, pair, others, limits, range);
+    if (two.chi2 > three.chi2 + threshold * threshold) continue;
+    gone.add(c);
+    inner.forEach((o, k) => Object.assign(o, pair[k]));
+  }
+  model.remove(gone);
+}
+
 /** Replaces two overlapping components by one where the data do not need both. */
 export function mergeShreds(model: LineModel, threshold: number, tolerant: NormalisedSamples): void {
   const penalty = threshold * threshold;
@@ -314,6 +338,8 @@ function together(a: Component, b: Component): Component {
   return one;
 }
 
+const NARROW = 5; // resolution elements: two lines side by side may pass for one with a flat bottom
+
 /** Splits a component in two where two fit much better and lie far enough apart to be told from each other. */
 export function splitBlends(model: LineModel, threshold: number, resolvingPower: number): void {
   const penalty = 1.5 * threshold * threshold;
@@ -321,7 +347,7 @@ export function splitBlends(model: LineModel, threshold: number, resolvingPower:
   const gone = new Set<Component>();
   for (const c of model.components) {
     const element = c.centre / resolvingPower;
-    if (c.fwhm < 1.25 * element || c.amplitude / c.sigmaAmplitude < 12 || c.damped) continue;
+    if (c.fwhm < 1.25 * element || c.amplitude / c.sigmaAmplitude < 12 || (c.damped && c.fwhm > NARROW * element)) continue;
     const others = model.overlapping([c]);
     const limits = model.limitsAt(c.centre);
     const range = rangeOf([c]);
