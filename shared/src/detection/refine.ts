@@ -36,9 +36,13 @@ export function pruneWeak(model: LineModel, threshold: number): void {
   }
 }
 
-/** Significance; nothing for what is no line at all: narrower than the instrument allows, or taking back what another one gives. */
+/**
+ * Significance; nothing for what is no line at all: a dip narrower than the instrument allows, or what takes back what another one gives.
+ * A peak that narrow is a cosmic ray, and is kept to be flagged.
+ */
 function worthOf(c: Component, model: LineModel): number {
-  const impossible = c.amplitude <= 0 || c.fwhm <= model.limitsAt(c.centre).narrowest * 1.001 || !(c.sigmaAmplitude > 0);
+  const tooNarrow = c.kind === 'dip' && c.fwhm <= model.limitsAt(c.centre).narrowest * 1.001;
+  const impossible = tooNarrow || c.amplitude <= 0 || !(c.sigmaAmplitude > 0);
   return impossible || model.components.some((o) => cancels(o, c)) ? 0 : c.amplitude / c.sigmaAmplitude;
 }
 
