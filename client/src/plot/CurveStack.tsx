@@ -5,11 +5,12 @@ import { AXIS_HEIGHT, WavelengthAxis } from './WavelengthAxis.js';
 import { Curve } from './Curve.js';
 import { Residual, RESIDUAL_BAND, RESIDUAL_LABELS } from './Residual.js';
 import { StaveHeads } from './StaveHeads.js';
-import { STAVE_HEIGHT, STAVES_TOP, Staves } from './Staves.js';
+import { Staves } from './Staves.js';
+import { STAVE_HEIGHT, STAVES_TOP } from './stave-parts.js';
 import type { CurveData } from './curve-data.js';
 import { useCursor, type CursorStore } from './cursor.js';
 import { TOP_ROOM } from './curve-options.js';
-import { FILL_CAP, lightCss } from './light.js';
+import { FILL_CAP, lightCss, visibility } from './light.js';
 import { usePalette } from './palette.js';
 import type { DueLine, PlotFeature, Stave } from './plot-feature.js';
 import { scaledUnit } from './value-axis.js';
@@ -191,6 +192,8 @@ function ResidualRow({ data, view, gutter, narrow, width, top, height }: CurveSt
 function Legend({ data, emission, view, style }: CurveStackProps & { style: React.CSSProperties }) {
   const palette = usePalette();
   const { fromNm, toNm } = view.get();
+  const middle = (fromNm + toNm) / 2;
+  const light = visibility(middle) > 0.05 ? lightCss(middle, FILL_CAP[palette.scheme]) : palette.hatch;
   const line = (path: string, stroke: string, width: number, dash?: string) => (
     <svg width={20} height={10} aria-hidden="true">
       <path d={path} fill="none" stroke={stroke} strokeWidth={width} strokeDasharray={dash} />
@@ -205,15 +208,7 @@ function Legend({ data, emission, view, style }: CurveStackProps & { style: Reac
           <span>{line('M0,5h20', 'var(--interstellar)', 1.7)}fit, in its family’s colour</span>
           <span>
             <svg width={14} height={10} aria-hidden="true">
-              <rect
-                x={0.4}
-                y={0.4}
-                width={13.2}
-                height={9.2}
-                fill={lightCss((fromNm + toNm) / 2, FILL_CAP[palette.scheme])}
-                stroke="var(--curve)"
-                strokeWidth={0.8}
-              />
+              <rect x={0.4} y={0.4} width={13.2} height={9.2} fill={light} stroke="var(--curve)" strokeWidth={0.8} />
             </svg>
             {emission ? 'light given' : 'light taken'}
           </span>

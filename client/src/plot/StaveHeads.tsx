@@ -1,7 +1,7 @@
 import { signed } from '../lib/number.js';
 import { Mark } from './Mark.js';
 import type { Stave } from './plot-feature.js';
-import { STAVE_HEIGHT, STAVES_TOP } from './Staves.js';
+import { STAVE_HEIGHT, STAVES_TOP } from './stave-parts.js';
 import classes from './plot.module.css';
 
 interface Props {

@@ -1,5 +1,5 @@
 import { dopplerVelocity, type VacuumNm } from '@foreveil/shared';
-import { signed, withError } from '../../../lib/number.js';
+import { fixed, signed, withError } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
 import { shownWavelength } from '../../../plot/axis-ticks.js';
 import type { CurveData } from '../../../plot/curve-data.js';
@@ -25,7 +25,7 @@ export function readAt(data: CurveData, sample: number, display: WavelengthDispl
   return {
     wavelength: `${shownWavelength(nm, display, 4)} ${display.unitLabel}`,
     flux: data.bad[sample] ? 'masked' : withError(data.flux.values[sample]! / scale, data.sigma ? data.sigma[sample]! / scale : null),
-    normalised: data.fitted && !data.bad[sample] ? data.fitted.normalised.values[sample]!.toFixed(3) : null,
+    normalised: data.fitted && !data.bad[sample] ? fixed(data.fitted.normalised.values[sample]!, 3) : null,
     velocity: rest === null ? null : `${signed(dopplerVelocity(nm as VacuumNm, rest as VacuumNm), 1)} km/s`,
     from: rest === null || !row ? null : readingName(row.reading, display),
   };

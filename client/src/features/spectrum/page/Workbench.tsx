@@ -1,7 +1,6 @@
 import type { AnalysisDetail, Identification, MemberRole, SpectrumDetail } from '@foreveil/shared';
-import { Splitter } from '@mantine/core';
 import { useMediaQuery } from '@mantine/hooks';
-import { startTransition, useCallback, useDeferredValue, useEffect, useId, useRef, useMemo, useState, type KeyboardEvent } from 'react';
+import { startTransition, useCallback, useDeferredValue, useEffect, useId, useMemo, useState, type KeyboardEvent } from 'react';
 import { looksLikeEmission } from '../../../lib/emission.js';
 import { useNow } from '../../../lib/useNow.js';
 import { CurveStack } from '../../../plot/CurveStack.js';
@@ -28,6 +27,7 @@ import { useCommands } from '../state/use-commands.js';
 import { useAddress, type PageSettings } from '../state/use-page-state.js';
 import { rowAt, useSelection } from '../state/use-selection.js';
 import { useSettledView } from '../state/use-settled.js';
+import { DeskLayout, PhoneLayout } from './layouts.js';
 import { Toolbar } from './Toolbar.js';
 import { FRAME_SHORT } from './facts.js';
 import classes from './spectrum.module.css';
@@ -199,62 +199,4 @@ function NoEvidence({ rows, hasResult }: { rows: number; hasResult: boolean }) {
       ? 'The analysis found no line in this spectrum.'
       : 'Select a line to see what speaks for its reading and what against.';
   return <div className={evidenceClasses.empty}>{words}</div>;
-}
-
-interface Layout {
-  curve: React.ReactNode;
-  lines: React.ReactNode;
-  evidence: React.ReactNode;
-}
-
-/** Curve over lines and evidence; both borders can be moved. */
-function DeskLayout({ curve, lines, evidence }: Layout) {
-  return (
-    <Splitter orientation="vertical" className={classes.split} withHandle={false} lineSize={1} handleColor="var(--line-2)" step="16px">
-      <Splitter.Pane defaultSize={100} min={30} className={classes.pane}>
-        {curve}
-      </Splitter.Pane>
-      <Splitter.Pane defaultSize="360px" min="120px" className={classes.pane}>
-        <Splitter className={classes.split} withHandle={false} lineSize={1} handleColor="var(--line-2)" step="16px">
-          <Splitter.Pane defaultSize={`${Math.min(736, Math.round(window.innerWidth * 0.52))}px`} min="360px" className={classes.pane}>
-            {lines}
-          </Splitter.Pane>
-          <Splitter.Pane defaultSize={100} min={25} className={classes.pane}>
-            {evidence}
-          </Splitter.Pane>
-        </Splitter>
-      </Splitter.Pane>
-    </Splitter>
-  );
-}
-
-/** One column; the claim peeks from below and opens over the table, the curve stays in sight. */
-function PhoneLayout({ curve, lines, evidence, claim }: Layout & { claim: string }) {
-  const [open, setOpen] = useState(false);
-  const plot = useRef<HTMLDivElement>(null);
-  const show = () => {
-    setOpen(true);
-    plot.current?.scrollIntoView({ block: 'start' }); // the curve stays in sight above the sheet
-  };
-  return (
-    <>
-      <div ref={plot} className={classes.inSight}>
-        {curve}
-      </div>
-      {lines}
-      <div className={classes.sheet} data-open={open || undefined}>
-        <button
-          type="button"
-          className={classes.grabber}
-          aria-expanded={open}
-          aria-label={open ? 'Close the evidence' : `Open the evidence: ${claim}`}
-          onClick={open ? () => setOpen(false) : show}
-        />
-        {/* closed, only the claim peeks out: a tap opens it, and nothing hidden takes the focus */}
-        <div onClick={open ? undefined : show}>
-          <div inert={!open}>{evidence}</div>
-        </div>
-      </div>
-    </>
-  );
 }
