@@ -20,6 +20,7 @@ const HYDROGEN_SCATTER = 0.35;
 const SPECIES_SIGMA = 0.35; // dex: ionisation, non-LTE, abundance
 const SIGNIFICANT = 7; // of the correlation peak, in robust scatters of the score
 const MEMBERS = 5; // dips that the template must explain
+const ENOUGH = 8; // ln evidence, as asked of nebulae and of the air: among few dips some template fits by chance
 
 interface Photosphere {
   readonly temperatureK: number;
@@ -52,7 +53,7 @@ export function findStar(scene: Scene, lines: readonly Line[], hint: Temperature
     if (moved.members < MEMBERS) break;
     star = starModel(lines, best, moved.velocity, moved.sigma, fwhmV, scale, coverage);
   }
-  return star;
+  return weigh(star, scene).evidence > ENOUGH ? star : hydrogenStar(dips, lines, coverage, hint, rangeV);
 }
 
 const HYDROGEN_MEMBERS = 3;
