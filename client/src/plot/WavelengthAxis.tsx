@@ -45,10 +45,10 @@ export function AxisTicks({
     <svg width={width} height={AXIS_HEIGHT} className={classes.axis} aria-hidden="true">
       <line x1={0} x2={width} y1={0.5} y2={0.5} stroke="var(--line-2)" />
       {placeTicks(range, width, display, spacingPx).map(({ label, x, labelled }) => (
-        <g key={label} transform={`translate(${x.toFixed(1)} 0)`}>
-          <line y1={0} y2={4} stroke="var(--line-2)" />
+        <g key={label}>
+          <line x1={x} x2={x} y1={0} y2={4} stroke="var(--line-2)" />
           {labelled && (
-            <text y={17} textAnchor="middle">
+            <text x={x} y={17} textAnchor="middle">
               {label}
             </text>
           )}

@@ -196,7 +196,7 @@ const Row = memo(function Row({
       aria-busy={isPending || undefined}
       className={classes.row}
       data-hovered={isHovered || undefined}
-      style={{ height, transform: `translateY(${top}px)` }}
+      style={{ height, top }}
       onClick={() => onSelect(index)}
       onPointerEnter={() => onHover(index)}
       onPointerLeave={() => onHover(null)}
