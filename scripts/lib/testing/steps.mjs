@@ -59,7 +59,7 @@ export const allSteps = (patterns) => [
   },
   jest('unit', 'tests of shared and server', {}, patterns),
   jest('reference', 'published values and foreign fixtures', {}, patterns),
-  jest('browser', 'whole journeys in Chromium', { needs: ['build', 'database', 'chromium'], alone: true }, patterns),
+  jest('browser', 'whole journeys in Chromium', { needs: ['build', 'database', 'chromium'], workers: 2, alone: true }, patterns),
 ];
 
 const cruised = ['shared/src', 'server/src', 'client/src', 'migrations', 'seeds'];
