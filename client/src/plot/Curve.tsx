@@ -2,8 +2,7 @@ import 'uplot/dist/uPlot.min.css';
 import { useEffect, useLayoutEffect, useRef } from 'react';
 import uPlot from 'uplot';
 import type { CurveData } from './curve-data.js';
-import { curveOptions, DENSE_WIDTH, frameOf, STEP_WIDTH, type CurveScene } from './curve-options.js';
-import { isDense } from './curve-paths.js';
+import { curveOptions, type CurveScene } from './curve-options.js';
 import type { CursorStore } from './cursor.js';
 import { attachGestures } from './gestures.js';
 import { usePalette } from './palette.js';
@@ -66,7 +65,6 @@ export function Curve({ data, features, view, cursor, mode, base, emission, widt
       if (!u) return;
       const range = view.get();
       const [low, high] = valueDomain(data, mode, base, range);
-      u.series[2]!.width = isDense(data.wavelength, { ...frameOf(u), ...range }) ? DENSE_WIDTH : STEP_WIDTH;
       u.batch(() => {
         u.setScale('x', { min: range.fromNm, max: range.toNm });
         u.setScale('y', { min: low, max: high });

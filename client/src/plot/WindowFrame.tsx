@@ -90,7 +90,7 @@ export function WindowFrame({ view, display, width, height }: Props) {
       <div
         className={classes.frame}
         style={{ left: left - 1, width: span + 2, top: -6, height: height + 6 }}
-        data-glide={drag ? undefined : true}
+        data-glide={drag || view.inGesture ? undefined : true}
         role="slider"
         tabIndex={0}
         aria-label="Window on the spectrum"

@@ -1,6 +1,6 @@
 import uPlot from 'uplot';
 import type { CurveData } from './curve-data.js';
-import { extremesPath, isDense, smoothPath, stepPath, type Frame } from './curve-paths.js';
+import { columnBars, isDense, smoothPath, stepPath, type Frame } from './curve-paths.js';
 import { drawFits } from './draw-fits.js';
 import { drawLight } from './draw-light.js';
 import type { Palette } from './palette.js';
@@ -19,9 +19,8 @@ export interface CurveScene {
   emission: boolean;
 }
 
-/** Stroke of single steps, and of the band of extremes that a wide stretch is; CSS px. */
-export const STEP_WIDTH = 1.15;
-export const DENSE_WIDTH = 0.7;
+/** Stroke of single steps, CSS px. */
+const STEP_WIDTH = 1.15;
 
 /** Room above the plot area, so that a label at its top edge is not cut; CSS px. */
 export const TOP_ROOM = 8;
@@ -35,13 +34,21 @@ export function frameOf(u: uPlot): Frame {
   return { left, top, width, height, fromNm: x.min ?? 0, toNm: x.max ?? 1, low: y.min ?? 0, high: y.max ?? 1 };
 }
 
-function curvePath(u: uPlot, { data, mode }: CurveScene): uPlot.Series.Paths {
+/** Single steps; a stretch of more samples than pixels is drawn by `drawDense`. */
+function stepsOf(u: uPlot, { data, mode }: CurveScene): uPlot.Series.Paths | null {
   const f = frameOf(u);
-  const { curve } = layerOf(data, mode);
+  if (isDense(data.wavelength, f)) return null;
   const stroke = new Path2D();
-  if (isDense(data.wavelength, f)) extremesPath(stroke, f, columnsOf(data.wavelength, curve, f.fromNm, f.toNm, Math.round(f.width)));
-  else stepPath(stroke, f, { wavelength: data.wavelength, values: curve.values, bad: data.bad });
+  stepPath(stroke, f, { wavelength: data.wavelength, values: layerOf(data, mode).curve.values, bad: data.bad });
   return { stroke };
+}
+
+function drawDense(u: uPlot, { data, mode, palette }: CurveScene): void {
+  const f = frameOf(u);
+  if (!isDense(data.wavelength, f)) return;
+  const columns = columnsOf(data.wavelength, layerOf(data, mode).curve, f.fromNm, f.toNm, Math.round(f.width));
+  u.ctx.fillStyle = palette.curve;
+  columnBars(f, columns, (x, top, height) => u.ctx.fillRect(x, top, 1, height));
 }
 
 function continuumPath(u: uPlot, { data, mode }: CurveScene): uPlot.Series.Paths | null {
@@ -87,7 +94,7 @@ export function curveOptions(
         stroke: () => scene.palette.curve,
         width: STEP_WIDTH,
         points: { show: false },
-        paths: (u) => curvePath(u, scene),
+        paths: (u) => stepsOf(u, scene),
       },
     ],
     hooks: {
@@ -98,7 +105,10 @@ export function curveOptions(
         },
       ],
       draw: [
-        (u) => drawFits(u.ctx, frameOf(u), scene.data, scene.mode === 'normalised', scene.features, scene.palette, 1.7 * uPlot.pxRatio),
+        (u) => {
+          drawDense(u, scene);
+          drawFits(u.ctx, frameOf(u), scene.data, scene.mode === 'normalised', scene.features, scene.palette, 1.7 * uPlot.pxRatio);
+        },
       ],
       setSelect: [
         (u) => {

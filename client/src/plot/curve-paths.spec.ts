@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { extremesPath, isDense, lightPath, pixelEdges, stepPath, xOf, yOf, type Frame, type Pen } from './curve-paths.js';
+import { columnBars, extremesPath, isDense, lightPath, pixelEdges, stepPath, xOf, yOf, type Frame, type Pen } from './curve-paths.js';
 import { buildPyramid, columnsOf } from './pyramid.js';
 
 const frame: Frame = { left: 0, top: 0, width: 100, height: 100, fromNm: 0, toNm: 10, low: 0, high: 1 };
@@ -78,6 +78,32 @@ describe('a curve of more samples than pixels', () => {
     const gap = Float32Array.of(1, 1, NaN, NaN, NaN, 1, 1);
     extremesPath(pen, { ...frame, width: 7 }, { low: gap, high: gap });
     expect(pen.strokes).toHaveLength(2);
+  });
+});
+
+describe('bars of columns', () => {
+  const bars = (low: number[], high: number[]) => {
+    const out: [number, number, number][] = [];
+    columnBars({ ...frame, width: low.length }, { low: Float32Array.from(low), high: Float32Array.from(high) }, (...bar) => out.push(bar));
+    return out;
+  };
+
+  it('reach from the highest to the lowest sample, at least one pixel', () => {
+    expect(bars([0.2, 0.2], [0.9, 0.9])).toEqual([
+      [0, 10, 70],
+      [1, 10, 70],
+    ]);
+    expect(bars([0.5], [0.5])).toEqual([[0, 50, 1]]);
+  });
+
+  it('meet their neighbours on a slope and stop at a gap', () => {
+    const [, down, , alone] = bars(
+      [0.9, 0.3, NaN, 0.1, 0.1].filter((_, i) => i !== 4),
+      [0.9, 0.4, NaN, 0.1],
+    );
+    expect(down![1]).toBe(11); // up to the end of the bar before
+    expect(alone).toBeUndefined();
+    expect(bars([0.9, NaN, 0.1], [0.9, NaN, 0.1]).at(-1)).toEqual([2, 90, 1]);
   });
 });
 

@@ -88,22 +88,61 @@ export interface Columns {
   readonly high: Float32Array;
 }
 
+interface Edges {
+  readonly fromNm: number;
+  readonly toNm: number;
+  /** first sample of each column, and after the last */
+  readonly starts: Uint32Array;
+}
+
+/** The newest edges of each wavelength array: within one frame light, curve and residual ask for the same. */
+const newestEdges = new WeakMap<Float64Array, Edges>();
+
+function edgesOf(wavelength: Float64Array, fromNm: number, toNm: number, n: number): Uint32Array {
+  const newest = newestEdges.get(wavelength);
+  if (newest && newest.fromNm === fromNm && newest.toNm === toNm && newest.starts.length === n + 1) return newest.starts;
+  const starts = new Uint32Array(n + 1);
+  starts[0] = lowerBound(wavelength, fromNm);
+  const end = upperBound(wavelength, toNm, starts[0]);
+  for (let c = 1; c < n; c++) {
+    const edge = fromNm + (c / n) * (toNm - fromNm);
+    starts[c] = lowerBoundNear(wavelength, edge, starts[c - 1]!, end);
+  }
+  starts[n] = end;
+  newestEdges.set(wavelength, { fromNm, toNm, starts });
+  return starts;
+}
+
+/** `lowerBound` for a place not far from `from`: strides that double, then bisection. */
+export function lowerBoundNear(ascending: Float64Array, x: number, from: number, end: number): number {
+  let stride = 16;
+  let low = from;
+  while (low + stride < end && ascending[low + stride]! < x) {
+    low += stride;
+    stride *= 2;
+  }
+  return lowerBound(ascending, x, low, Math.min(low + stride + 1, end));
+}
+
+/** The newest columns of each pyramid, for the same reason. */
+const newestColumns = new WeakMap<Pyramid, { readonly starts: Uint32Array; readonly columns: Columns }>();
+
 /** The samples between two wavelengths in `n` columns of equal width. A sample belongs to the column its wavelength falls in. */
 export function columnsOf(wavelength: Float64Array, pyramid: Pyramid, fromNm: number, toNm: number, n: number): Columns {
+  const starts = edgesOf(wavelength, fromNm, toNm, n);
+  const newest = newestColumns.get(pyramid);
+  if (newest?.starts === starts) return newest.columns;
   const low = new Float32Array(n).fill(NaN);
   const high = new Float32Array(n).fill(NaN);
   const pair = new Float64Array(2);
-  let start = lowerBound(wavelength, fromNm);
   for (let column = 0; column < n; column++) {
-    const end =
-      column === n - 1 ? upperBound(wavelength, toNm, start) : lowerBound(wavelength, fromNm + ((column + 1) / n) * (toNm - fromNm), start);
-    extremes(pyramid, start, end, pair);
+    extremes(pyramid, starts[column]!, starts[column + 1]!, pair);
     if (pair[0]! <= pair[1]!) {
       low[column] = pair[0]!;
       high[column] = pair[1]!;
     }
-    start = end;
   }
+  newestColumns.set(pyramid, { starts, columns: { low, high } });
   return { low, high };
 }
 

@@ -19,6 +19,8 @@ export class ViewStore {
   private past: Range[] = [];
   private future: Range[] = [];
   private lastMove = -Infinity;
+  /** whether the newest step was part of a gesture, which is followed at once, and not a jump, which may glide */
+  inGesture = false;
   private readonly listeners = new Set<() => void>();
 
   constructor(
@@ -42,6 +44,7 @@ export class ViewStore {
   show(range: Range) {
     this.remember();
     this.lastMove = -Infinity;
+    this.inGesture = false;
     this.put(range);
   }
 
@@ -50,6 +53,7 @@ export class ViewStore {
     const now = this.now();
     if (now - this.lastMove > SAME_GESTURE_MS) this.remember();
     this.lastMove = now;
+    this.inGesture = true;
     this.put(range);
   }
 
@@ -91,6 +95,7 @@ export class ViewStore {
     if (!range) return;
     to.push(this.range);
     this.lastMove = -Infinity;
+    this.inGesture = false;
     this.put(range);
   }
 

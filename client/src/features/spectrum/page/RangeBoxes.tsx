@@ -2,7 +2,8 @@ import { useId, useState } from 'react';
 import { parseNumber } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
 import { shownWavelength } from '../../../plot/axis-ticks.js';
-import { useView, type ViewStore } from '../../../plot/view.js';
+import type { Range, ViewStore } from '../../../plot/view.js';
+import { useSettledView } from '../state/use-settled.js';
 import classes from './spectrum.module.css';
 
 interface BoxProps {
@@ -44,14 +45,14 @@ function Box({ label, spoken, shown, onCommit }: BoxProps) {
 
 /** The ends of the window as numbers, in the shown unit: the twin of dragging it. */
 export function RangeBoxes({ view, display }: { view: ViewStore; display: WavelengthDisplay }) {
-  const { fromNm, toNm } = useView(view);
-  const length = toNm - fromNm; // kept when a typed end lies beyond the other one
-  const decimals = length < 0.5 ? 3 : 2;
-  const commit = (put: (nm: number) => { fromNm: number; toNm: number }) => (text: string) => {
+  const { fromNm, toNm } = useSettledView(view, 60);
+  const decimals = toNm - fromNm < 0.5 ? 3 : 2;
+  /** `put` is given the window as it is, which what is shown may be behind; its length is kept when a typed end lies beyond the other one. */
+  const commit = (put: (nm: number, window: Range, length: number) => Range) => (text: string) => {
     const value = parseNumber(text);
     if (value === null || value <= 0) return false;
-    const range = put(display.read(value));
-    view.show(range);
+    const window = view.get();
+    view.show(put(display.read(value), window, window.toNm - window.fromNm));
     return true;
   };
   return (
@@ -60,13 +61,13 @@ export function RangeBoxes({ view, display }: { view: ViewStore; display: Wavele
         label="from"
         spoken={`From, ${display.unitLabel}`}
         shown={shownWavelength(fromNm, display, decimals)}
-        onCommit={commit((nm) => ({ fromNm: nm, toNm: nm < toNm ? toNm : nm + length }))}
+        onCommit={commit((nm, { toNm }, length) => ({ fromNm: nm, toNm: nm < toNm ? toNm : nm + length }))}
       />
       <Box
         label="to"
         spoken={`To, ${display.unitLabel}`}
         shown={shownWavelength(toNm, display, decimals)}
-        onCommit={commit((nm) => ({ fromNm: nm > fromNm ? fromNm : nm - length, toNm: nm }))}
+        onCommit={commit((nm, { fromNm }, length) => ({ fromNm: nm > fromNm ? fromNm : nm - length, toNm: nm }))}
       />
       <span>{display.unitLabel}</span>
     </div>

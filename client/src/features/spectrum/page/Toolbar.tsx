@@ -4,7 +4,8 @@ import { UNIT_LABEL, type WavelengthChoice } from '../../../lib/wavelength.js';
 import type { CurveData } from '../../../plot/curve-data.js';
 import type { CursorStore } from '../../../plot/cursor.js';
 import type { Base, CurveMode } from '../../../plot/value-domain.js';
-import { useView, type ViewStore } from '../../../plot/view.js';
+import type { ViewStore } from '../../../plot/view.js';
+import { useSettledView } from '../state/use-settled.js';
 import type { LineRow } from '../lines/reading.js';
 import { RangeBoxes } from './RangeBoxes.js';
 import { Readout } from './Readout.js';
@@ -89,7 +90,7 @@ const SHOWN_IN = (Object.entries(UNIT_LABEL) as [WavelengthUnit, string][]).flat
 
 /** History and zoom as buttons: twins of keys, wheel and drag. */
 function ViewButtons({ view }: { view: ViewStore }) {
-  useView(view); // the history changes with the view
+  useSettledView(view, 60); // the history changes with the view
   return (
     <div className={classes.group} role="group" aria-label="View">
       <button
