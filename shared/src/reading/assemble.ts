@@ -1,7 +1,7 @@
 import type { FluxKind, Spectrum } from '../spectrum/index.js';
 import { AIR_STARTS_NM, hzPerNm, toVacuumInPlace, type Medium } from '../units/index.js';
 import { cgsPerHz } from './columns/flux-unit.js';
-import { assumed, notStated } from './columns/medium.js';
+import { assumed, notStated, stated } from './columns/medium.js';
 import { checkAxis, checkFlux, checkSize, isWavelength } from './checks.js';
 import { mergeDuplicates, type Columns } from './merge.js';
 import { ascendingOrder } from './order.js';
@@ -63,6 +63,12 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
       maskColumn: maskUsed ? raw.mask!.name : null,
       resolvingPower,
       observedAt: facts.observedAt,
+      time: notStated(null),
+      exposureS: notStated(null),
+      midMjdUtc: notStated(null),
+      site: notStated(null),
+      pointing: facts.raDeg === null ? notStated(null) : stated({ raDeg: facts.raDeg, decDeg: facts.decDeg! }, 'position'),
+      observerVelocityKmPerS: notStated(null),
       instrument: facts.instrument,
       telescope: facts.telescope,
       raDeg: facts.raDeg,
@@ -70,6 +76,10 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
       firstNm,
       lastNm,
       columns: raw.columns,
+      columnFacts: [],
+      places: [],
+      checksums: [],
+      segments: [],
       otherPlaces: raw.otherPlaces,
       header: raw.header,
       warnings,

@@ -4,6 +4,14 @@ export type FluxKind = 'per_wavelength' | 'per_frequency' | 'normalised' | 'coun
 /** Velocity frame in which the wavelengths stand. */
 export type Frame = 'topocentric' | 'geocentric' | 'heliocentric' | 'barycentric' | 'lsrk' | 'lsrd' | 'source' | 'unknown';
 
+/** Neighbouring samples of one order or piece of the file: `from` to `to` (exclusive) of the arrays. */
+export interface Segment {
+  readonly from: number;
+  readonly to: number;
+  /** what the piece is called: 'row 3', 'lines 402 to 801' */
+  readonly name: string;
+}
+
 /**
  * One reduced 1-D spectrum as the analysis sees it. Columns of equal length; never an array of objects.
  * Bad samples stay in place with `bad[i] = 1` and carry zero weight.
@@ -21,4 +29,14 @@ export interface Spectrum {
   /** lambda / FWHM of the instrument profile; null when not stated */
   readonly resolvingPower: number | null;
   readonly frame: Frame;
+  /**
+   * The orders it was joined from, in ascending order, without gaps or overlap; absent or one entry when it is of one piece.
+   * Flux scale, noise and resolving power may step from one to the next; no sample of two orders was mixed into one.
+   */
+  readonly segments?: readonly Segment[];
+  /**
+   * Velocity, km/s, at which lines of the Earth's air stand on these wavelengths: 0 in a topocentric spectrum, else minus the
+   * correction that brought it to its frame. Null or absent: not known, look within the reach of the frame.
+   */
+  readonly observerVelocityKmPerS?: number | null;
 }
