@@ -14,7 +14,7 @@ const SHARED = {
   linelist: ['units'],
   frames: ['units'],
   identify: ['units', 'spectrum', 'linelist', 'profiles', 'atoms', 'numeric'],
-  sightlines: ['spectrum', 'profiles', 'linelist', 'units', 'numeric'],
+  sightlines: ['spectrum', 'noise', 'profiles', 'linelist', 'atoms', 'units', 'numeric'],
   review: [],
   report: ['units', 'linelist', 'profiles', 'review'],
   contract: [],
@@ -26,8 +26,9 @@ const SHARED_TYPES_TOO = {
   continuum: ['identify'],
   identify: ['continuum', 'detection', 'noise'],
   review: ['contract'],
+  sightlines: ['identify'],
   report: ['contract', 'identify', 'reading'],
-  contract: ['identify', 'reading', 'review', 'spectrum', 'linelist', 'units'],
+  contract: ['identify', 'sightlines', 'reading', 'review', 'spectrum', 'linelist', 'units'],
 };
 
 const folders = (names) => `^shared/src/(${names.join('|')})/`;

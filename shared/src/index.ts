@@ -9,6 +9,7 @@ export * from './profiles/index.js';
 export * from './atoms/index.js';
 export * from './linelist/index.js';
 export * from './identify/index.js';
+export * from './sightlines/index.js';
 export * from './review/index.js';
 export * from './report/index.js';
 export * from './contract/index.js';

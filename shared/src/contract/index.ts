@@ -1,4 +1,5 @@
 export * from './api.js';
+export * from './comparisons.js';
 export * from './errors.js';
 export * from './paths.js';
 export * from './roles.js';

@@ -20,6 +20,13 @@ export const apiPaths = {
   cancelAnalysis: (p: string, a: string) => `/api/programmes/${p}/analyses/${a}/cancel`,
   identifications: (p: string, s: string) => `/api/programmes/${p}/spectra/${s}/identifications`,
   decide: (p: string, a: string, featureIndex: number) => `/api/programmes/${p}/analyses/${a}/features/${featureIndex}/decision`,
+  comparisons: (p: string) => `/api/programmes/${p}/comparisons`,
+  comparison: (p: string, c: string) => `/api/programmes/${p}/comparisons/${c}`,
+  comparisonRerun: (p: string, c: string) => `/api/programmes/${p}/comparisons/${c}/rerun`,
+  comparisonReport: (p: string, c: string) => `/api/programmes/${p}/comparisons/${c}/report.csv`,
+  /** the line's key goes percent-encoded */
+  comparisonRuling: (p: string, c: string, lineKey: string) =>
+    `/api/programmes/${p}/comparisons/${c}/lines/${encodeURIComponent(lineKey)}/ruling`,
   lineLists: '/api/line-lists',
   live: '/api/health/live',
   ready: '/api/health/ready',
