@@ -20,6 +20,8 @@ export interface Person {
   get(path: string): Test;
   post(path: string, body?: object, headers?: Record<string, string>): Test;
   patch(path: string, body?: object, headers?: Record<string, string>): Test;
+  put(path: string, body?: object, headers?: Record<string, string>): Test;
+  delete(path: string, body?: object, headers?: Record<string, string>): Test;
 }
 
 /** A programme with one person in each role, an outsider, and someone who is not signed in. */
@@ -70,5 +72,7 @@ export function personWith(api: Api, facts: Facts): Person {
     get: (path) => dressed(request(api.url).get(path)),
     post: (path, body, headers) => dressed(request(api.url).post(path), headers).send(body),
     patch: (path, body, headers) => dressed(request(api.url).patch(path), headers).send(body),
+    put: (path, body, headers) => dressed(request(api.url).put(path), headers).send(body),
+    delete: (path, body, headers) => dressed(request(api.url).delete(path), headers).send(body),
   };
 }

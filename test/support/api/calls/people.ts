@@ -1,0 +1,10 @@
+import type { Calls } from './call.js';
+
+export const calls: Calls = {
+  'AccountsController.signIn': { body: { email: 'nobody@example.org', password: 'wrong on purpose' }, success: 401 },
+  'AccountsController.signOut': { success: 204 },
+  'AccountsController.me': { success: 200 },
+  'ProgrammesController.list': { success: 200 },
+  'ProgrammesController.create': { body: { name: 'Another programme' }, success: 201 },
+  'ProgrammesController.get': { success: 200 },
+};
