@@ -66,6 +66,7 @@ export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSe
     continuum: continuum.summary,
     systems: told.systems,
     features: told.features,
+    species: told.species,
   };
   return { ...result, cautions: cautionsOf(result) };
 }

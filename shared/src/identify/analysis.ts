@@ -76,6 +76,23 @@ export interface EvidencePart {
   readonly sentence: string;
 }
 
+/** The observation that would decide about a reading: a companion that the data do not cover, or cover too coarsely. */
+export interface Settling {
+  readonly why: 'not_covered' | 'too_weak';
+  readonly species: string;
+  /** vacuum nm */
+  readonly restNm: number;
+  /** vacuum nm, where the system's velocity puts it */
+  readonly observedNm: number;
+  /** nm, positive in absorption and in emission alike; null when the strength model does not reach there */
+  readonly expectedNm: number | null;
+  readonly expectedSigmaNm: number | null;
+  /** how many times the signal to noise would have to be for it to show; null when it is not covered */
+  readonly signalToNoiseTimes: number | null;
+  /** a complete sentence with numbers and units */
+  readonly sentence: string;
+}
+
 /** A ranked reading of a feature. The five parts' log odds add to ln(p / (1 - p)). */
 export interface Candidate {
   readonly lineId: string;
@@ -94,6 +111,30 @@ export interface Candidate {
   readonly evidence: readonly EvidencePart[];
   readonly companions: readonly Companion[];
   /** one sentence: why it ranks where it does */
+  readonly sentence: string;
+  /** what would settle it, for leading candidates that are neither certain nor hopeless; absent from results of earlier programs */
+  readonly settle?: Settling | null;
+}
+
+/** One species in one velocity system: whether it shows there, from all its lines together. */
+export interface SpeciesPresence {
+  readonly systemId: string;
+  readonly family: Family;
+  readonly species: string;
+  /** chance that it makes at least one of the features */
+  readonly probability: number;
+  /** its lines that should show and do */
+  readonly seen: number;
+  /** its lines that should show and do not */
+  readonly missing: number;
+  /** its lines too weak for these data */
+  readonly belowLimit: number;
+  /** features whose first candidate it is */
+  readonly features: number;
+  /** how much stronger (or weaker) than the strength model its lines are, dex, with 1 sigma */
+  readonly offsetDex: number;
+  readonly offsetSigmaDex: number;
+  /** a complete sentence with numbers and units */
   readonly sentence: string;
 }
 
@@ -145,6 +186,8 @@ export interface Analysis {
   readonly continuum: Continuum;
   readonly systems: readonly VelocitySystem[];
   readonly features: readonly Feature[];
+  /** by system, likeliest first; absent from results of earlier programs */
+  readonly species?: readonly SpeciesPresence[];
   /** complete sentences a person should read before trusting the numbers */
   readonly cautions: readonly string[];
 }

@@ -167,7 +167,23 @@ export function cloudModel(
     priorSigma: SPECIES_SIGMA,
     presence: / /.test(name) ? ATOM_PRESENCE : MOLECULE_PRESENCE,
   }));
-  return { id, family: 'interstellar', kind: 'dip', velocity, velocitySigma: sigma, significance: 0, fwhmV: coverage.elementV, species };
+  const strengthOf = (wanted: readonly Line[]): Float64Array =>
+    Float64Array.from(wanted, (l) =>
+      l.type === 'band' || !isCommonInClouds(l.species) || !((l.oscillatorStrength ?? 0) > 0)
+        ? NaN
+        : Math.log10(growthWidth(10 ** (typicalColumn(l) + shift), l.oscillatorStrength!, l.wavelengthNm, b, l.einsteinA ?? 1e8)),
+    );
+  return {
+    id,
+    family: 'interstellar',
+    kind: 'dip',
+    velocity,
+    velocitySigma: sigma,
+    significance: 0,
+    fwhmV: coverage.elementV,
+    species,
+    strengthOf,
+  };
 }
 
 /**

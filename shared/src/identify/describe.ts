@@ -1,17 +1,20 @@
 import type { LineList } from '../linelist/index.js';
-import type { Candidate, Feature, VelocitySystem } from './analysis.js';
-import { argue, companionsOf, sumUp, uncoveredLines, type Uncovered } from './evidence.js';
+import type { Candidate, Feature, SpeciesPresence, VelocitySystem } from './analysis.js';
+import { argue, companionsOf, sumUp } from './evidence.js';
 import type { Identified } from './identify.js';
 import type { Measured } from './measure.js';
 import type { FeatureRanking, Ranked } from './rank.js';
+import { Elsewhere, settlingOf } from './settle.js';
+import { speciesOf } from './species.js';
 import { velocityOf, type Coverage, type FeatureView } from './views.js';
 
 export interface Told {
   readonly systems: VelocitySystem[];
   readonly features: Feature[];
+  readonly species: SpeciesPresence[];
 }
 
-const ARGUED = 4; // candidates that get their companions listed; the argument is given for all
+const ARGUED = 4; // candidates that get their companions and what would settle them; the argument is given for all
 
 /** Turns the inner result into what is stored and shown. */
 export function describe(
@@ -21,8 +24,8 @@ export function describe(
   coverage: Coverage,
   list: LineList,
 ): Told {
-  const uncovered = uncoveredLines(list.lines, coverage);
-  const features = measured.map((m, i) => featureOf(m, views[i]!, identified.rankings[i]!, coverage, uncovered));
+  const elsewhere = new Elsewhere(list.lines, coverage);
+  const features = measured.map((m, i) => featureOf(m, views[i]!, identified.rankings[i]!, coverage, elsewhere));
   const systems = identified.systems
     .map(({ system }): VelocitySystem => ({
       id: system.id,
@@ -35,10 +38,11 @@ export function describe(
       fwhmKmPerS: Math.max(system.fwhmV, coverage.elementV),
     }))
     .filter((s) => s.members > 0);
-  return { systems, features };
+  const shown = new Set(systems.map((s) => s.id));
+  return { systems, features, species: speciesOf(identified).filter((s) => shown.has(s.systemId)) };
 }
 
-function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, uncovered: Uncovered): Feature {
+function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, coverage: Coverage, elsewhere: Elsewhere): Feature {
   const c = m.component;
   return {
     index: view.index,
@@ -58,7 +62,7 @@ function featureOf(m: Measured, view: FeatureView, ranking: FeatureRanking, cove
     significance: m.significance,
     snr: m.snr,
     flags: m.flags,
-    candidates: ranking.ranked.map((r, k) => candidateOf(r, k < ARGUED, view, ranking, coverage, uncovered)),
+    candidates: ranking.ranked.map((r, k) => candidateOf(r, k < ARGUED, view, ranking, coverage, elsewhere)),
     unidentifiedProbability: ranking.unidentified,
   };
 }
@@ -69,12 +73,14 @@ function candidateOf(
   view: FeatureView,
   ranking: FeatureRanking,
   coverage: Coverage,
-  uncovered: Uncovered,
+  elsewhere: Elsewhere,
 ): Candidate {
   const c = r.contender;
   const { line } = c.expected;
   const evidence = argue(r, view, ranking.contenders, ranking.unidentified, coverage);
-  const companions = full ? companionsOf(c, view, uncovered) : [];
+  const beyond = full ? elsewhere.of(c) : [];
+  const companions = full ? companionsOf(c, view, beyond) : [];
+  const settle = full ? settlingOf(r, view, beyond, coverage) : null;
   return {
     lineId: line.id,
     species: line.species,
@@ -89,6 +95,7 @@ function candidateOf(
     expectedSigmaNm: 10 ** c.logW * c.sigmaLog * Math.LN10,
     evidence,
     companions,
-    sentence: sumUp(c, evidence, companions, r.probability),
+    sentence: sumUp(c, evidence, settle),
+    settle,
   };
 }

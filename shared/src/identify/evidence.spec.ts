@@ -1,19 +1,20 @@
 import { evenCoverage, featureOf, inOrder } from '../../../test/support/features.js';
 import { lineOf } from '../../../test/support/lines.js';
-import { argue, companionsOf, logit, sumUp, uncoveredLines, withError } from './evidence.js';
+import { argue, companionsOf, logit, sumUp, withError } from './evidence.js';
 import type { Expected, SystemModel } from './model.js';
 import { speciesState, type Background } from './offsets.js';
 import { contendersOf, rankFeature } from './rank.js';
+import { Elsewhere, settlingOf } from './settle.js';
 
 const COVERAGE = evenCoverage(580, 600, 50_000, 100);
 const BACKGROUND: Background = { rate: () => 0.005, explained: () => 0 };
-const D2 = lineOf({ species: 'Na I', wavelengthNm: 589.158, oscillatorStrength: 0.64 });
-const D1 = lineOf({ species: 'Na I', wavelengthNm: 589.756, oscillatorStrength: 0.32 });
-const WEAK = lineOf({ species: 'Na I', wavelengthNm: 595, oscillatorStrength: 1e-6 });
+const D2 = lineOf({ species: 'Na I', settings: ['interstellar'], wavelengthNm: 589.158, oscillatorStrength: 0.64 });
+const D1 = lineOf({ species: 'Na I', settings: ['interstellar'], wavelengthNm: 589.756, oscillatorStrength: 0.32 });
+const WEAK = lineOf({ species: 'Na I', settings: ['interstellar'], wavelengthNm: 595, oscillatorStrength: 1e-6 });
 const ULTRAVIOLET = [
-  lineOf({ species: 'Na I', wavelengthNm: 330.3, oscillatorStrength: 0.009 }),
-  lineOf({ species: 'Na I', wavelengthNm: 330.4, oscillatorStrength: 0.0045 }),
-  lineOf({ species: 'Na I', wavelengthNm: 285.3, oscillatorStrength: 0.001 }),
+  lineOf({ species: 'Na I', settings: ['interstellar'], wavelengthNm: 330.3, oscillatorStrength: 0.009 }),
+  lineOf({ species: 'Na I', settings: ['interstellar'], wavelengthNm: 330.4, oscillatorStrength: 0.0045 }),
+  lineOf({ species: 'Na I', settings: ['interstellar'], wavelengthNm: 285.3, oscillatorStrength: 0.001 }),
 ];
 const expected = (line: typeof D2, widthNm: number): Expected => ({
   line,
@@ -43,17 +44,19 @@ function argued(second: boolean, kmPerS = 0) {
     significance: 9,
     fwhmV: 8,
     species: [model],
+    strengthOf: (lines) => Float64Array.from(lines, (l) => Math.log10(0.01 * l.oscillatorStrength!)),
   };
   const state = { system, states: [speciesState(model, system, features, COVERAGE, BACKGROUND)] };
   const f = features[0]!;
   const ranking = rankFeature(f, contendersOf(f, [state], features), COVERAGE, BACKGROUND);
   const best = ranking.ranked[0]!;
   const parts = argue(best, f, ranking.contenders, ranking.unidentified, COVERAGE);
-  const uncovered = uncoveredLines([...ULTRAVIOLET, D2, D1], COVERAGE);
+  const beyond = new Elsewhere([...ULTRAVIOLET, D2, D1], COVERAGE).of(best.contender);
   return {
     parts,
     best,
-    companions: companionsOf(best.contender, f, uncovered),
+    companions: companionsOf(best.contender, f, beyond),
+    settling: (probability: number) => settlingOf({ ...best, probability }, f, beyond, COVERAGE),
     part: (name: string) => parts.find((p) => p.part === name)!,
   };
 }
@@ -79,11 +82,14 @@ describe('the argument', () => {
     expect(argued(true).part('strength').sentence).toMatch(/^100\.\d ± 4\.6 mÅ measured, \d+(\.\d)? mÅ expected within a factor \d\.\d/));
 
   it('is summed up in a sentence that names what speaks for it, and what would settle an open case', () => {
-    const { best, parts, companions } = argued(false);
-    const sentence = sumUp(best.contender, parts, companions, 0.6);
+    const { best, parts, settling } = argued(false);
+    const sentence = sumUp(best.contender, parts, settling(0.6));
     expect(sentence).toContain('Na I in the cloud');
-    expect(sentence).toContain('Na I 330.30 nm, not covered, would settle it.');
-    expect(sumUp(best.contender, parts, companions, 0.95)).not.toContain('would settle it');
+    expect(sentence).toMatch(
+      /Na I 330\.30 nm, not covered, would settle it: expected at 330\.29 nm \(vacuum\) with \d+(\.\d+)? mÅ, within a factor \d\.\d\.$/,
+    );
+    expect(settling(0.99)).toBeNull();
+    expect(settling(0.01)).toBeNull();
   });
 });
 
@@ -103,13 +109,10 @@ describe('companions', () => {
     expect(missing!.measuredSigmaNm).toBeGreaterThan(0);
   });
 
-  it('outside the data are the two with the largest oscillator strength', () => {
-    expect(
-      uncoveredLines([...ULTRAVIOLET, D2], COVERAGE)
-        .get('Na I')!
-        .map(({ wavelengthNm }) => wavelengthNm),
-    ).toEqual([330.3, 330.4]);
-    expect(uncoveredLines([D2], COVERAGE).size).toBe(0);
+  it('outside the data are the two that it would pay most to observe, with the strength expected there', () => {
+    const beyond = argued(true).companions.filter((c) => c.outcome === 'not_covered');
+    expect(beyond.map(({ restNm }) => restNm)).toEqual([330.3, 330.4]);
+    expect(beyond[0]!.expectedNm / beyond[1]!.expectedNm).toBeCloseTo(2, 1);
   });
 });
 

@@ -1,16 +1,16 @@
-import type { Line } from '../linelist/index.js';
-import type { Companion, EvidencePart } from './analysis.js';
+import type { Companion, EvidencePart, Settling } from './analysis.js';
 import { offsetMoments, positionSigma, widthRatio, type LineTerm, type SpeciesState } from './offsets.js';
 import type { Contender, Ranked } from './rank.js';
+import type { Beyond } from './settle.js';
 import { velocityOf, type Coverage, type FeatureView } from './views.js';
 
-const MILLI_ANGSTROM = 1e4; // per nm
+export const MILLI_ANGSTROM = 1e4; // per nm
 const COMPANIONS = 8;
 const FLAT_VELOCITY = 1 / 60; // per km/s: a place at random within +-30 km/s
 const FLAT_LOG_W = 0.55; // dex, spread of strengths at large
 
 /** Number with a sign people read: a true minus, and plus where asked. */
-const signed = (x: number, digits: number): string => `${x < 0 ? '−' : '+'}${Math.abs(x).toFixed(digits)}`;
+export const signed = (x: number, digits: number): string => `${x < 0 ? '−' : '+'}${Math.abs(x).toFixed(digits)}`;
 
 /** Value and error with two significant digits of the error. */
 export function withError(value: number, sigma: number): string {
@@ -67,7 +67,7 @@ export function logit(p: number): number {
   return Math.log(q / (1 - q));
 }
 
-const PLACE: Record<string, string> = {
+export const PLACE: Record<string, string> = {
   stellar: 'the star',
   interstellar: 'the cloud',
   nebular: 'the nebula',
@@ -89,7 +89,8 @@ function strengthSentence(c: Contender, f: FeatureView): string {
   return `${withError(measured, measured * f.sigmaLogW * Math.LN10)} mÅ measured, ${round(expected)} mÅ expected within a factor ${factor.toFixed(1)}${verdict}`;
 }
 
-const round = (x: number): string => (x >= 100 ? x.toFixed(0) : x >= 10 ? x.toFixed(1) : x.toFixed(2));
+/** Three figures of a width. */
+export const round = (x: number): string => (x >= 100 ? x.toFixed(0) : x >= 10 ? x.toFixed(1) : x.toFixed(2));
 
 interface Tally {
   readonly seen: number;
@@ -133,26 +134,6 @@ function chanceSentence(f: FeatureView, rivals: readonly Contender[], unidentifi
 
 const percent = (p: number): string => (p >= 0.995 ? 'almost certain' : `${(100 * p).toFixed(p < 0.1 ? 1 : 0)} %`);
 
-/** Lines of each species outside the data that would tell most, strongest first. */
-export type Uncovered = ReadonlyMap<string, readonly Line[]>;
-
-const STRONGEST_UNCOVERED = 2;
-
-export function uncoveredLines(lines: readonly Line[], coverage: Coverage): Uncovered {
-  const out = new Map<string, Line[]>();
-  for (const l of lines) {
-    if (l.wavelengthNm >= coverage.fromNm && l.wavelengthNm <= coverage.toNm) continue;
-    const list = out.get(l.species);
-    if (list) list.push(l);
-    else out.set(l.species, [l]);
-  }
-  for (const [species, list] of out) {
-    list.sort((a, b) => (b.oscillatorStrength ?? 0) - (a.oscillatorStrength ?? 0) || a.wavelengthNm - b.wavelengthNm);
-    out.set(species, list.slice(0, STRONGEST_UNCOVERED));
-  }
-  return out;
-}
-
 const ranked = new WeakMap<SpeciesState, LineTerm[]>();
 
 /** The strongest lines of a species, sorted once. */
@@ -168,7 +149,7 @@ function strongest(state: SpeciesState): LineTerm[] {
 }
 
 /** The other lines of the species that should show, strongest first, then the strongest that the data do not cover. */
-export function companionsOf(c: Contender, f: FeatureView, uncovered: Uncovered): Companion[] {
+export function companionsOf(c: Contender, f: FeatureView, beyond: readonly Beyond[]): Companion[] {
   const own = c.term.feature === f ? c.term : null;
   const { mean, sigma } = offsetMoments(c.state, own);
   const terms = strongest(c.state).filter((t) => t !== c.term);
@@ -190,20 +171,23 @@ export function companionsOf(c: Contender, f: FeatureView, uncovered: Uncovered)
             : null,
     };
   });
-  const out = (uncovered.get(c.expected.line.species) ?? []).map((l): Companion => ({
-    species: l.species,
-    restNm: l.wavelengthNm,
-    outcome: 'not_covered',
-    expectedNm: 0,
-    expectedSigmaNm: 0,
-    measuredNm: null,
-    measuredSigmaNm: null,
-  }));
+  const out = beyond.map(({ line, logW }): Companion => {
+    const expectedNm = Number.isFinite(logW) ? 10 ** (logW + mean) : 0;
+    return {
+      species: line.species,
+      restNm: line.wavelengthNm,
+      outcome: 'not_covered',
+      expectedNm,
+      expectedSigmaNm: expectedNm * Math.hypot(sigma, c.expected.scatter) * Math.LN10,
+      measuredNm: null,
+      measuredSigmaNm: null,
+    };
+  });
   return [...covered, ...out];
 }
 
 /** One sentence: why the reading ranks where it does, and what would settle it. */
-export function sumUp(c: Contender, parts: readonly EvidencePart[], companions: readonly Companion[], probability: number): string {
+export function sumUp(c: Contender, parts: readonly EvidencePart[], settle: Settling | null): string {
   const words: Record<EvidencePart['part'], string> = {
     position: 'its place',
     strength: 'its strength',
@@ -215,7 +199,5 @@ export function sumUp(c: Contender, parts: readonly EvidencePart[], companions: 
   const best = own[0]!;
   const worst = [...parts].sort((a, b) => a.logOdds - b.logOdds)[0]!;
   const against = worst.logOdds < -0.7 ? `; against it ${words[worst.part]}` : '';
-  const open = companions.find((x) => x.outcome === 'not_covered');
-  const settle = probability < 0.9 && open ? ` ${open.species} ${open.restNm.toFixed(2)} nm, not covered, would settle it.` : '';
-  return `${c.expected.line.species} in ${placeOf(c)}: most for it ${words[best.part]}${against}.${settle}`;
+  return `${c.expected.line.species} in ${placeOf(c)}: most for it ${words[best.part]}${against}.${settle ? ` ${settle.sentence}` : ''}`;
 }

@@ -36,4 +36,6 @@ export interface SystemModel {
   readonly significance: number;
   readonly fwhmV: number;
   readonly species: SpeciesModel[];
+  /** log10 of the expected |W| in nm of any lines of the family, covered or not; NaN where the strength model knows none */
+  readonly strengthOf?: (lines: readonly Line[]) => Float64Array;
 }

@@ -136,5 +136,16 @@ function nebulaModel(
     priorSigma: SPECIES_SIGMA,
     presence: list.some((e) => e.line.relativeIntensity !== null) ? 0.97 : 0.7,
   }));
-  return { id, family: 'nebular', kind: 'peak', velocity, velocitySigma: sigma, significance: zero, fwhmV: coverage.elementV, species };
+  return {
+    id,
+    family: 'nebular',
+    kind: 'peak',
+    velocity,
+    velocitySigma: sigma,
+    significance: zero,
+    fwhmV: coverage.elementV,
+    species,
+    // beyond the data the continuum is taken as at their edge
+    strengthOf: (wanted) => nebularIntensity(wanted).map((i, k) => i + zero - logContinuum(wanted[k]!.wavelengthNm * factor)),
+  };
 }

@@ -270,5 +270,17 @@ function starModel(
     priorSigma: name === 'H I' ? 0.8 : SPECIES_SIGMA,
     presence: 0.95,
   }));
-  return { id: 'star', family: 'stellar', kind: 'dip', velocity, velocitySigma: sigma, significance: p.significance, fwhmV, species };
+  const strengthOf = (wanted: readonly Line[]): Float64Array =>
+    photosphericIndex(wanted, p.temperatureK, p.logNe).map((x, k) => grow(x, scale) + Math.log10(wanted[k]!.wavelengthNm));
+  return {
+    id: 'star',
+    family: 'stellar',
+    kind: 'dip',
+    velocity,
+    velocitySigma: sigma,
+    significance: p.significance,
+    fwhmV,
+    species,
+    strengthOf,
+  };
 }
