@@ -1,6 +1,7 @@
 export * from './units/index.js';
 export * from './numeric/index.js';
 export * from './spectrum/index.js';
+export * from './frames/index.js';
 export * from './reading/index.js';
 export * from './continuum/index.js';
 export * from './noise/index.js';

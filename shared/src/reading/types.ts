@@ -118,8 +118,8 @@ export interface Reading {
   readonly site: Stated<Site | null>;
   readonly pointing: Stated<Pointing | null>;
   /**
-   * velocity, km/s, at which lines of the Earth's air stand on the wavelengths of the file: 0 in a topocentric file, minus the
-   * correction in a corrected one. Null when frame, time, site or pointing is not known, or the frame is that of the source.
+   * velocity, km/s, at which lines of the Earth's air stand on the wavelengths of the file: 0 in a topocentric file, the correction
+   * itself in a corrected one. Null when frame, time, site or pointing is not known, or the frame is that of the source.
    */
   readonly observerVelocityKmPerS: Stated<number | null>;
   readonly instrument: string | null;

@@ -35,8 +35,8 @@ export interface Spectrum {
    */
   readonly segments?: readonly Segment[];
   /**
-   * Velocity, km/s, at which lines of the Earth's air stand on these wavelengths: 0 in a topocentric spectrum, else minus the
-   * correction that brought it to its frame. Null or absent: not known, look within the reach of the frame.
+   * Velocity, km/s, at which lines of the Earth's air stand on these wavelengths: 0 in a topocentric spectrum, else the
+   * correction that brought it to its frame (all lines were moved by it). Null or absent: not known, look within the reach of the frame.
    */
   readonly observerVelocityKmPerS?: number | null;
 }
