@@ -16,7 +16,7 @@ const SHARED = {
   identify: ['units', 'spectrum', 'linelist', 'profiles', 'atoms', 'numeric'],
   sightlines: ['spectrum', 'noise', 'profiles', 'linelist', 'atoms', 'units', 'numeric'],
   review: [],
-  report: ['units', 'linelist', 'profiles', 'review'],
+  report: ['units', 'linelist', 'profiles', 'review', 'identify'],
   contract: [],
 };
 

@@ -1,11 +1,12 @@
-import { fitContinuum, type ContinuumFit } from './continuum/index.js';
-import { detect, type Detection } from './detection/index.js';
+import { fitContinuum, moveContinuum, type ContinuumFit } from './continuum/index.js';
+import { detect, editByHand, type Detection, type EditedByHand, type HandEdits } from './detection/index.js';
 import { coverageOf, type FeatureView } from './identify/views.js';
 import { cautionsOf } from './identify/cautions.js';
 import { describe } from './identify/describe.js';
 import { identify } from './identify/identify.js';
 import { measure, type Measured } from './identify/measure.js';
-import type { Analysis, AnalysisSettings, AnalysisStep } from './identify/analysis.js';
+import type { Analysis, AnalysisSettings, AnalysisStep, Region } from './identify/analysis.js';
+import { steeredList, strangers } from './identify/steer.js';
 import type { LineList } from './linelist/index.js';
 import { estimateNoise, type NoiseModel } from './noise/index.js';
 import type { NormalisedSamples } from './profiles/index.js';
@@ -18,10 +19,12 @@ import { resolvingPowerOf } from './detection/resolution.js';
 export type OnProgress = (step: AnalysisStep, done: number) => void;
 
 /** The pipeline: from a spectrum to features with ranked readings. Deterministic; reads no clock and no chance. */
-export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSettings, onProgress: OnProgress = () => {}): Analysis {
+export function analyse(read: Spectrum, wholeList: LineList, settings: AnalysisSettings, onProgress: OnProgress = () => {}): Analysis {
   onProgress('continuum', 0);
+  const spectrum = withoutRegions(read, settings.maskedRegions);
+  const list = steeredList(wholeList, settings);
   const noise = estimateNoise(spectrum);
-  const continuum = fitContinuum(spectrum, noise, settings);
+  const continuum = moveContinuum(fitContinuum(spectrum, noise, settings), spectrum.wavelength, settings.continuumMoves);
   onProgress('noise', 0.15);
   const data = normalise(spectrum, continuum, noise);
   const resolution = resolvingPowerOf(spectrum, data);
@@ -34,8 +37,9 @@ export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSe
     falseFeatures: settings.falseFeatures,
     continuumSigma: placement,
   });
+  const edited = editByHand(detection.model, handEdits(settings), resolution.value);
   onProgress('measurement', 0.6);
-  const measured = measureAll(detection, data, resolution.value, placement);
+  const measured = measureAll(detection, edited, data, resolution.value, placement);
   const views = measured.map(viewOf);
   onProgress('systems', 0.7);
   const coverage = coverageOf(data.wavelength, data.weight, resolution.value, detection.threshold);
@@ -44,8 +48,9 @@ export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSe
     coverage,
     list,
     frame: spectrum.frame,
-    temperature: hintOf(continuum),
+    temperature: hintOf(continuum, settings),
     velocityRangeKmPerS: settings.velocityRangeKmPerS,
+    wishes: { set: settings.setSystems, forbidden: settings.forbiddenSystems },
     logContinuum: logContinuumOf(spectrum, continuum),
   });
   onProgress('identification', 0.9);
@@ -68,8 +73,24 @@ export function analyse(spectrum: Spectrum, list: LineList, settings: AnalysisSe
     features: told.features,
     species: told.species,
   };
-  return { ...result, cautions: cautionsOf(result) };
+  return { ...result, cautions: [...cautionsOf(result), ...edited.notes, ...unknownSpecies(strangers(wholeList, settings))] };
 }
+
+/** The spectrum with masked regions marked bad, as if the file had said so; the very same when nothing is masked. */
+function withoutRegions(spectrum: Spectrum, regions: readonly Region[]): Spectrum {
+  if (regions.length === 0) return spectrum;
+  const masked = (nm: number) => regions.some(({ fromNm, toNm }) => nm >= fromNm && nm <= toNm);
+  return { ...spectrum, bad: spectrum.bad.map((bad, i) => (bad || masked(spectrum.wavelength[i]!) ? 1 : 0)) };
+}
+
+const handEdits = ({ removedFeatures, splitFeatures, addedFeatures }: AnalysisSettings): HandEdits => ({
+  removed: removedFeatures,
+  split: splitFeatures,
+  added: addedFeatures,
+});
+
+const unknownSpecies = (names: readonly string[]): string[] =>
+  names.length ? [`The line list has no line of ${names.join(', ')}: that part of the settings had no effect.`] : [];
 
 /** Scatter below this share of the continuum tells of smoothing or resampling, not of a signal to noise above 400 a sample. */
 const SMOOTHEST = 1 / 400;
@@ -95,11 +116,20 @@ function placementError(continuum: ContinuumFit): number {
   return levelSigma.length ? Float64Array.from(levelSigma).sort()[levelSigma.length >> 1]! : 0;
 }
 
-function measureAll(detection: Detection, data: NormalisedSamples, resolvingPower: number, placement: number): Measured[] {
+function measureAll(
+  detection: Detection,
+  { placed }: EditedByHand,
+  data: NormalisedSamples,
+  resolvingPower: number,
+  placement: number,
+): Measured[] {
   const { model } = detection;
   return [...model.components]
     .sort((a, b) => a.centre - b.centre)
-    .map((c) => measure(c, data, model.overlapping([c]), resolvingPower, placement));
+    .map((c) => {
+      const measured = measure(c, data, model.overlapping([c]), resolvingPower, placement);
+      return placed.has(c) ? { ...measured, flags: [...measured.flags, 'by_hand'] } : measured;
+    });
 }
 
 function viewOf(m: Measured, index: number): FeatureView {
@@ -119,7 +149,9 @@ function viewOf(m: Measured, index: number): FeatureView {
   };
 }
 
-function hintOf(continuum: ContinuumFit): { temperatureK: number; sigmaK: number } | null {
+/** What a person gives goes before what the continuum says, as exact. */
+function hintOf(continuum: ContinuumFit, { temperatureK: given }: AnalysisSettings): { temperatureK: number; sigmaK: number } | null {
+  if (given !== null) return { temperatureK: given, sigmaK: 0 };
   const { constrained, temperatureK, temperatureSigmaK } = continuum.summary;
   return constrained && temperatureK !== null ? { temperatureK, sigmaK: temperatureSigmaK ?? 0.1 * temperatureK } : null;
 }

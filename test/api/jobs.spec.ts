@@ -312,9 +312,13 @@ describe('an analysis', () => {
       { falseFeatures: '1' },
       { extinctionAv: -1 },
       { localContinuum: 'yes' },
-      { temperatureK: 5000 },
+      { temperature: 5000 },
+      { maskedRegions: [{ fromNm: 501, toNm: 500 }] },
     ]) {
-      await again({ settings }).expect(400);
+      expect((await again({ settings }).expect(400)).body).toMatchObject({
+        code: 'invalid_request',
+        errors: [{ pointer: expect.stringContaining(`/settings/${Object.keys(settings)[0]!}`) as string }],
+      });
     }
   });
 

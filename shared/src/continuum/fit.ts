@@ -34,9 +34,13 @@ export function fitContinuum(spectrum: Spectrum, noise: NoiseModel, settings: An
   const blocks = cutBlocks(spectrum.wavelength);
   const start = startValues(spectrum, noise, blocks);
   const known = knownFactor(spectrum, settings);
-  const planck = startPlanck(blocks, start.values, known);
+  const found = startPlanck(blocks, start.values, known);
+  const asked = settings.temperatureUse === 'strengths_and_continuum' ? settings.temperatureK : null;
+  const planck = asked === null ? found : { ...found, temperatureK: asked };
   const reason = reasonForLocal(spectrum, settings, start, planck);
-  const fit = reason ? null : fitPlanckModel(spectrum, noise, settings.extinctionAv, blocks, start, planck.temperatureK, known);
+  const fit = reason
+    ? null
+    : fitPlanckModel(spectrum, noise, settings.extinctionAv, blocks, start, planck.temperatureK, known, asked !== null);
   return (
     fit ?? fitLocalModel(spectrum, noise, blocks, start, planck.temperatureK, reason ?? 'no_fit') ?? tracedLevel(spectrum, noise, blocks)
   );
@@ -46,14 +50,17 @@ export function fitContinuum(spectrum: Spectrum, noise: NoiseModel, settings: An
 function reasonForLocal({ fluxKind }: Spectrum, settings: AnalysisSettings, start: Start, planck: PlanckStart): LocalReason | null {
   if (settings.localContinuum) return 'asked';
   if (fluxKind === 'counts') return 'counts';
-  return fluxKind === 'normalised' || looksNormalised(start, planck) ? 'normalised' : null;
+  // flux that only looks normalised may follow a curve that a person gives
+  const given = settings.temperatureK !== null && settings.temperatureUse === 'strengths_and_continuum';
+  return fluxKind === 'normalised' || (!given && looksNormalised(start, planck)) ? 'normalised' : null;
 }
 type LocalReason = 'asked' | 'normalised' | 'counts' | 'no_fit';
 
 /** ln of what is known beside the Planck curve: the extinction given, and flux per frequency where it is not per wavelength. */
-function knownFactor({ fluxKind }: Spectrum, { extinctionAv }: AnalysisSettings): (nm: number) => number {
+function knownFactor({ fluxKind }: Spectrum, { extinctionAv, extinctionLaw, extinctionRv }: AnalysisSettings): (nm: number) => number {
   return (nm) =>
-    (extinctionAv ? -LN_PER_MAG * extinctionAv * extinctionCurve(nm) : 0) + (fluxKind === 'per_frequency' ? 2 * Math.log(nm) : 0);
+    (extinctionAv ? -LN_PER_MAG * extinctionAv * extinctionCurve(nm, extinctionLaw, extinctionRv) : 0) +
+    (fluxKind === 'per_frequency' ? 2 * Math.log(nm) : 0);
 }
 
 function fitPlanckModel(
@@ -64,20 +71,31 @@ function fitPlanckModel(
   start: Start,
   startK: number,
   known: (nm: number) => number,
+  isTemperatureGiven: boolean,
 ): ContinuumFit | null {
   const trust = trustBesideHydrogen(blocks, start, startK);
   const base = (nm: number) => lnPlanck(nm, startK) + known(nm);
   const model = makeSmoothModel(blocks, base, startK, ORDERS);
-  const free = { temperature: true, extinction: given === null, response: calibratedOver(blocks) };
+  const free = { temperature: !isTemperatureGiven, extinction: given === null, response: calibratedOver(blocks) };
   const refined = refine(spectrum, noise, blocks, model, start, free, trust);
   if (!refined) return null;
   const quality = describeQuality(spectrum, blocks, refined);
   const placement = placementSigma(refined, model, noise, quality);
+  if (isTemperatureGiven) return assemble('planck', refined, blocks, quality, placement, givenTemperature(startK));
   const extinction = given === null ? beliefInExtinction(spectrum, refined.space, placement) : NO_EXTINCTION;
   const belief = judgeTemperature(blocks, model, refined, extinction, known);
   const verdict = verdictOn(belief, quality, { fromNm: blocks.edgeNm[0]!, toNm: blocks.edgeNm[blocks.count]!, givenAv: given });
   return assemble('planck', refined, blocks, quality, placement, verdict);
 }
+
+const givenTemperature = (temperatureK: number): Verdict => ({
+  temperatureK,
+  temperatureSigmaK: null,
+  constrained: false,
+  statement: `The temperature was set to ${Math.round(temperatureK)} K by a person: the continuum follows its Planck curve, and none was fitted.`,
+  lowerBoundK: null,
+  upperBoundK: null,
+});
 
 const LOCAL_STATEMENTS: Record<LocalReason, string> = {
   asked: 'A local continuum was asked for, so no temperature was fitted.',

@@ -2,3 +2,4 @@ export * from './threshold.js';
 export * from './scale-space.js';
 export * from './model.js';
 export * from './detect.js';
+export * from './by-hand.js';

@@ -3,7 +3,7 @@ import { C_KM_PER_S } from '../units/index.js';
 import type { Frame } from '../spectrum/index.js';
 import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
-import { refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
+import { isPermitted, refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
 import { dopplerFactor, type Coverage } from './views.js';
 
 /** Largest velocity the Earth can have against the frame, km/s: its orbit and rotation, with room for the solar motion in LSR frames. */
@@ -22,7 +22,7 @@ const FULL_ABSORPTION_LOG_W = -2.1; // log10 nm of an absorption line of relativ
 const SKY_LOG_W = -2.3; // log10 nm of the brightest sky lines against a faint source: moved by the data over decades
 
 /** Expected lines of the air: absorption or sky emission, grouped by band since strengths are relative within one. */
-function airModel(lines: readonly Line[], kind: 'dip' | 'peak', velocity: number, sigma: number, coverage: Coverage): SystemModel {
+export function airModel(lines: readonly Line[], kind: 'dip' | 'peak', velocity: number, sigma: number, coverage: Coverage): SystemModel {
   const factor = dopplerFactor(velocity);
   const groups = new Map<string, Expected[]>();
   for (const line of lines) {
@@ -86,13 +86,13 @@ export function findAir(lines: readonly Line[], kind: 'dip' | 'peak', scene: Sce
   );
   const spread = features.map((f) => Math.hypot(f.sigmaV, 0.2 * scene.coverage.elementV));
   const peaks = peaksOf(correlate(features, weight, spread, template, grid), grid, 0.5 * scene.coverage.elementV, 6).filter(
-    (p) => Math.abs(p.velocity) <= reach + step,
+    (p) => Math.abs(p.velocity) <= reach + step && isPermitted(scene, p.velocity),
   );
   let best: Weighed | null = null;
   for (const p of peaks) {
     const first = weigh(airModel(listed, kind, p.velocity, 0.1 * scene.coverage.elementV, scene.coverage), scene);
     const { velocity, sigma, members } = refinedVelocity(first);
-    if (members === 0) continue;
+    if (members === 0 || !isPermitted(scene, velocity)) continue;
     const w = weigh(airModel(listed, kind, velocity, sigma, scene.coverage), scene);
     if (!best || w.evidence > best.evidence) best = w;
   }

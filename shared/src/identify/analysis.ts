@@ -1,24 +1,8 @@
 import type { Frame } from '../spectrum/index.js';
 import type { Family } from '../linelist/index.js';
+import type { AnalysisSettings } from './settings.js';
 
-/** What a person may set for a run. Everything has a default; the whole object is stored with the analysis. */
-export interface AnalysisSettings {
-  /** expected number of false features in the whole spectrum */
-  readonly falseFeatures: number;
-  /** visual extinction A_V in mag to apply to the Planck model; null: none */
-  readonly extinctionAv: number | null;
-  /** use the local continuum even where a Planck fit is possible */
-  readonly localContinuum: boolean;
-  /** systems are looked for within +- this velocity, km/s */
-  readonly velocityRangeKmPerS: number;
-}
-
-export const DEFAULT_SETTINGS: AnalysisSettings = {
-  falseFeatures: 0.5,
-  extinctionAv: null,
-  localContinuum: false,
-  velocityRangeKmPerS: 300,
-};
+export * from './settings.js';
 
 /** Continuum under a spectrum, and what it tells of the temperature. Arrays sample the model for drawing. */
 export interface Continuum {
@@ -52,9 +36,11 @@ export interface VelocitySystem {
   readonly members: number;
   /** typical FWHM of its lines, km/s */
   readonly fwhmKmPerS: number;
+  /** a person set it; it may have no member then */
+  readonly set?: boolean;
 }
 
-export type FeatureFlag = 'cosmic' | 'blend' | 'saturated' | 'edge' | 'band' | 'sky';
+export type FeatureFlag = 'cosmic' | 'blend' | 'saturated' | 'edge' | 'band' | 'sky' | 'by_hand';
 
 /** Another line of the species that should be visible in the same system. */
 export interface Companion {

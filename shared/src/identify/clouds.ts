@@ -3,7 +3,7 @@ import type { Line } from '../linelist/index.js';
 import { C_KM_PER_S } from '../units/index.js';
 import { peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
-import { bestVariant, refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
+import { bestVariant, isPermitted, refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
 import { dopplerFactor, featureAt, velocityOf, type Coverage, type FeatureView } from './views.js';
 
 const DOPPLER_B = [1, 2.2, 4.5]; // km/s, common range of single interstellar components
@@ -22,7 +22,7 @@ const REDDENING = 0.3; // mag at the typical column
 
 /** Interstellar clouds, strongest evidence first: velocities where narrow dips agree with what cold gas absorbs from its ground levels. */
 export function findClouds(lines: readonly Line[], scene: Scene, rangeV: number): SystemModel[] {
-  const atoms = lines.filter((l) => l.type !== 'band' && isCommonInClouds(l.species) && (l.oscillatorStrength ?? 0) > 0);
+  const atoms = interstellarLines(lines);
   const found: SystemModel[] = [];
   const grid: VelocityGrid = {
     from: -rangeV,
@@ -32,7 +32,9 @@ export function findClouds(lines: readonly Line[], scene: Scene, rangeV: number)
   const used = new Set<FeatureView>();
   for (let n = 0; n < MOST_CLOUDS; n++) {
     const peaks = peaksOf(votes(atoms, scene, grid, used), grid, 0.6 * scene.coverage.elementV, CANDIDATES);
-    const spaced = peaks.filter((p) => found.every((c) => Math.abs(c.velocity - p.velocity) > 0.7 * scene.coverage.elementV));
+    const spaced = peaks.filter(
+      (p) => isPermitted(scene, p.velocity) && found.every((c) => Math.abs(c.velocity - p.velocity) > 0.7 * scene.coverage.elementV),
+    );
     let best: Weighed | null = null;
     for (const p of spaced) {
       const w = bestVariant(
@@ -45,7 +47,12 @@ export function findClouds(lines: readonly Line[], scene: Scene, rangeV: number)
     if (!best) break;
     const apart = (v: number): boolean => found.every((c) => Math.abs(c.velocity - v) > 0.7 * scene.coverage.elementV);
     const settled = settle(best, `cloud${n + 1}`, atoms, withoutUsed(scene, used));
-    if (settled.weighed.evidence < ENOUGH + Math.log(spaced.length + 1) || settled.members < 2 || !apart(settled.weighed.system.velocity))
+    if (
+      settled.weighed.evidence < ENOUGH + Math.log(spaced.length + 1) ||
+      settled.members < 2 ||
+      !apart(settled.weighed.system.velocity) ||
+      !isPermitted(scene, settled.weighed.system.velocity)
+    )
       break;
     found.push({ ...settled.weighed.system, significance: Math.sqrt(2 * settled.weighed.evidence) });
     for (const s of settled.weighed.states)
@@ -53,6 +60,18 @@ export function findClouds(lines: readonly Line[], scene: Scene, rangeV: number)
   }
   return found;
 }
+
+/** A cloud at a velocity that is known from elsewhere, of the width and columns that suit the data best, whether or not its lines stand out. */
+export function assumedCloud(id: string, lines: readonly Line[], scene: Scene, velocity: number, sigma: number): SystemModel {
+  const atoms = interstellarLines(lines);
+  const variants = DOPPLER_B.flatMap((b) =>
+    COLUMN_SHIFTS.map((shift) => weigh(cloudModel(id, atoms, velocity, sigma, b, shift, scene.coverage), scene)),
+  );
+  return variants.reduce((best, w) => (w.evidence > best.evidence ? w : best)).system;
+}
+
+const interstellarLines = (lines: readonly Line[]) =>
+  lines.filter((l) => l.type !== 'band' && (l.asked || isCommonInClouds(l.species)) && (l.oscillatorStrength ?? 0) > 0);
 
 /** Features that a cloud found before has claimed count as explained for the next. */
 function withoutUsed(scene: Scene, used: ReadonlySet<FeatureView>): Scene {

@@ -36,8 +36,9 @@ export function describe(
       members: features.filter((f) => f.candidates[0]?.systemId === system.id && f.candidates[0].probability > f.unidentifiedProbability)
         .length,
       fwhmKmPerS: Math.max(system.fwhmV, coverage.elementV),
+      ...(system.set && { set: true }),
     }))
-    .filter((s) => s.members > 0);
+    .filter((s) => s.members > 0 || s.set);
   const shown = new Set(systems.map((s) => s.id));
   return { systems, features, species: speciesOf(identified).filter((s) => shown.has(s.systemId)) };
 }

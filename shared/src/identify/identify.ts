@@ -1,4 +1,4 @@
-import type { LineList } from '../linelist/index.js';
+import type { Family, LineList } from '../linelist/index.js';
 import type { Frame } from '../spectrum/index.js';
 import { C_KM_PER_S } from '../units/index.js';
 import { findAir } from './air.js';
@@ -7,7 +7,9 @@ import type { SystemModel } from './model.js';
 import { findNebulae, type LogContinuum } from './nebulae.js';
 import { speciesState, type Background } from './offsets.js';
 import { contendersOf, rankFeature, type FeatureRanking, type SystemState } from './rank.js';
+import { setSystem } from './set-systems.js';
 import { findStar, type TemperatureHint } from './star.js';
+import { NO_WISHES, permitted, type SystemWishes } from './steer.js';
 import type { Scene } from './search.js';
 import type { Coverage, FeatureView } from './views.js';
 
@@ -20,6 +22,8 @@ export interface IdentifyInput {
   readonly temperature: TemperatureHint | null;
   readonly velocityRangeKmPerS: number;
   readonly logContinuum: LogContinuum;
+  /** what a person set and forbade */
+  readonly wishes?: SystemWishes;
   /** set when a first pass took a cloud's lines for a star's */
   readonly withoutStar?: boolean;
 }
@@ -33,25 +37,35 @@ export interface Identified {
 /** Finds the velocity systems, strongest kinds of evidence first, then ranks the readings of every feature against all of them. */
 export function identify(input: IdentifyInput): Identified {
   const { features, coverage, list } = input;
-  const margin = 1 + (input.velocityRangeKmPerS * 1.2) / C_KM_PER_S;
+  const farthest = Math.max(
+    input.velocityRangeKmPerS,
+    ...(input.wishes?.set ?? []).map((s) => Math.abs(s.velocityKmPerS) + s.toleranceKmPerS),
+  );
+  const margin = 1 + (farthest * 1.2) / C_KM_PER_S;
   const near = list.lines.filter((l) => l.wavelengthNm > coverage.fromNm / margin && l.wavelengthNm < coverage.toNm * margin);
   const of = (family: string) => near.filter((l) => l.settings.some((s) => s === family));
   const found = new Findings(input);
   const { systems } = found;
-
+  const { wishes = NO_WISHES } = input;
   const photosphere = of('stellar').filter((l) => l.logGf !== null && l.type === 'allowed');
-  const star = input.withoutStar ? null : findStar(found.scene(), photosphere, input.temperature, input.velocityRangeKmPerS);
-  if (star) systems.push(star);
   const airLines = of('telluric');
-  const absorbing = findAir(airLines, 'dip', found.scene(), input.frame);
+  const ground = { ...input, photosphere, interstellar: of('interstellar'), nebular: of('nebular'), telluric: airLines };
+  wishes.set.forEach((wanted, n) => systems.push(setSystem(wanted, n + 1, found.scene(), ground)));
+  const hasSet = (family: Family) => wishes.set.some((s) => s.family === family);
+
+  const searched = !input.withoutStar && !hasSet('stellar'); // a star that was set is the star
+  const star = searched ? findStar(found.scene('stellar'), photosphere, input.temperature, input.velocityRangeKmPerS) : null;
+  if (star) systems.push(star);
+  const absorbing = hasSet('telluric') ? null : findAir(airLines, 'dip', found.scene('telluric'), input.frame);
   if (absorbing) systems.push(absorbing);
-  const clouds = findClouds(of('interstellar'), found.scene(), Math.min(input.velocityRangeKmPerS, 200));
+  const clouds = findClouds(ground.interstellar, found.scene('interstellar'), Math.min(input.velocityRangeKmPerS, 200));
   systems.push(...clouds);
-  const bands = diffuseBands(near, clouds, coverage);
-  if (bands) addBands(systems, clouds, bands);
+  const everyCloud = [...systems.filter((s) => s.set && s.family === 'interstellar'), ...clouds];
+  const bands = diffuseBands(near, everyCloud, coverage);
+  if (bands && bandsMayShow(wishes, everyCloud)) addBands(systems, everyCloud, bands);
   if (features.some((f) => f.kind === 'peak')) {
-    systems.push(...findNebulae(of('nebular'), found.scene(), input.velocityRangeKmPerS, input.logContinuum));
-    const glowing = findAir(airLines, 'peak', found.scene(), input.frame);
+    systems.push(...findNebulae(ground.nebular, found.scene('nebular'), input.velocityRangeKmPerS, input.logContinuum));
+    const glowing = findAir(airLines, 'peak', found.scene('telluric'), input.frame);
     if (glowing) systems.push(glowing);
   }
 
@@ -60,6 +74,10 @@ export function identify(input: IdentifyInput): Identified {
   const settled = backgroundOf(found.rate, first);
   return rankAll(found.weighed(settled), input, settled);
 }
+
+/** Bands without a cloud stand at no velocity of their own: they go when gas is forbidden at zero. */
+const bandsMayShow = (wishes: SystemWishes, clouds: readonly SystemModel[]): boolean =>
+  clouds.length > 0 || (permitted({ ...wishes, set: [] }, 'interstellar', 0)?.(0) ?? true);
 
 /** The systems found so far and what they explain; asked again after each find. */
 class Findings {
@@ -72,8 +90,13 @@ class Findings {
     this.rate = featureRate(input.features, input.coverage);
   }
 
-  /** What a search for further systems stands on. */
-  scene(): Scene {
+  /** What a search for further systems stands on; of a family, where a person allows it. */
+  scene(family?: Family): Scene {
+    const permits = family && permitted(this.input.wishes ?? NO_WISHES, family, 0.7 * this.input.coverage.elementV);
+    return permits ? { ...this.#seen(), permits } : this.#seen();
+  }
+
+  #seen(): Scene {
     if (this.#scene?.of !== this.systems.length) {
       const { features, coverage } = this.input;
       const background = backgroundOf(this.rate, rankAll(this.#weighedAlone(), this.input, this.#nothingExplained(), FEW_DRAWS));

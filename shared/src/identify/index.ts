@@ -1,1 +1,3 @@
 export * from './analysis.js';
+export * from './settings-check.js';
+export * from './settings-words.js';

@@ -38,4 +38,6 @@ export interface SystemModel {
   readonly species: SpeciesModel[];
   /** log10 of the expected |W| in nm of any lines of the family, covered or not; NaN where the strength model knows none */
   readonly strengthOf?: (lines: readonly Line[]) => Float64Array;
+  /** a person set it: it is kept even when no feature is its */
+  readonly set?: boolean;
 }

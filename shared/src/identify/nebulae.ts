@@ -2,7 +2,7 @@ import { nebularIntensity } from '../atoms/index.js';
 import type { Line } from '../linelist/index.js';
 import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SystemModel } from './model.js';
-import { refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
+import { isPermitted, refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
 import { dopplerFactor, type Coverage, type FeatureView } from './views.js';
 
 const SPECIES_SIGMA = 0.5; // dex: ionisation and abundance from nebula to nebula
@@ -33,7 +33,9 @@ export function findNebulae(lines: readonly Line[], scene: Scene, rangeV: number
     if (free.length < 2) break;
     const weight = free.map((f) => Math.sqrt(f.significance));
     const spread = free.map((f) => Math.hypot(f.sigmaV, 0.25 * scene.coverage.elementV));
-    const places = peaksOf(correlate(free, weight, spread, template, grid), grid, scene.coverage.elementV, 10);
+    const places = peaksOf(correlate(free, weight, spread, template, grid), grid, scene.coverage.elementV, scene.permits ? 40 : 10).filter(
+      (p) => isPermitted(scene, p.velocity),
+    );
     const left: Scene = {
       ...scene,
       background: { ...scene.background, explained: (i, w) => (used.has(scene.features[i]!) ? 0.95 : scene.background.explained(i, w)) },
@@ -42,6 +44,7 @@ export function findNebulae(lines: readonly Line[], scene: Scene, rangeV: number
     for (const p of places) {
       const tried = settle(`nebula${n + 1}`, chosen, logI, p.velocity, left, logContinuum);
       if (!tried || found.some((s) => Math.abs(s.velocity - tried.weighed.system.velocity) < 0.7 * scene.coverage.elementV)) continue;
+      if (!isPermitted(scene, tried.weighed.system.velocity)) continue;
       if (!best || tried.weighed.evidence > best.weighed.evidence) best = tried;
     }
     if (!best || best.members < 2 || best.weighed.evidence < ENOUGH + Math.log(places.length)) break;
@@ -50,6 +53,28 @@ export function findNebulae(lines: readonly Line[], scene: Scene, rangeV: number
       for (const t of s.terms) if (t.feature && t.outcome === 'seen' && s.logEvidence > 1) used.add(t.feature);
   }
   return found;
+}
+
+const ASSUMED_BRIGHTNESS = 3; // of the brightest line in units of the detection limit, when no peak tells
+
+/** A nebula at a velocity that is known from elsewhere, whether or not its lines stand out. */
+export function assumedNebula(
+  id: string,
+  lines: readonly Line[],
+  scene: Scene,
+  velocity: number,
+  sigma: number,
+  logContinuum: LogContinuum,
+): SystemModel {
+  const { coverage } = scene;
+  const intensity = nebularIntensity(lines);
+  const keep = lines.map((_, k) => k).filter((k) => intensity[k]! > FAINTEST);
+  const chosen = keep.map((k) => lines[k]!);
+  const logI = Float64Array.from(keep, (k) => intensity[k]!);
+  const limit = (nm: number) => coverage.threshold * coverage.sigmaW(nm, (nm * coverage.elementV) / 299792.458);
+  const faint = chosen.map((l, k) => Math.log10(ASSUMED_BRIGHTNESS * limit(l.wavelengthNm)) + logContinuum(l.wavelengthNm) - logI[k]!);
+  const zero = brightnessScale(chosen, logI, velocity, scene, logContinuum) ?? Math.min(...faint.filter(Number.isFinite), 0);
+  return { ...nebulaModel(id, chosen, logI, velocity, sigma, zero, coverage, logContinuum), significance: 0 };
 }
 
 /** Brightness scale by the strongest lines, velocity by the members. */

@@ -7,7 +7,11 @@ export interface Scene {
   readonly features: readonly FeatureView[];
   readonly coverage: Coverage;
   readonly background: Background;
+  /** whether a system may be at a velocity; absent: anywhere */
+  readonly permits?: (velocity: number) => boolean;
 }
+
+export const isPermitted = ({ permits }: Scene, velocity: number): boolean => !permits || permits(velocity);
 
 export interface Weighed {
   readonly system: SystemModel;

@@ -3,7 +3,7 @@ import type { Line } from '../linelist/index.js';
 import { C_KM_PER_S } from '../units/index.js';
 import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
-import { refinedVelocity, weigh, type Scene } from './search.js';
+import { isPermitted, refinedVelocity, weigh, type Scene } from './search.js';
 import { dopplerFactor, velocityOf, type Coverage, type FeatureView } from './views.js';
 
 /** What the continuum says of the temperature; null when nothing. */
@@ -41,10 +41,11 @@ export function findStar(scene: Scene, lines: readonly Line[], hint: Temperature
   const { features, coverage } = scene;
   const dips = features.filter((f) => f.kind === 'dip' && !f.flags.includes('cosmic'));
   if (dips.length < MEMBERS || lines.length === 0) return null;
-  const best = bestPhotosphere(dips, lines, coverage, hint, rangeV);
-  if (!best || best.significance < SIGNIFICANT) return hydrogenStar(dips, lines, coverage, hint, rangeV);
+  const permits = (velocity: number) => isPermitted(scene, velocity);
+  const best = bestPhotosphere(dips, lines, coverage, hint, rangeV, permits);
+  if (!best || best.significance < SIGNIFICANT) return hydrogenStar(dips, lines, coverage, hint, rangeV, permits);
   const alone = aloneMatches(dips, lines, best.index, best.velocity, coverage);
-  if (alone.length < MEMBERS) return hydrogenStar(dips, lines, coverage, hint, rangeV);
+  if (alone.length < MEMBERS) return hydrogenStar(dips, lines, coverage, hint, rangeV, permits);
   const { velocity, sigma, fwhmV } = refine(alone);
   const scale = fitScale(aloneMatches(dips, lines, best.index, velocity, coverage, fwhmV));
   let star = starModel(lines, best, velocity, sigma, fwhmV, scale, coverage);
@@ -53,7 +54,8 @@ export function findStar(scene: Scene, lines: readonly Line[], hint: Temperature
     if (moved.members < MEMBERS) break;
     star = starModel(lines, best, moved.velocity, moved.sigma, fwhmV, scale, coverage);
   }
-  return weigh(star, scene).evidence > ENOUGH ? star : hydrogenStar(dips, lines, coverage, hint, rangeV);
+  const stands = permits(star.velocity) && weigh(star, scene).evidence > ENOUGH;
+  return stands ? star : hydrogenStar(dips, lines, coverage, hint, rangeV, permits);
 }
 
 const HYDROGEN_MEMBERS = 3;
@@ -70,6 +72,7 @@ function hydrogenStar(
   coverage: Coverage,
   hint: TemperatureHint | null,
   rangeV: number,
+  permits: (velocity: number) => boolean,
 ): SystemModel | null {
   const series = lines.filter(
     (l) => l.element === 'H' && l.wavelengthNm > coverage.fromNm && l.wavelengthNm < coverage.toNm && (l.oscillatorStrength ?? 0) > 0.01,
@@ -79,6 +82,7 @@ function hydrogenStar(
   const step = 0.1 * coverage.elementV;
   let best: { velocity: number; members: FeatureView[]; score: number } | null = null;
   for (let velocity = -rangeV; velocity <= rangeV; velocity += step) {
+    if (!permits(velocity)) continue;
     const factor = dopplerFactor(velocity);
     const members: FeatureView[] = [];
     let score = 0;
@@ -109,6 +113,7 @@ function bestPhotosphere(
   coverage: Coverage,
   hint: TemperatureHint | null,
   rangeV: number,
+  permits: (velocity: number) => boolean,
 ): Photosphere | null {
   const weight = Float64Array.from(dips, (f) => Math.sqrt(Math.min((10 ** f.logW / f.wavelength) * C_KM_PER_S, 40)));
   const spread = Float64Array.from(dips, (f) => Math.hypot(f.sigmaV, 0.12 * f.fwhmV));
@@ -131,7 +136,7 @@ function bestPhotosphere(
           weight: Float64Array.from(index, (x) => (x > cut - 0.3 ? 10 ** (0.5 * Math.min(x - cut, 1.2)) : 0)),
         };
         const score = correlate(dips, weight, spread, template, grid);
-        const peak = peaksOf(score, grid, 5, 1)[0];
+        const peak = peaksOf(score, grid, 5, 40).find((p) => permits(p.velocity));
         if (peak && (!best || peak.height > best.height))
           best = { temperatureK, logNe, velocity: peak.velocity, index, height: peak.height, significance: peak.significance };
       }
@@ -283,4 +288,28 @@ function starModel(
     species,
     strengthOf,
   };
+}
+
+const ASSUMED_TEMPERATURE = 5800; // K, where neither continuum nor person tells
+const ASSUMED_SCALE = { strongest: -4, knee: -4.5 } as const; // log10 W/lambda of common lines, when no line stands alone to measure it by
+
+/** A star at a velocity that is known from elsewhere, whether or not its lines stand out. */
+export function assumedStar(
+  scene: Scene,
+  lines: readonly Line[],
+  hint: TemperatureHint | null,
+  velocity: number,
+  sigma: number,
+): SystemModel {
+  const { coverage } = scene;
+  const dips = scene.features.filter((f) => f.kind === 'dip' && !f.flags.includes('cosmic'));
+  const temperatureK = hint?.temperatureK ?? ASSUMED_TEMPERATURE;
+  const index = photosphericIndex(lines, temperatureK, 14);
+  const alone = aloneMatches(dips, lines, index, velocity, coverage).filter((m) => Math.abs(m.dv - velocity) < m.feature.fwhmV + 3 * sigma);
+  const strongest = index.reduce((top, x) => (Number.isFinite(x) && x > top ? x : top), -Infinity);
+  const scale = alone.length < 3 ? { shift: ASSUMED_SCALE.strongest - strongest, knee: ASSUMED_SCALE.knee } : fitScale(alone);
+  const widths = alone.map((m) => m.feature.fwhmV).sort((a, b) => a - b);
+  const fwhmV = widths[widths.length >> 1] ?? 1.5 * coverage.elementV;
+  const photosphere: Photosphere = { temperatureK, logNe: 14, velocity, index, height: 0, significance: 0 };
+  return starModel(lines, photosphere, velocity, sigma, fwhmV, scale, coverage);
 }

@@ -29,6 +29,8 @@ export interface Line {
   readonly relativeIntensityScale: string;
   readonly tier: 1 | 2;
   readonly source: string;
+  /** a person asked for the species where it is not usual, so no table of the usual ones keeps it out */
+  readonly asked?: boolean;
 }
 
 /** A named, versioned, citable set of lines, ascending in wavelength. */

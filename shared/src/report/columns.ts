@@ -87,7 +87,7 @@ export const COLUMNS: readonly Column[] = [
     Number(row.reading.probability.toFixed(6)),
   ),
   words('status', 'accepted, rejected or proposed by a person; unreviewed: the opinion of the analysis', (row) => row.status),
-  words('flags', 'cosmic, blend, saturated, edge, band, sky; not found again', (row) => row.flags.join(' ')),
+  words('flags', 'cosmic, blend, saturated, edge, band, sky, by_hand (placed by a person); not found again', (row) => row.flags.join(' ')),
   words('reviewer', 'who decided last', (row) => row.reviewer),
   words('reviewed_at', 'when, UTC', (row) => row.reviewedAt),
   words('remark', 'remark on the last decision', (row) => row.remark),

@@ -1,4 +1,4 @@
-import type { Continuum } from '../identify/index.js';
+import { completeSettings, settingsInWords, type Continuum } from '../identify/index.js';
 import type { How, Stated } from '../reading/index.js';
 import type { LineReport, ReportedSpectrum } from './types.js';
 import { roundedToError } from './rounding.js';
@@ -46,11 +46,8 @@ function aboutAnalysis(analysis: NonNullable<ReportedSpectrum['analysis']>): [st
     ['signal to noise', `${Math.round(analysis.snr)} per sample (median), noise ${analysis.noiseHow.replace('_', ', ')}`],
     ['line list', `${analysis.lineListName} ${analysis.lineListVersion}`],
     ['analysed with', `Foreveil ${analysis.programVersion}`],
-    [
-      'settings',
-      `false features expected ${settings.falseFeatures}, extinction A_V ${settings.extinctionAv ?? 'none'}, ` +
-        `${settings.localContinuum ? 'local continuum' : 'Planck continuum where possible'}, velocities to ${settings.velocityRangeKmPerS} km/s`,
-    ],
+    ['settings', `false features expected ${settings.falseFeatures}, velocities to ${settings.velocityRangeKmPerS} km/s`],
+    ...settingsInWords(completeSettings(settings)).map(({ sentence }): [string, string] => ['set by a person', sentence]),
     ...analysis.cautions.map((caution): [string, string] => ['caution', caution]),
   ];
 }

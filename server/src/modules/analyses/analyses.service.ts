@@ -12,6 +12,7 @@ import { sayEvent } from '../events/say-event.js';
 import { spectrumExists } from '../spectra/find-spectra.js';
 import type { Scope } from '../../common/scope.js';
 import { abortAnalysis, findAnalysisWithResult } from './analyses.repository.js';
+import { checkSettings } from './check-settings.js';
 import { findAnalyses, findAnalysis } from './find-analyses.js';
 import { queueAnalysis } from './queue-analysis.js';
 
@@ -36,6 +37,7 @@ export class AnalysesService {
   }
 
   async request(actor: Actor, scope: Scope, spectrumId: string, { settings }: NewAnalysis): Promise<AnalysisSummary> {
+    if (settings) checkSettings(settings);
     const wanted = { spectrumId, userId: actor.userId, settings };
     const id = await asMember(this.db, actor, scope.programmeId, 'analyst', async (trx) => {
       if (!(await spectrumExists(trx, scope, spectrumId))) throw notFound();

@@ -1,4 +1,4 @@
-import { DEFAULT_SETTINGS, PROGRAM_VERSION, type AnalysisSettings } from '@foreveil/shared';
+import { completeSettings, PROGRAM_VERSION, type AnalysisSettings } from '@foreveil/shared';
 import { DomainError } from '../../common/errors/domain-error.js';
 import type { Trx } from '../../database/transaction.js';
 import { sayEvent } from '../events/say-event.js';
@@ -26,7 +26,7 @@ export async function queueAnalysis(
     spectrumId,
     lineListId,
     userId,
-    settings: { ...DEFAULT_SETTINGS, ...onlySet(settings ?? {}) },
+    settings: completeSettings(settings ?? {}),
     programVersion: PROGRAM_VERSION,
   });
   if (!id) throw new DomainError('bad_transition', 'An analysis of this spectrum is still at work. Wait for it, or cancel it first.');
@@ -35,7 +35,3 @@ export async function queueAnalysis(
   await sayEvent(trx, { kind: 'analysis', programmeId: scope.programmeId, id });
   return id;
 }
-
-/** A request's shape holds undefined for what was left out, and that must not cover a default. */
-const onlySet = (settings: Partial<AnalysisSettings>): Partial<AnalysisSettings> =>
-  Object.fromEntries(Object.entries(settings).filter(([, value]) => value !== undefined));

@@ -35,6 +35,7 @@ export const FLAG_WORD: Record<FeatureFlag, string> = {
   edge: 'cut by an edge',
   band: 'a band',
   sky: 'on a sky line',
+  by_hand: 'placed by a person',
 };
 
 export const widthKmPerS = ({ fwhmNm, wavelengthNm }: Feature) => (fwhmNm / wavelengthNm) * C_KM_PER_S;

@@ -1,5 +1,5 @@
 import { parentPort } from 'node:worker_threads';
-import { analyse, type LineList, type OnProgress } from '@foreveil/shared';
+import { analyse, completeSettings, type LineList, type OnProgress } from '@foreveil/shared';
 import type { FromThread, ToThread } from './protocol.js';
 import { warmUp } from './warm-up.js';
 
@@ -27,7 +27,9 @@ parentPort!.on('message', (message: ToThread) => {
     return;
   }
   try {
-    say({ say: 'done', analysis: analyse(message.spectrum, lists.get(message.listId)!, message.settings, teller()) });
+    // the database keeps no order of fields: here they get the one in which they are told again
+    const settings = completeSettings(message.settings);
+    say({ say: 'done', analysis: analyse(message.spectrum, lists.get(message.listId)!, settings, teller()) });
   } catch (error) {
     say({ say: 'failed', reason: error instanceof Error ? error.message : String(error) });
   }
