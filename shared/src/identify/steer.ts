@@ -73,9 +73,11 @@ export function movedScene(scene: Scene, velocity: number): Scene {
 export function movedBack(system: SystemModel, velocity: number): SystemModel {
   const factor = dopplerFactor(velocity);
   const shift = Math.log10(factor);
+  const { strengthOf } = system;
   return {
     ...system,
     velocity: velocityOf(dopplerFactor(system.velocity) * factor, 1),
+    ...(strengthOf && { strengthOf: (lines: readonly Line[]) => strengthOf(lines).map((logW) => logW + shift) }),
     species: system.species.map((s) => ({
       ...s,
       lines: s.lines.map((e) => ({ ...e, wavelength: e.wavelength * factor, logW: e.logW + shift })),

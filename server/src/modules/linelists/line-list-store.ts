@@ -24,7 +24,7 @@ export const findLineLists = (db: Knex): Promise<LineListRow[]> =>
       db.raw('(select count(*)::int from lines where line_list_id = l.id) as lines'),
     );
 
-const LINE: Record<keyof Line, string> = {
+const LINE: Record<Exclude<keyof Line, 'asked'>, string> = {
   id: 'line_id',
   species: 'species',
   element: 'element',
