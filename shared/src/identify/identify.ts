@@ -6,6 +6,7 @@ import { diffuseBands, findClouds } from './clouds.js';
 import type { SystemModel } from './model.js';
 import { findNebulae, type LogContinuum } from './nebulae.js';
 import { speciesState, type Background } from './offsets.js';
+import { populationOf } from './population.js';
 import { contendersOf, rankFeature, type FeatureRanking, type SystemState } from './rank.js';
 import { setSystem } from './set-systems.js';
 import { findStar, type TemperatureHint } from './star.js';
@@ -69,9 +70,10 @@ export function identify(input: IdentifyInput): Identified {
     if (glowing) systems.push(glowing);
   }
 
-  const first = rankAll(found.weighed(found.scene().background), input, found.scene().background);
+  const ground = { ...found.scene().background, population: populationOf(features, systems, null, coverage) };
+  const first = rankAll(found.weighed(ground), input, ground);
   if (star && clouds.length && !hasOwnLines(star, first)) return identify({ ...input, withoutStar: true });
-  const settled = backgroundOf(found.rate, first);
+  const settled = { ...backgroundOf(found.rate, first), population: populationOf(features, systems, first.rankings, coverage) };
   return rankAll(found.weighed(settled), input, settled);
 }
 

@@ -1,5 +1,6 @@
 import { featureAt, velocityOf, type Coverage, type FeatureView } from './views.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
+import type { Population } from './population.js';
 import { C_KM_PER_S } from '../units/index.js';
 
 /** Offsets tried for a species, dex: wide enough for any abundance or ionisation that the strength model misses. */
@@ -13,6 +14,8 @@ export interface Background {
   rate(kind: 'dip' | 'peak', wavelength: number): number;
   /** chance, 0 to 1, that other systems make this feature */
   explained(featureIndex: number, without: SystemModel): number;
+  /** what a first ranking taught of the features at large; the defaults of `population.ts` when absent */
+  readonly population?: Population;
 }
 
 /** ln odds that missing emission lines of one species can weigh at most: they share their cause, the star's absorption that fills them in. */
@@ -101,7 +104,7 @@ export function positionSigma(e: Expected, f: FeatureView): number {
 }
 
 /** How much better the feature's width suits the system than features at large. */
-export function widthRatio(e: Expected, f: FeatureView, coverage: Coverage): number {
+export function widthRatio(e: Pick<Expected, 'fwhmV'>, f: FeatureView, coverage: Coverage): number {
   const expected = Math.max(e.fwhmV, coverage.elementV);
   const spread = Math.hypot(WIDTH_SCATTER, 1.2 / Math.max(f.significance, 2));
   const z = Math.log(f.fwhmV / expected) / spread;

@@ -1,6 +1,7 @@
 import { C_KM_PER_S } from '../units/index.js';
 import { normalDraws } from './draws.js';
 import type { Expected, SystemModel } from './model.js';
+import { AT_LARGE } from './population.js';
 import { offsetMoments, widthRatio, type Background, type LineTerm, type SpeciesState } from './offsets.js';
 import { featureAt, velocityOf, type Coverage, type FeatureView } from './views.js';
 
@@ -42,13 +43,16 @@ export interface FeatureRanking {
 
 const DRAWS = 400;
 const MAIN_SHARE = 0.3;
-const UNLISTED_SHARE = 0.08; // of all features, made by lines that no list holds: a prior, shown as "not in the list"
-const LOG_W_SPREAD = 0.55; // dex, as in offsets.ts
+const CROWD_SHARE = 0.7; // of the strongest, where no line makes MAIN_SHARE
 const MODEL_ERROR = 0.14; // natural log: profile misfit and blending at the 14 % level
 const BLEND_PULL = 0.35; // of the spread of blended lines: how far a single profile's centroid strays from theirs
 const NEGLIGIBLE = 1.5; // dex: a line that is this much too weak even at 2 sigma takes no part
 const LEAST = 0.002; // candidates below this chance are not listed
 const MOST = 8;
+const LEAST_UNLISTED = 0.25; // of the feature: what a line that no list holds must add to be worth a hypothesis
+const UNRESOLVED = 0.7; // of the feature's FWHM: further apart, two lines would be two features
+/** Where a line is that the list has at a wrong place: anywhere within this of it, km/s, as likely as that it is not there at all. */
+const MISPLACED_WITHIN = 60;
 
 const LN10 = Math.LN10;
 /** Chance that a line which the strength model promises is not there: wrong gf, wrong level, a list's slip. */
@@ -56,6 +60,7 @@ const PROMISE_BROKEN = 0.05;
 
 /** Student's t density with 30 degrees of freedom: somewhat more than Gaussian errors allow. */
 const heavyTail = (z: number): number => 0.3956 * (1 + (z * z) / 30) ** -15.5;
+const normalPdf = (z: number): number => Math.exp(-0.5 * z * z) / Math.sqrt(2 * Math.PI);
 
 /** Lines of all systems that reach into a feature. */
 export function contendersOf(f: FeatureView, systems: readonly SystemState[], features: readonly FeatureView[]): Contender[] {
@@ -120,7 +125,8 @@ function partOf(e: Expected, f: FeatureView, features: readonly FeatureView[]): 
 
 /**
  * Ranks the readings of a feature: many sets of line strengths are drawn from the predictions with their scatter, blended, weighed by
- * how well they give the feature's equivalent width, centroid and width, and counted. "Unidentified" competes as a flat density.
+ * how well they give the feature's equivalent width, centroid and width, and counted. A line that no list holds may make the feature, or
+ * what the listed lines leave of it: what is left has to suit the strengths of features at large, and to lie where it would not be resolved.
  */
 export function rankFeature(
   f: FeatureView,
@@ -142,53 +148,80 @@ function draw(
   draws: number,
 ): Omit<FeatureRanking, 'contenders'> {
   const n = contenders.length;
+  const { population = AT_LARGE } = background;
   const lnW = f.logW * LN10;
   const sigmaLn = Math.hypot(f.sigmaLogW * LN10, MODEL_ERROR);
-  const settled = (f.flags.includes('blend') ? 0.05 : 0.02) * f.fwhmV; // how well a centroid holds against neighbours and profile misfit
+  const settled = population.settled * (f.flags.includes('blend') ? 2.5 : 1) * f.fwhmV; // how well a centroid holds against neighbours and profile misfit
   const offset = contenders.map((c) => velocityOf(c.expected.wavelength, f.wavelength));
   const width = contenders.map((c) => Math.max(widthRatio(c.expected, f, coverage), 1e-4));
+  const meanLn = population.logW(f.kind) * LN10;
+  const spreadLn = population.logWSpread * LN10;
+  const unlistedRate = population.unlistedShare * background.rate(f.kind, f.wavelength);
+  const unlistedWidth = population.widthRatio(f);
   const wins = new Float64Array(n);
   const shares = new Float64Array(n);
   const w = new Float64Array(n);
+  const lost = new Float64Array(n); // strengths of lines that the list has, but not here
   let total = 0;
-  let idle = 0; // draws in which listed lines leave most of the feature unexplained
+  let open = 0;
+  const count = (weight: number, whole: number, rest: number): void => {
+    total += weight;
+    let top = rest;
+    for (let k = 0; k < n; k++) top = Math.max(top, w[k]!);
+    const main = Math.min(MAIN_SHARE * whole, CROWD_SHARE * top);
+    let any = false;
+    for (let k = 0; k < n; k++) {
+      shares[k]! += (weight * w[k]!) / whole;
+      if (w[k]! < main || w[k] === 0) continue;
+      wins[k]! += weight;
+      any = true;
+    }
+    if (!any) open += weight;
+  };
   for (let j = 0; j < draws; j++) {
     let sum = 0;
     let centroid = 0;
     let top = 0;
+    let misplaced = 0;
     for (let k = 0; k < n; k++) {
       const c = contenders[k]!;
-      w[k] = uniform(j, k) < c.presence * (1 - PROMISE_BROKEN) ? c.part * Math.exp(LN10 * (c.logW + c.sigmaLog * normalDraws(j, k))) : 0;
+      const chance = uniform(j, k);
+      const strength = chance < c.presence ? c.part * Math.exp(LN10 * (c.logW + c.sigmaLog * normalDraws(j, k))) : 0;
+      const kept = chance < c.presence * (1 - PROMISE_BROKEN);
+      w[k] = kept ? strength : 0;
+      lost[k] = kept ? 0 : strength;
       sum += w[k]!;
       centroid += w[k]! * offset[k]!;
       if (w[k]! > w[top]!) top = k;
     }
-    if (sum < 0.6 * 10 ** f.logW) idle++;
-    if (sum === 0) continue;
-    centroid /= sum;
-    let spread = 0;
-    for (let k = 0; k < n; k++) spread += w[k]! * (offset[k]! - centroid) ** 2;
-    const place = Math.hypot(f.sigmaV, settled, contenders[top]!.expected.sigmaV, 0.2, BLEND_PULL * Math.sqrt(spread / sum));
-    const zW = (lnW - Math.log(sum)) / sigmaLn;
-    const zV = centroid / place;
-    const weight = ((heavyTail(zW) * heavyTail(zV)) / (sigmaLn * place)) * width[top]!;
-    total += weight;
-    for (let k = 0; k < n; k++) {
-      const share = w[k]! / sum;
-      shares[k]! += weight * share;
-      if (share >= MAIN_SHARE) wins[k]! += weight;
+    const whole = Math.exp(lnW);
+    if (sum > 0) {
+      centroid /= sum;
+      let spread = 0;
+      for (let k = 0; k < n; k++) spread += w[k]! * (offset[k]! - centroid) ** 2;
+      const place = Math.hypot(f.sigmaV, settled, contenders[top]!.expected.sigmaV, 0.2, BLEND_PULL * Math.sqrt(spread / sum));
+      const zW = (lnW - Math.log(sum)) / sigmaLn;
+      const zV = centroid / place;
+      count(((heavyTail(zW) * heavyTail(zV)) / (sigmaLn * place)) * width[top]!, sum, 0);
     }
+    const left = whole - sum;
+    if (left < LEAST_UNLISTED * whole) continue;
+    const lever = whole / left;
+    const gap = (centroid * lever) / (UNRESOLVED * f.fwhmV);
+    const lnLeft = Math.log(left);
+    for (let k = 0; k < n; k++)
+      if (lost[k]! > 0) misplaced += normalPdf((lnLeft - Math.log(lost[k]!)) / 0.2) / 0.2 / (4 * MISPLACED_WITHIN);
+    const density = (unlistedRate * normalPdf((lnLeft - meanLn) / spreadLn)) / spreadLn + misplaced;
+    count(density * lever * lever * Math.exp(-0.5 * gap * gap) * unlistedWidth, whole, left);
   }
-  const flat = (UNLISTED_SHARE * background.rate(f.kind, f.wavelength) * idle) / (LOG_W_SPREAD * LN10 * Math.sqrt(2 * Math.PI));
-  const norm = total + flat;
-  if (!(norm > 0)) return { ranked: [], unidentified: 1 };
+  if (!(total > 0)) return { ranked: [], unidentified: 1 };
   const ranked = contenders
-    .map((contender, k) => ({ contender, probability: wins[k]! / norm, share: total > 0 ? shares[k]! / total : 0 }))
+    .map((contender, k) => ({ contender, probability: wins[k]! / total, share: shares[k]! / total }))
     .filter((r) => r.probability >= LEAST)
     .sort(
       (a, b) => b.probability - a.probability || b.share - a.share || a.contender.expected.wavelength - b.contender.expected.wavelength,
     );
-  return { ranked: ranked.slice(0, MOST), unidentified: flat / norm };
+  return { ranked: ranked.slice(0, MOST), unidentified: open / total };
 }
 
 /** A fixed low-discrepancy number in (0, 1) a draw and contender: the golden ratio's multiples, shifted a contender. */
