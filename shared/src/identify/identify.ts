@@ -70,8 +70,8 @@ export function identify(input: IdentifyInput): Identified {
     if (glowing) systems.push(glowing);
   }
 
-  const ground = { ...found.scene().background, population: populationOf(features, systems, null, coverage) };
-  const first = rankAll(found.weighed(ground), input, ground);
+  const background = { ...found.scene().background, population: populationOf(features, systems, null, coverage) };
+  const first = rankAll(found.weighed(background), input, background);
   if (star && clouds.length && !hasOwnLines(star, first)) return identify({ ...input, withoutStar: true });
   const settled = { ...backgroundOf(found.rate, first), population: populationOf(features, systems, first.rankings, coverage) };
   return rankAll(found.weighed(settled), input, settled);
