@@ -29,7 +29,14 @@ export function dev() {
 async function watch(databaseUrl, interruption) {
   if (interruption.was()) return;
   const apiPort = await nextFreePort(3000);
-  const env = { FOREVEIL_MODE: 'demo', ...process.env, DATABASE_URL: databaseUrl, PORT: String(apiPort), API_PORT: String(apiPort) };
+  const env = {
+    FOREVEIL_MODE: 'demo',
+    ...process.env,
+    DATABASE_URL: databaseUrl,
+    PORT: String(apiPort),
+    API_PORT: String(apiPort),
+    MAIL_PORT: String(await nextFreePort(apiPort + 1025)),
+  };
   const running = [
     startChild('compiler', node, ['node_modules/typescript/bin/tsc', '-b', 'server', '--watch', '--preserveWatchOutput'], { env }),
     startChild('API', node, [...watched, 'server/dist/main.js'], { env }),

@@ -40,6 +40,7 @@ async function serve(databaseUrl, port, interruption) {
     ...process.env,
     DATABASE_URL: databaseUrl,
     PORT: String(port),
+    MAIL_PORT: process.env.MAIL_PORT ?? String(await nextFreePort(port + 1025)),
   };
   const command = (file) => [process.execPath, ['--enable-source-maps', `server/dist/${file}`], { env }];
   const running = [startChild('API', ...command('main.js')), startChild('analysis worker', ...command('worker.js'))];
@@ -49,7 +50,7 @@ async function serve(databaseUrl, port, interruption) {
   const accounts = demoAccounts(databaseUrl).catch(() => '');
   const address = `http://127.0.0.1:${port}`;
   const first = await Promise.race([death, interruption.interrupted, isReady(address, interruption)]);
-  if (first === 'ready') greet(address, await accounts);
+  if (first === 'ready') greet(address, await accounts, env);
   const end = first === 'ready' ? await Promise.race([death, interruption.interrupted]) : first;
   if (interruption.was()) return;
   if (end === null) throw new Complaint(`The API did not get ready within a minute at ${address}/api/health/ready.`);
@@ -76,8 +77,11 @@ function isReady(address, interruption) {
   return until(async () => interruption.was() || ((await answers()) && 'ready'), 60_000);
 }
 
-function greet(address, accounts) {
+function greet(address, accounts, { SMTP_URL }) {
   say('ready');
   const signIns = accounts && `  sign in as  ${accounts.replaceAll('\n', '\n              ')}\n`;
-  console.log(`\n  Foreveil    ${address}\n${signIns}\n  Ctrl-C stops it. The data stay in .data; deleting that folder starts anew.\n`);
+  const mail = SMTP_URL ? '' : `  its mail    ${address}/mail  (nothing leaves this machine)\n`;
+  console.log(
+    `\n  Foreveil    ${address}\n${signIns}${mail}\n  Ctrl-C stops it. The data stay in .data; deleting that folder starts anew.\n`,
+  );
 }

@@ -15,6 +15,7 @@ import { EventsModule } from './modules/events/events.module.js';
 import { HealthModule } from './modules/health/health.module.js';
 import { IdentificationsModule } from './modules/identifications/identifications.module.js';
 import { LineListsModule } from './modules/linelists/linelists.module.js';
+import { MailModule } from './modules/mail/mail.module.js';
 import { ProgrammesModule } from './modules/programmes/programmes.module.js';
 import { ReportsModule } from './modules/reports/reports.module.js';
 import { SpectraModule } from './modules/spectra/spectra.module.js';
@@ -54,6 +55,7 @@ const ClientModule = ServeStaticModule.forRootAsync({
     IdentificationsModule,
     ReportsModule,
     EventsModule,
+    MailModule,
     HealthModule,
   ],
   providers: [

@@ -10,6 +10,7 @@ import { Cancellations } from './modules/analyses/work/cancellations.js';
 import { sweep } from './modules/analyses/work/sweep.js';
 import { workOnAnalysis } from './modules/analyses/work/work-on-analysis.js';
 import { defaultLineListId, loadLineList } from './modules/linelists/line-list-store.js';
+import { keepSending } from './modules/mail/keep-sending.js';
 import { stopOnSignal } from './stop.js';
 
 /** An analysis worker: takes jobs from the queue, and takes back those of workers that died. Any number may run, on any machine. */
@@ -43,6 +44,7 @@ for (let i = 0; i < config.analysisThreads; i++) {
   });
 }
 void sweepForever();
+const mail = keepSending(db, config, log, stopping.signal);
 stopOnSignal(stop, 15_000);
 log.info('ready');
 
@@ -77,6 +79,7 @@ async function stop(): Promise<void> {
   stopping.abort();
   await boss.stop({ graceful: true, timeout: 8_000 });
   await Promise.all(threads.map((thread) => thread.end()));
+  await mail;
   await listener.close();
   await db.destroy();
 }

@@ -4,3 +4,4 @@ export * from './errors.js';
 export * from './paths.js';
 export * from './roles.js';
 export * from './samples.js';
+export * from './mail.js';

@@ -27,6 +27,8 @@ export const apiPaths = {
   /** the line's key goes percent-encoded */
   comparisonRuling: (p: string, c: string, lineKey: string) =>
     `/api/programmes/${p}/comparisons/${c}/lines/${encodeURIComponent(lineKey)}/ruling`,
+  receivedMails: '/api/mail/received',
+  receivedMail: (m: string) => `/api/mail/received/${m}`,
   lineLists: '/api/line-lists',
   live: '/api/health/live',
   ready: '/api/health/ready',

@@ -22,7 +22,8 @@ export interface Fleet {
 export async function startFleet(): Promise<Fleet> {
   const log: string[] = [];
   const database = await makeDatabase();
-  const env = { FOREVEIL_MODE: 'demo', LOG_LEVEL: 'warn', DATABASE_URL: database.url, PORT: String(await freePort()) };
+  const [port, mailPort] = [await freePort(), await freePort()];
+  const env = { FOREVEIL_MODE: 'demo', LOG_LEVEL: 'warn', DATABASE_URL: database.url, PORT: String(port), MAIL_PORT: String(mailPort) };
   const processes: ChildProcess[] = [];
   const close = async () => {
     await Promise.all(processes.map(stop));
