@@ -67,7 +67,7 @@ module.exports = {
       comment: 'no Node module and no package but the pure ones listed here',
       severity: 'error',
       from: { path: '^shared/src/' },
-      to: { pathNot: ['^shared/src/', 'node_modules/(astronomy-engine|fflate|papaparse|@types/papaparse)/'] },
+      to: { pathNot: ['^shared/src/', 'node_modules/(astronomy-engine|fast-xml-parser|fflate|papaparse|@types/papaparse)/'] },
     },
     { name: 'client-not-server', severity: 'error', from: { path: '^client/' }, to: { path: '^(server|scripts|migrations|seeds)/' } },
     { name: 'server-not-client', severity: 'error', from: { path: '^server/' }, to: { path: '^(client|scripts|test)/' } },
