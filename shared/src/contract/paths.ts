@@ -30,6 +30,12 @@ export const apiPaths = {
   receivedMails: '/api/mail/received',
   receivedMail: (m: string) => `/api/mail/received/${m}`,
   lineLists: '/api/line-lists',
+  programmeLineLists: (p: string) => `/api/programmes/${p}/line-lists`,
+  programmeLineList: (p: string, l: string) => `/api/programmes/${p}/line-lists/${l}`,
+  linesOfList: (p: string, l: string) => `/api/programmes/${p}/line-lists/${l}/lines`,
+  lineListDiff: (p: string, l: string, other: string) => `/api/programmes/${p}/line-lists/${l}/diff/${other}`,
+  lineListCsv: (p: string, l: string) => `/api/programmes/${p}/line-lists/${l}/lines.csv`,
+  archiveLineList: (p: string, l: string) => `/api/programmes/${p}/line-lists/${l}/archive`,
   live: '/api/health/live',
   ready: '/api/health/ready',
 } as const;

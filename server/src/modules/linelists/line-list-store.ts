@@ -14,8 +14,10 @@ export interface LineListRow {
   readonly lines: number;
 }
 
+/** The lists that all programmes share. */
 export const findLineLists = (db: Knex): Promise<LineListRow[]> =>
   db('line_lists as l')
+    .whereNull('l.programme_id')
     .orderBy('l.is_default', 'desc')
     .orderBy('l.name')
     .orderBy('l.created_at', 'desc')
@@ -24,7 +26,8 @@ export const findLineLists = (db: Knex): Promise<LineListRow[]> =>
       db.raw('(select count(*)::int from lines where line_list_id = l.id) as lines'),
     );
 
-const LINE: Record<Exclude<keyof Line, 'asked'>, string> = {
+/** Columns of the table by the fields of a line. */
+export const LINE: Record<Exclude<keyof Line, 'asked'>, string> = {
   id: 'line_id',
   species: 'species',
   element: 'element',
@@ -59,10 +62,11 @@ export async function findLine(db: Knex, listId: string, lineId: string): Promis
   return (await db('lines').where({ line_list_id: listId, line_id: lineId }).first<Line | undefined>(LINE)) ?? null;
 }
 
-/** Lines by their ids; where several lists hold an id, as the newest list has it. */
-export async function findLines(db: Knex, lineIds: readonly string[]): Promise<Map<string, Line>> {
+/** Lines of the given lists by their ids; where several of these lists hold an id, as the newest one has it. */
+export async function findLines(db: Knex, listIds: readonly string[], lineIds: readonly string[]): Promise<Map<string, Line>> {
   const rows = await db('lines')
     .join('line_lists as l', 'l.id', 'lines.line_list_id')
+    .whereIn('l.id', listIds)
     .whereIn('line_id', lineIds)
     .orderBy('l.created_at')
     .select<Line[]>(LINE);
@@ -77,9 +81,14 @@ export async function insertLineList(db: Knex, list: LineList, { isDefault }: { 
   const [row] = await db('line_lists')
     .insert({ name: list.name, version: list.version, is_default: isDefault })
     .returning<{ id: string }[]>('id');
-  const rows = list.lines.map((line, position) => toRow(row!.id, line, position));
-  for (let from = 0; from < rows.length; from += ROWS_AT_ONCE) await db('lines').insert(rows.slice(from, from + ROWS_AT_ONCE));
+  await insertLines(db, row!.id, list.lines);
   return row!.id;
+}
+
+/** Lines of a list in its order. */
+export async function insertLines(db: Knex, listId: string, lines: readonly Line[]): Promise<void> {
+  const rows = lines.map((line, position) => toRow(listId, line, position));
+  for (let from = 0; from < rows.length; from += ROWS_AT_ONCE) await db('lines').insert(rows.slice(from, from + ROWS_AT_ONCE));
 }
 
 function toRow(listId: string, line: Line, position: number): Record<string, unknown> {

@@ -57,3 +57,15 @@ export function namedLines(spectra: readonly ReportedSpectrum[]): string[] {
   ]);
   return [...new Set(ids)];
 }
+
+/** Lists that the current analyses and the decisions of these spectra rest on. */
+export async function findListsUsed(db: Knex, { programmeId }: Scope, about: About): Promise<string[]> {
+  const ofThese = 'targetId' in about ? { 's.target_id': about.targetId } : { 's.id': about.spectrumId };
+  const within = (table: string, on: string) =>
+    db('spectra as s').join(table, on, 's.id').where('s.programme_id', programmeId).where(ofThese);
+  const rows = await within('analyses as a', 'a.spectrum_id')
+    .whereRaw('a.id = s.current_analysis_id')
+    .select<{ id: string }[]>({ id: 'a.line_list_id' })
+    .union(within('identifications as i', 'i.spectrum_id').select({ id: 'i.line_list_id' }));
+  return rows.map(({ id }) => id);
+}

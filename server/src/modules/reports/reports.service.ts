@@ -7,7 +7,7 @@ import type { Scope } from '../../common/scope.js';
 import { KNEX } from '../../database/knex.js';
 import { addAudit } from '../audit/add-audit.js';
 import { findLines } from '../linelists/line-list-store.js';
-import { findHeading, findReported, namedLines, type About } from './reports.repository.js';
+import { findHeading, findListsUsed, findReported, namedLines, type About } from './reports.repository.js';
 
 @Injectable()
 export class ReportsService {
@@ -18,7 +18,7 @@ export class ReportsService {
     const heading = await findHeading(this.db, scope, about);
     if (!heading) throw notFound();
     const spectra = await findReported(this.db, scope, about);
-    const lines = await findLines(this.db, namedLines(spectra));
+    const lines = await findLines(this.db, await findListsUsed(this.db, scope, about), namedLines(spectra));
     const writtenAt = new Date().toISOString();
     const csv = lineReportCsv({ ...heading, spectra, lines, programVersion: PROGRAM_VERSION, writtenAt });
     await addAudit(this.db, { ...scope, userId: actor.userId, action: 'report_exported', subject: Object.values(about)[0]!, facts: {} });

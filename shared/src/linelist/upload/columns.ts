@@ -21,6 +21,8 @@ export type LineField =
   | 'settings'
   | 'multiplet'
   | 'relativeIntensity'
+  | 'relativeIntensityScale'
+  | 'tier'
   | 'source';
 
 /** Names in use, all small letters with other signs as '_'. A name may carry its unit, which is taken off first. */
@@ -46,6 +48,8 @@ const NAMES: Record<LineField, readonly string[]> = {
   settings: ['setting', 'settings', 'family', 'families'],
   multiplet: ['multiplet', 'multiplet_key'],
   relativeIntensity: ['rel_intensity', 'relative_intensity', 'intensity'],
+  relativeIntensityScale: ['rel_intensity_scale'],
+  tier: ['tier'],
   source: ['source', 'reference', 'ref', 'bibcode', 'doi', 'reference_doi'],
 };
 

@@ -54,7 +54,7 @@ function lineOf(cells: Cells, convention: Convention): Line {
   const source = cells.source || convention.citation;
   if (!source) throw new Fault('source', 'No source: fill the cell, or give a citation for the whole list.');
   const strengths = strengthsOf(cells, lowerJ);
-  const relativeIntensity = atLeastZero(cells, 'relativeIntensity');
+  const relativeIntensity = number(cells, 'relativeIntensity');
   return {
     id: cells.id || `${species.name.replaceAll(' ', '')}-${wavelengthNm.toFixed(4)}`,
     species: species.name,
@@ -72,8 +72,8 @@ function lineOf(cells: Cells, convention: Convention): Line {
     settings: familiesOf(cells, type, species, lowerEnergyPerCm),
     multiplet: cells.multiplet ?? '',
     relativeIntensity,
-    relativeIntensityScale: relativeIntensity === null ? '' : 'as in the list',
-    tier: 1,
+    relativeIntensityScale: relativeIntensity === null ? '' : cells.relativeIntensityScale || 'as in the list',
+    tier: cells.tier === '2' ? 2 : 1,
     source,
   };
 }
