@@ -130,6 +130,8 @@ export interface AnalysisDetail extends AnalysisSummary {
   result: Analysis | null;
 }
 export interface NewAnalysis {
+  /** the default list when left out */
+  lineListId?: string;
   settings?: Partial<AnalysisSettings>;
 }
 

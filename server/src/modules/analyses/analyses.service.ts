@@ -36,9 +36,9 @@ export class AnalysesService {
     return `${JSON.stringify(detail).slice(0, -1)},"result":${resultText ?? 'null'}}`;
   }
 
-  async request(actor: Actor, scope: Scope, spectrumId: string, { settings }: NewAnalysis): Promise<AnalysisSummary> {
+  async request(actor: Actor, scope: Scope, spectrumId: string, { settings, lineListId }: NewAnalysis): Promise<AnalysisSummary> {
     if (settings) checkSettings(settings);
-    const wanted = { spectrumId, userId: actor.userId, settings };
+    const wanted = { spectrumId, userId: actor.userId, settings, lineListId };
     const id = await asMember(this.db, actor, scope.programmeId, 'analyst', async (trx) => {
       if (!(await spectrumExists(trx, scope, spectrumId))) throw notFound();
       const made = await queueAnalysis(trx, scope, wanted, this.config.analysisSeconds);

@@ -2,7 +2,7 @@ import { completeSettings, PROGRAM_VERSION, type AnalysisSettings } from '@forev
 import { DomainError } from '../../common/errors/domain-error.js';
 import type { Trx } from '../../database/transaction.js';
 import { sayEvent } from '../events/say-event.js';
-import { defaultLineListId } from '../linelists/line-list-store.js';
+import { lineListFor } from '../linelists/line-list-store.js';
 import type { Scope } from '../../common/scope.js';
 import { insertAnalysis } from './analyses.repository.js';
 import { sendAnalyseJob } from './job-queue.js';
@@ -11,17 +11,18 @@ interface Wanted {
   readonly spectrumId: string;
   readonly userId: string;
   readonly settings?: Partial<AnalysisSettings>;
+  /** the default list when left out */
+  readonly lineListId?: string;
 }
 
 /** Puts an analysis of a spectrum into the queue. One at a time: a second one has to wait until the first ends or is cancelled. */
 export async function queueAnalysis(
   trx: Trx,
   scope: Scope,
-  { spectrumId, userId, settings }: Wanted,
+  { spectrumId, userId, settings, lineListId: chosen }: Wanted,
   analysisSeconds: number,
 ): Promise<string> {
-  const lineListId = await defaultLineListId(trx);
-  if (!lineListId) throw new DomainError('unavailable', 'No line list is installed: npm run db -- seed');
+  const lineListId = await lineListFor(trx, scope, chosen);
   const id = await insertAnalysis(trx, scope, {
     spectrumId,
     lineListId,

@@ -1,9 +1,30 @@
 import type { Family, Line, LineList } from '@foreveil/shared';
 import type { Knex } from 'knex';
+import { DomainError, notFound } from '../../common/errors/domain-error.js';
+import type { Scope } from '../../common/scope.js';
 
 export async function defaultLineListId(db: Knex): Promise<string | null> {
   const row = await db('line_lists').where({ is_default: true }).first<{ id: string }>('id');
   return row?.id ?? null;
+}
+
+/**
+ * The list an analysis is to use. @param chosen one that the programme may use; the default when left out
+ * @throws not_found, bad_transition when the list was put away, unavailable without a default
+ */
+export async function lineListFor(db: Knex, { programmeId }: Scope, chosen: string | undefined): Promise<string> {
+  if (chosen === undefined) {
+    const id = await defaultLineListId(db);
+    if (!id) throw new DomainError('unavailable', 'No line list is installed: npm run db -- seed');
+    return id;
+  }
+  const list = await db('line_lists')
+    .where({ id: chosen })
+    .where((query) => void query.where({ programme_id: programmeId }).orWhereNull('programme_id'))
+    .first<{ archived_at: Date | null } | undefined>('archived_at');
+  if (!list) throw notFound();
+  if (list.archived_at) throw new DomainError('bad_transition', 'This line list was put away. Bring it back first, or choose another.');
+  return chosen;
 }
 
 export interface LineListRow {

@@ -10,7 +10,7 @@ type Row = Omit<LineListSummary, 'createdAt'> & { createdAt: Date };
 export async function findProgrammeLists(db: Knex, { programmeId }: Scope, id?: string): Promise<LineListSummary[]> {
   const rows = await db('line_lists as l')
     .leftJoin('users as u', 'u.id', 'l.created_by')
-    .where((query) => query.where('l.programme_id', programmeId).orWhereNull('l.programme_id'))
+    .where((query) => void query.where('l.programme_id', programmeId).orWhereNull('l.programme_id'))
     .modify((query) => void (id && query.where('l.id', id)))
     .orderBy('l.is_default', 'desc')
     .orderByRaw('lower(l.name)')
