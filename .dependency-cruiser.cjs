@@ -6,6 +6,7 @@ const SHARED = {
   numeric: [],
   spectrum: ['units'],
   reading: ['units', 'spectrum', 'frames'],
+  recipes: [],
   noise: ['spectrum', 'numeric'],
   continuum: ['units', 'spectrum', 'numeric', 'noise'],
   detection: ['units', 'spectrum', 'noise', 'profiles', 'numeric'],
@@ -25,10 +26,11 @@ const SHARED_TYPES_TOO = {
   atoms: ['linelist'],
   continuum: ['identify'],
   identify: ['continuum', 'detection', 'noise'],
+  recipes: ['reading'],
   review: ['contract'],
   sightlines: ['identify'],
   report: ['contract', 'identify', 'reading'],
-  contract: ['identify', 'sightlines', 'reading', 'review', 'spectrum', 'linelist', 'units'],
+  contract: ['identify', 'sightlines', 'reading', 'recipes', 'review', 'spectrum', 'linelist', 'units'],
 };
 
 const folders = (names) => `^shared/src/(${names.join('|')})/`;

@@ -17,6 +17,7 @@ import { IdentificationsModule } from './modules/identifications/identifications
 import { LineListsModule } from './modules/linelists/linelists.module.js';
 import { MailModule } from './modules/mail/mail.module.js';
 import { ProgrammesModule } from './modules/programmes/programmes.module.js';
+import { RecipesModule } from './modules/recipes/recipes.module.js';
 import { ReportsModule } from './modules/reports/reports.module.js';
 import { SpectraModule } from './modules/spectra/spectra.module.js';
 import { TargetsModule } from './modules/targets/targets.module.js';
@@ -50,6 +51,7 @@ const ClientModule = ServeStaticModule.forRootAsync({
     ProgrammesModule,
     TargetsModule,
     SpectraModule,
+    RecipesModule,
     LineListsModule,
     AnalysesModule,
     IdentificationsModule,

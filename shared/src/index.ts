@@ -3,6 +3,7 @@ export * from './numeric/index.js';
 export * from './spectrum/index.js';
 export * from './frames/index.js';
 export * from './reading/index.js';
+export * from './recipes/index.js';
 export * from './continuum/index.js';
 export * from './noise/index.js';
 export * from './detection/index.js';

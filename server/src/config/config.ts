@@ -1,5 +1,5 @@
 import { existsSync, readFileSync } from 'node:fs';
-import { availableParallelism } from 'node:os';
+import { availableParallelism, tmpdir } from 'node:os';
 import { dirname, join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { localSecrets } from './local-secrets.js';
@@ -30,6 +30,8 @@ export interface Config {
   readonly signInPerAccount: number;
   readonly signInPerAddress: number;
   readonly uploadLimitBytes: number;
+  /** where a file lies while it is uploaded and read; on the machine of this process */
+  readonly uploadDir: string;
   readonly programmeLimitBytes: number;
   readonly readSeconds: number;
   readonly readMemoryMb: number;
@@ -97,6 +99,7 @@ export function loadConfig(env: NodeJS.ProcessEnv = process.env): Config {
     signInPerAccount: number('SIGN_IN_PER_ACCOUNT', 10, 1),
     signInPerAddress: number('SIGN_IN_PER_ADDRESS', 60, 1),
     uploadLimitBytes: number('UPLOAD_LIMIT_MIB', 200, 0.001) * MIB,
+    uploadDir: env.UPLOAD_DIR ?? join(tmpdir(), `foreveil-uploads-${process.getuid?.() ?? 0}`),
     programmeLimitBytes: number('PROGRAMME_LIMIT_MIB', 20_000, 0.001) * MIB,
     readSeconds: number('READ_SECONDS', 30, 0.1),
     readMemoryMb: number('READ_MEMORY_MIB', 1024, 16),

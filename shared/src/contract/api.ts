@@ -93,6 +93,12 @@ export interface SpectrumDetail extends SpectrumSummary {
   reading: Reading;
   corrections: ReadingCorrections;
   hasSigma: boolean;
+  /** counts every change of the row */
+  version: number;
+  /** counts how often the file was read; samples and analyses belong to one */
+  readingRevision: number;
+  /** name of the recipe by which it was read */
+  recipe: string | null;
 }
 /** Multipart upload: `file` and these fields as a JSON string in the part `meta`. Either targetId or targetName. */
 export interface UploadMeta {
@@ -101,6 +107,8 @@ export interface UploadMeta {
   targetKind?: TargetKind;
   label?: string;
   corrections?: ReadingCorrections;
+  /** name of the recipe that the corrections come from */
+  recipe?: string;
 }
 
 /** UWS phases. */
@@ -123,6 +131,8 @@ export interface AnalysisSummary {
   programVersion: string;
   lineListName: string;
   lineListVersion: string;
+  /** reading of the file that it rests on; older than the spectrum's: its wavelengths may be others */
+  readingRevision: number;
 }
 export interface AnalysisDetail extends AnalysisSummary {
   settings: AnalysisSettings;

@@ -14,6 +14,14 @@ export const apiPaths = {
   /** binary, see contract/samples.ts */
   samples: (p: string, s: string) => `/api/programmes/${p}/spectra/${s}/samples`,
   original: (p: string, s: string) => `/api/programmes/${p}/spectra/${s}/original`,
+  /** how its file was read: PATCH reads it anew, GET tells all the ways it was read before */
+  spectrumReading: (p: string, s: string) => `/api/programmes/${p}/spectra/${s}/reading`,
+  restoreSpectrum: (p: string, s: string) => `/api/programmes/${p}/spectra/${s}/restore`,
+  removedSpectra: (p: string) => `/api/programmes/${p}/removed-spectra`,
+  /** with ?sha256=…, comma between several */
+  knownFiles: (p: string) => `/api/programmes/${p}/known-files`,
+  recipes: (p: string) => `/api/programmes/${p}/recipes`,
+  recipe: (p: string, r: string) => `/api/programmes/${p}/recipes/${r}`,
   spectrumReport: (p: string, s: string) => `/api/programmes/${p}/spectra/${s}/report.csv`,
   analyses: (p: string, s: string) => `/api/programmes/${p}/spectra/${s}/analyses`,
   analysis: (p: string, a: string) => `/api/programmes/${p}/analyses/${a}`,

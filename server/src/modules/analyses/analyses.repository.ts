@@ -25,6 +25,7 @@ export async function insertAnalysis(db: Knex, { programmeId }: Scope, made: New
     .insert({
       programme_id: programmeId,
       spectrum_id: made.spectrumId,
+      reading_revision: db('spectra').where({ id: made.spectrumId }).select('reading_revision'),
       line_list_id: made.lineListId,
       settings: JSON.stringify(made.settings),
       program_version: made.programVersion,

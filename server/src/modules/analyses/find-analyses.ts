@@ -26,6 +26,7 @@ export const SUMMARY = {
   programVersion: 'a.program_version',
   lineListName: 'l.name',
   lineListVersion: 'l.version',
+  readingRevision: 'a.reading_revision',
 };
 
 export const filteredAnalyses = (db: Knex, { programmeId }: Scope, { ids, spectrumId }: Filter) => {

@@ -28,11 +28,11 @@ const SUMMARY = {
 
 /** The analysis that a screen shows: the one at work, else the newest completed one, else the newest. */
 const SHOWN_ANALYSIS = `(
-  select a.id from analyses a where a.spectrum_id = s.id
+  select a.id from analyses a where a.spectrum_id = s.id and a.reading_revision = s.reading_revision
   order by a.phase in ('QUEUED', 'EXECUTING') desc, (a.id is not distinct from s.current_analysis_id) desc, a.requested_at desc limit 1)`;
 
 const filtered = (db: Knex, { programmeId }: Scope, { id, targetId }: Filter) => {
-  const query = db('spectra as s').join('users as u', 'u.id', 's.created_by').where('s.programme_id', programmeId);
+  const query = db('spectra as s').join('users as u', 'u.id', 's.created_by').where({ 's.programme_id': programmeId, 's.removed_at': null });
   if (id) query.where('s.id', id);
   if (targetId) query.where('s.target_id', targetId);
   return query.orderBy('s.created_at').orderBy('s.id');
@@ -59,6 +59,9 @@ export async function findSpectrum(db: Knex, scope: Scope, id: string): Promise<
         sha256: 's.sha256',
         reading: 's.reading',
         corrections: 's.corrections',
+        version: 's.version',
+        readingRevision: 's.reading_revision',
+        recipe: 's.recipe_name',
       },
       db.raw('s.sigma is not null as "hasSigma"'),
       db.raw(`${SHOWN_ANALYSIS} as "shownAnalysisId"`),
@@ -78,5 +81,5 @@ async function withAnalyses<R extends SummaryRow>(db: Knex, scope: Scope, rows: 
 }
 
 export async function spectrumExists(db: Knex, { programmeId }: Scope, id: string): Promise<boolean> {
-  return (await db('spectra').where({ programme_id: programmeId, id }).first('id')) !== undefined;
+  return (await db('spectra').where({ programme_id: programmeId, id, removed_at: null }).first('id')) !== undefined;
 }

@@ -3,11 +3,11 @@ import { fileURLToPath } from 'node:url';
 import { Worker } from 'node:worker_threads';
 import type { Reading, ReadingCorrections, ReadResult, Spectrum, SpectrumSummary } from '@foreveil/shared';
 
-export interface ReadJob {
-  readonly bytes: Uint8Array;
+/** The bytes of a file, or where they lie: then the thread fetches them itself, and they never pass through this one. */
+export type ReadJob = ({ readonly bytes: Uint8Array } | { readonly path: string }) & {
   readonly fileName: string;
   readonly corrections: ReadingCorrections;
-}
+};
 interface Limits {
   readonly readSeconds: number;
   readonly readMemoryMb: number;

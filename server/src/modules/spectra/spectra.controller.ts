@@ -1,14 +1,18 @@
-import { Body, Controller, Get, Header, Post, StreamableFile, UploadedFile, UseInterceptors } from '@nestjs/common';
-import { FileInterceptor } from '@nestjs/platform-express';
+import { Body, Controller, Get, Header, Post, Req, Res, StreamableFile, UploadedFile, UseInterceptors } from '@nestjs/common';
 import { ApiBody, ApiConsumes, ApiOperation, ApiProduces, ApiTags } from '@nestjs/swagger';
 import type { SpectrumDetail, SpectrumSummary } from '@foreveil/shared';
+import type { Request, Response } from 'express';
 import { Readable } from 'node:stream';
 import { CurrentActor, type Actor } from '../../common/auth/actor.js';
 import { NeedsRole } from '../../common/auth/rules.js';
 import { contentDisposition } from '../../common/http/content-disposition.js';
+import { hasFresh } from '../../common/http/fresh.js';
 import { Immutable } from '../../common/http/immutable.js';
 import { UuidParam } from '../../common/http/uuid-param.js';
+import { VersionEtag } from '../../common/http/version-etag.js';
 import { SpectraService } from './spectra.service.js';
+import type { UploadedFile as FileOnDisk } from './upload-storage.js';
+import { UploadedFileInterceptor } from './uploaded-file.interceptor.js';
 
 const UPLOAD_BODY = {
   type: 'object',
@@ -33,14 +37,14 @@ export class SpectraController {
 
   @Post()
   @NeedsRole('analyst')
-  @UseInterceptors(FileInterceptor('file'))
+  @UseInterceptors(UploadedFileInterceptor)
   @ApiOperation({ summary: 'Upload a spectrum; its analysis starts by itself' })
   @ApiConsumes('multipart/form-data')
   @ApiBody({ schema: UPLOAD_BODY })
   upload(
     @CurrentActor() actor: Actor,
     @UuidParam('programmeId') programmeId: string,
-    @UploadedFile() file: Express.Multer.File | undefined,
+    @UploadedFile() file: FileOnDisk | undefined,
     @Body('meta') meta: unknown,
   ): Promise<SpectrumDetail> {
     return this.spectra.upload(actor, { programmeId }, { file, meta });
@@ -48,6 +52,7 @@ export class SpectraController {
 
   @Get(':spectrumId')
   @NeedsRole('reader')
+  @UseInterceptors(VersionEtag)
   @ApiOperation({ summary: 'A spectrum with what was read from its file' })
   get(@UuidParam('programmeId') programmeId: string, @UuidParam('spectrumId') id: string): Promise<SpectrumDetail> {
     return this.spectra.get({ programmeId }, id);
@@ -55,11 +60,17 @@ export class SpectraController {
 
   @Get(':spectrumId/samples')
   @NeedsRole('reader')
-  @UseInterceptors(Immutable)
   @ApiProduces('application/octet-stream')
   @ApiOperation({ summary: 'Columns of a spectrum, little-endian: wavelength, flux, sigma, bad' })
-  async samples(@UuidParam('programmeId') programmeId: string, @UuidParam('spectrumId') id: string): Promise<StreamableFile> {
-    return new StreamableFile(await this.spectra.samples({ programmeId }, id));
+  async samples(
+    @UuidParam('programmeId') programmeId: string,
+    @UuidParam('spectrumId') id: string,
+    @Req() request: Request,
+    @Res({ passthrough: true }) response: Response,
+  ): Promise<StreamableFile | undefined> {
+    const { revision, sizeBytes, chunks } = await this.spectra.samples({ programmeId }, id);
+    if (hasFresh(request, response, `samples-${id}-${revision}`)) return undefined;
+    return new StreamableFile(Readable.from(chunks(), { objectMode: false }), { length: sizeBytes });
   }
 
   @Get(':spectrumId/original')

@@ -1,23 +1,9 @@
 import { Module } from '@nestjs/common';
-import { MulterModule } from '@nestjs/platform-express';
-import { memoryStorage } from 'multer';
-import type { Config } from '../../config/config.js';
-import { CONFIG } from '../../config/config.module.js';
 import { SpectraController } from './spectra.controller.js';
 import { SpectraService } from './spectra.service.js';
+import { SpectrumChangesController } from './spectrum-changes.controller.js';
+import { SpectrumChanges } from './spectrum-changes.service.js';
+import { SpectrumReader } from './spectrum-reader.js';
 
-@Module({
-  imports: [
-    MulterModule.registerAsync({
-      inject: [CONFIG],
-      useFactory: (config: Config) => ({
-        storage: memoryStorage(),
-        defParamCharset: 'utf8',
-        limits: { fileSize: config.uploadLimitBytes, files: 1, fields: 1, fieldSize: 64 * 1024, parts: 2, headerPairs: 20 },
-      }),
-    }),
-  ],
-  controllers: [SpectraController],
-  providers: [SpectraService],
-})
+@Module({ controllers: [SpectraController, SpectrumChangesController], providers: [SpectraService, SpectrumChanges, SpectrumReader] })
 export class SpectraModule {}

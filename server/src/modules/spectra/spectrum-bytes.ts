@@ -1,5 +1,6 @@
 import type { Spectrum } from '@foreveil/shared';
 import type { Knex } from 'knex';
+import { DomainError } from '../../common/errors/domain-error.js';
 import type { Scope } from '../../common/scope.js';
 
 type Column = 'original' | 'wavelength' | 'flux' | 'sigma' | 'bad';
@@ -7,12 +8,16 @@ type Column = 'original' | 'wavelength' | 'flux' | 'sigma' | 'bad';
 /** pg gives bytea as text of twice the size, so bytes come in slices; the columns are stored uncompressed, which makes a slice cheap. */
 const SLICE = 4 * 1024 * 1024;
 
-/** The bytes of a column in slices, in order; none when the column is null. */
-export async function* slicesOf(db: Knex, { programmeId }: Scope, id: string, column: Column): AsyncGenerator<Buffer> {
+/**
+ * The bytes of a column in slices, in order; none when the column is null.
+ * @param revision of the reading that is meant. @throws unavailable when the file is read anew in between: the slices would not fit together
+ */
+export async function* slicesOf(db: Knex, { programmeId }: Scope, id: string, column: Column, revision?: number): AsyncGenerator<Buffer> {
   for (let from = 1; ; from += SLICE) {
     const row = await db('spectra')
-      .where({ programme_id: programmeId, id })
+      .where({ programme_id: programmeId, id, ...(revision === undefined ? {} : { reading_revision: revision }) })
       .first<{ slice: Buffer | null } | undefined>(db.raw('substring(?? from ? for ?) as slice', [column, from, SLICE]));
+    if (!row && revision !== undefined) throw new DomainError('unavailable', 'The file is being read anew. Try again.', { retryAfter: 1 });
     if (!row?.slice?.length) return;
     yield row.slice;
     if (row.slice.length < SLICE) return;
@@ -20,31 +25,67 @@ export async function* slicesOf(db: Knex, { programmeId }: Scope, id: string, co
 }
 
 /** A whole column in memory of its own, so that it can be handed to a thread. */
-async function bytesOf(db: Knex, scope: Scope, id: string, column: Column): Promise<ArrayBuffer> {
-  const slices: Buffer[] = [];
-  for await (const slice of slicesOf(db, scope, id, column)) slices.push(slice);
-  const all = new Uint8Array(slices.reduce((sum, slice) => sum + slice.length, 0));
+async function bytesOf(slices: AsyncIterable<Buffer>, length: number): Promise<ArrayBuffer> {
+  const all = new Uint8Array(length);
   let at = 0;
-  for (const slice of slices) {
+  for await (const slice of slices) {
     all.set(slice, at);
     at += slice.length;
   }
   return all.buffer;
 }
 
-/** The columns of a stored spectrum as the analysis takes them; null when the programme has no such spectrum. */
-export async function loadSpectrum(db: Knex, scope: Scope, id: string): Promise<Spectrum | null> {
-  const row = await db('spectra')
-    .where({ programme_id: scope.programmeId, id })
-    .first<Pick<Spectrum, 'fluxKind' | 'frame' | 'resolvingPower'> & { hasSigma: boolean }>(
-      { fluxKind: 'flux_kind', frame: 'frame', resolvingPower: 'resolving_power' },
+interface Shape {
+  readonly points: number;
+  readonly revision: number;
+  readonly hasSigma: boolean;
+}
+type Facts = Pick<Spectrum, 'fluxKind' | 'frame' | 'resolvingPower'>;
+
+const findShape = (db: Knex, { programmeId }: Scope, id: string) =>
+  db('spectra')
+    .where({ programme_id: programmeId, id, removed_at: null })
+    .first<(Facts & Shape) | undefined>(
+      { fluxKind: 'flux_kind', frame: 'frame', resolvingPower: 'resolving_power', points: 'points', revision: 'reading_revision' },
       db.raw('sigma is not null as "hasSigma"'),
     );
+
+/** The columns of a stored spectrum as the analysis takes them; null when the programme has no such spectrum. */
+export async function loadSpectrum(db: Knex, scope: Scope, id: string): Promise<Spectrum | null> {
+  const row = await findShape(db, scope, id);
   if (!row) return null;
-  const { hasSigma, ...facts } = row;
-  const [wavelength, flux, bad] = await Promise.all(
-    (['wavelength', 'flux', 'bad'] as const).map((column) => bytesOf(db, scope, id, column)),
-  );
-  const sigma = hasSigma ? new Float64Array(await bytesOf(db, scope, id, 'sigma')) : null;
-  return { ...facts, wavelength: new Float64Array(wavelength!), flux: new Float64Array(flux!), sigma, bad: new Uint8Array(bad!) };
+  const { hasSigma, points, revision, ...facts } = row;
+  const column = (name: Column, width: number) => bytesOf(slicesOf(db, scope, id, name, revision), width * points);
+  const [wavelength, flux, bad] = await Promise.all([column('wavelength', 8), column('flux', 8), column('bad', 1)]);
+  const sigma = hasSigma ? new Float64Array(await column('sigma', 8)) : null;
+  return { ...facts, wavelength: new Float64Array(wavelength), flux: new Float64Array(flux), sigma, bad: new Uint8Array(bad) };
+}
+
+export interface SampleStream {
+  readonly revision: number;
+  readonly sizeBytes: number;
+  readonly chunks: () => AsyncGenerator<Uint8Array>;
+}
+
+/** The columns as contract/samples.ts describes them, piece by piece; null when the programme has no such spectrum. */
+export async function openSamples(db: Knex, scope: Scope, id: string): Promise<SampleStream | null> {
+  const shape = await findShape(db, scope, id);
+  if (!shape) return null;
+  const { points, revision, hasSigma } = shape;
+  const sizeBytes = 8 + points * (hasSigma ? 17 : 13);
+  async function* chunks(): AsyncGenerator<Uint8Array> {
+    yield new Uint8Array(Uint32Array.of(points, hasSigma ? 1 : 0).buffer);
+    yield* slicesOf(db, scope, id, 'wavelength', revision);
+    for await (const slice of slicesOf(db, scope, id, 'flux', revision)) yield singles(slice);
+    if (hasSigma) for await (const slice of slicesOf(db, scope, id, 'sigma', revision)) yield singles(slice);
+    yield* slicesOf(db, scope, id, 'bad', revision);
+  }
+  return { revision, sizeBytes, chunks };
+}
+
+/** Little-endian doubles as single precision: enough for drawing, and half the way. */
+function singles(doubles: Buffer): Uint8Array {
+  const values = new Float64Array(doubles.length / 8);
+  new Uint8Array(values.buffer).set(doubles);
+  return new Uint8Array(Float32Array.from(values).buffer);
 }

@@ -1,0 +1,2 @@
+export * from './corrections.js';
+export * from './signature.js';
