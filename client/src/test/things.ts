@@ -30,6 +30,7 @@ export const anAnalysis = (parts: Partial<AnalysisSummary> = {}): AnalysisSummar
   programVersion: '0.1.0',
   lineListName: 'default',
   lineListVersion: '2031.1',
+  readingRevision: 1,
   ...parts,
 });
 
@@ -61,6 +62,9 @@ export const aSpectrumDetail = (parts: Partial<SpectrumDetail> = {}): SpectrumDe
   reading: aReading(),
   corrections: {},
   hasSigma: true,
+  version: 1,
+  readingRevision: 1,
+  recipe: null,
   ...parts,
 });
 

@@ -56,7 +56,8 @@ const MOST_COLUMNS = 6;
 
 /** 'FITS tables with the columns WAVE, FLUX, ERR of Echelle at T1'. */
 export function signatureWords({ format, columns, instrument, telescope }: FileSignature): string {
-  const shown = columns.slice(0, MOST_COLUMNS).join(', ') + (columns.length > MOST_COLUMNS ? ` and ${columns.length - MOST_COLUMNS} more` : '');
+  const shown =
+    columns.slice(0, MOST_COLUMNS).join(', ') + (columns.length > MOST_COLUMNS ? ` and ${columns.length - MOST_COLUMNS} more` : '');
   const whole = columns.length ? ` with the ${columns.length === 1 ? 'column' : 'columns'} ${shown}` : '';
   const made = [instrument && ` of ${instrument}`, telescope && ` at ${telescope}`].filter(Boolean).join('');
   return FORMAT_WORDS[format] + whole + made;

@@ -6,4 +6,4 @@ export const openFeatures = (where: string): string => `(
   select coalesce(sum(a.feature_count - (
     select count(*) from identifications i
     where i.spectrum_id = s.id and i.feature_index is not null and i.state in ('accepted', 'rejected'))), 0)::int
-  from spectra s join analyses a on a.id = s.current_analysis_id where ${where})`;
+  from spectra s join analyses a on a.id = s.current_analysis_id where s.removed_at is null and ${where})`;

@@ -17,7 +17,7 @@ export async function findIdentifications(db: Knex, { programmeId }: Scope, filt
   const query = db('identifications as i')
     .join('spectra as s', 's.id', 'i.spectrum_id')
     .join('users as u', 'u.id', 'i.decided_by')
-    .where('i.programme_id', programmeId);
+    .where({ 'i.programme_id': programmeId, 's.removed_at': null });
   if (filter.id) query.where('i.id', filter.id);
   if (filter.targetId) query.where('i.target_id', filter.targetId);
   if (filter.spectrumId) query.where('i.spectrum_id', filter.spectrumId);

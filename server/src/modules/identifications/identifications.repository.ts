@@ -16,9 +16,10 @@ export async function lockFeature(trx: Trx, { programmeId }: Scope, analysisId: 
   if (analysis.phase !== 'COMPLETED')
     throw new DomainError('analysis_not_complete', 'This analysis is not complete, so it has no lines yet.');
   const spectrum = await trx('spectra')
-    .where({ id: analysis.spectrum_id })
+    .where({ id: analysis.spectrum_id, removed_at: null })
     .forNoKeyUpdate()
-    .first<{ id: string; target_id: string; current_analysis_id: string }>('id', 'target_id', 'current_analysis_id');
+    .first<{ id: string; target_id: string; current_analysis_id: string } | undefined>('id', 'target_id', 'current_analysis_id');
+  if (!spectrum) throw notFound();
   if (spectrum.current_analysis_id !== analysisId) {
     throw new DomainError('bad_transition', 'The spectrum was analysed again meanwhile. Decide on the lines of the new analysis.');
   }

@@ -12,8 +12,11 @@ export async function findProgrammes(db: Knex, userId: string, id?: string): Pro
     .select<ProgrammeSummary[]>(
       { id: 'p.id', name: 'p.name', description: 'p.description', simulated: 'p.simulated', role: 'm.role' },
       db.raw('(select count(*)::int from targets where programme_id = p.id) as targets'),
-      db.raw('(select count(*)::int from spectra where programme_id = p.id) as spectra'),
-      db.raw(`(select count(*)::int from identifications where programme_id = p.id and state = 'accepted') as accepted`),
+      db.raw('(select count(*)::int from spectra where programme_id = p.id and removed_at is null) as spectra'),
+      db.raw(
+        `(select count(*)::int from identifications i join spectra s on s.id = i.spectrum_id
+          where i.programme_id = p.id and i.state = 'accepted' and s.removed_at is null) as accepted`,
+      ),
       db.raw(`${openFeatures('s.programme_id = p.id')} as open`),
     );
 }

@@ -27,11 +27,7 @@ export class RecipesController {
   @NeedsRole('analyst')
   @UseInterceptors(VersionEtag)
   @ApiOperation({ summary: 'Keep corrections as a recipe for files of one kind' })
-  create(
-    @CurrentActor() actor: Actor,
-    @UuidParam('programmeId') programmeId: string,
-    @Body() dto: NewRecipeDto,
-  ): Promise<ReadingRecipe> {
+  create(@CurrentActor() actor: Actor, @UuidParam('programmeId') programmeId: string, @Body() dto: NewRecipeDto): Promise<ReadingRecipe> {
     return this.recipes.create(actor, { programmeId }, dto);
   }
 

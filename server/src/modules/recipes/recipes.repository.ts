@@ -38,10 +38,20 @@ export async function insertRecipe(db: Knex, { programmeId }: Scope, made: NewRe
 }
 
 /** Changes what is named and counts the version up. @throws name_taken */
-export async function updateRecipe(db: Knex, { programmeId }: Scope, id: string, change: ChangeReadingRecipe, userId: string): Promise<void> {
+export async function updateRecipe(
+  db: Knex,
+  { programmeId }: Scope,
+  id: string,
+  change: ChangeReadingRecipe,
+  userId: string,
+): Promise<void> {
   const counted = { changed_by: userId, changed_at: db.raw('clock_timestamp()'), version: db.raw('version + 1') };
   const where = { programme_id: programmeId, id };
-  await unlessNameTaken(change.name ?? '', () => db('reading_recipes').where(where).update({ ...columnsOf(change), ...counted }));
+  await unlessNameTaken(change.name ?? '', () =>
+    db('reading_recipes')
+      .where(where)
+      .update({ ...columnsOf(change), ...counted }),
+  );
 }
 
 export async function deleteRecipe(db: Knex, { programmeId }: Scope, id: string): Promise<void> {

@@ -22,7 +22,7 @@ export type Heading = Pick<LineReport, 'programmeName' | 'targetName' | 'simulat
 export async function findHeading(db: Knex, { programmeId }: Scope, about: About): Promise<Heading | null> {
   const query = db('targets as t').join('programmes as p', 'p.id', 't.programme_id').where('t.programme_id', programmeId);
   if ('targetId' in about) query.where('t.id', about.targetId);
-  else query.join('spectra as s', 's.target_id', 't.id').where('s.id', about.spectrumId);
+  else query.join('spectra as s', 's.target_id', 't.id').where({ 's.id': about.spectrumId, 's.removed_at': null });
   const row = await query.first<Heading | undefined>({ programmeName: 'p.name', targetName: 't.name', simulated: 't.simulated' });
   return row ?? null;
 }
@@ -32,7 +32,7 @@ export async function findReported(db: Knex, scope: Scope, about: About): Promis
   const [spectra, decisions] = await Promise.all([
     db('spectra as s')
       .leftJoin('analyses as a', 'a.id', 's.current_analysis_id')
-      .where('s.programme_id', scope.programmeId)
+      .where({ 's.programme_id': scope.programmeId, 's.removed_at': null })
       .where('targetId' in about ? { 's.target_id': about.targetId } : { 's.id': about.spectrumId })
       .orderBy(['s.created_at', 's.id'])
       .select<SpectrumRow[]>({

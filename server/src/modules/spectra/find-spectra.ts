@@ -32,7 +32,9 @@ const SHOWN_ANALYSIS = `(
   order by a.phase in ('QUEUED', 'EXECUTING') desc, (a.id is not distinct from s.current_analysis_id) desc, a.requested_at desc limit 1)`;
 
 const filtered = (db: Knex, { programmeId }: Scope, { id, targetId }: Filter) => {
-  const query = db('spectra as s').join('users as u', 'u.id', 's.created_by').where({ 's.programme_id': programmeId, 's.removed_at': null });
+  const query = db('spectra as s')
+    .join('users as u', 'u.id', 's.created_by')
+    .where({ 's.programme_id': programmeId, 's.removed_at': null });
   if (id) query.where('s.id', id);
   if (targetId) query.where('s.target_id', targetId);
   return query.orderBy('s.created_at').orderBy('s.id');

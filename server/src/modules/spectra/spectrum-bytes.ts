@@ -1,4 +1,4 @@
-import type { Spectrum } from '@foreveil/shared';
+import type { Reading, Spectrum } from '@foreveil/shared';
 import type { Knex } from 'knex';
 import { DomainError } from '../../common/errors/domain-error.js';
 import type { Scope } from '../../common/scope.js';
@@ -39,6 +39,8 @@ interface Shape {
   readonly points: number;
   readonly revision: number;
   readonly hasSigma: boolean;
+  readonly segments: Reading['segments'] | null;
+  readonly observerVelocityKmPerS: number | null;
 }
 type Facts = Pick<Spectrum, 'fluxKind' | 'frame' | 'resolvingPower'>;
 
@@ -48,17 +50,20 @@ const findShape = (db: Knex, { programmeId }: Scope, id: string) =>
     .first<(Facts & Shape) | undefined>(
       { fluxKind: 'flux_kind', frame: 'frame', resolvingPower: 'resolving_power', points: 'points', revision: 'reading_revision' },
       db.raw('sigma is not null as "hasSigma"'),
+      db.raw(`reading->'segments' as segments`),
+      db.raw(`(reading->'observerVelocityKmPerS'->>'value')::float8 as "observerVelocityKmPerS"`),
     );
 
 /** The columns of a stored spectrum as the analysis takes them; null when the programme has no such spectrum. */
 export async function loadSpectrum(db: Knex, scope: Scope, id: string): Promise<Spectrum | null> {
   const row = await findShape(db, scope, id);
   if (!row) return null;
-  const { hasSigma, points, revision, ...facts } = row;
+  const { hasSigma, points, revision, segments, ...facts } = row;
   const column = (name: Column, width: number) => bytesOf(slicesOf(db, scope, id, name, revision), width * points);
   const [wavelength, flux, bad] = await Promise.all([column('wavelength', 8), column('flux', 8), column('bad', 1)]);
   const sigma = hasSigma ? new Float64Array(await column('sigma', 8)) : null;
-  return { ...facts, wavelength: new Float64Array(wavelength), flux: new Float64Array(flux), sigma, bad: new Uint8Array(bad) };
+  const columns = { wavelength: new Float64Array(wavelength), flux: new Float64Array(flux), sigma, bad: new Uint8Array(bad) };
+  return { ...facts, ...(segments?.length ? { segments } : {}), ...columns };
 }
 
 export interface SampleStream {

@@ -23,7 +23,15 @@ import { carryDecisions, findActiveAnalyses } from './reread.js';
 import { findSpectrumIdByHash, updateReading } from './spectra.repository.js';
 import { loadSpectrum, slicesOf } from './spectrum-bytes.js';
 import { SpectrumReader } from './spectrum-reader.js';
-import { countDecisions, findReadings, findRemoved, lockSpectrum, setRemoved, updateSpectrum, type LockedSpectrum } from './spectrum-rows.js';
+import {
+  countDecisions,
+  findReadings,
+  findRemoved,
+  lockSpectrum,
+  setRemoved,
+  updateSpectrum,
+  type LockedSpectrum,
+} from './spectrum-rows.js';
 import { UploadStorage } from './upload-storage.js';
 
 interface Reread {
@@ -154,4 +162,6 @@ export class SpectrumChanges {
 }
 
 const stale = (current: SpectrumDetail) =>
-  new DomainError('stale_version', 'A teammate changed this spectrum in the meantime. Look at it as it is now, then save again.', { current });
+  new DomainError('stale_version', 'A teammate changed this spectrum in the meantime. Look at it as it is now, then save again.', {
+    current,
+  });

@@ -26,7 +26,10 @@ export class UploadStorage implements StorageEngine {
     await mkdir(this.folder, { recursive: true, mode: 0o700 });
     for (const name of await readdir(this.folder)) {
       const path = join(this.folder, name);
-      const age = await stat(path).then(({ mtimeMs }) => Date.now() - mtimeMs, () => 0);
+      const age = await stat(path).then(
+        ({ mtimeMs }) => Date.now() - mtimeMs,
+        () => 0,
+      );
       if (age > STALE_MS) await rm(path, { force: true });
     }
   }

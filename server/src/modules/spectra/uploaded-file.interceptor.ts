@@ -33,7 +33,9 @@ export class UploadedFileInterceptor implements NestInterceptor, OnModuleInit {
     const http = context.switchToHttp();
     const request = http.getRequest<Request>();
     await new Promise<void>((resolve, reject) => {
-      void this.take(request, http.getResponse<Response>(), (error?: unknown) => (error === undefined ? resolve() : reject(this.refusal(error))));
+      void this.take(request, http.getResponse<Response>(), (error?: unknown) =>
+        error === undefined ? resolve() : reject(this.refusal(error)),
+      );
     });
     const forget = () => void (request.file && rm(request.file.path, { force: true }).catch(() => undefined));
     return next.handle().pipe(finalize(forget));
@@ -42,7 +44,10 @@ export class UploadedFileInterceptor implements NestInterceptor, OnModuleInit {
   private refusal(error: unknown): unknown {
     if (!(error instanceof MulterError) || error.code !== 'LIMIT_FILE_SIZE') return error;
     const most = megabytes(this.config.uploadLimitBytes);
-    return new DomainError('too_large', `The file is larger than the ${most} that this server accepts. Cut the spectrum, or pack it with gzip.`);
+    return new DomainError(
+      'too_large',
+      `The file is larger than the ${most} that this server accepts. Cut the spectrum, or pack it with gzip.`,
+    );
   }
 }
 

@@ -5,7 +5,8 @@ import type { Scope } from '../../common/scope.js';
 import { openFeatures } from '../analyses/open-features.js';
 
 const decided = (state: 'accepted' | 'rejected') =>
-  `(select count(*)::int from identifications where target_id = t.id and state = '${state}')`;
+  `(select count(*)::int from identifications i join spectra s on s.id = i.spectrum_id
+    where i.target_id = t.id and i.state = '${state}' and s.removed_at is null)`;
 
 /** Targets of a programme by name. @param id only this one */
 export async function findTargets(db: Knex, { programmeId }: Scope, id?: string): Promise<Omit<TargetSummary, 'spectra'>[]> {
