@@ -136,7 +136,7 @@ describe('reading a file anew', () => {
       version: decision!.version + 1,
     });
     await complete(api, after.analysis!.id, analysisOf([feature(0, 500.6396)]));
-    expect((await identifications(spectrum.id))[0]).toMatchObject({ featureIndex: null }); // the stand-in for a worker does not carry
+    expect((await identifications(spectrum.id))[0]).toMatchObject({ featureIndex: 0 }); // found again by the new analysis
   });
 
   test('that fails changes nothing', async () => {

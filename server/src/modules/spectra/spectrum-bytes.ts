@@ -60,7 +60,8 @@ export async function loadSpectrum(db: Knex, scope: Scope, id: string): Promise<
   if (!row) return null;
   const { hasSigma, points, revision, segments, ...facts } = row;
   const column = (name: Column, width: number) => bytesOf(slicesOf(db, scope, id, name, revision), width * points);
-  const [wavelength, flux, bad] = await Promise.all([column('wavelength', 8), column('flux', 8), column('bad', 1)]);
+  // one after the other: within a transaction they share a connection
+  const [wavelength, flux, bad] = [await column('wavelength', 8), await column('flux', 8), await column('bad', 1)];
   const sigma = hasSigma ? new Float64Array(await column('sigma', 8)) : null;
   const columns = { wavelength: new Float64Array(wavelength), flux: new Float64Array(flux), sigma, bad: new Uint8Array(bad) };
   return { ...facts, ...(segments?.length ? { segments } : {}), ...columns };

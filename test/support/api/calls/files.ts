@@ -1,3 +1,4 @@
+import { randomUUID } from 'node:crypto';
 import type { FileSignature } from '@foreveil/shared';
 import type { Call, Calls } from './call.js';
 
@@ -13,7 +14,7 @@ const IF_FIRST = { 'If-Match': '"1"' };
 /** A recipe in the programme of the stage. */
 const aRecipe: Call['params'] = async ({ api, team }) => {
   const row = {
-    ...{ programme_id: team.programmeId, name: 'Old plates', signature: A_SIGNATURE, corrections: { medium: 'air' } },
+    ...{ programme_id: team.programmeId, name: `Old plates ${randomUUID()}`, signature: A_SIGNATURE, corrections: { medium: 'air' } },
     ...{ created_by: team.analyst.userId, changed_by: team.analyst.userId },
   };
   const [made] = await api.db('reading_recipes').insert(row).returning<{ id: string }[]>('id');
