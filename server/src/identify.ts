@@ -1,12 +1,10 @@
 import { readFileSync } from 'node:fs';
-import { dirname, join } from 'node:path';
-import { fileURLToPath } from 'node:url';
-import { analyse, DEFAULT_SETTINGS, parseDefaultList, readSpectrum, type LineList, type ReadingCorrections } from '@foreveil/shared';
+import { analyse, DEFAULT_SETTINGS, readSpectrum, type LineList, type ReadingCorrections } from '@foreveil/shared';
+import { bundledList } from './headless/bundled-list.js';
 import { readOptions, USAGE } from './headless/options.js';
 import { resultLine } from './headless/result.js';
 
 /** The command line: files to identifications, without server or database. See USAGE. */
-const lists = join(dirname(fileURLToPath(import.meta.url)), '..', '..', 'seeds', 'data');
 const say = (text: string) => process.stderr.write(`${text}\n`);
 const print = (line: object) => process.stdout.write(`${JSON.stringify(line)}\n`);
 
@@ -29,7 +27,7 @@ function main(): number {
     say(`${options.problem}\n\n${USAGE}`);
     return 2;
   }
-  const list = parseDefaultList(readFileSync(join(lists, 'lines.csv'), 'utf8'), readFileSync(join(lists, 'telluric.csv'), 'utf8'));
+  const list = bundledList();
   let status = 0;
   for (const file of options.files) {
     try {

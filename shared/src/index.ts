@@ -16,4 +16,5 @@ export * from './review/index.js';
 export * from './report/index.js';
 export * from './contract/index.js';
 export * from './analyse.js';
+export * from './compare-sightlines.js';
 export * from './version.js';

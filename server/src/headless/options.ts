@@ -6,6 +6,11 @@ export const USAGE = `usage: npm run --silent identify -- FILE... [--medium air|
 Reads each spectrum, identifies its lines against the default line list and prints one JSON object a line to standard output.
 The options overrule what the files say. Exit status: 0 all files used, 1 a file could not be used, 2 wrong arguments.`;
 
+export const COMPARE_USAGE = `usage: npm run --silent compare -- FILE_A FILE_B [--medium air|vacuum] [--frame barycentric|heliocentric|topocentric] [--resolution R]
+
+Analyses two spectra and compares the gas before both: one JSON object on standard output. The options overrule what both files say.
+Exit status: 0 compared, 1 a file could not be used, 2 wrong arguments.`;
+
 export type Options =
   { readonly files: readonly string[]; readonly corrections: ReadingCorrections } | { readonly problem: string } | { readonly help: true };
 

@@ -1,5 +1,4 @@
 export * from './comparison.js';
 export * from './absorber.js';
 export * from './growth-fit.js';
-export { compareSightlines, type OnCompared } from './compare.js';
 export type { Sightline } from './light.js';

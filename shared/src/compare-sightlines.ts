@@ -1,15 +1,15 @@
-import type { LineList } from '../linelist/index.js';
-import { PROGRAM_VERSION } from '../version.js';
-import { columnsOf } from './columns.js';
-import type { ComparedCloud, ComparisonSettings, Side, SightlineComparison } from './comparison.js';
-import { measureGas, type Gas } from './clouds.js';
-import { cloudChances, comparedBands, comparedGas, jointVelocity } from './gas-lines.js';
-import type { Pair } from './gather.js';
-import { SEEN_AT } from './judge.js';
-import { lightOf, summaryOf, type Sightline } from './light.js';
-import { comparedAir, comparedStars } from './other-lines.js';
-import { cautionsOf, emissionMatches, readingOffers, velocityProfiles } from './rest.js';
-import { kmPerS } from './say.js';
+import type { LineList } from './linelist/index.js';
+import { PROGRAM_VERSION } from './version.js';
+import { columnsOf } from './sightlines/columns.js';
+import type { ComparedCloud, ComparisonSettings, Side, SightlineComparison } from './sightlines/comparison.js';
+import { measureGas, type Gas } from './sightlines/clouds.js';
+import { cloudChances, comparedBands, comparedGas, jointVelocity } from './sightlines/gas-lines.js';
+import type { Pair } from './sightlines/gather.js';
+import { SEEN_AT } from './sightlines/judge.js';
+import { lightOf, summaryOf, type Sightline } from './sightlines/light.js';
+import { comparedAir, comparedStars } from './sightlines/other-lines.js';
+import { cautionsOf, emissionMatches, readingOffers, velocityProfiles } from './sightlines/rest.js';
+import { kmPerS } from './sightlines/say.js';
 
 /** Told at the start of each step, with the fraction done; may throw to stop. */
 export type OnCompared = (done: number) => void;
