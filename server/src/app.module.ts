@@ -11,6 +11,7 @@ import { CONFIG, ConfigModule } from './config/config.module.js';
 import { DatabaseModule } from './database/database.module.js';
 import { AccountsModule } from './modules/accounts/accounts.module.js';
 import { AnalysesModule } from './modules/analyses/analyses.module.js';
+import { AnalysisRecipesModule } from './modules/analysisrecipes/analysis-recipes.module.js';
 import { EventsModule } from './modules/events/events.module.js';
 import { HealthModule } from './modules/health/health.module.js';
 import { IdentificationsModule } from './modules/identifications/identifications.module.js';
@@ -21,6 +22,7 @@ import { RecipesModule } from './modules/recipes/recipes.module.js';
 import { ReportsModule } from './modules/reports/reports.module.js';
 import { SpectraModule } from './modules/spectra/spectra.module.js';
 import { TargetsModule } from './modules/targets/targets.module.js';
+import { UnplacedModule } from './modules/unplaced/unplaced.module.js';
 
 /** The built client, where there is one: any address but those of the API and of its own files is a page of it. */
 const ClientModule = ServeStaticModule.forRootAsync({
@@ -54,7 +56,9 @@ const ClientModule = ServeStaticModule.forRootAsync({
     RecipesModule,
     LineListsModule,
     AnalysesModule,
+    AnalysisRecipesModule,
     IdentificationsModule,
+    UnplacedModule,
     ReportsModule,
     EventsModule,
     MailModule,

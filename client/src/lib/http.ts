@@ -67,6 +67,7 @@ export const http = {
   get: <T>(path: string, options?: RequestOptions) => json<T>('GET', path, undefined, options),
   post: <T>(path: string, body?: unknown, options?: RequestOptions) => json<T>('POST', path, body, options),
   patch: <T>(path: string, body: unknown, options?: RequestOptions) => json<T>('PATCH', path, body, options),
+  delete: (path: string, options?: RequestOptions) => json<void>('DELETE', path, undefined, options),
   /** the answer's bytes, for columns of samples */
   bytes: async (path: string, options: RequestOptions = {}): Promise<ArrayBuffer> => {
     const response = await withSession(() => once('GET', path, undefined, options), options.quiet);

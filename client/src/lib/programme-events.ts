@@ -1,6 +1,7 @@
 import type { AnalysisSummary, Identification, ProgrammeEvent, SpectrumSummary, Target, TargetSummary } from '@foreveil/shared';
 import type { QueryClient } from '@tanstack/react-query';
 import { programmeQueries, targetQueries } from './queries/programmes.js';
+import { recipeQueries, unplacedQueries } from './queries/steering.js';
 import { analysisQueries, identificationQueries, spectrumQueries } from './queries/spectra.js';
 
 const ENDED: ReadonlySet<AnalysisSummary['phase']> = new Set(['COMPLETED', 'ERROR', 'ABORTED']);
@@ -12,6 +13,8 @@ export function applyEvent(client: QueryClient, programmeId: string, event: Prog
       return applyAnalysis(client, programmeId, event.spectrumId, event.analysis);
     case 'identification':
       return applyIdentification(client, programmeId, event.identification);
+    case 'analysis_recipes':
+      return refetch(client, recipeQueries.list(programmeId).queryKey);
     case 'spectrum':
       refetch(client, targetQueries.all(programmeId), programmeQueries.detail(programmeId).queryKey);
   }
@@ -31,11 +34,11 @@ function applyAnalysis(client: QueryClient, programmeId: string, spectrumId: str
     if (key.at(-1) !== 'list') client.setQueryData<Target>(key, (old) => old && patchTarget(old));
   }
   client.setQueryData(spectrumQueries.detail(programmeId, spectrumId).queryKey, (old) => old && patch(old));
-  client.setQueryData(
-    analysisQueries.list(programmeId, spectrumId).queryKey,
-    (old) =>
-      old && (old.some(({ id }) => id === analysis.id) ? old.map((one) => (one.id === analysis.id ? analysis : one)) : [analysis, ...old]),
+  client.setQueryData(analysisQueries.list(programmeId, spectrumId).queryKey, (old) =>
+    old?.map((one) => (one.id === analysis.id ? { ...one, ...analysis } : one)),
   );
+  const known = client.getQueryData(analysisQueries.list(programmeId, spectrumId).queryKey)?.some(({ id }) => id === analysis.id);
+  if (!known) refetch(client, analysisQueries.list(programmeId, spectrumId).queryKey); // its settings are told only there
   client.setQueryData(analysisQueries.detail(programmeId, analysis.id).queryKey, (old) => old && { ...old, ...analysis });
   if (!ENDED.has(analysis.phase)) return;
   // counts, the strip's continuum and the result came with it
@@ -60,6 +63,7 @@ function applyIdentification(client: QueryClient, programmeId: string, one: Iden
     targetQueries.detail(programmeId, one.targetId).queryKey,
     (old) => old && { ...old, identifications: newest(old.identifications, one) ?? [] },
   );
+  refetch(client, unplacedQueries.list(programmeId, one.spectrumId).queryKey);
   // open and accepted counts stand on the lists
   refetch(client, targetQueries.list(programmeId).queryKey, programmeQueries.detail(programmeId).queryKey);
 }

@@ -59,10 +59,12 @@ function listen(client: QueryClient, programmeId: string, tell: (liveness: Liven
   };
 }
 
+const KNOWN: ReadonlySet<string> = new Set<ProgrammeEvent['type']>(['analysis', 'identification', 'spectrum', 'analysis_recipes']);
+
 function parseEvent(data: string): ProgrammeEvent | null {
   try {
     const event = JSON.parse(data) as Partial<ProgrammeEvent>;
-    return event.type === 'analysis' || event.type === 'identification' || event.type === 'spectrum' ? (event as ProgrammeEvent) : null;
+    return event.type && KNOWN.has(event.type) ? (event as ProgrammeEvent) : null;
   } catch {
     return null; // a keep-alive or a cut line
   }

@@ -199,7 +199,8 @@ export interface Decision {
 export type ProgrammeEvent =
   | { type: 'analysis'; spectrumId: string; analysis: AnalysisSummary }
   | { type: 'identification'; identification: Identification }
-  | { type: 'spectrum'; spectrumId: string; targetId: string };
+  | { type: 'spectrum'; spectrumId: string; targetId: string }
+  | { type: 'analysis_recipes' };
 
 /** problem+json, RFC 9457. */
 export interface Problem {

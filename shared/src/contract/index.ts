@@ -7,3 +7,4 @@ export * from './mail.js';
 export * from './paths.js';
 export * from './roles.js';
 export * from './samples.js';
+export * from './steering.js';

@@ -2,6 +2,7 @@ import {
   apiPaths,
   decodeSamples,
   type AnalysisDetail,
+  type AnalysisRun,
   type AnalysisSummary,
   type Decision,
   type Identification,
@@ -36,7 +37,7 @@ export const analysisQueries = {
   list: (programmeId: string, spectrumId: string) =>
     queryOptions({
       queryKey: [...ofSpectrum(programmeId, spectrumId), 'analyses'] as const,
-      queryFn: ({ signal }) => http.get<AnalysisSummary[]>(apiPaths.analyses(programmeId, spectrumId), { signal }),
+      queryFn: ({ signal }) => http.get<AnalysisRun[]>(apiPaths.analyses(programmeId, spectrumId), { signal }),
     }),
   detail: (programmeId: string, analysisId: string) =>
     queryOptions({

@@ -1,6 +1,6 @@
 import { Body, Controller, Get, Header, HttpCode, Post } from '@nestjs/common';
 import { ApiOperation, ApiTags } from '@nestjs/swagger';
-import type { AnalysisSummary } from '@foreveil/shared';
+import type { AnalysisRun, AnalysisSummary } from '@foreveil/shared';
 import { CurrentActor, type Actor } from '../../common/auth/actor.js';
 import { NeedsRole } from '../../common/auth/rules.js';
 import { UuidParam } from '../../common/http/uuid-param.js';
@@ -14,8 +14,8 @@ export class AnalysesController {
 
   @Get('spectra/:spectrumId/analyses')
   @NeedsRole('reader')
-  @ApiOperation({ summary: 'Analyses of a spectrum, newest first' })
-  list(@UuidParam('programmeId') programmeId: string, @UuidParam('spectrumId') spectrumId: string): Promise<AnalysisSummary[]> {
+  @ApiOperation({ summary: 'Analyses of a spectrum with their settings, newest first' })
+  list(@UuidParam('programmeId') programmeId: string, @UuidParam('spectrumId') spectrumId: string): Promise<AnalysisRun[]> {
     return this.analyses.list({ programmeId }, spectrumId);
   }
 

@@ -1,5 +1,5 @@
 import { Inject, Injectable } from '@nestjs/common';
-import type { AnalysisSummary, NewAnalysis } from '@foreveil/shared';
+import type { AnalysisRun, AnalysisSummary, NewAnalysis } from '@foreveil/shared';
 import type { Knex } from 'knex';
 import type { Actor } from '../../common/auth/actor.js';
 import { asMember } from '../../common/auth/membership.js';
@@ -13,7 +13,7 @@ import { spectrumExists } from '../spectra/find-spectra.js';
 import type { Scope } from '../../common/scope.js';
 import { abortAnalysis, findAnalysisWithResult } from './analyses.repository.js';
 import { checkSettings } from './check-settings.js';
-import { findAnalyses, findAnalysis } from './find-analyses.js';
+import { findAnalysis, findRuns } from './find-analyses.js';
 import { queueAnalysis } from './queue-analysis.js';
 
 @Injectable()
@@ -23,9 +23,9 @@ export class AnalysesService {
     @Inject(CONFIG) private readonly config: Config,
   ) {}
 
-  async list(scope: Scope, spectrumId: string): Promise<AnalysisSummary[]> {
+  async list(scope: Scope, spectrumId: string): Promise<AnalysisRun[]> {
     if (!(await spectrumExists(this.db, scope, spectrumId))) throw notFound();
-    return findAnalyses(this.db, scope, { spectrumId });
+    return findRuns(this.db, scope, spectrumId);
   }
 
   /** @returns an AnalysisDetail as JSON text; its result goes out as it is stored, unparsed */

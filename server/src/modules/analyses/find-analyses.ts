@@ -1,4 +1,4 @@
-import type { AnalysisSummary } from '@foreveil/shared';
+import { completeSettings, type AnalysisRun, type AnalysisSettings, type AnalysisSummary } from '@foreveil/shared';
 import type { Knex } from 'knex';
 import type { Scope } from '../../common/scope.js';
 
@@ -49,6 +49,14 @@ export const toSummary = <R extends Row>({ requestedAt, endedAt, ...row }: R) =>
 export async function findAnalyses(db: Knex, scope: Scope, filter: Filter): Promise<AnalysisSummary[]> {
   if (filter.ids?.length === 0) return [];
   return (await filteredAnalyses(db, scope, filter).select<Row[]>(SUMMARY)).map(toSummary);
+}
+
+/** Runs of a spectrum with their settings, newest first, without their results. */
+export async function findRuns(db: Knex, scope: Scope, spectrumId: string): Promise<AnalysisRun[]> {
+  const rows = await filteredAnalyses(db, scope, { spectrumId }).select<(Row & { settings: AnalysisSettings })[]>(SUMMARY, {
+    settings: 'a.settings',
+  });
+  return rows.map(({ settings, ...row }) => ({ ...toSummary(row), settings: completeSettings(settings) }));
 }
 
 export async function findAnalysis(db: Knex, scope: Scope, id: string): Promise<AnalysisSummary | null> {

@@ -5,6 +5,7 @@ export type Said =
   | { readonly kind: 'analysis'; readonly programmeId: string; readonly id: string }
   | { readonly kind: 'identification'; readonly programmeId: string; readonly id: string }
   | { readonly kind: 'spectrum'; readonly programmeId: string; readonly id: string }
+  | { readonly kind: 'analysis_recipes'; readonly programmeId: string }
   | { readonly kind: 'session_ended'; readonly sessionId: string }
   | { readonly kind: 'analysis_cancelled'; readonly id: string };
 
