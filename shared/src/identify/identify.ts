@@ -11,7 +11,7 @@ import { contendersOf, rankFeature, type FeatureRanking, type SystemState } from
 import { setSystem } from './set-systems.js';
 import { findStar, type TemperatureHint } from './star.js';
 import { NO_WISHES, permitted, type SystemWishes } from './steer.js';
-import type { Scene } from './search.js';
+import { withOwnScatter, type Scene } from './search.js';
 import type { Coverage, FeatureView } from './views.js';
 
 export interface IdentifyInput {
@@ -74,7 +74,8 @@ export function identify(input: IdentifyInput): Identified {
   const first = rankAll(found.weighed(background), input, background);
   if (star && clouds.length && !hasOwnLines(star, first)) return identify({ ...input, withoutStar: true });
   const settled = { ...backgroundOf(found.rate, first), population: populationOf(features, systems, first.rankings, coverage) };
-  return rankAll(found.weighed(settled), input, settled);
+  const own = systems.map((s) => withOwnScatter(s, { features, coverage, background: settled }));
+  return rankAll(own.map((s) => stateOf(s, input, settled)), input, settled);
 }
 
 /** Bands without a cloud stand at no velocity of their own: they go when gas is forbidden at zero. */

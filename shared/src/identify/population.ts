@@ -19,7 +19,7 @@ export interface Population {
 
 const UNLISTED_SHARE = 0.05; // prior: lists lack a few lines in a hundred
 const PRIOR_FEATURES = 40; // features that the prior share is worth
-const SETTLED = 0.02;
+const SETTLED = 0.012;
 const LEAST_SPREAD = 0.45; // dex
 
 /** Before anything is known of a spectrum. */

@@ -65,3 +65,27 @@ function mode(s: SpeciesState): number {
   for (let i = 1; i < s.logPosterior.length; i++) if (s.logPosterior[i]! > s.logPosterior[best]!) best = i;
   return (best - (s.logPosterior.length >> 1)) * 0.08;
 }
+
+const FACTORS = [0.5, 0.7, 1.4, 2];
+const ENOUGH_LINES = 12; // seen lines: fewer tell nothing of their scatter
+
+/** The system with the scatter of its lines' strengths as its own lines show it: line lists and models are better for some stars than for others. */
+export function withOwnScatter(system: SystemModel, scene: Scene): SystemModel {
+  const assumed = weigh(system, scene);
+  const seen = assumed.states.reduce((sum, s) => sum + s.terms.filter((t) => t.outcome === 'seen').length, 0);
+  if (seen < ENOUGH_LINES) return system;
+  let best = assumed;
+  for (const factor of FACTORS) {
+    const tried = weigh(scattered(system, factor), scene);
+    if (tried.evidence > best.evidence) best = tried;
+  }
+  return best.system;
+}
+
+function scattered(system: SystemModel, factor: number): SystemModel {
+  const species = system.species.map((s) => ({
+    ...s,
+    lines: s.lines.map((e) => (e.line.element === 'H' ? e : { ...e, scatter: e.scatter * factor })),
+  }));
+  return { ...system, species };
+}
