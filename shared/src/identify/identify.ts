@@ -75,7 +75,11 @@ export function identify(input: IdentifyInput): Identified {
   if (star && clouds.length && !hasOwnLines(star, first)) return identify({ ...input, withoutStar: true });
   const settled = { ...backgroundOf(found.rate, first), population: populationOf(features, systems, first.rankings, coverage) };
   const own = systems.map((s) => withOwnScatter(s, { features, coverage, background: settled }));
-  return rankAll(own.map((s) => stateOf(s, input, settled)), input, settled);
+  return rankAll(
+    own.map((s) => stateOf(s, input, settled)),
+    input,
+    settled,
+  );
 }
 
 /** Bands without a cloud stand at no velocity of their own: they go when gas is forbidden at zero. */

@@ -12,6 +12,8 @@ export interface Expected {
   /** 1 sigma of the position: system velocity and laboratory wavelength, km/s */
   readonly sigmaV: number;
   readonly fwhmV: number;
+  /** natural-log spread of the width about that, where it is larger than of lines at large */
+  readonly widthSpread?: number;
 }
 
 /** All expected lines of one species in one system. Their strengths share an offset that the data decide. */

@@ -104,9 +104,9 @@ export function positionSigma(e: Expected, f: FeatureView): number {
 }
 
 /** How much better the feature's width suits the system than features at large. */
-export function widthRatio(e: Pick<Expected, 'fwhmV'>, f: FeatureView, coverage: Coverage): number {
+export function widthRatio(e: Pick<Expected, 'fwhmV' | 'widthSpread'>, f: FeatureView, coverage: Coverage): number {
   const expected = Math.max(e.fwhmV, coverage.elementV);
-  const spread = Math.hypot(WIDTH_SCATTER, 1.2 / Math.max(f.significance, 2));
+  const spread = Math.hypot(e.widthSpread ?? WIDTH_SCATTER, 1.2 / Math.max(f.significance, 2));
   const z = Math.log(f.fwhmV / expected) / spread;
   const zFlat = Math.log(f.fwhmV / (1.6 * coverage.elementV)) / (2 * LOG_FWHM_SPREAD);
   const own = 0.96 * (normalPdf(z) / spread) + 0.04 * (normalPdf(zFlat) / (2 * LOG_FWHM_SPREAD));

@@ -73,10 +73,10 @@ export function contendersOf(f: FeatureView, systems: readonly SystemState[], fe
         const term = state.terms[k]!;
         const e = term.expected;
         if (e.wavelength > f.wavelength + reach) break;
-        const part = partOf(e, f, features);
-        if (part < 0.02) continue;
         const own = term.feature === f ? term : null;
         const { mean, sigma, logEvidence } = offsetMoments(state, own);
+        const part = partOf(e, e.logW + mean, f, features);
+        if (part < 0.02) continue;
         const p = state.model.presence;
         const odds = (p / (1 - p)) * Math.exp(Math.max(-30, Math.min(30, logEvidence)));
         out.push({
@@ -106,19 +106,21 @@ function termAt(terms: readonly LineTerm[], wavelength: number): number {
   return low;
 }
 
-/** Share of a line's light that a feature takes when its neighbours compete for it, by distance in units of their widths. */
-function partOf(e: Expected, f: FeatureView, features: readonly FeatureView[]): number {
+/** Share of a line's light that a feature takes when its neighbours compete for it, by distance in units of their widths; a feature far too weak for the line takes little. */
+function partOf(e: Expected, logW: number, f: FeatureView, features: readonly FeatureView[]): number {
+  const holds = (g: FeatureView): number => Math.min(1, 10 ** (g.logW - logW));
   const pull = (g: FeatureView): number => {
     const width = Math.hypot(0.3 * Math.max(g.fwhmV, 0.7 * e.fwhmV), 2 * e.sigmaV);
     const d = velocityOf(g.wavelength, e.wavelength) / width;
     return Math.exp(-0.5 * d * d) / Math.max(1, g.fwhmV / (1.5 * e.fwhmV), e.fwhmV / (1.5 * g.fwhmV));
   };
-  const own = pull(f);
-  if (own < 1e-3) return 0;
+  const near = pull(f);
+  if (near < 1e-3) return 0;
+  const own = near * holds(f);
   let all = 0;
   const span = ((2 * Math.max(e.fwhmV, f.fwhmV) + 20) * f.wavelength) / C_KM_PER_S;
   for (let i = featureAt(features, e.wavelength - span); i < features.length && features[i]!.wavelength < e.wavelength + span; i++) {
-    if (features[i]!.kind === f.kind) all += pull(features[i]!);
+    if (features[i]!.kind === f.kind) all += pull(features[i]!) * holds(features[i]!);
   }
   return own / Math.max(all, own);
 }

@@ -17,6 +17,8 @@ const ELECTRONS = [13, 14]; // log10 n_e, cm^-3, of cool and hot photospheres
 const DEPTHS = [0.25, 0.7, 1.6]; // lines in the template as a multiple of the number of dips: how far down the strength scale the data reach
 const LINE_SCATTER = 0.22; // dex: log gf errors and abundance patterns
 const HYDROGEN_SCATTER = 0.35;
+const HYDROGEN_DEPTH = 0.6; // area of a hydrogen line over its FWHM
+const HYDROGEN_WIDTH_SPREAD = 0.7; // natural log
 const SPECIES_SIGMA = 0.35; // dex: ionisation, non-LTE, abundance
 const SIGNIFICANT = 7; // of the correlation peak, in robust scatters of the score
 const MEMBERS = 5; // dips that the template must explain
@@ -252,17 +254,20 @@ function starModel(
   lines.forEach((line, k) => {
     if (!Number.isFinite(p.index[k]!)) return;
     const wavelength = line.wavelengthNm * factor;
-    const logW = grow(p.index[k]!, scale) + Math.log10(line.wavelengthNm);
+    const hydrogen = line.element === 'H';
+    const logW =
+      grow(p.index[k]!, hydrogen ? { ...scale, knee: Math.max(scale.knee, HYDROGEN_KNEE) } : scale) + Math.log10(line.wavelengthNm);
     const limit = coverage.sigmaW(wavelength, (wavelength * fwhmV) / C_KM_PER_S);
     if (!(logW > Math.log10(limit) - 0.7)) return; // far below the noise even with a generous offset
-    const hydrogen = line.element === 'H';
     const e: Expected = {
       line,
       wavelength,
       logW,
       scatter: hydrogen ? HYDROGEN_SCATTER : LINE_SCATTER,
       sigmaV: Math.hypot(sigma, 0.3),
-      fwhmV: hydrogen ? 1.3 * fwhmV : fwhmV,
+      // pressure makes hydrogen lines as wide as they are strong
+      fwhmV: hydrogen ? Math.hypot(fwhmV, ((10 ** logW / wavelength) * C_KM_PER_S) / HYDROGEN_DEPTH) : fwhmV,
+      ...(hydrogen && { widthSpread: HYDROGEN_WIDTH_SPREAD }),
     };
     const list = bySpecies.get(line.species);
     if (list) list.push(e);
