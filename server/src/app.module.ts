@@ -20,6 +20,7 @@ import { MailModule } from './modules/mail/mail.module.js';
 import { ProgrammesModule } from './modules/programmes/programmes.module.js';
 import { RecipesModule } from './modules/recipes/recipes.module.js';
 import { ReportsModule } from './modules/reports/reports.module.js';
+import { SearchModule } from './modules/search/search.module.js';
 import { SpectraModule } from './modules/spectra/spectra.module.js';
 import { TargetsModule } from './modules/targets/targets.module.js';
 import { UnplacedModule } from './modules/unplaced/unplaced.module.js';
@@ -55,6 +56,7 @@ const ClientModule = ServeStaticModule.forRootAsync({
     SpectraModule,
     RecipesModule,
     LineListsModule,
+    SearchModule,
     AnalysesModule,
     AnalysisRecipesModule,
     IdentificationsModule,

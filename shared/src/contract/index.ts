@@ -7,4 +7,5 @@ export * from './mail.js';
 export * from './paths.js';
 export * from './roles.js';
 export * from './samples.js';
+export * from './search.js';
 export * from './steering.js';
