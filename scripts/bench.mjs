@@ -1,4 +1,5 @@
 // npm run bench: time and memory of the analysis, by pixels and by step. Reports, asserts nothing. Run it on a quiet machine.
+// npm run bench -- errors: whether the stated errors hold, and how near they come to the Cramer-Rao bound (scripts/bench-errors.ts).
 import { readFileSync, readdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { requireNode } from './lib/node-version.mjs';
@@ -10,6 +11,11 @@ const { root } = await import('./lib/paths.mjs');
 const { simulate } = await import('./lib/bench/spectrum.mjs');
 
 await ensureDependencies();
+if (process.argv[2] === 'errors') {
+  const { runTracked } = await import('./lib/supervisor.mjs');
+  const source = ['--import', 'tsx', '--conditions=foreveil-source', join(root, 'scripts/bench-errors.ts')];
+  process.exit(await runTracked(process.execPath, [...source, ...process.argv.slice(3)], { cwd: root }));
+}
 await build(['server']);
 const { analyse, DEFAULT_SETTINGS, parseDefaultList, readSpectrum } = await import(join(root, 'shared/dist/index.js'));
 const data = (name) => readFileSync(join(root, 'seeds/data', name), 'utf8');

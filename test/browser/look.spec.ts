@@ -29,6 +29,7 @@ const SUBJECTS: Subject[] = [
   { page: 'target', path: ({ programme, targets }) => `/programmes/${programme.id}/targets/${targets[0]!.id}`, heading: /\w/ },
   { page: 'absorption-spectrum', path: (demo) => spectrumOf(demo, 'Tern 1'), heading: /Tern 1/ },
   { page: 'emission-spectrum', path: (demo) => spectrumOf(demo, 'Curlew Nebula'), heading: /Curlew Nebula/ },
+  { page: 'probabilities', path: () => '/probabilities', heading: /How probabilities are tested/ },
   { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];

@@ -72,6 +72,12 @@ function instrumentOf(d: Drawing, basic: Pick<Instrument, 'fromNm' | 'toNm' | 'r
   };
 }
 
+/** A stretch of the given length somewhere in a range: spectra of different stretches meet different lines. */
+function windowOf(chance: Chance, fromNm: number, toNm: number, lengthNm: number): { fromNm: number; toNm: number } {
+  const start = chance.between(fromNm, toNm - lengthNm);
+  return { fromNm: start, toNm: start + lengthNm };
+}
+
 const strengthScatter = ({ trouble }: Drawing) => (trouble === 'plain' ? 0.08 : trouble === 'usual' ? 0.18 : 0.25);
 
 interface Lit {
@@ -204,8 +210,7 @@ const DRAFTS: Readonly<Record<Kind, (d: Drawing) => Draft>> = {
     const { chance } = d;
     const temperatureK = chance.between(4600, 6900);
     const instrument = instrumentOf(d, {
-      fromNm: 470,
-      toNm: 690,
+      ...windowOf(chance, 430, 700, 80),
       resolvingPower: chance.logBetween(30_000, 75_000),
       signalToNoise: chance.between(60, 180),
     });
@@ -222,7 +227,11 @@ const DRAFTS: Readonly<Record<Kind, (d: Drawing) => Draft>> = {
     const temperatureK = chance.between(5200, 7200);
     const second = temperatureK * chance.between(0.82, 1);
     const share = chance.between(0.55, 0.85);
-    const instrument = instrumentOf(d, { fromNm: 480, toNm: 640, resolvingPower: 48_000, signalToNoise: chance.between(80, 200) });
+    const instrument = instrumentOf(d, {
+      ...windowOf(chance, 430, 680, 45),
+      resolvingPower: 48_000,
+      signalToNoise: chance.between(80, 200),
+    });
     const stars = [
       starOf(
         d,
@@ -247,8 +256,7 @@ const DRAFTS: Readonly<Record<Kind, (d: Drawing) => Draft>> = {
     const { chance } = d;
     const temperatureK = chance.between(7000, 11_500);
     const instrument = instrumentOf(d, {
-      fromNm: 385,
-      toNm: 680,
+      ...windowOf(chance, 385, 680, 140),
       resolvingPower: chance.logBetween(20_000, 60_000),
       signalToNoise: chance.between(100, 260),
     });
@@ -261,9 +269,9 @@ const DRAFTS: Readonly<Record<Kind, (d: Drawing) => Draft>> = {
       [clouds, airOf(d, instrument)],
     );
   },
-  'hot-star': (d) => hotStar(d, { fromNm: 380, toNm: 690, vsini: () => d.chance.logBetween(10, 120), clouds: 1 }),
+  'hot-star': (d) => hotStar(d, { ...windowOf(d.chance, 385, 690, 180), vsini: () => d.chance.logBetween(10, 120), clouds: 1 }),
   sightline: (d) =>
-    hotStar(d, { fromNm: 330, toNm: 880, vsini: () => d.chance.between(80, 250), clouds: 1 + Math.floor(d.chance.between(0, 2.99)) }),
+    hotStar(d, { fromNm: 385, toNm: 700, vsini: () => d.chance.between(80, 250), clouds: 1 + Math.floor(d.chance.between(0, 2.99)) }),
   pair: (d) => {
     const { shared, chance, index } = d;
     const common: Cloud = {
@@ -276,7 +284,7 @@ const DRAFTS: Readonly<Record<Kind, (d: Drawing) => Draft>> = {
     };
     const hot = index % 2 === 0;
     const temperatureK = hot ? chance.between(17_000, 28_000) : chance.between(8500, 11_000);
-    const instrument = instrumentOf(d, { fromNm: 380, toNm: 800, resolvingPower: hot ? 60_000 : 42_000, signalToNoise: hot ? 220 : 140 });
+    const instrument = instrumentOf(d, { fromNm: 380, toNm: 700, resolvingPower: hot ? 60_000 : 42_000, signalToNoise: hot ? 220 : 140 });
     const clouds = cloudsOf(d, instrument, 1, () => chance.between(20, 20.6), [common]);
     return sceneFrom(
       d,
@@ -387,7 +395,7 @@ function hotStar(d: Drawing, facts: { fromNm: number; toNm: number; vsini: () =>
   const instrument = instrumentOf(d, {
     fromNm: facts.fromNm,
     toNm: facts.toNm,
-    resolvingPower: chance.pick([40_000, 60_000, 80_000]),
+    resolvingPower: chance.pick([30_000, 45_000, 70_000]),
     signalToNoise: chance.between(100, 320),
   });
   const clouds = cloudsOf(d, instrument, facts.clouds, () => chance.between(20, 21.4));

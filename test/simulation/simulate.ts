@@ -61,9 +61,10 @@ export function simulate(scene: Scene): Simulated {
     chanceOf(`${scene.name} instrument ${scene.seed}`),
   );
   const lines = [
-    ...scene.stars.flatMap((one, i) =>
-      one.lines.map((line) => starTruth(scene, grid, one.star, line, chained(rotations[i]!, profile), observed)),
-    ),
+    ...scene.stars.flatMap(({ star, lines: own }, i) => {
+      const kernel = chained(rotations[i]!, profile);
+      return own.map((line) => starTruth(grid, star, line, kernel, observed));
+    }),
     ...scene.absorption.map((line) => gasTruth(grid, line, profile, observed)),
     ...scene.emission.flatMap(({ lines, unitNm }) => lines.map((line) => emissionTruth(scene, grid, line, unitNm, profile, observed))),
   ];
@@ -163,7 +164,7 @@ function truthOfLine(
   };
 }
 
-function starTruth(scene: Scene, grid: Grid, star: Star, line: OpacityLine, kernel: Kernel, observed: Observed) {
+function starTruth(grid: Grid, star: Star, line: OpacityLine, kernel: Kernel, observed: Observed) {
   const floor = deepest(line.restNm, star.temperatureK);
   const profile = seen(grid, line.reach, kernel, (v) => star.lightShare * depthOf(line.central * line.shape(v), floor));
   const facts = { species: line.line.species, restNm: line.restNm, velocityKmPerS: star.velocityKmPerS, listed: line.listed };

@@ -34,6 +34,10 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
       loader: loaders.spectrum,
       lazy: async () => ({ Component: (await import('../features/spectrum/SpectrumPage.js')).default }),
     },
+    {
+      path: 'probabilities',
+      lazy: async () => ({ Component: (await import('../features/probabilities/ProbabilitiesPage.js')).ProbabilitiesPage }),
+    },
     { path: '*', element: <NotFoundPage /> },
   ];
   return [

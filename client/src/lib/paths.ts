@@ -5,6 +5,7 @@ export const pagePaths = {
   programme: (p: string) => `/programmes/${p}`,
   upload: (p: string, targetId?: string) => `/programmes/${p}/add${targetId ? `?target=${targetId}` : ''}`,
   target: (p: string, t: string) => `/programmes/${p}/targets/${t}`,
+  probabilities: '/probabilities',
   spectrum: (p: string, s: string) => `/programmes/${p}/spectra/${s}`,
 } as const;
 

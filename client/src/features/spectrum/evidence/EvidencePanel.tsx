@@ -11,6 +11,7 @@ import { Argument } from './Argument.js';
 import { Candidates } from './Candidates.js';
 import { Companions } from './Companions.js';
 import { History } from './History.js';
+import { Tested } from './Tested.js';
 import { oddsLabel, together } from './odds.js';
 import { claimTitle, measurement, readingName } from './claim-text.js';
 import classes from './evidence.module.css';
@@ -61,6 +62,7 @@ export function EvidencePanel(props: EvidenceProps) {
             display={display}
             onChoose={props.onChoose}
           />
+          <Tested reading={chosen} feature={row.feature} programVersion={analysis.programVersion} />
         </div>
         <div className={classes.side} tabIndex={0} role="group" aria-label="Companions and history">
           {chosen.candidate && (
