@@ -258,7 +258,10 @@ describe('medium, frame and other facts', () => {
     expect([reading.medium, reading.frame, reading.fluxKind, reading.resolvingPower].map((fact) => fact.how)).toEqual(
       Array(4).fill('corrected'),
     );
-    expect(reading.axisUnit).toEqual({ value: 'micron', how: 'corrected', where: 'correction' });
+    expect(reading.axisUnit).toEqual({
+      ...{ value: 'micron', how: 'corrected', where: 'correction' },
+      said: { value: 'nm', how: 'stated', where: 'TUNIT1' },
+    });
     expect(reading.firstNm).toBe(500_000);
     expect([spectrum.frame, spectrum.fluxKind, spectrum.resolvingPower]).toEqual(['heliocentric', 'normalised', 1234]);
   });
@@ -301,7 +304,7 @@ describe('medium, frame and other facts', () => {
     expect(read(file([wave, flux], [['DATE-OBS', '04/03/99']])).reading.observedAt.value).toBe('1999-03-04');
   });
 
-  it('does not take coordinates of another equinox for ICRS', () => {
+  it('precesses coordinates of another equinox, and leaves those of another system alone', () => {
     expect(
       read(
         file(
@@ -324,7 +327,14 @@ describe('medium, frame and other facts', () => {
           ],
         ),
       ).reading,
-    ).toMatchObject({ raDeg: null, decDeg: null });
+      // 50 years of 3.0735 s + 1.3362 s sin a tan d and of 20.043 arcsec cos a: textbook annual precession, from memory
+    ).toMatchObject({ raDeg: expect.closeTo(10.658, 2) as number, decDeg: expect.closeTo(20.274, 2) as number });
+    const apparent: Card[] = [
+      ['RA', 10],
+      ['DEC', 20],
+      ['RADESYS', 'GAPPT'],
+    ] as const;
+    expect(read(file([wave, flux], apparent)).reading).toMatchObject({ raDeg: null, decDeg: null });
   });
 });
 

@@ -1,8 +1,11 @@
-import type { FluxKind, Spectrum } from '../spectrum/index.js';
+import type { Spectrum } from '../spectrum/index.js';
 import { AIR_STARTS_NM, hzPerNm, toVacuumInPlace, type Medium } from '../units/index.js';
 import { cgsPerHz } from './columns/flux-unit.js';
-import { assumed, notStated, stated } from './columns/medium.js';
+import { assumed, notStated } from './columns/medium.js';
 import { checkAxis, checkFlux, checkSize, isWavelength } from './checks.js';
+import { corrected } from './corrections.js';
+import { observed } from './observation.js';
+import { segmentsOf } from './segments.js';
 import { mergeDuplicates, type Columns } from './merge.js';
 import { ascendingOrder } from './order.js';
 import type { RawSpectrum } from './raw.js';
@@ -20,28 +23,29 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
   const { firstNm, lastNm } = ends(raw.axis.nm);
   const medium = settleMedium(raw, corrections, Math.max(firstNm, lastNm));
   toVacuumInPlace(raw.axis.nm, medium.value);
-  const fluxKind: Stated<FluxKind> = corrections.fluxKind
-    ? { value: corrections.fluxKind, how: 'corrected', where: 'correction' }
-    : raw.fluxKind;
+  const fluxKind = corrected(corrections.fluxKind, raw.fluxKind);
   const convertedFluxUnit = fluxKind.value === 'per_frequency' ? perWavelength(raw, sigma, warnings) : undefined;
 
   const { bad, maskUsed } = badSamples(raw, sigma, warnings);
-  const index = ascendingOrder(raw, bad, warnings);
-  const columns = mergeDuplicates(inOrder({ wavelength: raw.axis.nm, flux: raw.flux, sigma, bad }, index), raw.axisName, warnings);
+  const { index, piece, names } = ascendingOrder(raw, bad, warnings);
+  const ordered = { ...inOrder({ wavelength: raw.axis.nm, flux: raw.flux, sigma, bad }, index), piece };
+  const { piece: merged, ...columns } = mergeDuplicates(ordered, raw.axisName, warnings);
   checkSize(columns.wavelength.length, warnings);
 
-  const frame = corrections.frame ? { value: corrections.frame, how: 'corrected' as const, where: 'correction' } : raw.facts.frame;
-  const resolvingPower =
-    corrections.resolvingPower === undefined
-      ? raw.facts.resolvingPower
-      : { value: corrections.resolvingPower, how: 'corrected' as const, where: 'correction' };
+  const { facts } = raw;
+  const frame = corrected(corrections.frame, facts.frame);
+  const resolvingPower = corrected<number | null>(corrections.resolvingPower, facts.resolvingPower);
+  const observation = observed(facts, frame.value, corrections, warnings);
+  const segments = segmentsOf(merged, names, columns.wavelength.length);
   const spectrum: Spectrum = {
     ...columns,
     fluxKind: fluxKind.value === 'per_frequency' ? 'per_wavelength' : fluxKind.value,
+    fluxCalibration: facts.fluxCalibration.value,
     resolvingPower: resolvingPower.value,
     frame: frame.value,
+    segments,
+    observerVelocityKmPerS: observation.observerVelocityKmPerS.value,
   };
-  const { facts } = raw;
   return {
     ok: true,
     spectrum,
@@ -49,7 +53,7 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
       format: raw.format,
       place: raw.place,
       points,
-      objectName: facts.objectName,
+      objectName: corrected<string | null>(corrections.objectName, facts.objectName),
       wavelengthColumn: raw.axisName,
       axisUnit: raw.axis.unit,
       medium,
@@ -62,25 +66,20 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
       uncertaintyKind: sigma ? raw.uncertainty!.kind : notStated(null),
       maskColumn: maskUsed ? raw.mask!.name : null,
       resolvingPower,
-      observedAt: facts.observedAt,
-      time: notStated(null),
-      exposureS: notStated(null),
-      midMjdUtc: notStated(null),
-      site: notStated(null),
-      pointing: facts.raDeg === null ? notStated(null) : stated({ raDeg: facts.raDeg, decDeg: facts.decDeg! }, 'position'),
-      observerVelocityKmPerS: notStated(null),
+      fluxCalibration: facts.fluxCalibration,
+      wavelengthRmsNm: facts.wavelengthRmsNm,
+      ...observation,
       instrument: facts.instrument,
       telescope: facts.telescope,
-      raDeg: facts.raDeg,
-      decDeg: facts.decDeg,
       firstNm,
       lastNm,
-      columns: raw.columns,
-      columnFacts: [],
-      places: [],
-      checksums: [],
-      segments: [],
-      otherPlaces: raw.otherPlaces,
+      columns: raw.columnFacts.filter((fact) => fact.numeric).map((fact) => fact.name),
+      columnFacts: raw.columnFacts,
+      uncorrectedColumns: raw.uncorrectedColumns,
+      otherPlaces: raw.places.filter((one) => one.isSpectrum && one.place !== raw.place).map((one) => one.place),
+      places: raw.places,
+      checksums: raw.checksums,
+      segments,
       header: raw.header,
       warnings,
     },
@@ -92,10 +91,10 @@ function ends(nm: Float64Array): { firstNm: number; lastNm: number } {
 }
 
 function settleMedium(raw: RawSpectrum, corrections: ReadingCorrections, longestNm: number): Stated<Medium> {
-  if (corrections.medium) return { value: corrections.medium, how: 'corrected', where: 'correction' };
   const found = raw.axis.medium ?? raw.medium;
-  if (found) return found;
-  return longestNm < AIR_STARTS_NM ? assumed('vacuum', 'below 200 nm wavelengths are vacuum by convention') : notStated('vacuum');
+  const usual: Stated<Medium> =
+    longestNm < AIR_STARTS_NM ? assumed('vacuum', 'below 200 nm wavelengths are vacuum by convention') : notStated('vacuum');
+  return corrected(corrections.medium, found ?? usual);
 }
 
 /** Flux and sigma per frequency become flux per wavelength, in place; the axis is in vacuum nm here. @returns the new unit */
@@ -120,8 +119,10 @@ function perWavelength(raw: RawSpectrum, sigma: Float64Array | null, warnings: R
   return unit;
 }
 
+type Unpieced = Omit<Columns, 'piece'>;
+
 /** The columns in the order of `index`; the same arrays when that is the order they are in. */
-function inOrder(columns: Columns, index: Uint32Array): Columns {
+function inOrder(columns: Unpieced, index: Uint32Array): Unpieced {
   const { wavelength, flux, sigma, bad } = columns;
   if (index.length === wavelength.length && index.every((value, position) => value === position)) return columns;
   return {

@@ -7,6 +7,8 @@ export interface Columns {
   readonly flux: Float64Array;
   readonly sigma: Float64Array | null;
   readonly bad: Uint8Array;
+  /** piece of the file that each sample comes from; null when there is one */
+  readonly piece: Uint16Array | null;
 }
 
 /** Samples of one wavelength become one: the mean of the good ones, weighted by 1 / sigma^2 where sigma is known. */
@@ -19,6 +21,7 @@ export function mergeDuplicates(columns: Columns, axisName: string, warnings: Re
     flux: new Float64Array(n),
     sigma: columns.sigma && new Float64Array(n),
     bad: new Uint8Array(n),
+    piece: columns.piece && new Uint16Array(n),
   };
   for (let g = 0; g < n; g++) {
     const from = starts[g]!;
@@ -27,6 +30,7 @@ export function mergeDuplicates(columns: Columns, axisName: string, warnings: Re
     out.wavelength[g] = columns.wavelength[from]!;
     out.flux[g] = mean.flux;
     out.bad[g] = mean.bad;
+    if (out.piece) out.piece[g] = columns.piece![from]!;
     if (out.sigma) out.sigma[g] = mean.sigma;
   }
   const first = columns.wavelength[starts.findIndex((start, g) => (starts[g + 1] ?? columns.wavelength.length) - start > 1)];

@@ -12,20 +12,38 @@ interface Run {
   readonly descending: boolean;
 }
 
+/** Samples in ascending order as indices into the file's columns, and the pieces of the file they come from. */
+export interface Ascending {
+  readonly index: Uint32Array;
+  /** piece of each sample, by its place among `names`; null when all are of one */
+  readonly piece: Uint16Array | null;
+  readonly names: readonly string[];
+}
+
 /**
- * Samples in ascending order of wavelength, as indices into the file's columns.
+ * Samples in ascending order of wavelength.
  *
  * A descending axis is reversed. Overlapping orders are cut, each wavelength taken from the order whose centre is nearer in
- * units of the order's half width, so nothing is resampled and the noise stays independent. Anything else is sorted. Samples
- * without a usable wavelength are left out.
+ * units of the order's half width, so nothing is resampled, the noise stays independent and each order stays a segment of its
+ * own; an order can be had with all its samples by choosing it as the place. Anything else is sorted. Samples without a usable
+ * wavelength are left out.
  */
-export function ascendingOrder(raw: RawSpectrum, bad: Uint8Array, warnings: ReadWarning[]): Uint32Array {
+export function ascendingOrder(raw: RawSpectrum, bad: Uint8Array, warnings: ReadWarning[]): Ascending {
   const nm = raw.axis.nm;
   const usable = usableIndices(nm);
-  const runs = monotonicRuns(nm, usable);
-  if (runs.length === 1) return runs[0]!.descending ? usable.reverse() : usable;
-  if (usable.length / runs.length < SHORTEST_RUN || runs.length > MOST_RUNS) return sorted(raw, usable, runs, warnings);
-  return joinedOrders(nm, bad, usable, runs, warnings);
+  const runs = monotonicRuns(nm, usable, raw.orders?.map((order) => order.from) ?? []);
+  if (runs.length === 1) return whole(runs[0]!.descending ? usable.reverse() : usable);
+  if (usable.length / runs.length < SHORTEST_RUN || runs.length > MOST_RUNS) return whole(sorted(raw, usable, runs, warnings));
+  const { index, piece } = joinedOrders(nm, bad, usable, runs, warnings);
+  return { index, piece, names: runs.map((run) => nameOf(run, usable, raw)) };
+}
+
+const whole = (index: Uint32Array): Ascending => ({ index, piece: null, names: [] });
+
+function nameOf(run: Run, usable: Uint32Array, raw: RawSpectrum): string {
+  const first = usable[run.from]!;
+  const order = raw.orders?.findLast((one) => one.from <= first);
+  return order?.name ?? `${raw.locate(first).words} to ${raw.locate(usable[run.to - 1]!).row}`;
 }
 
 function usableIndices(nm: Float64Array): Uint32Array {
@@ -35,15 +53,19 @@ function usableIndices(nm: Float64Array): Uint32Array {
   return index.slice(0, n);
 }
 
-function monotonicRuns(nm: Float64Array, index: Uint32Array): Run[] {
+/** Runs of one direction; one also ends where the file begins a new order (`starts`, ascending). */
+function monotonicRuns(nm: Float64Array, index: Uint32Array, starts: readonly number[]): Run[] {
   const runs: Run[] = [];
   let from = 0;
   let direction = 0;
+  let next = starts.findIndex((start) => start > 0);
   for (let k = 1; k < index.length; k++) {
     const step = Math.sign(nm[index[k]!]! - nm[index[k - 1]!]!);
-    if (step === 0) continue;
-    if (direction === 0) direction = step;
-    else if (step !== direction) {
+    const isNew = next >= 0 && next < starts.length && index[k]! >= starts[next]!;
+    while (next >= 0 && next < starts.length && index[k]! >= starts[next]!) next++;
+    if (step === 0 && !isNew) continue;
+    if (direction === 0 && !isNew) direction = step;
+    else if (isNew || step !== direction) {
       runs.push({ from, to: k, descending: direction < 0 });
       from = k;
       direction = 0;
@@ -71,9 +93,10 @@ interface Extent {
   readonly high: number;
 }
 
-function joinedOrders(nm: Float64Array, bad: Uint8Array, index: Uint32Array, runs: readonly Run[], warnings: ReadWarning[]): Uint32Array {
+function joinedOrders(nm: Float64Array, bad: Uint8Array, index: Uint32Array, runs: readonly Run[], warnings: ReadWarning[]) {
   const extents = runs.map((run) => goodExtent(nm, bad, index, run));
   const kept = new Uint32Array(index.length);
+  const pieceOf = new Uint16Array(nm.length);
   let n = 0;
   runs.forEach((run, r) => {
     const rivals = extents.map((_, other) => other).filter((other) => other !== r && overlap(extents[other]!, extents[r]!));
@@ -84,14 +107,20 @@ function joinedOrders(nm: Float64Array, bad: Uint8Array, index: Uint32Array, run
         const theirs = distance(extents[other]!, wavelength);
         return theirs <= 1 && (theirs < own || (theirs === own && other < r));
       });
-      if (!better) kept[n++] = index[k]!;
+      if (better) continue;
+      pieceOf[index[k]!] = r;
+      kept[n++] = index[k]!;
     }
   });
+  const order = sortedBy(nm, kept.slice(0, n));
   warnings.push({
     code: 'orders_joined',
-    sentence: `The wavelengths run through ${runs.length} pieces (orders) that overlap or are out of order; where they overlap each wavelength is taken from the order whose centre is nearer, which leaves ${n} of ${index.length} samples. Flux steps between orders are not removed.`,
+    sentence:
+      n < index.length
+        ? `The wavelengths run through ${runs.length} pieces (orders) that overlap; where they do each wavelength is taken from the order whose centre is nearer, which leaves ${n} of ${index.length} samples. Flux steps between orders are not removed. An order with all its samples can be chosen where the file has one in each row.`
+        : `The wavelengths run through ${runs.length} pieces (orders) without overlap; they were put one after the other. Flux steps between them are not removed.`,
   });
-  return sortedBy(nm, kept.slice(0, n));
+  return { index: order, piece: Uint16Array.from(order, (i) => pieceOf[i]!) };
 }
 
 function goodExtent(nm: Float64Array, bad: Uint8Array, index: Uint32Array, run: Run): Extent {

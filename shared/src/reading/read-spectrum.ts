@@ -1,3 +1,4 @@
+import { withAnswers } from './answers.js';
 import { assemble } from './assemble.js';
 import type { ReadContext } from './context.js';
 import { readFits } from './fits/read-fits.js';
@@ -22,9 +23,9 @@ export function readSpectrum(
   limits: ReadLimits = DEFAULT_READ_LIMITS,
 ): ReadResult {
   try {
-    return assemble(readRaw(bytes, fileName, corrections, limits), corrections);
+    return assembled(readRaw(bytes, fileName, corrections, limits), corrections);
   } catch (error) {
-    if (error instanceof Refusal) return { ok: false, problem: error.problem };
+    if (error instanceof Refusal) return { ok: false, problem: withAnswers(error.problem) };
     // a fault of the reader must not take the caller down with it; the code tells it from a fault of the file
     return {
       ok: false,
@@ -33,6 +34,16 @@ export function readSpectrum(
         sentence: `The file could not be read: ${String(error)}. This is a fault of the program; please report it.`,
       },
     };
+  }
+}
+
+/** What is refused after the columns were found says which columns there are to choose from. */
+function assembled(raw: RawSpectrum, corrections: ReadingCorrections): ReadResult {
+  try {
+    return assemble(raw, corrections);
+  } catch (error) {
+    if (!(error instanceof Refusal)) throw error;
+    throw new Refusal({ columnFacts: raw.columnFacts, places: raw.places, ...error.problem });
   }
 }
 

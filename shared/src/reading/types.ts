@@ -1,5 +1,5 @@
 import type { Medium } from '../units/index.js';
-import type { FluxKind, Frame, Segment, Spectrum } from '../spectrum/index.js';
+import type { FluxCalibration, FluxKind, Frame, Segment, Spectrum } from '../spectrum/index.js';
 
 /** How a fact about the file is known: the file says so, we took it for granted, or a person said so. */
 export type How = 'stated' | 'assumed' | 'corrected' | 'not_stated';
@@ -109,6 +109,9 @@ export interface Reading {
   readonly uncertaintyKind: Stated<UncertaintyKind | null>;
   readonly maskColumn: string | null;
   readonly resolvingPower: Stated<number | null>;
+  readonly fluxCalibration: Stated<FluxCalibration | null>;
+  /** 1 sigma of the wavelength solution, nm (LAMRMS of archive products, which count wavelengths in nm) */
+  readonly wavelengthRmsNm: Stated<number | null>;
   /** ISO 8601 without zone, as the file's own time scale; the text of `time` */
   readonly observedAt: Stated<string | null>;
   readonly time: Stated<ObservingTime | null>;
@@ -134,6 +137,8 @@ export interface Reading {
   readonly columns: readonly string[];
   /** the same with what is known of each, numeric or not */
   readonly columnFacts: readonly ColumnFact[];
+  /** beside a corrected column the one that the reader would have taken; empty when none was corrected */
+  readonly uncorrectedColumns: UncorrectedColumns;
   /** other parts of the file that hold a spectrum too */
   readonly otherPlaces: readonly string[];
   /** every part of the file, this one included */
@@ -172,6 +177,11 @@ export interface ReadingCorrections {
   readonly delimiter?: ',' | ';' | '\t' | '|' | ' ';
   readonly decimalComma?: boolean;
 }
+
+/** What the reader would have taken by itself where a person named a column; null when it knew none. */
+export type UncorrectedColumns = {
+  readonly [K in 'wavelengthColumn' | 'fluxColumn' | 'uncertaintyColumn' | 'maskColumn']?: string | null;
+};
 
 /** Why a file cannot be read. `sentence` says what is wrong, where, and what to do. */
 export interface ReadProblem {

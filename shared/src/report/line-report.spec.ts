@@ -85,9 +85,19 @@ const reading = (changes: Partial<Reading> = {}): Reading => ({
   },
   ...{ uncertaintyColumn: null, uncertaintyKind: stated(null), maskColumn: null, resolvingPower: stated(60_000), telescope: 'T1' },
   ...{ observedAt: stated('2026-03-04T05:06:07', 'DATE-OBS'), instrument: 'Echelle', raDeg: null, decDeg: null, firstNm: 100, lastNm: 700 },
-  ...{ columns: [], columnFacts: [], otherPlaces: [], places: [], checksums: [], segments: [], header: [], warnings: [] },
+  ...{
+    columns: [],
+    columnFacts: [],
+    uncorrectedColumns: {},
+    otherPlaces: [],
+    places: [],
+    checksums: [],
+    segments: [],
+    header: [],
+    warnings: [],
+  },
   ...{ time: stated(null), exposureS: stated(null), midMjdUtc: stated(null), site: stated(null), pointing: stated(null) },
-  ...{ observerVelocityKmPerS: stated(null), ...changes },
+  ...{ observerVelocityKmPerS: stated(null), fluxCalibration: stated(null), wavelengthRmsNm: stated(null), ...changes },
 });
 const decision = (changes: Partial<Identification> = {}): Identification => ({
   ...{ id: 'i', targetId: 't', spectrumId: 's', spectrumLabel: 'l', featureIndex: 0, kind: 'dip', wavelengthNm: 589.13523 },

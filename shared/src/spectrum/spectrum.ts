@@ -1,6 +1,9 @@
 /** What the flux column of a spectrum is. Planck work needs flux per wavelength; per frequency is converted on reading. */
 export type FluxKind = 'per_wavelength' | 'per_frequency' | 'normalised' | 'counts' | 'unknown';
 
+/** How far the flux scale can be trusted (FLUXCAL; Char.FluxAxis.Calibration of the IVOA Spectrum model): uncalibrated has no true shape. */
+export type FluxCalibration = 'absolute' | 'relative' | 'normalised' | 'uncalibrated';
+
 /** Velocity frame in which the wavelengths stand. */
 export type Frame = 'topocentric' | 'geocentric' | 'heliocentric' | 'barycentric' | 'lsrk' | 'lsrd' | 'source' | 'unknown';
 
@@ -26,6 +29,8 @@ export interface Spectrum {
   /** 1 where the sample must not be used (masked, NaN, zero inverse variance, non-positive sigma) */
   readonly bad: Uint8Array;
   readonly fluxKind: FluxKind;
+  /** null or absent: not stated */
+  readonly fluxCalibration?: FluxCalibration | null;
   /** lambda / FWHM of the instrument profile; null when not stated */
   readonly resolvingPower: number | null;
   readonly frame: Frame;

@@ -41,6 +41,7 @@ interface Shape {
   readonly hasSigma: boolean;
   readonly segments: Reading['segments'] | null;
   readonly observerVelocityKmPerS: number | null;
+  readonly fluxCalibration: Spectrum['fluxCalibration'];
 }
 type Facts = Pick<Spectrum, 'fluxKind' | 'frame' | 'resolvingPower'>;
 
@@ -52,6 +53,7 @@ const findShape = (db: Knex, { programmeId }: Scope, id: string) =>
       db.raw('sigma is not null as "hasSigma"'),
       db.raw(`reading->'segments' as segments`),
       db.raw(`(reading->'observerVelocityKmPerS'->>'value')::float8 as "observerVelocityKmPerS"`),
+      db.raw(`reading->'fluxCalibration'->>'value' as "fluxCalibration"`),
     );
 
 /** The columns of a stored spectrum as the analysis takes them; null when the programme has no such spectrum. */

@@ -32,7 +32,7 @@ const DEFAULTS: Partial<Record<SpectralQuantity, AxisUnit>> = { frequency: 'hz',
 export function settleAxis(values: Float64Array, statement: AxisStatement, context: ReadContext): Axis {
   const log10 = statement.quantity === 'log10_length' || (parseAxisUnit(statement.unit)?.log10 ?? false);
   if (log10) for (let i = 0; i < values.length; i++) values[i] = 10 ** values[i]!;
-  const { scaled, how, where } = settleUnit(values, statement, log10, context);
+  const { scaled, ...known } = settleUnit(values, statement, log10, context);
   if (scaled.unit === 'velocity')
     refuse(
       'no_rest_wavelength',
@@ -43,17 +43,27 @@ export function settleAxis(values: Float64Array, statement: AxisStatement, conte
   const medium: Stated<Medium> | null = isLength(unit)
     ? null
     : { value: 'vacuum', how: 'stated', where: `${AXIS_UNIT_NAMES[unit]} is vacuum by definition` };
-  return { nm: values, unit: { value: scaled.unit, how, where }, medium };
+  return { nm: values, unit: { value: scaled.unit, ...known }, medium };
 }
 
 interface Settled {
   readonly scaled: ScaledAxisUnit;
   readonly how: Stated<AxisUnit>['how'];
   readonly where: string;
+  readonly said?: Stated<AxisUnit>['said'];
 }
 
 function settleUnit(values: Float64Array, statement: AxisStatement, log10: boolean, { corrections, warnings }: ReadContext): Settled {
-  if (corrections.axisUnit) return { scaled: { unit: corrections.axisUnit, scale: 1 }, how: 'corrected', where: 'correction' };
+  if (corrections.axisUnit) {
+    const said = parseAxisUnit(statement.unit);
+    const scaled = { unit: corrections.axisUnit, scale: 1 };
+    return {
+      scaled,
+      how: 'corrected',
+      where: 'correction',
+      ...(said && { said: { value: said.unit, how: 'stated', where: statement.where } }),
+    };
+  }
   if (statement.unit.trim() !== '') {
     const scaled = parseAxisUnit(statement.unit);
     if (scaled) return { scaled, how: 'stated', where: statement.where };

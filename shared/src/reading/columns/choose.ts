@@ -1,5 +1,6 @@
 import { refuse, quoted } from '../refusal.js';
-import type { ReadingCorrections, UncertaintyKind } from '../types.js';
+import type { ColumnFact, ColumnRole, ReadingCorrections, Stated, UncertaintyKind, UncorrectedColumns } from '../types.js';
+import { corrected } from '../corrections.js';
 import { parseAxisUnit } from './axis-unit.js';
 import { fluxKindOfUnit } from './flux-unit.js';
 import { axisQuantity, nameRole, type SpectralQuantity } from './words.js';
@@ -124,7 +125,7 @@ export function chooseColumns(infos: readonly ColumnInfo[], corrections: Reading
     if (winner) taken.add((winner as { index: number }).index);
     return winner;
   };
-  const corrected = (name: string | null | undefined): number | null => {
+  const named = (name: string | null | undefined): number | null => {
     if (name == null) return null;
     const index = infos.findIndex((info) => info.name === name);
     if (index < 0 || !infos[index]!.numeric)
@@ -134,15 +135,16 @@ export function chooseColumns(infos: readonly ColumnInfo[], corrections: Reading
     taken.add(index);
     return index;
   };
-  const axisSet = corrected(corrections.wavelengthColumn);
-  const fluxSet = corrected(corrections.fluxColumn);
-  const errorSet = corrected(corrections.uncertaintyColumn);
+  const axisSet = named(corrections.wavelengthColumn);
+  const fluxSet = named(corrections.fluxColumn);
+  const errorSet = named(corrections.uncertaintyColumn);
+  const maskSet = named(corrections.maskColumn);
 
   const axisFound = axisSet === null ? best((role) => role === 'axis') : null;
   const fluxFound = fluxSet === null ? best((role) => role === 'flux') : null;
   const isError = (role: Role) => role === 'sigma' || role === 'variance' || role === 'inverse_variance';
   const errorFound = errorSet === null && corrections.uncertaintyColumn !== null ? best(isError) : null;
-  const maskFound = best((role) => role === 'mask');
+  const maskFound = maskSet === null && corrections.maskColumn !== null ? best((role) => role === 'mask') : null;
 
   const axis = axisSet ?? axisFound?.index;
   const flux = fluxSet ?? fluxFound?.index;
@@ -153,9 +155,46 @@ export function chooseColumns(infos: readonly ColumnInfo[], corrections: Reading
     quantity: axisFound?.claim.quantity ?? axisQuantity(info.name) ?? quantityOfUnit(info.unit),
     flux,
     uncertainty: errorSet ?? errorFound?.index ?? null,
-    uncertaintyKind: corrections.uncertaintyKind ?? (errorFound ? (errorFound.claim.role as UncertaintyKind) : kindOfName(infos, errorSet)),
-    mask: maskFound?.index ?? null,
+    uncertaintyKind: errorFound ? (errorFound.claim.role as UncertaintyKind) : kindOfName(infos, errorSet),
+    mask: maskSet ?? maskFound?.index ?? null,
   };
+}
+
+/** The columns with the roles that the choice gives them; without a choice none has one. */
+export function columnFacts(infos: readonly ColumnInfo[], choice: ColumnChoice | null): ColumnFact[] {
+  const roles: [ColumnRole, number | null | undefined][] = [
+    ['wavelength', choice?.axis],
+    ['flux', choice?.flux],
+    ['uncertainty', choice?.uncertainty],
+    ['mask', choice?.mask],
+  ];
+  return infos.map(({ name, unit, ucd, utype, numeric }, i) => ({
+    ...{ name, unit, ucd, utype, numeric },
+    role: roles.find(([, index]) => index === i)?.[0] ?? null,
+  }));
+}
+
+/** Names of the columns that would have been taken without the corrections that name columns; nothing where none was named. */
+export function uncorrectedColumns(infos: readonly ColumnInfo[], corrections: ReadingCorrections): UncorrectedColumns {
+  const { wavelengthColumn, fluxColumn, uncertaintyColumn, maskColumn, ...rest } = corrections;
+  if ([wavelengthColumn, fluxColumn, uncertaintyColumn, maskColumn].every((name) => name === undefined)) return {};
+  const own = chooseColumns(infos, rest);
+  const nameOf = (index: number | null | undefined) => (index == null ? null : infos[index]!.name);
+  return {
+    ...(wavelengthColumn === undefined ? {} : { wavelengthColumn: nameOf(own?.axis) }),
+    ...(fluxColumn === undefined ? {} : { fluxColumn: nameOf(own?.flux) }),
+    ...(uncertaintyColumn === undefined ? {} : { uncertaintyColumn: nameOf(own?.uncertainty) }),
+    ...(maskColumn === undefined ? {} : { maskColumn: nameOf(own?.mask) }),
+  };
+}
+
+/** How the uncertainty is known to be what it is. */
+export function statedKind(
+  kind: UncertaintyKind,
+  known: Omit<Stated<UncertaintyKind>, 'value'>,
+  corrections: ReadingCorrections,
+): Stated<UncertaintyKind> {
+  return corrected(corrections.uncertaintyKind, { value: kind, ...known });
 }
 
 function kindOfName(infos: readonly ColumnInfo[], index: number | null): UncertaintyKind {

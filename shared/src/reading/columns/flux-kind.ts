@@ -1,5 +1,6 @@
 import type { FluxKind } from '../../spectrum/index.js';
-import type { Stated } from '../types.js';
+import { corrected } from '../corrections.js';
+import type { ReadingCorrections, Stated } from '../types.js';
 import type { ColumnInfo } from './choose.js';
 import { fluxKindOfUnit } from './flux-unit.js';
 import { assumed, notStated, stated } from './medium.js';
@@ -28,4 +29,9 @@ export function fluxKindOf(info: Pick<ColumnInfo, 'name' | 'unit' | 'ucd'>, wher
   if (/^phot\.flux\.density;(?:.*;)?em\.wl/.test(ucd)) return assumed('per_wavelength', 'UCD');
   if (/^phot\.flux\.density;(?:.*;)?em\.freq/.test(ucd)) return assumed('per_frequency', 'UCD');
   return notStated('unknown');
+}
+
+/** The flux unit as a person corrected it, or as the file gives it at `where`. */
+export function settleFluxUnit(unit: string, where: string, corrections: ReadingCorrections): Stated<string> {
+  return corrected(corrections.fluxUnit, unit === '' ? notStated('') : stated(unit, where));
 }

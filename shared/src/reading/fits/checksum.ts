@@ -1,4 +1,4 @@
-import type { ReadWarning } from '../types.js';
+import type { ChecksumVerdict, ReadWarning } from '../types.js';
 import type { Hdu } from './hdu.js';
 import { BLOCK } from './header.js';
 
@@ -35,25 +35,27 @@ function carried(high: number, low: number): { high: number; low: number } {
   return { high, low };
 }
 
-/** Warns when DATASUM or CHECKSUM of a unit is there and wrong. */
-export function verifyChecksums(bytes: Uint8Array, hdu: Hdu, warnings: ReadWarning[]): void {
+/** What DATASUM and CHECKSUM of a unit say of its content; a mismatch is a warning, not a refusal. */
+export function verifyChecksums(bytes: Uint8Array, hdu: Hdu, warnings: ReadWarning[]): ChecksumVerdict {
   const datasum = hdu.header.text('DATASUM');
   const checksum = hdu.header.text('CHECKSUM');
-  if (datasum === null && checksum === null) return;
+  if (datasum === null && checksum === null) return { place: hdu.place, verdict: 'absent' };
   const end = Math.min(bytes.length, hdu.dataStart + Math.ceil(hdu.dataBytes / BLOCK) * BLOCK);
   const dataSum = onesComplementSum(bytes, hdu.dataStart, end);
   const wrong: string[] = [];
+  // no digits stand for "not computed"
   if (datasum !== null && /^\d+$/.test(datasum) && Number(datasum) !== dataSum) wrong.push('DATASUM');
-  if (checksum !== null && checksum !== '') {
+  if (checksum !== null) {
     const total = carriedSum(onesComplementSum(bytes, hdu.headerStart, hdu.dataStart), dataSum);
     // the checksum is chosen to make the total all ones, which is the other zero
     if (total !== 0xffffffff && total !== 0) wrong.push('CHECKSUM');
   }
-  if (wrong.length > 0)
-    warnings.push({
-      code: 'checksum_wrong',
-      sentence: `${wrong.join(' and ')} of ${hdu.place} ${wrong.length > 1 ? 'do' : 'does'} not match the content (checksum wrong): the file was changed or damaged after it was written.`,
-    });
+  if (wrong.length === 0) return { place: hdu.place, verdict: 'verified' };
+  warnings.push({
+    code: 'checksum_wrong',
+    sentence: `${wrong.join(' and ')} of ${hdu.place} ${wrong.length > 1 ? 'do' : 'does'} not match the content (checksum wrong): the file was changed or damaged after it was written.`,
+  });
+  return { place: hdu.place, verdict: 'mismatch' };
 }
 
 function carriedSum(a: number, b: number): number {

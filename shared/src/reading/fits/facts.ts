@@ -1,7 +1,9 @@
 import type { Frame } from '../../spectrum/index.js';
 import type { Medium } from '../../units/index.js';
-import { isoFromFitsDate, isoFromMjd } from '../dates.js';
 import { notStated, parseFrame, stated } from '../columns/medium.js';
+import { fluxCalibrationOf, wavelengthRmsOf, type FactSource, type Found } from '../facts/source.js';
+import { whenOf } from '../facts/when.js';
+import { pointingOf, siteOf } from '../facts/where.js';
 import type { Facts } from '../raw.js';
 import { quoted } from '../refusal.js';
 import type { ReadWarning, Stated } from '../types.js';
@@ -10,7 +12,7 @@ import type { Header } from './header.js';
 /** The headers that speak for a spectrum, the closest first: that of its own unit, then the primary one. */
 export type Headers = readonly Header[];
 
-function firstText(headers: Headers, ...keywords: string[]): { value: string; where: string } | null {
+function firstText(headers: Headers, ...keywords: string[]): Found<string> | null {
   for (const keyword of keywords)
     for (const header of headers) {
       const value = header.text(keyword);
@@ -19,7 +21,7 @@ function firstText(headers: Headers, ...keywords: string[]): { value: string; wh
   return null;
 }
 
-function firstNumber(headers: Headers, ...keywords: string[]): { value: number; where: string } | null {
+function firstNumber(headers: Headers, ...keywords: string[]): Found<number> | null {
   for (const keyword of keywords)
     for (const header of headers) {
       const value = header.number(keyword);
@@ -30,15 +32,22 @@ function firstNumber(headers: Headers, ...keywords: string[]): { value: number; 
 
 /** What the headers say of the observation. */
 export function readFacts(headers: Headers, warnings: ReadWarning[]): Facts {
+  const source: FactSource = {
+    text: (...keywords) => firstText(headers, ...keywords),
+    number: (...keywords) => firstNumber(headers, ...keywords),
+  };
   const object = firstText(headers, 'OBJECT', 'TARGNAME', 'TARGET', 'OBJNAME');
   return {
     objectName: object ? stated(object.value, object.where) : notStated(null),
     frame: frameOf(headers, warnings),
     resolvingPower: resolvingPowerOf(headers),
-    observedAt: observedAt(headers),
+    fluxCalibration: fluxCalibrationOf(source),
+    wavelengthRmsNm: wavelengthRmsOf(source),
+    ...whenOf(source),
+    site: siteOf(source),
+    pointing: pointingOf(source),
     instrument: firstText(headers, 'INSTRUME', 'BSS_INST')?.value ?? null,
     telescope: firstText(headers, 'TELESCOP')?.value ?? null,
-    ...positionOf(headers),
   };
 }
 
@@ -72,42 +81,6 @@ function resolvingPowerOf(headers: Headers): Stated<number | null> {
   const either = firstNumber(headers, 'SPEC_RES');
   if (either && either.value >= 50) return stated(either.value, either.where);
   return notStated(null);
-}
-
-function observedAt(headers: Headers): Stated<string | null> {
-  const date = firstText(headers, 'DATE-AVG', 'DATE-OBS', 'DATE-BEG');
-  if (date) {
-    const time = firstText(headers, 'TIME-OBS', 'UTSTART', 'UT')?.value ?? '';
-    const iso = isoFromFitsDate(date.value, time);
-    if (iso) return stated(iso, date.where);
-  }
-  const mjd = firstNumber(headers, 'MJD-AVG', 'MJD-OBS', 'MJD-BEG', 'MJD');
-  const iso = mjd && isoFromMjd(mjd.value);
-  return iso ? stated(iso, mjd.where) : notStated(null);
-}
-
-/** Only ICRS and FK5 of J2000, which agree to a fraction of an arcsecond, are taken over. */
-function positionOf(headers: Headers): { raDeg: number | null; decDeg: number | null } {
-  const nothing = { raDeg: null, decDeg: null };
-  const system = firstText(headers, 'RADESYS', 'RADECSYS')?.value.toUpperCase();
-  const equinox = firstNumber(headers, 'EQUINOX', 'EPOCH')?.value;
-  if ((system !== undefined && system !== 'ICRS' && system !== 'FK5') || (equinox !== undefined && equinox !== 2000)) return nothing;
-  const ra = angle(headers, ['RA_TARG', 'RA_OBJ', 'PLUG_RA', 'RA', 'RA2000', 'OBJCTRA'], 15);
-  const dec = angle(headers, ['DEC_TARG', 'DEC_OBJ', 'PLUG_DEC', 'DEC', 'DEC2000', 'OBJCTDEC'], 1);
-  if (ra === null || dec === null || ra < 0 || ra >= 360 || Math.abs(dec) > 90) return nothing;
-  return { raDeg: ra, decDeg: dec };
-}
-
-/** Degrees from a number or a sexagesimal text; right ascension in sexagesimal form counts hours. */
-function angle(headers: Headers, keywords: string[], perUnit: number): number | null {
-  const number = firstNumber(headers, ...keywords);
-  if (number) return number.value;
-  const text = firstText(headers, ...keywords)?.value ?? '';
-  if (/^[+-]?\d{1,3}(?:\.\d+)?$/.test(text)) return Number(text);
-  const parts = /^([+-]?)(\d{1,3})[:\s](\d{1,2})[:\s](\d{1,2}(?:\.\d*)?)$/.exec(text);
-  if (!parts) return null;
-  const value = Number(parts[2]) + Number(parts[3]) / 60 + Number(parts[4]) / 3600;
-  return (parts[1] === '-' ? -value : value) * perUnit;
 }
 
 /** Medium of the wavelengths by cards that say it for the whole file. */

@@ -1,7 +1,8 @@
 import type { ReadContext } from '../context.js';
 import type { RawSpectrum } from '../raw.js';
 import { quoted, Refusal, refuse } from '../refusal.js';
-import type { ReadProblem, ReadWarning } from '../types.js';
+import { columnFacts } from '../columns/choose.js';
+import type { PlaceFact, ReadProblem, ReadWarning } from '../types.js';
 import { asciiTable } from './ascii-table.js';
 import { binaryTable } from './binary-table.js';
 import { verifyChecksums } from './checksum.js';
@@ -14,54 +15,81 @@ type Candidate = { readonly kind: 'table'; readonly of: TableCandidate } | { rea
 
 /** The best spectrum of a FITS file, or the one at the place that was asked for. */
 export function readFits(context: ReadContext): RawSpectrum {
-  const { bytes, corrections, warnings } = context;
+  const { corrections } = context;
   const { hdus, problem } = readHdus(context);
-  const wanted = corrections.place === undefined ? null : parsePlace(corrections.place, hdus);
-  const { candidates, problems } = look(wanted ? [wanted.hdu] : hdus, hdus, wanted?.row ?? null, context);
+  const wanted = corrections.place === undefined ? null : parsePlace(corrections.place, hdus, context);
+  const looks = look(wanted ? [wanted.hdu] : hdus, hdus, wanted?.row ?? null, context);
+  const places = wanted ? allPlaces(hdus, context) : looks.flatMap(({ hdu, found }) => placesOf(hdu, found));
+  const candidates = looks.flatMap(({ found }) => ('kind' in found ? [found] : []));
   const best = candidates.find((candidate) => candidate.kind === 'table') ?? candidates[0];
   if (!best) {
-    if (problem) throw new Refusal(problem);
-    throw new Refusal(mostTelling(problems));
+    const problems = looks.flatMap(({ found }) => ('kind' in found ? [] : [found]));
+    throw new Refusal({ ...(problem ?? mostTelling(problems)), places });
   }
   if (problem)
-    warnings.push({
+    context.warnings.push({
       code: 'file_damaged',
       sentence: `The spectrum was read, but a later part of the file is damaged. ${problem.sentence}`,
     });
-  const { hdu } = best.of;
-  const headers = hdu.index === 0 ? [hdu.header] : [hdu.header, hdus[0]!.header];
-  noteHeader(headers, warnings);
-  for (const one of hdu.index === 0 ? [hdu] : [hdus[0]!, hdu]) verifyChecksums(bytes, one, warnings);
-  const others = wanted ? look(hdus, hdus, null, { ...context, corrections: {} }).candidates : candidates;
-  const otherPlaces = others.flatMap((other) => placesOf(other)).filter((place) => place !== corrections.place && place !== hdu.place);
-  if (best.kind === 'table') return rawFromTable(best.of, headers, [...new Set([...best.of.places, ...otherPlaces])], context);
-  return rawFromImage(best.of, hdus, headers, otherPlaces, context);
+  return rawFrom(best, hdus, places, context);
 }
 
-const placesOf = (candidate: Candidate): string[] => [candidate.of.hdu.place, ...(candidate.kind === 'table' ? candidate.of.places : [])];
+/** Every part of the file as it shows without corrections. */
+const allPlaces = (hdus: readonly Hdu[], context: ReadContext): PlaceFact[] =>
+  look(hdus, hdus, null, { ...context, corrections: {}, warnings: [] }).flatMap(({ hdu, found }) => placesOf(hdu, found));
+
+function rawFrom(best: Candidate, hdus: readonly Hdu[], places: readonly PlaceFact[], context: ReadContext): RawSpectrum {
+  const { hdu } = best.of;
+  const headers = hdu.index === 0 ? [hdu.header] : [hdu.header, hdus[0]!.header];
+  noteHeader(headers, context.warnings);
+  const own = hdu.index === 0 ? [hdu] : [hdus[0]!, hdu];
+  const checksums = own.map((one) => verifyChecksums(context.bytes, one, context.warnings));
+  try {
+    if (best.kind === 'table') return rawFromTable(best.of, headers, { places, checksums }, context);
+    return rawFromImage(best.of, hdus, headers, { places, checksums }, context);
+  } catch (error) {
+    if (!(error instanceof Refusal)) throw error;
+    const columns = best.kind === 'table' ? columnFacts(best.of.table.infos, best.of.choice) : [];
+    throw new Refusal({ columnFacts: columns, places, ...error.problem });
+  }
+}
+
+/** The parts of a unit that may be chosen, or the unit with the reason why it is no spectrum. */
+function placesOf(hdu: Hdu, found: Candidate | ReadProblem): readonly PlaceFact[] {
+  if ('kind' in found && found.kind === 'table') return found.of.places;
+  const rows = 'kind' in found ? found.of.shape.length : null;
+  const why = 'kind' in found ? '' : found.sentence;
+  return [{ place: hdu.place, name: hdu.header.text('EXTNAME') ?? '', kind: hdu.kind, rows, isSpectrum: 'kind' in found, why }];
+}
 
 /** 'HDU 1 SPECTRUM row 2' as the unit and the row, from 0. */
-function parsePlace(place: string, hdus: readonly Hdu[]): { hdu: Hdu; row: number | null } {
+function parsePlace(place: string, hdus: readonly Hdu[], context: ReadContext): { hdu: Hdu; row: number | null } {
   const row = / row (\d{1,9})$/.exec(place);
   const name = row ? place.slice(0, row.index) : place;
   const hdu = hdus.find((one) => one.place === name);
-  if (!hdu) refuse('place_not_found', `There is no part "${quoted(place)}" in this file. Choose one of its parts.`);
+  if (!hdu)
+    refuse('place_not_found', `There is no part "${quoted(place)}" in this file. Choose one of its parts.`, {
+      places: allPlaces(hdus, context),
+    });
   return { hdu, row: row ? Number(row[1]) - 1 : null };
 }
 
-function look(among: readonly Hdu[], hdus: readonly Hdu[], row: number | null, context: ReadContext) {
-  const candidates: Candidate[] = [];
-  const problems: ReadProblem[] = [];
-  for (const hdu of among) {
+interface Look {
+  readonly hdu: Hdu;
+  readonly found: Candidate | ReadProblem;
+}
+
+const NO_DATA_UNIT: ReadProblem = { code: 'no_spectrum', sentence: 'This unit is neither an image nor a table.' };
+
+function look(among: readonly Hdu[], hdus: readonly Hdu[], row: number | null, context: ReadContext): Look[] {
+  return among.map((hdu) => {
     try {
-      const candidate = candidateOf(hdu, hdus, row, context);
-      if (candidate) candidates.push(candidate);
+      return { hdu, found: candidateOf(hdu, hdus, row, context) ?? NO_DATA_UNIT };
     } catch (error) {
       if (!(error instanceof Refusal)) throw error;
-      problems.push(error.problem);
+      return { hdu, found: error.problem };
     }
-  }
-  return { candidates, problems };
+  });
 }
 
 function candidateOf(hdu: Hdu, hdus: readonly Hdu[], row: number | null, context: ReadContext): Candidate | null {

@@ -5,8 +5,10 @@ import type { ColumnValues } from './table.js';
 export interface RowPick {
   /** the only row, from 0; null when all rows belong together or every row holds one value */
   readonly single: number | null;
-  /** rows that are spectra of their own, from 0 */
-  readonly alternatives: readonly number[];
+  /** rows that can be read, from 0 */
+  readonly rows: readonly number[];
+  /** the rows are spectra of their own and not orders of one */
+  readonly repeated: boolean;
   /** rows used, from 0; null: all */
   readonly used: readonly number[] | null;
   /** rows without at least two elements, left out */
@@ -18,7 +20,7 @@ const SAME_RANGE = 0.8;
 
 /** Decide by the ranges of the rows whether they are orders of one spectrum or spectra of their own. */
 export function pickRows(axis: ColumnValues, wanted: number | null, place: string): RowPick {
-  if (axis.lengths === null) return { single: null, alternatives: [], used: null, skipped: 0 };
+  if (axis.lengths === null) return { single: null, rows: [], repeated: false, used: null, skipped: 0 };
   const rows: number[] = [];
   axis.lengths.forEach((length, row) => {
     if (length > 1) rows.push(row);
@@ -27,12 +29,12 @@ export function pickRows(axis: ColumnValues, wanted: number | null, place: strin
   const skipped = axis.lengths.length - rows.length;
   if (wanted !== null && !rows.includes(wanted))
     refuse('place_not_found', `Row ${wanted + 1} of ${place} does not hold a spectrum.`, { row: wanted + 1 });
-  if (rows.length === 1) return { single: skipped > 0 ? rows[0]! : null, alternatives: [], used: rows, skipped };
+  if (rows.length === 1) return { single: skipped > 0 ? rows[0]! : null, rows, repeated: false, used: rows, skipped };
   const ranges = rangesOf(axis, rows);
   const repeated = ranges.slice(1).some((range) => sharedPart(ranges[0]!, range) > SAME_RANGE);
-  if (wanted === null && !repeated) return { single: null, alternatives: [], used: rows, skipped };
+  if (wanted === null && !repeated) return { single: null, rows, repeated, used: rows, skipped };
   const single = wanted ?? rows[0]!;
-  return { single, alternatives: repeated ? rows.filter((row) => row !== single) : [], used: [single], skipped };
+  return { single, rows, repeated, used: [single], skipped };
 }
 
 type Range = readonly [number, number];
@@ -77,4 +79,15 @@ export function sliceRows(column: ColumnValues, pick: RowPick): Float64Array {
     at += part.length;
   }
   return out;
+}
+
+/** Where each of several rows begins in the joined columns; null when one row or none of its own makes the spectrum. */
+export function ordersOf(axis: ColumnValues, pick: RowPick): { from: number; name: string }[] | null {
+  if (axis.lengths === null || pick.used === null || pick.used.length < 2) return null;
+  let from = 0;
+  return pick.used.map((row) => {
+    const order = { from, name: `row ${row + 1}` };
+    from += axis.lengths![row]!;
+    return order;
+  });
 }

@@ -1,11 +1,11 @@
 import type { ReadContext } from '../context.js';
 import { settleAxis } from '../columns/axis.js';
-import { fluxKindOf } from '../columns/flux-kind.js';
-import { notStated, stated } from '../columns/medium.js';
+import { statedKind } from '../columns/choose.js';
+import { fluxKindOf, settleFluxUnit } from '../columns/flux-kind.js';
 import { axisQuantity, nameRole } from '../columns/words.js';
-import type { RawSpectrum } from '../raw.js';
+import type { FileFacts, RawSpectrum } from '../raw.js';
 import { quoted, refuse } from '../refusal.js';
-import type { ReadingCorrections, UncertaintyKind } from '../types.js';
+import type { ColumnFact, ReadingCorrections, UncertaintyKind, UncorrectedColumns } from '../types.js';
 import { mediumOfCards, readFacts, saysNormalised, type Headers } from './facts.js';
 import type { Hdu } from './hdu.js';
 import { imageShape, readBand, type ImageShape } from './image.js';
@@ -81,7 +81,7 @@ export function rawFromImage(
   candidate: ImageCandidate,
   hdus: readonly Hdu[],
   headers: Headers,
-  otherPlaces: string[],
+  file: FileFacts,
   context: ReadContext,
 ): RawSpectrum {
   const { corrections, warnings } = context;
@@ -90,7 +90,7 @@ export function rawFromImage(
   const bands = bandsOf(hdu, shape, hdus);
   const chosen = chooseBands(bands, corrections);
   const flux = read(chosen.flux);
-  const unit = chosen.flux.hdu.header.text('BUNIT') ?? '';
+  const fluxUnit = settleFluxUnit(chosen.flux.hdu.header.text('BUNIT') ?? '', 'BUNIT', corrections);
   if (bands.length > 1 && bands.every((band) => band.label === ''))
     warnings.push({
       code: 'rows_not_named',
@@ -99,24 +99,24 @@ export function rawFromImage(
   return {
     format: 'fits_image',
     place: hdu.place,
-    otherPlaces,
-    columns: bands.map(nameOf),
+    ...file,
+    columnFacts: bandFacts(bands, chosen),
+    uncorrectedColumns: uncorrectedBands(bands, corrections),
     header: headers.flatMap((header) => [...header.cards]),
     axisName: name,
     axis,
     medium: medium ?? mediumOfCards(headers),
     flux,
     fluxName: nameOf(chosen.flux),
-    fluxUnit: unit === '' ? notStated('') : stated(unit, 'BUNIT'),
-    fluxKind: fluxKindOf({ name: chosen.flux.label, unit, ucd: '' }, 'BUNIT', saysNormalised(headers)),
+    fluxUnit,
+    fluxKind: fluxKindOf({ name: chosen.flux.label, unit: fluxUnit.value, ucd: '' }, fluxUnit.where, saysNormalised(headers)),
     uncertainty: chosen.uncertainty && {
       values: read(chosen.uncertainty),
       name: nameOf(chosen.uncertainty),
-      kind: corrections.uncertaintyKind
-        ? { value: corrections.uncertaintyKind, how: 'corrected', where: 'correction' }
-        : stated(chosen.kind, 'name of the row'),
+      kind: statedKind(chosen.kind, { how: 'stated', where: 'name of the row' }, corrections),
     },
     mask: chosen.mask && { values: read(chosen.mask), name: nameOf(chosen.mask) },
+    orders: null,
     locate: (i) => ({ words: `pixel ${i + 1}`, row: i + 1 }),
     facts: readFacts(headers, warnings),
     warnings,
@@ -180,10 +180,31 @@ function rowLabel(hdu: Hdu, band: number, bands: number): string {
 
 const nameOf = (band: Band): string => band.label || (band.shape.bands > 1 ? `row ${band.band + 1}` : 'image');
 
-function chooseBands(
-  bands: readonly Band[],
-  corrections: ReadingCorrections,
-): { flux: Band; uncertainty: Band | null; kind: UncertaintyKind; mask: Band | null } {
+interface ChosenBands {
+  readonly flux: Band;
+  readonly uncertainty: Band | null;
+  readonly kind: UncertaintyKind;
+  readonly mask: Band | null;
+}
+
+/** The rows as columns that a person may choose from. */
+function bandFacts(bands: readonly Band[], { flux, uncertainty, mask }: ChosenBands): ColumnFact[] {
+  return bands.map((band) => ({
+    ...{ name: nameOf(band), unit: band.hdu.header.text('BUNIT') ?? '', ucd: '', utype: '', numeric: true },
+    role: band === flux ? 'flux' : band === uncertainty ? 'uncertainty' : band === mask ? 'mask' : null,
+  }));
+}
+
+function uncorrectedBands(bands: readonly Band[], { fluxColumn, uncertaintyColumn, maskColumn }: ReadingCorrections): UncorrectedColumns {
+  const own = chooseBands(bands, {});
+  return {
+    ...(fluxColumn === undefined ? {} : { fluxColumn: nameOf(own.flux) }),
+    ...(uncertaintyColumn === undefined ? {} : { uncertaintyColumn: own.uncertainty && nameOf(own.uncertainty) }),
+    ...(maskColumn === undefined ? {} : { maskColumn: own.mask && nameOf(own.mask) }),
+  };
+}
+
+function chooseBands(bands: readonly Band[], corrections: ReadingCorrections): ChosenBands {
   const byName = (name: string) => {
     const band = bands.find((one) => nameOf(one) === name);
     if (!band) refuse('column_not_found', `There is no row "${quoted(name)}" in this image. Choose one of its rows.`, { column: name });
@@ -199,5 +220,7 @@ function chooseBands(
     corrections.uncertaintyColumn === null ? null : corrections.uncertaintyColumn ? byName(corrections.uncertaintyColumn) : found;
   const role = uncertainty && nameRole(uncertainty.label)?.role;
   const kind = role === 'variance' || role === 'inverse_variance' ? role : 'sigma';
-  return { flux, uncertainty: uncertainty === flux ? null : uncertainty, kind, mask: withRole((one) => one === 'mask') };
+  const mask =
+    corrections.maskColumn === null ? null : corrections.maskColumn ? byName(corrections.maskColumn) : withRole((one) => one === 'mask');
+  return { flux, uncertainty: uncertainty === flux ? null : uncertainty, kind, mask };
 }

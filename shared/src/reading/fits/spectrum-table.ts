@@ -1,16 +1,16 @@
-import { chooseColumns, type ColumnChoice, type ColumnInfo } from '../columns/choose.js';
+import { chooseColumns, columnFacts, statedKind, uncorrectedColumns, type ColumnChoice, type ColumnInfo } from '../columns/choose.js';
 import { settleAxis } from '../columns/axis.js';
-import { fluxKindOf } from '../columns/flux-kind.js';
-import { mediumOfUcd, notStated, stated } from '../columns/medium.js';
+import { fluxKindOf, settleFluxUnit } from '../columns/flux-kind.js';
+import { mediumOfUcd, stated } from '../columns/medium.js';
 import { mediumWord } from '../columns/words.js';
 import type { Medium } from '../../units/index.js';
 import type { ReadContext } from '../context.js';
-import type { RawSpectrum } from '../raw.js';
+import type { FileFacts, RawSpectrum } from '../raw.js';
 import { quoted, refuse } from '../refusal.js';
-import type { ReadingCorrections, ReadWarning, Stated } from '../types.js';
+import type { PlaceFact, ReadingCorrections, ReadWarning, Stated } from '../types.js';
 import { dataUnit, mediumOfCards, qualityBits, readFacts, saysNormalised, type Headers } from './facts.js';
 import type { Hdu } from './hdu.js';
-import { pickRows, sliceRows, type RowPick } from './rows.js';
+import { ordersOf, pickRows, sliceRows, type RowPick } from './rows.js';
 import type { ColumnValues, FitsTable } from './table.js';
 
 /** A table that can be read as a spectrum, before its values are converted. */
@@ -20,7 +20,8 @@ export interface TableCandidate {
   readonly choice: ColumnChoice;
   readonly axis: ColumnValues;
   readonly pick: RowPick;
-  readonly places: readonly string[];
+  /** the table and its rows, as far as each can be chosen */
+  readonly places: readonly PlaceFact[];
 }
 
 /** Looks whether a table holds a spectrum; refuses with the reason when it does not. */
@@ -32,19 +33,31 @@ export function tableCandidate(hdu: Hdu, table: FitsTable, row: number | null, c
     refuse(
       'no_spectrum',
       `No spectrum was found in the table of ${hdu.place}: none of its columns (${namesOf(table.infos)}) is known to be wavelength and flux. Choose the columns.`,
+      { columnFacts: columnFacts(table.infos, null) },
     );
   if (table.rows === 0) refuse('no_rows', `The table in ${hdu.place} is empty: it has no rows.`);
   const axis = table.read(choice.axis);
   if (axis.values.length < 2) refuse('too_few_points', `The table in ${hdu.place} has one row only; a spectrum needs at least two points.`);
   const pick = pickRows(axis, row, hdu.place);
-  const places = pick.alternatives.map((r) => `${hdu.place} row ${r + 1}`);
-  return { hdu, table, choice, axis, pick, places };
+  return { hdu, table, choice, axis, pick, places: placesOf(hdu, table, axis, pick) };
+}
+
+/** Rows that are spectra of their own stand for the table; rows that are orders of one spectrum can be had together or alone. */
+function placesOf(hdu: Hdu, table: FitsTable, axis: ColumnValues, pick: RowPick): PlaceFact[] {
+  const kind = hdu.kind === 'ascii_table' ? 'ascii_table' : 'binary_table';
+  const fact = (place: string, rows: number): PlaceFact => ({
+    ...{ place, name: hdu.header.text('EXTNAME') ?? '', kind, rows, isSpectrum: true, why: '' },
+  });
+  const whole = fact(hdu.place, axis.lengths === null ? table.rows : axis.values.length);
+  if (axis.lengths === null || pick.rows.length < 2) return [whole];
+  const each = pick.rows.map((row) => fact(`${hdu.place} row ${row + 1}`, axis.lengths![row]!));
+  return pick.repeated ? each : [whole, ...each];
 }
 
 const namesOf = (infos: readonly ColumnInfo[]): string => quoted(infos.map((info) => info.name).join(', '), 120);
 
 /** The columns of a candidate, in file order. */
-export function rawFromTable(candidate: TableCandidate, headers: Headers, otherPlaces: string[], context: ReadContext): RawSpectrum {
+export function rawFromTable(candidate: TableCandidate, headers: Headers, file: FileFacts, context: ReadContext): RawSpectrum {
   const { corrections, warnings } = context;
   const { hdu, table, choice, pick } = candidate;
   const read = (index: number) => sliceRows(table.read(index), pick);
@@ -74,8 +87,7 @@ export function rawFromTable(candidate: TableCandidate, headers: Headers, otherP
   const mask = beside(choice.mask);
   if (mask) keepBits(mask.values, qualityBits(headers));
   const ownUnit = fluxInfo.unit !== '';
-  const fluxUnit = ownUnit ? fluxInfo.unit : dataUnit(headers);
-  const fluxUnitWhere = ownUnit ? `TUNIT${choice.flux + 1}` : 'BUNIT';
+  const fluxUnit = settleFluxUnit(ownUnit ? fluxInfo.unit : dataUnit(headers), ownUnit ? `TUNIT${choice.flux + 1}` : 'BUNIT', corrections);
   if (pick.skipped > 0)
     warnings.push({
       code: 'rows_left_out',
@@ -86,23 +98,23 @@ export function rawFromTable(candidate: TableCandidate, headers: Headers, otherP
   return {
     format: hdu.kind === 'ascii_table' ? 'fits_ascii_table' : 'fits_table',
     place: pick.single === null ? hdu.place : `${hdu.place} row ${pick.single + 1}`,
-    otherPlaces,
-    columns: table.infos.filter((info) => info.numeric).map((info) => info.name),
+    ...file,
+    columnFacts: columnFacts(table.infos, choice),
+    uncorrectedColumns: uncorrectedColumns(table.infos, corrections),
     header: headers.flatMap((header) => [...header.cards]),
     axisName: axisInfo.name,
     axis,
     medium: settleMediumOf(axisInfo, choice.axis, headers, warnings),
     flux,
     fluxName: fluxInfo.name,
-    fluxUnit: fluxUnit === '' ? notStated('') : stated(fluxUnit, fluxUnitWhere),
-    fluxKind: fluxKindOf({ ...fluxInfo, unit: fluxUnit }, fluxUnitWhere, saysNormalised(headers)),
+    fluxUnit,
+    fluxKind: fluxKindOf({ ...fluxInfo, unit: fluxUnit.value }, fluxUnit.where, saysNormalised(headers)),
     uncertainty: uncertainty && {
       ...uncertainty,
-      kind: corrections.uncertaintyKind
-        ? { value: corrections.uncertaintyKind, how: 'corrected', where: 'correction' }
-        : stated(choice.uncertaintyKind, 'column name'),
+      kind: statedKind(choice.uncertaintyKind, { how: 'stated', where: 'column name' }, corrections),
     },
     mask,
+    orders: ordersOf(candidate.axis, pick),
     locate: (i) => ({ words: candidate.axis.lengths ? `element ${i + 1}` : `row ${i + 1}`, row: i + 1 }),
     facts: readFacts(headers, warnings),
     warnings,

@@ -2,6 +2,7 @@ import { C_M_PER_S, dopplerFactor, fromOpticalVelocity, fromRadioVelocity, type 
 import { parseAxisUnit } from '../columns/axis-unit.js';
 import { stated } from '../columns/medium.js';
 import { quoted, refuse } from '../refusal.js';
+import type { ReadingCorrections } from '../types.js';
 import type { Header } from './header.js';
 import type { AxisPlace, ImageAxis } from './axis-place.js';
 
@@ -15,8 +16,8 @@ const TO_NM: Record<string, (value: number, rest: VacuumNm) => number> = {
 };
 
 /** An axis of velocities, turned into vacuum nm in place by the rest wavelength in the header. */
-export function velocityAxis({ hdu, k }: AxisPlace, type: string, values: Float64Array): ImageAxis {
-  const rest = restWavelengthNm(hdu.header);
+export function velocityAxis({ hdu, k }: AxisPlace, type: string, values: Float64Array, corrections: ReadingCorrections): ImageAxis {
+  const rest = (corrections.restWavelengthNm as VacuumNm | undefined) ?? restWavelengthNm(hdu.header);
   if (rest === null)
     refuse(
       'no_rest_wavelength',

@@ -49,7 +49,7 @@ function codedAxis(place: AxisPlace, ctype: string, code: AxisCode, step: Step, 
   const type = ctype.slice(0, 4);
   const card = `CTYPE${k}`;
   const values = nonLinear(place, ctype, step);
-  if (code.quantity === 'velocity') return velocityAxis(place, type, values);
+  if (code.quantity === 'velocity') return velocityAxis(place, type, values, context.corrections);
   const cunit = hdu.header.text(`CUNIT${k}`) ?? '';
   const unit = cunit || defaultUnit(values, code, type);
   const where = cunit ? `CUNIT${k}` : `default unit of ${card} ${type}`;

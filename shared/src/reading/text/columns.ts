@@ -1,4 +1,4 @@
-import { chooseColumns, type ColumnChoice, type ColumnInfo } from '../columns/choose.js';
+import { chooseColumns, columnFacts, type ColumnChoice, type ColumnInfo } from '../columns/choose.js';
 import { axisQuantity, nameRole } from '../columns/words.js';
 import { quoted, refuse } from '../refusal.js';
 import type { ReadingCorrections, ReadWarning } from '../types.js';
@@ -20,6 +20,7 @@ export function chooseTextColumns(preamble: Preamble, corrections: ReadingCorrec
     refuse(
       'one_column',
       `The table has ${numeric.length === 1 ? 'one numeric column' : 'no numeric column'}; a spectrum needs two, wavelength and flux.`,
+      { columnFacts: columnFacts(infos, null) },
     );
   if (!preamble.headings) return { infos, choice: byPosition(preamble, infos, numeric, corrections, warnings), byPosition: true };
   const choice = chooseColumns(infos, corrections) ?? guessed(preamble, infos, numeric, corrections, warnings);
@@ -76,6 +77,7 @@ function guessed(
     refuse(
       'no_wavelength_column',
       `No column is known to be the wavelength (the columns are ${quoted(infos.map((info) => info.name).join(', '), 120)}). Choose it.`,
+      { columnFacts: columnFacts(infos, null) },
     );
   const others = numeric.filter((i) => infos[i]!.name !== wavelengthColumn);
   const fluxColumn =
@@ -88,7 +90,10 @@ function guessed(
 }
 
 function chosen(infos: readonly ColumnInfo[], corrections: ReadingCorrections): ColumnChoice {
-  return chooseColumns(infos, corrections) ?? refuse('no_flux_column', 'No column is known to be the flux. Choose it.');
+  return (
+    chooseColumns(infos, corrections) ??
+    refuse('no_flux_column', 'No column is known to be the flux. Choose it.', { columnFacts: columnFacts(infos, null) })
+  );
 }
 
 const valuesOf = ({ sample, dialect }: Preamble, column: number): number[] =>

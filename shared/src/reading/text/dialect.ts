@@ -1,9 +1,10 @@
 import Papa from 'papaparse';
+import type { ReadingCorrections } from '../types.js';
 import { parseCell } from './number.js';
 
 /** How the cells of a line are told apart; ' ' stands for any run of blanks and tabs. */
 export interface Dialect {
-  readonly delimiter: ',' | ';' | '\t' | '|' | ' ';
+  readonly delimiter: NonNullable<ReadingCorrections['delimiter']>;
   readonly decimalComma: boolean;
 }
 
@@ -25,8 +26,17 @@ function hasDecimalCommas(rows: readonly string[][]): boolean {
   return cells.some((cell) => DECIMAL_COMMA.test(cell)) && !cells.some((cell) => /\d\.\d/.test(cell) && !DECIMAL_COMMA.test(cell));
 }
 
-/** The dialect of a table from some of its lines, of which most are rows of numbers. */
-export function detectDialect(lines: readonly string[]): Dialect {
+/** The dialect of a table as a person says it is, or from some of its lines, of which most are rows of numbers. */
+export function detectDialect(lines: readonly string[], said: Pick<ReadingCorrections, 'delimiter' | 'decimalComma'>): Dialect {
+  if (said.delimiter === undefined) {
+    const found = detected(lines);
+    return { ...found, decimalComma: said.decimalComma ?? found.decimalComma };
+  }
+  const rows = lines.map((line) => splitLine(line, { delimiter: said.delimiter!, decimalComma: false }));
+  return { delimiter: said.delimiter, decimalComma: said.decimalComma ?? (said.delimiter !== ',' && hasDecimalCommas(rows)) };
+}
+
+function detected(lines: readonly string[]): Dialect {
   const bare = lines.map(withoutQuoted);
   const share = (character: string) => bare.filter((line) => line.includes(character)).length / Math.max(1, bare.length);
   for (const delimiter of [';', '\t', '|'] as const) {

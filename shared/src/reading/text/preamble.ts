@@ -2,6 +2,7 @@ import type { ReadLimits } from '../limits.js';
 import { axisQuantity } from '../columns/words.js';
 import { parseAxisUnit } from '../columns/axis-unit.js';
 import { refuse } from '../refusal.js';
+import type { ReadingCorrections } from '../types.js';
 import type { TextBytes } from './decode.js';
 import { detectDialect, isDataRow, splitLine, type Dialect } from './dialect.js';
 import { readEcsv } from './ecsv.js';
@@ -29,14 +30,17 @@ interface ContentLine {
   readonly text: string;
 }
 
-export function readPreamble(text: TextBytes, limits: ReadLimits): Preamble {
+export function readPreamble(text: TextBytes, limits: ReadLimits, corrections: ReadingCorrections): Preamble {
   const { remarks, content } = firstLines(text, limits);
   if (content.length === 0) refuse('no_rows', 'The file has no data: it holds nothing but remarks or blank lines, no rows of numbers.');
   const ecsv = readEcsv(remarks);
   // headings may be written in another way than the rows, so the later lines decide
   const dialect = ecsv
     ? { delimiter: ecsv.delimiter, decimalComma: false }
-    : detectDialect(content.slice(Math.floor(content.length / 3)).map((line) => line.text));
+    : detectDialect(
+        content.slice(Math.floor(content.length / 3)).map((line) => line.text),
+        corrections,
+      );
   const rows = content.map((line) => splitLine(line.text, dialect));
   const widest = rows.reduce((most, row) => Math.max(most, row.length), 0);
   if (widest > limits.textColumns)

@@ -1,7 +1,8 @@
 import { settleAxis } from '../columns/axis.js';
 import { mediumWord, words } from '../columns/words.js';
-import { notStated, stated } from '../columns/medium.js';
-import { fluxKindOf } from '../columns/flux-kind.js';
+import { columnFacts, statedKind, uncorrectedColumns } from '../columns/choose.js';
+import { fluxKindOf, settleFluxUnit } from '../columns/flux-kind.js';
+import { stated } from '../columns/medium.js';
 import type { ReadContext } from '../context.js';
 import type { RawSpectrum } from '../raw.js';
 import { chooseTextColumns } from './columns.js';
@@ -14,7 +15,7 @@ import { readRows } from './rows.js';
 export function readText(context: ReadContext): RawSpectrum {
   const { bytes, corrections, limits, warnings } = context;
   const text = decodeText(bytes, warnings);
-  const preamble = readPreamble(text, limits);
+  const preamble = readPreamble(text, limits, corrections);
   const { infos, choice, byPosition } = chooseTextColumns(preamble, corrections, warnings);
   const wanted = [choice.axis, choice.flux, ...[choice.uncertainty, choice.mask].filter((index) => index !== null)];
   const nameOf = (index: number) => infos[index]!.name;
@@ -26,35 +27,37 @@ export function readText(context: ReadContext): RawSpectrum {
   const where = axisInfo.unit ? 'column name' : remarks.axisUnitWhere;
   const axis = settleAxis(rows.columns[0]!, { name: axisInfo.name, quantity: choice.quantity, unit, where }, context);
   const word = mediumWord(axisInfo.name);
-  const fluxUnit = fluxInfo.unit || remarks.fluxUnit;
+  const place = `line ${preamble.firstLine} onwards`;
+  const fluxUnit = settleFluxUnit(fluxInfo.unit || remarks.fluxUnit, fluxInfo.unit ? 'column name' : 'remark', corrections);
   return {
     format: 'text',
-    place: `line ${preamble.firstLine} onwards`,
-    otherPlaces: [],
-    columns: infos.filter((info) => info.numeric).map((info) => info.name),
+    place,
+    places: [{ place, name: '', kind: 'text', rows: rows.lines.length, isSpectrum: true, why: '' }],
+    checksums: [],
+    columnFacts: columnFacts(infos, choice),
+    uncorrectedColumns: uncorrectedColumns(infos, corrections),
     header: [...preamble.remarks, ...rows.remarks],
     axisName: axisInfo.name,
     axis,
     medium: word ? stated(word, 'column name') : remarks.medium,
     flux: rows.columns[1]!,
     fluxName: fluxInfo.name,
-    fluxUnit: fluxUnit ? stated(fluxUnit, fluxInfo.unit ? 'column name' : 'remark') : notStated(''),
-    fluxKind: fluxKindOf({ name: bareName(fluxInfo.name), unit: fluxUnit, ucd: '' }, fluxInfo.unit ? 'column name' : 'remark', false),
+    fluxUnit,
+    fluxKind: fluxKindOf({ name: bareName(fluxInfo.name), unit: fluxUnit.value, ucd: '' }, fluxUnit.where, false),
     uncertainty:
       choice.uncertainty === null
         ? null
         : {
             values: rows.columns[2]!,
             name: nameOf(choice.uncertainty),
-            kind: corrections.uncertaintyKind
-              ? { value: corrections.uncertaintyKind, how: 'corrected', where: 'correction' }
-              : {
-                  value: choice.uncertaintyKind,
-                  how: byPosition ? 'assumed' : 'stated',
-                  where: byPosition ? 'order of the columns' : 'column name',
-                },
+            kind: statedKind(
+              choice.uncertaintyKind,
+              byPosition ? { how: 'assumed', where: 'order of the columns' } : { how: 'stated', where: 'column name' },
+              corrections,
+            ),
           },
     mask: choice.mask === null ? null : { values: rows.columns.at(-1)!, name: nameOf(choice.mask) },
+    orders: null,
     locate: (i) => ({ words: `line ${rows.lines[i]!}`, row: rows.lines[i]! }),
     facts: remarks.facts,
     warnings,

@@ -1,7 +1,9 @@
 import { mediumWord } from '../columns/words.js';
 import { parseAxisUnit } from '../columns/axis-unit.js';
 import { notStated, parseFrame, stated } from '../columns/medium.js';
-import { isoFromFitsDate } from '../dates.js';
+import { fluxCalibrationOf, plainKey, wavelengthRmsOf, type FactSource } from '../facts/source.js';
+import { whenOf } from '../facts/when.js';
+import { pointingOf, siteOf } from '../facts/where.js';
 import type { Facts } from '../raw.js';
 import type { Medium } from '../../units/index.js';
 import type { Stated } from '../types.js';
@@ -30,8 +32,7 @@ function pairsOf(remarks: readonly string[]): Pair[] {
   return remarks.flatMap((remark) => {
     const match = /^\s*([\p{L}][\p{L}\p{N} _.-]{0,40}?)\s*[:=]\s*(\S.*)$/u.exec(remarkText(remark).slice(0, 500));
     if (!match) return [];
-    const key = match[1]!.toLowerCase().replace(/[_.\s-]+/g, ' ');
-    return [{ key, value: match[2]!.trim().replace(/^(['"])(.*)\1$/, '$2'), where: `remark "${match[1]!}"` }];
+    return [{ key: plainKey(match[1]!), value: match[2]!.trim().replace(/^(['"])(.*)\1$/, '$2'), where: `remark "${match[1]!}"` }];
   });
 }
 
@@ -42,18 +43,20 @@ export function readRemarks(remarks: readonly string[]): Remarks {
   const frame = find('frame', 'velocity frame', 'specsys', 'rest frame', 'reference frame', 'spectral frame');
   const parsedFrame = frame && parseFrame(frame.value);
   const power = find('resolving power', 'spec rp', 'spec res', 'resolution', 'r');
-  const date = find('date obs', 'date', 'observed', 'observed at', 'observation date', 'date time');
-  const iso = date && isoFromFitsDate(date.value);
+  const source = sourceOf(pairs);
   const unit = axisUnitOf(remarks, pairs);
   return {
     facts: {
       objectName: object ? stated(object.value, object.where) : notStated(null),
       frame: parsedFrame ? stated(parsedFrame, frame.where) : notStated('unknown'),
       resolvingPower: resolvingPowerOf(power),
-      observedAt: iso ? stated(iso, date.where) : notStated(null),
+      fluxCalibration: fluxCalibrationOf(source),
+      wavelengthRmsNm: wavelengthRmsOf(source),
+      ...whenOf(source),
+      site: siteOf(source),
+      pointing: pointingOf(source),
       instrument: find('instrument', 'instrume', 'spectrograph')?.value ?? null,
       telescope: find('telescope', 'telescop')?.value ?? null,
-      ...positionOf(find('ra', 'ra deg')?.value, find('dec', 'dec deg')?.value),
     },
     medium: mediumOf(remarks, pairs),
     axisUnit: unit?.value ?? '',
@@ -68,10 +71,27 @@ function resolvingPowerOf(pair: Pair | null): Stated<number | null> {
   return pair && value >= 50 ? stated(value, pair.where) : notStated(null);
 }
 
-function positionOf(ra: string | undefined, dec: string | undefined): { raDeg: number | null; decDeg: number | null } {
-  const [raDeg, decDeg] = [Number(ra ?? NaN), Number(dec ?? NaN)];
-  if (!(raDeg >= 0 && raDeg < 360 && Math.abs(decDeg) <= 90)) return { raDeg: null, decDeg: null };
-  return { raDeg, decDeg };
+/** Keys of remarks that mean a card of FITS under another name. */
+const ALSO: Partial<Record<string, string>> = { 'date obs': 'date', longitud: 'lon', latitude: 'lat' };
+
+/** The remarks as a place to look facts up. */
+function sourceOf(pairs: readonly Pair[]): FactSource {
+  const find = (keywords: readonly string[]) => {
+    for (const keyword of keywords) {
+      const key = plainKey(keyword);
+      const pair = pairs.find((one) => one.key === key) ?? pairs.find((one) => one.key === ALSO[key]);
+      if (pair) return pair;
+    }
+    return null;
+  };
+  return {
+    text: (...keywords) => find(keywords),
+    number: (...keywords) => {
+      const pair = find(keywords);
+      const match = /^([+-]?\d+(?:\.\d*)?(?:e[+-]?\d+)?)\s*(?:m|deg|degrees|°|d|days?)?$/i.exec(pair?.value ?? '');
+      return pair && match ? { value: Number(match[1]), where: pair.where } : null;
+    },
+  };
 }
 
 const MEDIUM_KEYS = [
