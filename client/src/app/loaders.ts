@@ -3,6 +3,7 @@ import { redirect, type LoaderFunctionArgs } from 'react-router-dom';
 import { isApiError } from '../lib/api-error.js';
 import { pagePaths } from '../lib/paths.js';
 import { accountQueries } from '../lib/queries/account.js';
+import { fileQueries, recipeQueries } from '../lib/queries/files.js';
 import { programmeQueries, targetQueries } from '../lib/queries/programmes.js';
 import { spectrumQueries } from '../lib/queries/spectra.js';
 
@@ -28,6 +29,34 @@ export function makeLoaders(client: QueryClient) {
     programme: async (args: LoaderFunctionArgs) => {
       const p = param(args, 'programmeId');
       await Promise.all([client.ensureQueryData(programmeQueries.detail(p)), client.ensureQueryData(targetQueries.list(p))]);
+      return null;
+    },
+    upload: async (args: LoaderFunctionArgs) => {
+      const p = param(args, 'programmeId');
+      await Promise.all([
+        client.ensureQueryData(programmeQueries.detail(p)),
+        client.ensureQueryData(targetQueries.list(p)),
+        client.ensureQueryData(recipeQueries.list(p)),
+      ]);
+      return null;
+    },
+    recipes: async (args: LoaderFunctionArgs) => {
+      const p = param(args, 'programmeId');
+      await Promise.all([
+        client.ensureQueryData(programmeQueries.detail(p)),
+        client.ensureQueryData(recipeQueries.list(p)),
+        client.ensureQueryData(fileQueries.removed(p)),
+      ]);
+      return null;
+    },
+    file: async (args: LoaderFunctionArgs) => {
+      const [p, s] = [param(args, 'programmeId'), param(args, 'spectrumId')];
+      await Promise.all([
+        client.ensureQueryData(programmeQueries.detail(p)),
+        client.ensureQueryData(targetQueries.list(p)),
+        client.ensureQueryData(spectrumQueries.detail(p, s)),
+        client.ensureQueryData(fileQueries.readings(p, s)),
+      ]);
       return null;
     },
     target: async (args: LoaderFunctionArgs) => {

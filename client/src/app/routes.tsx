@@ -21,7 +21,7 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
     },
     {
       path: 'programmes/:programmeId/add',
-      loader: loaders.programme,
+      loader: loaders.upload,
       lazy: async () => ({ Component: (await import('../features/upload/UploadPage.js')).UploadPage }),
     },
     {
@@ -37,6 +37,16 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
     {
       path: 'probabilities',
       lazy: async () => ({ Component: (await import('../features/probabilities/ProbabilitiesPage.js')).ProbabilitiesPage }),
+    },
+    {
+      path: 'programmes/:programmeId/spectra/:spectrumId/file',
+      loader: loaders.file,
+      lazy: async () => ({ Component: (await import('../features/file/FilePage.js')).FilePage }),
+    },
+    {
+      path: 'programmes/:programmeId/recipes',
+      loader: loaders.recipes,
+      lazy: async () => ({ Component: (await import('../features/recipes/RecipesPage.js')).RecipesPage }),
     },
     { path: '*', element: <NotFoundPage /> },
   ];

@@ -7,6 +7,10 @@ export const pagePaths = {
   target: (p: string, t: string) => `/programmes/${p}/targets/${t}`,
   probabilities: '/probabilities',
   spectrum: (p: string, s: string) => `/programmes/${p}/spectra/${s}`,
+  /** the file of a spectrum and how it was read */
+  file: (p: string, s: string) => `/programmes/${p}/spectra/${s}/file`,
+  /** reading recipes and removed spectra */
+  recipes: (p: string) => `/programmes/${p}/recipes`,
 } as const;
 
 /** Where to go after signing in: a page of ours or the start, never an address elsewhere. */

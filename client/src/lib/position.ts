@@ -53,3 +53,22 @@ export function parseCoordinate(text: string, unit: 'hours' | 'degrees'): number
 
 /** Degrees as typed into a form, without losing digits. */
 export const degreesField = (deg: number | null): string => (deg === null ? '' : fixed(deg, 6).replace(/\.?0+$/, ''));
+
+interface Direction {
+  readonly raDeg: number;
+  readonly decDeg: number;
+}
+
+/** Angle between two directions on the sky, arcsec; by the haversine, which keeps small angles exact. */
+export function separationArcsec(a: Direction, b: Direction): number {
+  const rad = Math.PI / 180;
+  const half = (deg: number) => Math.sin((deg * rad) / 2) ** 2;
+  const h = half(b.decDeg - a.decDeg) + Math.cos(a.decDeg * rad) * Math.cos(b.decDeg * rad) * half(b.raDeg - a.raDeg);
+  return ((2 * Math.asin(Math.min(1, Math.sqrt(h)))) / rad) * 3600;
+}
+
+/** '3.2″', '1.4′', '12°'. */
+export function separationWords(arcsec: number): string {
+  if (arcsec < 60) return `${fixed(arcsec, 1)}″`;
+  return arcsec < 3600 ? `${fixed(arcsec / 60, 1)}′` : `${fixed(arcsec / 3600, arcsec < 36_000 ? 1 : 0)}°`;
+}

@@ -10,9 +10,13 @@ export interface ReadRequest {
 }
 
 /** What a page shows of a file; the columns themselves stay in the worker. */
-export type FileRead =
+export type FileRead = (
   | { readonly ok: true; readonly reading: Reading; readonly face: Face; readonly hint: KnownLineHint | null }
-  | { readonly ok: false; readonly problem: ReadProblem; readonly lines: readonly OffendingLine[] };
+  | { readonly ok: false; readonly problem: ReadProblem; readonly lines: readonly OffendingLine[] }
+) & {
+  /** SHA-256 of the bytes in hexadecimal; null or absent where it is not known */
+  readonly sha256?: string | null;
+};
 
 export interface ReadReply {
   readonly id: number;

@@ -1,3 +1,4 @@
+import { signatureOf, type ReadingRecipe } from '@foreveil/shared';
 import { screen, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { beforeEach, describe, expect, it, vi } from 'vitest';
@@ -5,11 +6,14 @@ import { ApiError } from '../../lib/api-error.js';
 import { show } from '../../test/show.js';
 import { aFace, aReading, aSpectrumDetail, aTargetSummary } from '../../test/things.js';
 import type { FileRead } from '../../workers/protocol.js';
-import { NO_CORRECTIONS } from './entries.js';
+import { freshEntry, NO_CORRECTIONS } from './entries.js';
 import type { Entry } from './entry.js';
 import { FileBand } from './FileBand.js';
 
-const acts = { onCorrect: vi.fn(), onRetarget: vi.fn(), onRelabel: vi.fn(), onSend: vi.fn(), onCancel: vi.fn(), onLeaveOut: vi.fn() };
+const acts = {
+  ...{ onCorrectSimilar: vi.fn(), onRecipe: vi.fn() },
+  ...{ onCorrect: vi.fn(), onRetarget: vi.fn(), onRelabel: vi.fn(), onSend: vi.fn(), onCancel: vi.fn(), onLeaveOut: vi.fn() },
+};
 beforeEach(() => Object.values(acts).forEach((act) => act.mockReset()));
 
 const good: FileRead = { ok: true, reading: aReading(), face: aFace(), hint: null };
@@ -19,13 +23,13 @@ const noMedium: FileRead = {
   hint: { name: 'Hα', restNm: 656.461, velocityKmPerS: 38.5 },
 };
 
-function band(parts: Partial<Entry> = {}) {
+function band(parts: Partial<Entry> = {}, { recipes = [], similar = 0 }: { recipes?: ReadingRecipe[]; similar?: number } = {}) {
   const entry: Entry = {
-    ...{ id: 1, file: new File(['x'.repeat(1_100_000)], 'heron4a.fits'), label: 'heron4a', corrections: NO_CORRECTIONS },
-    ...{ target: { name: 'Heron 4 A', kind: 'star', why: 'object' }, read: good, rereading: false, sending: { at: 'not_sent' } },
+    ...freshEntry(new File(['x'.repeat(1_100_000)], 'heron4a.fits'), 1),
+    ...{ target: { name: 'Heron 4 A', kind: 'star', why: 'object' }, read: good },
     ...parts,
   };
-  show(<FileBand programmeId="p" targets={[aTargetSummary()]} entry={entry} {...acts} />);
+  show(<FileBand programmeId="p" targets={[aTargetSummary()]} recipes={recipes} similar={similar} entry={entry} {...acts} />);
   return screen.getByRole('region', { name: 'heron4a.fits' });
 }
 
@@ -109,5 +113,99 @@ describe('the band of a file', () => {
     expect(screen.getByRole('alert')).toHaveTextContent('The server cannot be reached.');
     await userEvent.click(screen.getByRole('button', { name: 'Try again' }));
     expect(acts.onSend).toHaveBeenCalled();
+  });
+
+  it('offers the corrections that answer a refusal, in its place', async () => {
+    const read: FileRead = {
+      ok: false,
+      problem: { code: 'unknown_axis_unit', sentence: 'Say which unit it is.', answers: ['axisUnit'] },
+      lines: [],
+    };
+    band({ read });
+    await userEvent.selectOptions(screen.getByRole('combobox', { name: 'Unit of the axis' }), 'Å');
+    expect(acts.onCorrect).toHaveBeenCalledWith({ axisUnit: 'angstrom' });
+  });
+
+  it('puts its corrections on similar files, and keeps them as a recipe', async () => {
+    const corrected = { corrections: { medium: 'air' }, signature: signatureOf(aReading()) } as const;
+    band(corrected, { similar: 2 });
+    await userEvent.click(screen.getByRole('button', { name: 'Apply to all 2 similar files' }));
+    expect(acts.onCorrectSimilar).toHaveBeenCalled();
+    await userEvent.click(screen.getByRole('button', { name: 'Save as recipe' }));
+    const dialog = await screen.findByRole('dialog', { name: 'Save as a reading recipe' });
+    expect(dialog).toHaveTextContent('For FITS tables with the columns WAVE, FLUX, ERR: air.');
+    expect(within(dialog).getByRole('button', { name: 'Save it' })).toBeDisabled();
+  });
+
+  it('keeps to itself what belongs to one exposure', () => {
+    const time = { iso: '2031-03-04', scale: 'utc', marks: 'start' } as const;
+    band({ corrections: { time }, signature: signatureOf(aReading()) }, { similar: 2 });
+    expect(screen.queryByRole('button', { name: /similar/ })).toBeNull();
+    expect(screen.queryByRole('button', { name: 'Save as recipe' })).toBeNull();
+  });
+
+  it('says which recipe was applied, takes it back, and offers the others', async () => {
+    const signature = signatureOf(aReading());
+    const recipe = (name: string): ReadingRecipe => ({
+      ...{ id: name, name, signature, corrections: { medium: 'air' }, createdBy: 'Ana Weir', createdAt: '2031-03-04T00:00:00Z' },
+      ...{ changedBy: 'Ana Weir', changedAt: '2031-03-04T00:00:00Z', version: 1 },
+    });
+    const applied = { corrections: { medium: 'air' }, recipe: { name: 'Plates', before: NO_CORRECTIONS }, signature } as const;
+    band(applied, { recipes: [recipe('Plates'), recipe('Films')] });
+    expect(screen.getByText(/Recipe/)).toHaveTextContent('Recipe Plates applied: air.');
+    await userEvent.click(screen.getByRole('button', { name: 'Undo' }));
+    expect(acts.onCorrect).toHaveBeenCalledWith(NO_CORRECTIONS);
+    await userEvent.click(screen.getByRole('button', { name: 'Films instead' }));
+    expect(acts.onRecipe).toHaveBeenCalledWith(recipe('Films'));
+  });
+
+  it('offers the target that lies where the file points, with how far away it lies, and says nothing silently', async () => {
+    const near = aTargetSummary({ raDeg: 318.53, decDeg: 48.2142 });
+    const pointing = { value: { raDeg: near.raDeg!, decDeg: near.decDeg! + 3 / 3600 }, how: 'stated', where: 'RA, DEC' } as const;
+    band({ read: { ...good, reading: aReading({ pointing }) }, target: { name: 'HV 12', kind: 'star', why: 'object' } });
+    // aTargetSummary lies at 318.5304583 +48.2143333
+    await userEvent.click(screen.getByRole('button', { name: /^Use Heron 4 A, \d\.\d″ away$/ }));
+    expect(acts.onRetarget).toHaveBeenCalledWith({ name: 'Heron 4 A', kind: 'star', why: 'position' });
+  });
+
+  it('is not sent when the programme has it, or when it stands on the page twice', () => {
+    const known = { sha256: 'ab', spectrumId: 's-9', label: 'night 1', targetId: 't', targetName: 'Tern' };
+    band({ known });
+    expect(screen.getByRole('link', { name: 'night 1' })).toHaveAttribute('href', '/programmes/p/spectra/s-9');
+    expect(screen.queryByRole('button', { name: 'Add this one' })).toBeNull();
+  });
+
+  it('shows what the file said beside a correction', () => {
+    const said = { value: 'vacuum', how: 'stated', where: 'TUNIT1' } as const;
+    const medium = { value: 'air', how: 'corrected', where: 'correction', said } as const;
+    expect(band({ read: { ...good, reading: aReading({ medium }) } })).toHaveTextContent('said by you; the file: vacuum');
+  });
+
+  it('takes a site when all three numbers are there', async () => {
+    band();
+    await userEvent.click(screen.getByText(/^Exposure, site and pointing/));
+    await userEvent.type(screen.getByRole('textbox', { name: 'Latitude, degrees north' }), '-24.6{Enter}');
+    await userEvent.type(screen.getByRole('textbox', { name: 'Longitude, degrees east' }), '-70.4{Enter}');
+    expect(acts.onCorrect).not.toHaveBeenCalled();
+    await userEvent.type(screen.getByRole('textbox', { name: 'Height, m' }), '2635{Enter}');
+    expect(acts.onCorrect).toHaveBeenCalledWith({ site: { latitudeDeg: -24.6, longitudeDegEast: -70.4, heightM: 2635 } });
+  });
+
+  it('takes a time as people write it', async () => {
+    band();
+    const field = screen.getByRole('textbox', { name: 'Observed' });
+    await userEvent.type(field, 'last night{Enter}');
+    expect(acts.onCorrect).not.toHaveBeenCalled();
+    await userEvent.clear(field);
+    await userEvent.type(field, '2031-03-04 05:06{Enter}');
+    expect(acts.onCorrect).toHaveBeenCalledWith({ time: { iso: '2031-03-04T05:06', scale: 'utc', marks: 'start' } });
+  });
+
+  it('finds a card of the header', async () => {
+    band({ read: { ...good, reading: aReading({ header: ['SIMPLE  =   T', "OBJECT  = 'Heron'", "OBSERVER= 'Weir'"] }) } });
+    await userEvent.click(screen.getByText('Header, 3 lines'));
+    await userEvent.type(screen.getByRole('textbox', { name: 'Search the header' }), 'obs');
+    expect(screen.getByText('1 of 3 lines')).toBeInTheDocument();
+    expect(screen.getByLabelText('Header of the file')).toHaveTextContent("3OBSERVER= 'Weir'");
   });
 });

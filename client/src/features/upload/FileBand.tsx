@@ -1,18 +1,22 @@
-import type { Medium, ReadingCorrections, TargetSummary } from '@foreveil/shared';
+import type { Medium, ReadingCorrections, ReadingRecipe, TargetSummary } from '@foreveil/shared';
+import { AnswerProblem } from '../../components/reading/AnswerProblem.js';
+import { FileFace } from '../../components/reading/FileFace.js';
+import reading from '../../components/reading/reading.module.css';
+import { FRAME_WORD, MEDIUM_WORD, withCorrection } from '../../components/reading/words.js';
 import { count, fileSize } from '../../lib/number.js';
 import type { OffendingLine } from '../../workers/offending-lines.js';
 import { NO_CORRECTIONS } from './entries.js';
-import { verdict, type Entry, type TargetChoice } from './entry.js';
-import { FileFace } from './FileFace.js';
+import { verdict, type Entry, type TargetChoice, type Verdict } from './entry.js';
 import { ReadingFacts } from './ReadingFacts.js';
 import classes from './upload.module.css';
 import { VerdictColumn } from './VerdictColumn.js';
-import { FRAME_WORD, MEDIUM_WORD, withCorrection } from './words.js';
 
 export interface BandActs {
   onCorrect: (corrections: ReadingCorrections) => void;
   onRetarget: (target: TargetChoice) => void;
   onRelabel: (label: string) => void;
+  onCorrectSimilar: () => void;
+  onRecipe: (recipe: ReadingRecipe) => void;
   onSend: () => void;
   onCancel: () => void;
   onLeaveOut: () => void;
@@ -21,14 +25,17 @@ export interface BandActs {
 interface Props extends BandActs {
   programmeId: string;
   targets: readonly TargetSummary[];
+  recipes: readonly ReadingRecipe[];
+  /** files of its kind that can still be corrected */
+  similar: number;
   entry: Entry;
 }
 
 /** One file: what it looks like, what was read and how that is known, what to do. Once sent, nothing of it can be changed here. */
-export function FileBand({ programmeId, targets, entry, ...acts }: Props) {
+export function FileBand({ programmeId, targets, recipes, similar, entry, ...acts }: Props) {
   const { file, read, corrections } = entry;
   const state = verdict(entry);
-  const done = state === 'added' || state === 'duplicate';
+  const done = DONE.has(state);
   return (
     <section className={classes.file} aria-label={file.name} data-state={state} aria-busy={state === 'reading' || undefined}>
       <div className={classes.face}>
@@ -41,7 +48,7 @@ export function FileBand({ programmeId, targets, entry, ...acts }: Props) {
           <NoCurve words={read ? 'no curve: it cannot be read' : 'reading'} />
         )}
       </div>
-      <BandMiddle targets={targets} entry={entry} {...acts} />
+      <BandMiddle programmeId={programmeId} targets={targets} recipes={recipes} similar={similar} entry={entry} {...acts} />
       <VerdictColumn
         programmeId={programmeId}
         entry={entry}
@@ -54,12 +61,31 @@ export function FileBand({ programmeId, targets, entry, ...acts }: Props) {
 }
 
 /** The reading with its controls; what it was sent as, once it is sent; the lines at fault of a file that cannot be read. */
-function BandMiddle({ targets, entry, ...acts }: Omit<Props, 'programmeId'>) {
-  const { file, read, target, label } = entry;
+const DONE = new Set<Verdict>(['added', 'duplicate', 'known', 'twin']);
+
+function BandMiddle({ programmeId, targets, recipes, similar, entry, ...acts }: Props) {
+  const { file, read, target, label, corrections } = entry;
   const state = verdict(entry);
-  if (!read?.ok) return <Offending lines={read?.lines ?? []} />;
+  if (!read?.ok) {
+    return (
+      <div>
+        {read?.problem.answers?.length ? (
+          <div className={reading.read}>
+            <dl>
+              <AnswerProblem
+                problem={read.problem}
+                corrections={corrections}
+                correct={(field, value) => acts.onCorrect(withCorrection(corrections, field, value))}
+              />
+            </dl>
+          </div>
+        ) : null}
+        <Offending lines={read?.lines ?? []} />
+      </div>
+    );
+  }
   const { medium, frame } = read.reading;
-  if (state === 'added' || state === 'duplicate') {
+  if (DONE.has(state)) {
     return (
       <div className={classes.sent}>
         <b>{state === 'added' ? `${target.name}, ${label}` : file.name}</b>
@@ -72,7 +98,7 @@ function BandMiddle({ targets, entry, ...acts }: Omit<Props, 'programmeId'>) {
   return (
     <fieldset disabled={state === 'sending'} className={classes.fields}>
       <legend className={classes.unseen}>What was read of {file.name}</legend>
-      <ReadingFacts entry={entry} reading={read.reading} targets={targets} {...acts} />
+      <ReadingFacts {...{ programmeId, entry, targets, recipes, similar }} reading={read.reading} {...acts} />
     </fieldset>
   );
 }

@@ -14,11 +14,13 @@ interface Props {
 export function SendBar({ entries, programmeName, onSend, onCancel }: Props) {
   const ready = entries.filter((entry) => verdict(entry) === 'ready');
   const busy = entries.filter((entry) => verdict(entry) === 'sending');
+  const refused = entries.filter((entry) => verdict(entry) === 'refused');
   return (
     <div className={classes.send}>
       <span role="status">{standing(entries)}</span>
       <span className={classes.into}>Into {programmeName}</span>
       {busy.length > 0 && <Button onClick={() => onCancel(busy)}>Cancel {counted(busy.length, 'upload')}</Button>}
+      {refused.length > 1 && <Button onClick={() => onSend(refused)}>Try {counted(refused.length, 'file')} again</Button>}
       <Button variant="filled" disabled={!ready.length} onClick={() => onSend(ready)}>
         {ready.length ? `Add ${counted(ready.length, 'spectrum', 'spectra')}` : 'Nothing to add'}
       </Button>

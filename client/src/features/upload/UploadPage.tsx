@@ -3,15 +3,16 @@ import { Dropzone } from '@mantine/dropzone';
 import { roleAllows } from '@foreveil/shared';
 import { IconDownload } from '@tabler/icons-react';
 import { useSuspenseQueries } from '@tanstack/react-query';
-import { useEffect, useRef } from 'react';
+import { useEffect, useRef, type Ref } from 'react';
 import { Link, useParams, useSearchParams } from 'react-router-dom';
 import { PageHead, type Fact } from '../../components/PageHead.js';
 import { roleReason } from '../../components/RoleButton.js';
 import { takeHandedOver } from '../../lib/handed-over.js';
 import { count, counted } from '../../lib/number.js';
 import { pagePaths } from '../../lib/paths.js';
+import { recipeQueries } from '../../lib/queries/files.js';
 import { programmeQueries, targetQueries } from '../../lib/queries/programmes.js';
-import { verdict, type Entry, type Verdict } from './entry.js';
+import { similarCount, verdict, type Entry, type Verdict } from './entry.js';
 import { FileBand } from './FileBand.js';
 import { SendBar } from './SendBar.js';
 import classes from './upload.module.css';
@@ -21,11 +22,11 @@ import { useUploads } from './useUploads.js';
 export function UploadPage() {
   const { programmeId = '' } = useParams();
   const [search] = useSearchParams();
-  const [{ data: programme }, { data: targets }] = useSuspenseQueries({
-    queries: [programmeQueries.detail(programmeId), targetQueries.list(programmeId)],
+  const [{ data: programme }, { data: targets }, { data: recipes }] = useSuspenseQueries({
+    queries: [programmeQueries.detail(programmeId), targetQueries.list(programmeId), recipeQueries.list(programmeId)],
   });
   const page = targets.find(({ id }) => id === search.get('target'));
-  const uploads = useUploads({ programmeId, targets, page });
+  const uploads = useUploads({ programmeId, targets, recipes, page });
   const { entries, add } = uploads;
   useLeaveGuard(entries);
   useFilesHandedOver(add);
@@ -50,6 +51,11 @@ export function UploadPage() {
             : 'Correct what was read wrongly; the original bytes are kept as they are'
         }
         facts={standingFacts(entries)}
+        actions={
+          <Button component={Link} to={pagePaths.recipes(programmeId)}>
+            Recipes{recipes.length ? `, ${count(recipes.length)}` : ''}
+          </Button>
+        }
       />
       <FileDrop empty={!entries.length} onFiles={add} />
       {entries.map((entry) => (
@@ -57,9 +63,13 @@ export function UploadPage() {
           key={entry.id}
           programmeId={programmeId}
           targets={targets}
+          recipes={recipes}
+          similar={similarCount(entry, entries)}
           entry={entry}
           onCorrect={(corrections) => uploads.correct(entry, corrections)}
           onRetarget={(target) => uploads.retarget(entry, target)}
+          onCorrectSimilar={() => void uploads.correctSimilar(entry)}
+          onRecipe={(recipe) => uploads.applyRecipe(entry, recipe)}
           onRelabel={(label) => uploads.relabel(entry, label)}
           onSend={() => uploads.send(entry)}
           onCancel={() => uploads.cancel(entry)}
@@ -84,6 +94,8 @@ const FACT_WORDS: Partial<Record<Verdict, string>> = {
   unreadable: 'Cannot be read',
   added: 'Added',
   duplicate: 'Already here',
+  known: 'Here before',
+  twin: 'Twice here',
   refused: 'Not added',
 };
 
@@ -116,7 +128,9 @@ const TAKES = 'FITS tables and images, CSV, plain text, gzip; to 200 MB each.';
 
 function FileDrop({ empty, onFiles }: { empty: boolean; onFiles: (files: File[]) => void }) {
   const choose = useRef<() => void>(null);
+  const folder = useRef<HTMLInputElement>(null);
   const open = () => choose.current?.();
+  const openFolder = () => folder.current?.click();
   return (
     <div className={classes.dropFrame}>
       <Dropzone
@@ -131,11 +145,14 @@ function FileDrop({ empty, onFiles }: { empty: boolean; onFiles: (files: File[])
       >
         {empty ? (
           <div className={classes.firstDrop}>
-            <p>Drop reduced spectra here, one or many. {TAKES}</p>
+            <p>Drop reduced spectra here, one or many, or whole folders. {TAKES}</p>
             <p>Each is read on this computer first: you see the columns, the medium and the frame before anything is sent.</p>
-            <Button variant="filled" onClick={open}>
-              Choose files
-            </Button>
+            <div className={classes.firstActs}>
+              <Button variant="filled" onClick={open}>
+                Choose files
+              </Button>
+              <Button onClick={openFolder}>Choose a folder</Button>
+            </div>
           </div>
         ) : (
           <div className={classes.dropText}>
@@ -144,12 +161,35 @@ function FileDrop({ empty, onFiles }: { empty: boolean; onFiles: (files: File[])
               Drop more files here, or{' '}
               <button type="button" className={classes.choose} onClick={open}>
                 choose
+              </button>{' '}
+              files or{' '}
+              <button type="button" className={classes.choose} onClick={openFolder}>
+                a folder
               </button>
               . {TAKES}
             </span>
           </div>
         )}
       </Dropzone>
+      <FolderInput ref={folder} onFiles={onFiles} />
     </div>
+  );
+}
+
+/** A browser's choice of a folder: all its files, those of the folders in it too. */
+function FolderInput({ ref, onFiles }: { ref: Ref<HTMLInputElement>; onFiles: (files: File[]) => void }) {
+  return (
+    <input
+      ref={ref}
+      type="file"
+      hidden
+      multiple
+      aria-label="Folder of spectrum files"
+      {...{ webkitdirectory: '' }}
+      onChange={(event) => {
+        onFiles([...(event.currentTarget.files ?? [])]);
+        event.currentTarget.value = '';
+      }}
+    />
   );
 }

@@ -4,7 +4,7 @@ import { IconAlertTriangle, IconBan, IconCircleCheck, IconCopyCheck, IconHelpCir
 import type { ReactNode } from 'react';
 import { Link } from 'react-router-dom';
 import { ErrorNote } from '../../components/ErrorNote.js';
-import { counted, fixed, percent, signed } from '../../lib/number.js';
+import { counted, fileSize, fixed, percent, signed } from '../../lib/number.js';
 import { pagePaths } from '../../lib/paths.js';
 import type { FileRead } from '../../workers/protocol.js';
 import { questions, verdict, type Entry } from './entry.js';
@@ -58,6 +58,15 @@ export function VerdictColumn({ programmeId, entry, ...acts }: Props) {
       ) : null;
     case 'duplicate':
       return <Duplicate programmeId={programmeId} entry={entry} onLeaveOut={acts.onLeaveOut} />;
+    case 'known':
+      return <KnownSay programmeId={programmeId} entry={entry} onLeaveOut={acts.onLeaveOut} />;
+    case 'twin':
+      return (
+        <Say icon={<IconCopyCheck size={18} aria-hidden />} title="Twice on this page" live>
+          <p>The same bytes, byte for byte, as {entry.twinOf} further up. It will not be sent.</p>
+          <Acts {...acts} />
+        </Say>
+      );
     case 'refused':
       return (
         <Say icon={<IconBan size={18} aria-hidden />} title="Not added">
@@ -176,11 +185,33 @@ function Unreadable({ entry, read, acts }: { entry: Entry; read: Extract<FileRea
 function SendingSay({ entry: { sending, file }, onCancel }: { entry: Entry; onCancel: () => void }) {
   const sent = sending.at === 'sending' ? sending.sent : 0;
   const words = sending.at === 'waiting' ? 'Waiting for its turn' : sent < 1 ? `Sending, ${percent(sent)}` : 'The server is reading it';
+  const bytes = sending.at === 'sending' && sent < 1 ? `${fileSize(sent * file.size)} of ${fileSize(file.size)}` : null;
   return (
     <Say icon={<Loader size={14} />} title={words}>
       <Progress value={sent * 100} aria-label={`Upload of ${file.name}`} className={classes.progress} />
+      {bytes && <p>{bytes}</p>}
       <div className={classes.acts}>
         <Button onClick={onCancel}>Cancel</Button>
+      </div>
+    </Say>
+  );
+}
+
+/** Found by its hash before anything was sent. */
+function KnownSay({ programmeId, entry: { known }, onLeaveOut }: { programmeId: string; entry: Entry; onLeaveOut: () => void }) {
+  return (
+    <Say icon={<IconCopyCheck size={18} aria-hidden />} title="Already here" live>
+      {known && (
+        <p>
+          The programme has this file, byte for byte: <Link to={pagePaths.spectrum(programmeId, known.spectrumId)}>{known.label}</Link> of{' '}
+          {known.targetName}. It will not be sent. To read it otherwise,{' '}
+          <Link to={pagePaths.file(programmeId, known.spectrumId)}>open its file there</Link>.
+        </p>
+      )}
+      <div className={classes.acts}>
+        <Button variant="subtle" onClick={onLeaveOut}>
+          Leave out
+        </Button>
       </div>
     </Say>
   );

@@ -1,4 +1,4 @@
-import type { ReadingCorrections } from '@foreveil/shared';
+import type { FileSignature, KnownFile, ReadingCorrections } from '@foreveil/shared';
 import type { FileRead } from '../../workers/protocol.js';
 import { labelFrom, type Entry, type Sending, type TargetChoice } from './entry.js';
 
@@ -10,18 +10,21 @@ export type Change =
       readonly corrections: ReadingCorrections;
       readonly read: FileRead;
       readonly guess: TargetChoice | null;
+      readonly signature: FileSignature | null;
     }
-  | { readonly type: 'corrected'; readonly id: number; readonly corrections: ReadingCorrections }
+  /** by the hand of a person, or by a recipe of that name */
+  | { readonly type: 'corrected'; readonly id: number; readonly corrections: ReadingCorrections; readonly recipe?: string | null }
   | { readonly type: 'targeted'; readonly id: number; readonly target: TargetChoice }
   | { readonly type: 'labelled'; readonly id: number; readonly label: string }
   | { readonly type: 'sending'; readonly id: number; readonly sending: Sending }
+  | { readonly type: 'known'; readonly files: readonly KnownFile[] }
   | { readonly type: 'left_out'; readonly id: number };
 
 /** One object for all, because an answer is recognised by the corrections it was read with. */
 export const NO_CORRECTIONS: ReadingCorrections = {};
 const NO_TARGET: TargetChoice = { name: '', kind: 'star', why: 'file_name' };
 
-const fresh = (file: File, id: number): Entry => ({
+export const freshEntry = (file: File, id: number): Entry => ({
   id,
   file,
   label: labelFrom(file.name),
@@ -30,33 +33,69 @@ const fresh = (file: File, id: number): Entry => ({
   read: null,
   rereading: false,
   sending: { at: 'not_sent' },
+  signature: null,
+  recipe: null,
+  sha256: null,
+  known: null,
+  twinOf: null,
 });
 
 const isSameFile = (a: File, b: File) => a.name === b.name && a.size === b.size && a.lastModified === b.lastModified;
+/** Files that a folder holds for the computer's own use. */
+const isHidden = (file: File) => file.name.startsWith('.') || file.name === 'Thumbs.db';
 
 /** Files not yet on the page: choosing one twice shows it once. */
 export const newcomers = (entries: readonly Entry[], files: readonly File[]): File[] =>
   files.filter(
-    (file, i) => !entries.some((entry) => isSameFile(entry.file, file)) && !files.slice(0, i).some((other) => isSameFile(other, file)),
+    (file, i) =>
+      !isHidden(file) &&
+      !entries.some((entry) => isSameFile(entry.file, file)) &&
+      !files.slice(0, i).some((other) => isSameFile(other, file)),
   );
 
 /** The files on the page after a change. */
 export function changeEntries(entries: readonly Entry[], change: Change): readonly Entry[] {
-  if (change.type === 'chosen') return [...entries, ...change.files.map((file, i) => fresh(file, change.firstId + i))];
+  return withTwins(changed(entries, change));
+}
+
+function changed(entries: readonly Entry[], change: Change): readonly Entry[] {
+  if (change.type === 'chosen') return [...entries, ...change.files.map((file, i) => freshEntry(file, change.firstId + i))];
   if (change.type === 'left_out') return entries.filter(({ id }) => id !== change.id);
+  if (change.type === 'known') {
+    const byHash = new Map(change.files.map((file) => [file.sha256, file]));
+    return entries.map((entry) => (entry.sha256 && byHash.has(entry.sha256) ? { ...entry, known: byHash.get(entry.sha256)! } : entry));
+  }
   return entries.map((entry) => (entry.id === change.id ? changeEntry(entry, change) : entry));
 }
 
-function changeEntry(entry: Entry, change: Exclude<Change, { type: 'chosen' | 'left_out' }>): Entry {
+/** Marks each file whose bytes stand further up on the page already. */
+function withTwins(entries: readonly Entry[]): readonly Entry[] {
+  const first = new Map<string, string>();
+  return entries.map((entry) => {
+    const { sha256, file } = entry;
+    const twinOf = sha256 ? (first.get(sha256) ?? null) : null;
+    if (sha256 && twinOf === null) first.set(sha256, file.name);
+    return twinOf === entry.twinOf ? entry : { ...entry, twinOf };
+  });
+}
+
+function changeEntry(entry: Entry, change: Exclude<Change, { type: 'chosen' | 'left_out' | 'known' }>): Entry {
   switch (change.type) {
     case 'read': {
       // an answer to corrections that have changed since is out of date
       if (change.corrections !== entry.corrections) return entry;
-      const target = entry.target.why === 'chosen' || !change.guess ? entry.target : change.guess;
-      return { ...entry, read: change.read, rereading: false, target };
+      const { read, signature, guess } = change;
+      const settled = entry.target.why === 'chosen' || entry.target.why === 'position';
+      const target = settled || !guess ? entry.target : guess;
+      const sha256 = read.sha256 ?? entry.sha256;
+      // the first reading that succeeds says what kind of file it is: later ones look at it through corrections
+      return { ...entry, read, sha256, rereading: false, target, signature: entry.signature ?? signature };
     }
-    case 'corrected':
-      return { ...entry, corrections: change.corrections, rereading: true, sending: { at: 'not_sent' } };
+    case 'corrected': {
+      const { corrections, recipe } = change;
+      const by = recipe ? { name: recipe, before: entry.recipe?.before ?? entry.corrections } : null;
+      return { ...entry, corrections, rereading: true, recipe: by, sending: { at: 'not_sent' } };
+    }
     case 'targeted':
       return { ...entry, target: change.target, sending: { at: 'not_sent' } };
     case 'labelled':

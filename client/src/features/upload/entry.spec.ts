@@ -1,11 +1,11 @@
 import { describe, expect, it } from 'vitest';
 import { aFace, aReading, aSpectrumDetail, aTargetSummary } from '../../test/things.js';
 import type { FileRead } from '../../workers/protocol.js';
-import { changeEntries, newcomers, NO_CORRECTIONS } from './entries.js';
-import { guessTarget, isUnfinished, metaOf, questions, sameTarget, verdict, type Entry } from './entry.js';
+import { changeEntries, freshEntry, newcomers, NO_CORRECTIONS } from './entries.js';
+import { guessTarget, isUnfinished, metaOf, nearestTarget, questions, sameTarget, similarCount, verdict, type Entry } from './entry.js';
 import { makeQueue } from './send-entry.js';
 import { standing } from './SendBar.js';
-import { howKnown, withCorrection } from './words.js';
+import { correctionWords, howKnown, withCorrection } from '../../components/reading/words.js';
 
 const good: FileRead = { ok: true, reading: aReading(), face: aFace(), hint: null };
 const noMedium: FileRead = { ...good, reading: aReading({ medium: { value: 'vacuum', how: 'not_stated', where: '' } }) };
@@ -13,19 +13,7 @@ const bad: FileRead = { ok: false, problem: { code: 'x', sentence: 'At line 4 a 
 const file = (name = 'heron4b_ech.fits.gz') => new File(['x'], name, { lastModified: 1 });
 const target = { name: 'Heron 4 A', kind: 'star', why: 'object' } as const;
 
-const entry = (parts: Partial<Entry> = {}): Entry => ({
-  ...{
-    id: 1,
-    file: file(),
-    label: 'heron4b_ech',
-    corrections: NO_CORRECTIONS,
-    target,
-    read: good,
-    rereading: false,
-    sending: { at: 'not_sent' },
-  },
-  ...parts,
-});
+const entry = (parts: Partial<Entry> = {}): Entry => ({ ...freshEntry(file(), 1), target, read: good, ...parts });
 
 describe('what a file still needs', () => {
   it('nothing, when all is stated', () => {
@@ -75,10 +63,17 @@ describe('the files on the page', () => {
   });
   it('an answer to corrections that have changed since is out of date', () => {
     const corrected = changeEntries([entry()], { type: 'corrected', id: 1, corrections: { medium: 'air' } });
-    const late = changeEntries(corrected, { type: 'read', id: 1, corrections: NO_CORRECTIONS, read: bad, guess: null });
+    const late = changeEntries(corrected, { type: 'read', id: 1, corrections: NO_CORRECTIONS, read: bad, guess: null, signature: null });
     expect(late[0]!.read).toBe(good);
     expect(verdict(late[0]!)).toBe('reading');
-    const right = changeEntries(late, { type: 'read', id: 1, corrections: corrected[0]!.corrections, read: bad, guess: null });
+    const right = changeEntries(late, {
+      type: 'read',
+      id: 1,
+      corrections: corrected[0]!.corrections,
+      read: bad,
+      guess: null,
+      signature: null,
+    });
     expect(verdict(right[0]!)).toBe('unreadable');
   });
   it('a target that a person chose stays through later readings', () => {
@@ -89,6 +84,7 @@ describe('the files on the page', () => {
       corrections: NO_CORRECTIONS,
       read: good,
       guess: target,
+      signature: null,
     });
     expect(after!.target).toBe(chosen);
   });
@@ -113,12 +109,84 @@ describe('the files on the page', () => {
   });
 });
 
+describe('files with the same bytes', () => {
+  const read = { ...good, sha256: 'ab' };
+  const two = () =>
+    [entry({ id: 1 }), entry({ id: 2, file: file('copy.fits') })].reduce(
+      (entries, { id }) => changeEntries(entries, { type: 'read', id, corrections: NO_CORRECTIONS, read, guess: target, signature: null }),
+      [entry({ id: 1 }), entry({ id: 2, file: file('copy.fits') })] as readonly Entry[],
+    );
+  it('are sent once: the second says which one it is the same as, until that one is left out', () => {
+    expect(two().map(verdict)).toEqual(['ready', 'twin']);
+    expect(two()[1]!.twinOf).toBe('heron4b_ech.fits.gz');
+    const [left] = changeEntries(two(), { type: 'left_out', id: 1 });
+    expect(verdict(left!)).toBe('ready');
+  });
+  it('are not sent at all when the programme has them', () => {
+    const known = { sha256: 'ab', spectrumId: 's', label: 'night 1', targetId: 't', targetName: 'Tern' };
+    expect(changeEntries(two(), { type: 'known', files: [known] }).map(verdict)).toEqual(['known', 'known']);
+    expect(isUnfinished(changeEntries(two(), { type: 'known', files: [known] })[0]!)).toBe(false);
+  });
+});
+
+describe('files of one kind', () => {
+  const signature = { format: 'text', columns: ['a', 'b'], instrument: null, telescope: null, writer: [] } as const;
+  it('are those that can still be corrected, alike or not told yet', () => {
+    const mine = entry({ id: 1, signature });
+    const others = [
+      entry({ id: 2, signature: { ...signature, columns: ['A', ' b'] } }),
+      entry({ id: 3, signature: { ...signature, columns: ['a'] } }),
+      entry({ id: 4, read: bad }),
+      entry({ id: 5, signature, sending: { at: 'waiting' } }),
+    ];
+    expect(similarCount(mine, [mine, ...others])).toBe(2);
+  });
+  it('remember what stood before a recipe, and its name goes with the bytes', () => {
+    const own = entry({ corrections: { frame: 'unknown' } });
+    const [after] = changeEntries([own], { type: 'corrected', id: 1, corrections: { medium: 'air' }, recipe: 'Plates' });
+    expect(after!.recipe).toEqual({ name: 'Plates', before: { frame: 'unknown' } });
+    expect(metaOf(after!, [])).toMatchObject({ recipe: 'Plates', corrections: { medium: 'air' } });
+    const [undone] = changeEntries([after!], { type: 'corrected', id: 1, corrections: after!.recipe!.before });
+    expect([undone!.recipe, undone!.corrections]).toEqual([null, { frame: 'unknown' }]);
+  });
+});
+
+describe('the target nearest to where a file points', () => {
+  const at = (raDeg: number, decDeg: number) => aReading({ pointing: { value: { raDeg, decDeg }, how: 'stated', where: 'RA' } });
+  const placed = aTargetSummary({ raDeg: 0.001, decDeg: 60 });
+  it('is found across the zero of right ascension, with its distance', () => {
+    // 0.002 degrees in right ascension at 60 degrees north are 0.001 degrees on the sky: 3.6 arcsec
+    const near = nearestTarget(at(359.999, 60), [aTargetSummary({ id: 'far', raDeg: 180 }), placed])!;
+    expect(near.target).toBe(placed);
+    expect(near.arcsec).toBeCloseTo(3.6, 3);
+  });
+  it('is none beyond two arcminutes, or where nothing is known', () => {
+    expect(nearestTarget(at(0, 60.1), [placed])).toBeNull();
+    expect(nearestTarget(aReading(), [placed])).toBeNull();
+    expect(nearestTarget(at(0, 60), [aTargetSummary({ raDeg: null })])).toBeNull();
+  });
+});
+
 describe('how a fact is known', () => {
   it('stands out when the file does not say it', () => {
     expect(howKnown({ how: 'stated', where: 'TUNIT1' })).toEqual({ words: 'stated, TUNIT1', loud: false });
     expect(howKnown({ how: 'assumed', where: 'range' })).toEqual({ words: 'assumed, range', loud: true });
     expect(howKnown({ how: 'not_stated', where: '' })).toEqual({ words: 'not stated', loud: true });
     expect(howKnown({ how: 'corrected', where: 'correction' })).toEqual({ words: 'said by you', loud: false });
+  });
+  it('says beside a correction what the file said', () => {
+    const said = { value: 'air', how: 'stated', where: '# medium' } as const;
+    const words = (one: typeof said | { value: string; how: 'not_stated'; where: string }) =>
+      howKnown<string>({ how: 'corrected', where: '', said: one }, (value) => value).words;
+    expect(words(said)).toBe('said by you; the file: air');
+    expect(words({ value: 'vacuum', how: 'not_stated', where: '' })).toBe('said by you; the file does not say');
+  });
+  it('a correction is said in words', () => {
+    expect(correctionWords({ medium: 'air', uncertaintyColumn: null, axisUnit: 'angstrom' })).toEqual([
+      'air',
+      'no error column',
+      'axis in Å',
+    ]);
   });
   it('a correction taken back is no correction', () => {
     expect(withCorrection({ medium: 'air' }, 'medium', undefined)).toEqual({});

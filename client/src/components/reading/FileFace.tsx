@@ -4,7 +4,7 @@ import { useWavelengthDisplay } from '../../lib/wavelength.js';
 import { axisTicks } from '../../plot/axis-ticks.js';
 import { LightStrip } from '../../plot/LightStrip.js';
 import type { Face } from '../../workers/face.js';
-import classes from './upload.module.css';
+import classes from './reading.module.css';
 
 const HEIGHT = 92;
 const BASE = 74;

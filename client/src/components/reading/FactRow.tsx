@@ -1,5 +1,5 @@
 import { useId, type ReactNode } from 'react';
-import classes from './upload.module.css';
+import classes from './reading.module.css';
 
 interface FactProps {
   label: string;
