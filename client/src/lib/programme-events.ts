@@ -16,7 +16,14 @@ export function applyEvent(client: QueryClient, programmeId: string, event: Prog
     case 'analysis_recipes':
       return refetch(client, recipeQueries.list(programmeId).queryKey);
     case 'spectrum':
-      refetch(client, targetQueries.all(programmeId), programmeQueries.detail(programmeId).queryKey);
+      // new, renamed, moved, read anew or removed: what hangs on it may be other, and its samples too
+      refetch(
+        client,
+        targetQueries.all(programmeId),
+        programmeQueries.detail(programmeId).queryKey,
+        spectrumQueries.all(programmeId, event.spectrumId),
+        spectrumQueries.samples(programmeId, event.spectrumId).queryKey,
+      );
   }
 }
 

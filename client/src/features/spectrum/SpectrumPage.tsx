@@ -2,11 +2,12 @@ import { notifications } from '@mantine/notifications';
 import { apiPaths, roleAllows, type AnalysisDetail } from '@foreveil/shared';
 import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useMemo } from 'react';
-import { useParams } from 'react-router-dom';
+import { Link, useParams } from 'react-router-dom';
 import { ErrorNote } from '../../components/ErrorNote.js';
 import { Simulated } from '../../components/Simulated.js';
 import { isAtWork } from '../../lib/analysis-words.js';
 import { errorSentence } from '../../lib/error-sentences.js';
+import { pagePaths } from '../../lib/paths.js';
 import { analysisQueries, cancelAnalysis, requestAnalysis, spectrumQueries } from '../../lib/queries/spectra.js';
 import { day } from '../../lib/time.js';
 import { useNow } from '../../lib/useNow.js';
@@ -71,7 +72,9 @@ function Header({ data, settings }: { data: SpectrumData; settings: PageSettings
         <h1>
           {spectrum.targetName} {spectrum.simulated && <Simulated />}
         </h1>
-        <p className={classes.sub}>{about}</p>
+        <p className={classes.sub}>
+          {about} <Link to={pagePaths.file(spectrum.programmeId, spectrum.id)}>The file and how it was read</Link>
+        </p>
       </div>
       <SpectrumFacts spectrum={spectrum} analysis={result} rows={rows} display={settings.choice} />
     </header>

@@ -22,7 +22,7 @@ export const spectrumQueries = {
       queryKey: [...ofSpectrum(programmeId, spectrumId), 'spectrum'] as const,
       queryFn: ({ signal }) => http.get<SpectrumDetail>(apiPaths.spectrum(programmeId, spectrumId), { signal }),
     }),
-  /** never changes for a spectrum */
+  /** the same until its file is read anew, which an event tells */
   samples: (programmeId: string, spectrumId: string) =>
     queryOptions({
       queryKey: ['samples', programmeId, spectrumId] as const,

@@ -39,11 +39,13 @@ export function useSpectrumData(programmeId: string, spectrumId: string): Spectr
   });
   const identifications = useQuery(identificationQueries.list(programmeId, spectrumId));
   const newestFirst = [...(runs.data ?? [])].sort((a, b) => b.requestedAt.localeCompare(a.requestedAt));
-  const done = newestFirst.find((a) => a.phase === 'COMPLETED') ?? null;
+  // a run on an earlier reading of the file speaks of other wavelengths
+  const revision = spectrum.data?.readingRevision;
+  const done = newestFirst.find((a) => a.phase === 'COMPLETED' && a.readingRevision === revision) ?? null;
   const detail = useQuery({ ...analysisQueries.detail(programmeId, done?.id ?? ''), enabled: done !== null });
-  const analysis = runs.data && (done ? (detail.data?.result ? detail.data : undefined) : null);
+  const analysis = runs.data && spectrum.data && (done ? (detail.data?.result ? detail.data : undefined) : null);
   const curve = useQuery({
-    queryKey: ['curve', programmeId, spectrumId, analysis?.id ?? null] as const,
+    queryKey: ['curve', programmeId, spectrumId, analysis?.id ?? null, samples.dataUpdatedAt] as const,
     queryFn: ({ signal }) =>
       prepareCurve(
         { samples: samples.data!, continuum: analysis?.result?.continuum ?? null, features: analysis?.result?.features ?? [] },
