@@ -30,6 +30,9 @@ const SUBJECTS: Subject[] = [
   { page: 'absorption-spectrum', path: (demo) => spectrumOf(demo, 'Tern 1'), heading: /Tern 1/ },
   { page: 'emission-spectrum', path: (demo) => spectrumOf(demo, 'Curlew Nebula'), heading: /Curlew Nebula/ },
   { page: 'probabilities', path: () => '/probabilities', heading: /How probabilities are tested/ },
+  { page: 'find-lines', path: () => '/search', heading: /Find lines/ },
+  { page: 'line-lists', path: ({ programme }) => `/programmes/${programme.id}/line-lists`, heading: /Line lists/ },
+  { page: 'line-list', path: defaultList, heading: /Foreveil default/ },
   { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];
@@ -47,6 +50,11 @@ async function chooseFiles(page: Page): Promise<void> {
   await page.getByRole('region', { name: 'asks.csv' }).getByRole('heading', { name: 'Air or vacuum?' }).waitFor();
   await page.getByRole('region', { name: 'ready.csv' }).getByRole('heading', { level: 3, name: 'Ready' }).waitFor();
   await page.getByRole('region', { name: 'broken.csv' }).getByRole('heading', { name: 'Cannot be read' }).waitFor();
+}
+
+async function defaultList({ programme }: Demonstration, page: Page): Promise<string> {
+  const lists = (await (await page.request.get(apiPaths.programmeLineLists(programme.id))).json()) as { id: string }[];
+  return `/programmes/${programme.id}/line-lists/${lists[0]!.id}`;
 }
 
 async function openKeys(page: Page): Promise<void> {

@@ -48,6 +48,20 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
       loader: loaders.recipes,
       lazy: async () => ({ Component: (await import('../features/recipes/RecipesPage.js')).RecipesPage }),
     },
+    {
+      path: 'search',
+      lazy: async () => ({ Component: (await import('../features/search/SearchPage.js')).SearchPage }),
+    },
+    {
+      path: 'programmes/:programmeId/line-lists',
+      loader: loaders.programme,
+      lazy: async () => ({ Component: (await import('../features/linelists/LineListsPage.js')).LineListsPage }),
+    },
+    {
+      path: 'programmes/:programmeId/line-lists/:lineListId',
+      loader: loaders.programme,
+      lazy: async () => ({ Component: (await import('../features/linelists/LineListPage.js')).LineListPage }),
+    },
     { path: '*', element: <NotFoundPage /> },
   ];
   return [

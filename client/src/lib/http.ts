@@ -9,7 +9,7 @@ export interface RequestOptions {
   readonly quiet?: boolean;
 }
 
-type Method = 'GET' | 'POST' | 'PATCH' | 'DELETE';
+type Method = 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE';
 
 /** Marks a change as coming from our own pages; the server asks for it. */
 export const OWN_HEADER = { 'X-Foreveil': '1' } as const;
@@ -66,6 +66,7 @@ async function json<T>(method: Method, path: string, body: unknown, options: Req
 export const http = {
   get: <T>(path: string, options?: RequestOptions) => json<T>('GET', path, undefined, options),
   post: <T>(path: string, body?: unknown, options?: RequestOptions) => json<T>('POST', path, body, options),
+  put: <T>(path: string, body?: unknown, options?: RequestOptions) => json<T>('PUT', path, body, options),
   patch: <T>(path: string, body: unknown, options?: RequestOptions) => json<T>('PATCH', path, body, options),
   delete: (path: string, options?: RequestOptions) => json<void>('DELETE', path, undefined, options),
   /** the answer's bytes, for columns of samples */

@@ -2,8 +2,11 @@
 export const pagePaths = {
   signIn: '/sign-in',
   programmes: '/',
+  search: '/search',
   programme: (p: string) => `/programmes/${p}`,
   upload: (p: string, targetId?: string) => `/programmes/${p}/add${targetId ? `?target=${targetId}` : ''}`,
+  lineLists: (p: string) => `/programmes/${p}/line-lists`,
+  lineList: (p: string, l: string) => `/programmes/${p}/line-lists/${l}`,
   target: (p: string, t: string) => `/programmes/${p}/targets/${t}`,
   probabilities: '/probabilities',
   spectrum: (p: string, s: string) => `/programmes/${p}/spectra/${s}`,

@@ -1,6 +1,8 @@
-import { AppShell } from '@mantine/core';
+import { ActionIcon, AppShell } from '@mantine/core';
+import { IconSearch } from '@tabler/icons-react';
 import { useEffect, useRef } from 'react';
-import { Outlet, ScrollRestoration, useLocation, useParams } from 'react-router-dom';
+import { Link, Outlet, ScrollRestoration, useLocation, useParams } from 'react-router-dom';
+import { pagePaths } from '../../lib/paths.js';
 import { useProgrammeEvents } from '../../lib/useProgrammeEvents.js';
 import { AccountMenu } from './AccountMenu.js';
 import { Brand } from './Brand.js';
@@ -25,6 +27,7 @@ export function Shell() {
         <Brand />
         <Crumbs />
         <div className={classes.right}>
+          <FindLines />
           <KeysSheet />
           <AccountMenu />
         </div>
@@ -37,6 +40,14 @@ export function Shell() {
       <SignInAgain />
       <ScrollRestoration />
     </AppShell>
+  );
+}
+
+function FindLines() {
+  return (
+    <ActionIcon component={Link} to={pagePaths.search} aria-label="Find lines" title="Find lines across programmes" size={28}>
+      <IconSearch size={16} aria-hidden />
+    </ActionIcon>
   );
 }
 

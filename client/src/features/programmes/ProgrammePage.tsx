@@ -1,7 +1,8 @@
 import { useSuspenseQueries } from '@tanstack/react-query';
 import { useDisclosure } from '@mantine/hooks';
 import { roleAllows, type Programme, type TargetSummary } from '@foreveil/shared';
-import { useParams } from 'react-router-dom';
+import { Link, useParams } from 'react-router-dom';
+import { Button } from '@mantine/core';
 import { PageHead, type Fact } from '../../components/PageHead.js';
 import { RoleButton } from '../../components/RoleButton.js';
 import { count, counted } from '../../lib/number.js';
@@ -21,6 +22,9 @@ export function ProgrammePage() {
   const [adding, { open, close }] = useDisclosure(false);
   const actions = (
     <>
+      <Button component={Link} to={pagePaths.lineLists(programmeId)}>
+        Line lists
+      </Button>
       <RoleButton have={programme.role} need="analyst" onClick={open}>
         Add target
       </RoleButton>
