@@ -29,7 +29,7 @@ const SHARED_TYPES_TOO = {
   recipes: ['reading'],
   review: ['contract'],
   sightlines: ['identify'],
-  report: ['contract', 'identify', 'reading'],
+  report: ['contract', 'identify', 'reading', 'sightlines'],
   contract: ['identify', 'sightlines', 'reading', 'recipes', 'review', 'spectrum', 'linelist', 'units'],
 };
 

@@ -4,11 +4,19 @@ import { pino } from 'pino';
 import { configOrExit } from './config/config-or-exit.js';
 import { createKnex } from './database/knex.js';
 import { Listener } from './database/listener.js';
-import { ANALYSE_QUEUE, JOBS_SCHEMA, type AnalyseJob } from './modules/analyses/job-queue.js';
+import {
+  ANALYSE_QUEUE,
+  COMPARE_QUEUE,
+  COMPARE_SECONDS,
+  JOBS_SCHEMA,
+  type AnalyseJob,
+  type CompareJob,
+} from './modules/analyses/job-queue.js';
 import { AnalysisThread } from './modules/analyses/work/analysis-thread.js';
 import { Cancellations } from './modules/analyses/work/cancellations.js';
 import { sweep } from './modules/analyses/work/sweep.js';
 import { workOnAnalysis } from './modules/analyses/work/work-on-analysis.js';
+import { workOnComparison } from './modules/comparisons/work/work-on-comparison.js';
 import { defaultLineListId, loadLineList } from './modules/linelists/line-list-store.js';
 import { keepSending } from './modules/mail/keep-sending.js';
 import { stopOnSignal } from './stop.js';
@@ -43,6 +51,12 @@ for (let i = 0; i < config.analysisThreads; i++) {
     if (job) await work(job.data.analysisId, thread);
   });
 }
+// a thread of their own: someone waits for a comparison, and it must not stand behind a long analysis
+const comparing = new AnalysisThread(config.analysisMemoryMb);
+threads.push(comparing);
+await boss.work<CompareJob>(COMPARE_QUEUE, { pollingIntervalSeconds: 0.5 }, async ([job]) => {
+  if (job) await compare(job.data.comparisonId);
+});
 void sweepForever();
 const mail = keepSending(db, config, log, stopping.signal);
 stopOnSignal(stop, 15_000);
@@ -59,6 +73,20 @@ async function work(analysisId: string, thread: AnalysisThread): Promise<void> {
   } catch (error) {
     log.warn({ analysisId, err: error }, 'an attempt at an analysis failed');
     throw error;
+  }
+}
+
+async function compare(comparisonId: string): Promise<void> {
+  const controller = new AbortController();
+  const timer = setTimeout(() => controller.abort('too_long'), COMPARE_SECONDS * 1000);
+  try {
+    await workOnComparison(db, comparing, comparisonId, AbortSignal.any([controller.signal, stopping.signal]));
+    log.info({ comparisonId }, 'worked on a comparison');
+  } catch (error) {
+    log.warn({ comparisonId, err: error }, 'an attempt at a comparison failed');
+    throw error;
+  } finally {
+    clearTimeout(timer);
   }
 }
 

@@ -1,5 +1,6 @@
 import type { AnalysisSummary, Identification, ProgrammeEvent, SpectrumSummary, Target, TargetSummary } from '@foreveil/shared';
 import type { QueryClient } from '@tanstack/react-query';
+import { comparisonQueries } from './queries/comparisons.js';
 import { programmeQueries, targetQueries } from './queries/programmes.js';
 import { recipeQueries, unplacedQueries } from './queries/steering.js';
 import { analysisQueries, identificationQueries, spectrumQueries } from './queries/spectra.js';
@@ -15,6 +16,8 @@ export function applyEvent(client: QueryClient, programmeId: string, event: Prog
       return applyIdentification(client, programmeId, event.identification);
     case 'analysis_recipes':
       return refetch(client, recipeQueries.list(programmeId).queryKey);
+    case 'comparison':
+      return refetch(client, comparisonQueries.all(programmeId));
     case 'spectrum':
       // new, renamed, moved, read anew or removed: what hangs on it may be other, and its samples too
       refetch(

@@ -59,7 +59,13 @@ function listen(client: QueryClient, programmeId: string, tell: (liveness: Liven
   };
 }
 
-const KNOWN: ReadonlySet<string> = new Set<ProgrammeEvent['type']>(['analysis', 'identification', 'spectrum', 'analysis_recipes']);
+const KNOWN: ReadonlySet<string> = new Set<ProgrammeEvent['type']>([
+  'analysis',
+  'identification',
+  'spectrum',
+  'analysis_recipes',
+  'comparison',
+]);
 
 function parseEvent(data: string): ProgrammeEvent | null {
   try {

@@ -200,7 +200,8 @@ export type ProgrammeEvent =
   | { type: 'analysis'; spectrumId: string; analysis: AnalysisSummary }
   | { type: 'identification'; identification: Identification }
   | { type: 'spectrum'; spectrumId: string; targetId: string }
-  | { type: 'analysis_recipes' };
+  | { type: 'analysis_recipes' }
+  | { type: 'comparison'; comparisonId: string };
 
 /** problem+json, RFC 9457. */
 export interface Problem {

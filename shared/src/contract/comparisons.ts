@@ -30,6 +30,8 @@ export interface ComparisonSummary {
   counts: Record<Verdict, number> | null;
   /** one of the two spectra has a newer analysis than the one compared */
   outdated: boolean;
+  /** the comparison that a re-run made in its place; null when this is the newest */
+  supersededBy: string | null;
   version: number;
 }
 

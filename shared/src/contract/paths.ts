@@ -37,9 +37,8 @@ export const apiPaths = {
   comparison: (p: string, c: string) => `/api/programmes/${p}/comparisons/${c}`,
   comparisonRerun: (p: string, c: string) => `/api/programmes/${p}/comparisons/${c}/rerun`,
   comparisonReport: (p: string, c: string) => `/api/programmes/${p}/comparisons/${c}/report.csv`,
-  /** the line's key goes percent-encoded */
-  comparisonRuling: (p: string, c: string, lineKey: string) =>
-    `/api/programmes/${p}/comparisons/${c}/lines/${encodeURIComponent(lineKey)}/ruling`,
+  /** `lineKey` already percent-encoded, since keys hold blanks */
+  comparisonRuling: (p: string, c: string, lineKey: string) => `/api/programmes/${p}/comparisons/${c}/lines/${lineKey}/ruling`,
   receivedMails: '/api/mail/received',
   receivedMail: (m: string) => `/api/mail/received/${m}`,
   searchIdentifications: '/api/search/identifications',

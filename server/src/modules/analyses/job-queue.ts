@@ -32,6 +32,26 @@ export async function sendAnalyseJob(trx: Trx, job: AnalyseJob, analysisSeconds:
   return id;
 }
 
+export const COMPARE_QUEUE = 'compare';
+
+export interface CompareJob {
+  readonly comparisonId: string;
+}
+
+/** A comparison takes about a second; whoever holds one longer than this is gone. */
+export const COMPARE_SECONDS = 120;
+
+/** Queues a comparison; tries are counted in its own row, as those of an analysis are. */
+export async function sendCompareJob(trx: Trx, job: CompareJob): Promise<void> {
+  const id = await sender.send(COMPARE_QUEUE, job, {
+    db: { executeSql: (text, values) => onConnectionOf(trx, text, values) },
+    expireInSeconds: COMPARE_SECONDS + EXPIRY_MARGIN_SECONDS,
+    retryLimit: QUEUE_RETRIES,
+    retryDelay: 0,
+  });
+  if (!id) throw new Error('the job queue did not take the job');
+}
+
 interface Connection {
   query(text: string, values: unknown[]): Promise<{ rows: unknown[] }>;
 }

@@ -6,6 +6,7 @@ export type Said =
   | { readonly kind: 'identification'; readonly programmeId: string; readonly id: string }
   | { readonly kind: 'spectrum'; readonly programmeId: string; readonly id: string }
   | { readonly kind: 'analysis_recipes'; readonly programmeId: string }
+  | { readonly kind: 'comparison'; readonly programmeId: string; readonly id: string }
   | { readonly kind: 'session_ended'; readonly sessionId: string }
   | { readonly kind: 'analysis_cancelled'; readonly id: string };
 

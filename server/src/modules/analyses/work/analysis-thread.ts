@@ -1,8 +1,8 @@
 import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { Worker } from 'node:worker_threads';
-import type { Analysis, AnalysisSettings, AnalysisStep, LineList, Spectrum } from '@foreveil/shared';
-import type { FromThread, ToThread } from './protocol.js';
+import type { Analysis, AnalysisSettings, AnalysisStep, LineList, SightlineComparison, Spectrum } from '@foreveil/shared';
+import type { CompareInThread, FromThread, ToThread } from './protocol.js';
 
 export interface ThreadJob {
   readonly listId: string;
@@ -10,12 +10,11 @@ export interface ThreadJob {
   readonly settings: AnalysisSettings;
 }
 
-/** How a run in the thread ended. `died` is the thread's fault or fate, `failed` the analysis' own word, `stopped` ours. */
-export type Outcome =
-  | { readonly end: 'done'; readonly analysis: Analysis }
-  | { readonly end: 'failed'; readonly reason: string }
-  | { readonly end: 'died'; readonly reason: string }
-  | { readonly end: 'stopped' };
+/** How a run in the thread ended without a result. `died` is the thread's fault or fate, `failed` the program's own word, `stopped` ours. */
+type Unfinished =
+  { readonly end: 'failed'; readonly reason: string } | { readonly end: 'died'; readonly reason: string } | { readonly end: 'stopped' };
+export type Outcome = { readonly end: 'done'; readonly analysis: Analysis } | Unfinished;
+export type CompareOutcome = { readonly end: 'compared'; readonly comparison: SightlineComparison } | Unfinished;
 
 const beside = fileURLToPath(new URL('./analysis.thread.js', import.meta.url));
 const built = fileURLToPath(new URL('../../../../dist/modules/analyses/work/analysis.thread.js', import.meta.url));
@@ -42,15 +41,33 @@ export class AnalysisThread {
   }
 
   /** @param signal ends the run, with the thread, whatever it is doing */
-  async run(job: ThreadJob, onProgress: (step: AnalysisStep, done: number) => void, signal: AbortSignal): Promise<Outcome> {
+  run(job: ThreadJob, onProgress: (step: AnalysisStep, done: number) => void, signal: AbortSignal): Promise<Outcome> {
+    return this.ask({ say: 'run', ...job }, signal, (message): Outcome | null => {
+      if (message.say === 'progress') onProgress(message.step, message.done);
+      return message.say === 'done' ? { end: 'done', analysis: message.analysis } : null;
+    });
+  }
+
+  /** Compares two sightlines; ends as a run does. */
+  compare(job: CompareInThread, signal: AbortSignal): Promise<CompareOutcome> {
+    return this.ask({ say: 'compare', ...job }, signal, (message): CompareOutcome | null =>
+      message.say === 'compared' ? { end: 'compared', comparison: message.comparison } : null,
+    );
+  }
+
+  /** Sends the thread a job and waits for its end. @param hear what an answer means; null while it is not the last one */
+  private async ask<T extends { readonly end: string }>(
+    job: ToThread,
+    signal: AbortSignal,
+    hear: (message: FromThread) => T | null,
+  ): Promise<T | Unfinished> {
     if (signal.aborted) return { end: 'stopped' };
     const thread = this.running();
     let forget = (): void => undefined;
-    const outcome = await new Promise<Outcome>((resolve) => {
+    const outcome = await new Promise<T | Unfinished>((resolve) => {
       const told = (message: FromThread) => {
-        if (message.say === 'progress') onProgress(message.step, message.done);
-        else if (message.say === 'done') resolve({ end: 'done', analysis: message.analysis });
-        else resolve({ end: 'failed', reason: message.reason });
+        const heard = message.say === 'failed' ? ({ end: 'failed', reason: message.reason } as const) : hear(message);
+        if (heard) resolve(heard);
       };
       const broke = (error: Error) => resolve({ end: 'died', reason: error.message });
       const ended = (code: number) => resolve({ end: 'died', reason: `the thread ended with ${code}` });
@@ -62,7 +79,7 @@ export class AnalysisThread {
         thread.off('message', told).off('error', broke).off('exit', ended);
         signal.removeEventListener('abort', stopped);
       };
-      thread.postMessage({ say: 'run', ...job } satisfies ToThread);
+      thread.postMessage(job);
     });
     forget();
     if (outcome.end === 'stopped' || outcome.end === 'died') await this.end();

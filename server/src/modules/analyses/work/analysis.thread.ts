@@ -1,5 +1,12 @@
 import { parentPort } from 'node:worker_threads';
-import { analyse, completeSettings, type LineList, type OnProgress } from '@foreveil/shared';
+import {
+  analyse,
+  compareSightlines,
+  completeSettings,
+  DEFAULT_COMPARISON_SETTINGS,
+  type LineList,
+  type OnProgress,
+} from '@foreveil/shared';
 import type { FromThread, ToThread } from './protocol.js';
 import { warmUp } from './warm-up.js';
 
@@ -28,8 +35,14 @@ parentPort!.on('message', (message: ToThread) => {
   }
   try {
     // the database keeps no order of fields: here they get the one in which they are told again
+    const list = lists.get(message.listId)!;
+    if (message.say === 'compare') {
+      const settings = { ...DEFAULT_COMPARISON_SETTINGS, ...message.settings };
+      say({ say: 'compared', comparison: compareSightlines(message.a, message.b, list, settings) });
+      return;
+    }
     const settings = completeSettings(message.settings);
-    say({ say: 'done', analysis: analyse(message.spectrum, lists.get(message.listId)!, settings, teller()) });
+    say({ say: 'done', analysis: analyse(message.spectrum, list, settings, teller()) });
   } catch (error) {
     say({ say: 'failed', reason: error instanceof Error ? error.message : String(error) });
   }
