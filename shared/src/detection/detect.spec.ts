@@ -92,6 +92,23 @@ describe('lines that stand apart', () => {
     expect(Math.abs(fine.length - components.length)).toBeLessThanOrEqual(3); // of those near the threshold, noise decides
   });
 
+  it('are the same lines on a grid of uneven steps, as joined or rounded wavelengths make them', () => {
+    const { wavelength, flux, weight } = normalised({ lines, samplesPerElement: 5, seed: 99 });
+    const groups: [number, number][] = []; // of five samples two, two and one are joined
+    for (let i = 0; i + 5 <= flux.length; i += 5) groups.push([i, i + 2], [i + 2, i + 4], [i + 4, i + 5]);
+    const mean = (x: Float64Array, [a, z]: [number, number]) => x.subarray(a, z).reduce((sum, v) => sum + v, 0) / (z - a);
+    const uneven = found({
+      wavelength: Float64Array.from(groups, (g) => mean(wavelength, g)),
+      flux: Float64Array.from(groups, (g) => mean(flux, g)),
+      weight: Float64Array.from(groups, (g) => (g[1] - g[0]) * mean(weight, g)),
+    }).components;
+    for (const line of clear) {
+      const [a, b] = [nearest(components, line.nm), nearest(uneven, line.nm)];
+      expect(Math.abs(a.centre - b.centre)).toBeLessThan(4.5 * Math.hypot(a.sigmaCentre, b.sigmaCentre));
+    }
+    expect(Math.abs(uneven.length - components.length)).toBeLessThanOrEqual(4);
+  });
+
   it('are found the same way twice, to the last bit', () => expect(found(normalised({ lines })).components).toEqual(components));
 });
 

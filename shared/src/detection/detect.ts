@@ -100,14 +100,33 @@ export function detect(input: DetectionInput): Detection {
 
 const start = (e: Excess): number => (e.kind === 'dip' ? Math.min(e.amplitude, 0.95) : e.amplitude);
 
-/** Sigma of the instrument profile in pixels, at every pixel. */
+const STEPS_EACH_SIDE = 8;
+const LEAP = 4; // a step so many times the last one leads over a gap
+
+/**
+ * Sigma of the instrument profile in pixels, at every pixel. The step between samples is a mean over some neighbours, since rounded or
+ * joined wavelengths make steps uneven, but never across a gap.
+ */
 export function instrumentSigmaPx(wavelength: Float64Array, resolvingPower: number): Float64Array {
   const n = wavelength.length;
-  return Float64Array.from(wavelength, (w, i) => {
-    const a = Math.max(0, i - 1);
-    const z = Math.min(n - 1, i + 1);
-    return w / resolvingPower / FWHM_PER_SIGMA / ((wavelength[z]! - wavelength[a]!) / (z - a));
-  });
+  const out = new Float64Array(n);
+  let from = 0;
+  let last = NaN; // step before this one, in the run of samples without a gap
+  for (let i = 1; i <= n; i++) {
+    const step = i < n ? wavelength[i]! - wavelength[i - 1]! : 0;
+    if (step > 0 && !(step > LEAP * last) && !(last > LEAP * step)) {
+      last = step;
+      continue;
+    }
+    for (let k = from; k < i; k++) {
+      const a = i - from > 1 ? Math.max(from, k - STEPS_EACH_SIDE) : Math.max(0, k - 1);
+      const z = i - from > 1 ? Math.min(i - 1, k + STEPS_EACH_SIDE) : Math.min(n - 1, k + 1);
+      out[k] = wavelength[k]! / resolvingPower / FWHM_PER_SIGMA / ((wavelength[z]! - wavelength[a]!) / (z - a));
+    }
+    from = i;
+    last = NaN;
+  }
+  return out;
 }
 
 /** The data with weights that allow for imperfect profiles beside strong lines. */
