@@ -1,4 +1,5 @@
 // npm run bench: time and memory of the analysis, by pixels and by step. Reports, asserts nothing. Run it on a quiet machine.
+// npm run bench -- reading: speed of the readers beside memcpy and common packages. npm run bench -- mutations: 100 000 damaged files.
 // npm run bench -- errors: whether the stated errors hold, and how near they come to the Cramer-Rao bound (scripts/bench-errors.ts).
 import { readFileSync, readdirSync } from 'node:fs';
 import { join } from 'node:path';
@@ -11,9 +12,9 @@ const { root } = await import('./lib/paths.mjs');
 const { simulate } = await import('./lib/bench/spectrum.mjs');
 
 await ensureDependencies();
-if (process.argv[2] === 'errors') {
+if (['errors', 'mutations', 'reading'].includes(process.argv[2])) {
   const { runTracked } = await import('./lib/supervisor.mjs');
-  const source = ['--import', 'tsx', '--conditions=foreveil-source', join(root, 'scripts/bench-errors.ts')];
+  const source = ['--import', 'tsx', '--conditions=foreveil-source', join(root, `scripts/bench-${process.argv[2]}.ts`)];
   process.exit(await runTracked(process.execPath, [...source, ...process.argv.slice(3)], { cwd: root }));
 }
 await build(['server']);

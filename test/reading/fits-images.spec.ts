@@ -60,12 +60,6 @@ describe('linear axes', () => {
     expect(codes(result)).toContain('reference_pixel_assumed');
   });
 
-  it('does not take values for metres that cannot be metres, and warns', () => {
-    const result = read(image(FLUX, axis('WAVE', 5000, 1)));
-    expect(result.reading.axisUnit).toMatchObject({ value: 'angstrom', how: 'assumed' });
-    expect(result.reading.firstNm).toBe(500);
-  });
-
   it('asks for the unit where Angstrom and nm both fit', () => {
     expect(refusal(image(FLUX, axis('LINEAR', 1500, 1))).code).toBe('unknown_axis_unit');
     expect(read(image(FLUX, axis('LINEAR', 1500, 1)), { axisUnit: 'nm' }).reading.firstNm).toBe(1500);

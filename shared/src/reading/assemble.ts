@@ -26,11 +26,11 @@ export function assemble(raw: RawSpectrum, corrections: ReadingCorrections): Ext
   const fluxKind = corrected(corrections.fluxKind, raw.fluxKind);
   const convertedFluxUnit = fluxKind.value === 'per_frequency' ? perWavelength(raw, sigma, warnings) : undefined;
 
-  const { bad, maskUsed } = badSamples(raw, sigma, warnings);
+  const { bad, maskUsed } = badSamples(raw, sigma, corrections.maskColumn !== undefined, warnings);
   const { index, piece, names } = ascendingOrder(raw, bad, warnings);
   const ordered = { ...inOrder({ wavelength: raw.axis.nm, flux: raw.flux, sigma, bad }, index), piece };
   const { piece: merged, ...columns } = mergeDuplicates(ordered, raw.axisName, warnings);
-  checkSize(columns.wavelength.length, warnings);
+  checkSize(columns, raw.fluxName, warnings);
 
   const { facts } = raw;
   const frame = corrected(corrections.frame, facts.frame);

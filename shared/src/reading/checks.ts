@@ -1,3 +1,4 @@
+import type { Spectrum } from '../spectrum/index.js';
 import type { RawSpectrum } from './raw.js';
 import { quoted, refuse } from './refusal.js';
 import type { ReadWarning } from './types.js';
@@ -88,9 +89,18 @@ export function checkFlux(raw: RawSpectrum, warnings: ReadWarning[]) {
 /** Fewer samples than this cannot hold a continuum and a line. */
 const FEW_POINTS = 20;
 
-export function checkSize(points: number, warnings: ReadWarning[]) {
+export function checkSize({ wavelength, bad }: Pick<Spectrum, 'wavelength' | 'bad'>, fluxName: string, warnings: ReadWarning[]) {
+  const points = wavelength.length;
   if (points < 2)
     refuse('too_few_points', `The file has ${points === 1 ? 'one usable point' : 'no usable points'}; a spectrum needs at least two.`);
+  let usable = 0;
+  for (const one of bad) if (one === 0) usable++;
+  if (usable < 2)
+    refuse(
+      'no_usable_sample',
+      `Of ${points} samples ${usable === 0 ? 'none' : 'only one'} can be used: elsewhere the flux is missing (NaN), masked or without an uncertainty. Choose other columns.`,
+      { column: fluxName },
+    );
   if (points < FEW_POINTS)
     warnings.push({ code: 'few_points', sentence: `The spectrum has only ${points} points, too few to fit a continuum or a line.` });
 }

@@ -28,8 +28,16 @@ export function sigmaOf(raw: RawSpectrum, warnings: ReadWarning[]): Float64Array
 /** A mask that takes out more than this share of the samples is not believed. */
 const MOST_MASKED = 0.5;
 
-/** 1 where a sample must not be used: no flux, masked, or without a positive sigma although the file gives sigmas. */
-export function badSamples(raw: RawSpectrum, sigma: Float64Array | null, warnings: ReadWarning[]): { bad: Uint8Array; maskUsed: boolean } {
+/**
+ * 1 where a sample must not be used: no flux, masked, or without a positive sigma although the file gives sigmas.
+ * @param isMaskChosen a person named the mask, so it is believed whatever it takes out
+ */
+export function badSamples(
+  raw: RawSpectrum,
+  sigma: Float64Array | null,
+  isMaskChosen: boolean,
+  warnings: ReadWarning[],
+): { bad: Uint8Array; maskUsed: boolean } {
   const { flux, mask } = raw;
   const bad = new Uint8Array(flux.length);
   let good = 0;
@@ -47,7 +55,7 @@ export function badSamples(raw: RawSpectrum, sigma: Float64Array | null, warning
   if (!mask) return { bad, maskUsed: false };
   let masked = 0;
   for (let i = 0; i < bad.length; i++) if (!bad[i] && mask.values[i]! >= 1) masked++;
-  if (masked > MOST_MASKED * good) {
+  if (!isMaskChosen && masked > MOST_MASKED * good) {
     warnings.push({
       code: 'mask_not_used',
       sentence: `Column ${quoted(mask.name)} marks ${masked} of ${good} samples, more than half; it was not used as a mask. Its values may be remarks rather than faults.`,

@@ -42,6 +42,7 @@ function rawFrom(best: Candidate, hdus: readonly Hdu[], places: readonly PlaceFa
   const { hdu } = best.of;
   const headers = hdu.index === 0 ? [hdu.header] : [hdu.header, hdus[0]!.header];
   noteHeader(headers, context.warnings);
+  noteStart(hdus[0]!, hdu, context.warnings);
   const own = hdu.index === 0 ? [hdu] : [hdus[0]!, hdu];
   const checksums = own.map((one) => verifyChecksums(context.bytes, one, context.warnings));
   try {
@@ -132,5 +133,29 @@ function noteHeader(headers: readonly Header[], warnings: ReadWarning[]) {
     warnings.push({
       code: 'illegal_cards',
       sentence: `The header holds ${illegal.length} cards that the FITS Standard does not allow (first: ${quoted(illegal[0]!, 10)}); they were ignored.`,
+    });
+}
+
+/** First cards in the order that the standard demands, sections 4.4.1 and 7.3.1. */
+const START: Record<Hdu['kind'], string> = {
+  image: 'XTENSION BITPIX NAXIS',
+  binary_table: 'XTENSION BITPIX NAXIS NAXIS1 NAXIS2 PCOUNT GCOUNT TFIELDS',
+  ascii_table: 'XTENSION BITPIX NAXIS NAXIS1 NAXIS2 PCOUNT GCOUNT TFIELDS',
+  other: 'XTENSION',
+};
+
+/** A file that says it is not standard, or mandatory cards in another order, can be read all the same, but is told of. */
+function noteStart(primary: Hdu, hdu: Hdu, warnings: ReadWarning[]) {
+  if (primary.header.get('SIMPLE') === false)
+    warnings.push({
+      code: 'not_standard',
+      sentence: 'SIMPLE = F: the file says of itself that it does not follow the FITS Standard. Check what was read.',
+    });
+  const wanted = hdu.index === 0 ? START.image.replace('XTENSION', 'SIMPLE') : START[hdu.kind];
+  const names = hdu.header.cards.slice(0, wanted.split(' ').length).map((card) => card.slice(0, 8).trim());
+  if (names.join(' ') !== wanted)
+    warnings.push({
+      code: 'card_order',
+      sentence: `The mandatory cards of ${hdu.place} are not in the order of the FITS Standard (${wanted}). They were found by name.`,
     });
 }

@@ -88,6 +88,12 @@ export function rawFromTable(candidate: TableCandidate, headers: Headers, file: 
   if (mask) keepBits(mask.values, qualityBits(headers));
   const ownUnit = fluxInfo.unit !== '';
   const fluxUnit = settleFluxUnit(ownUnit ? fluxInfo.unit : dataUnit(headers), ownUnit ? `TUNIT${choice.flux + 1}` : 'BUNIT', corrections);
+  const nelem = hdu.header.number('NELEM');
+  if (nelem !== null && candidate.axis.lengths !== null && table.rows === 1 && nelem !== flux.length)
+    warnings.push({
+      code: 'length_differs_from_card',
+      sentence: `NELEM = ${nelem} in ${hdu.place}, but the vectors have ${flux.length} elements; all of them were read.`,
+    });
   if (pick.skipped > 0)
     warnings.push({
       code: 'rows_left_out',

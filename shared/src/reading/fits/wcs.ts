@@ -1,5 +1,5 @@
 import type { Medium } from '../../units/index.js';
-import { settleAxis, unitOfRange } from '../columns/axis.js';
+import { settleAxis } from '../columns/axis.js';
 import { stated } from '../columns/medium.js';
 import type { SpectralQuantity } from '../columns/words.js';
 import type { ReadContext } from '../context.js';
@@ -51,7 +51,7 @@ function codedAxis(place: AxisPlace, ctype: string, code: AxisCode, step: Step, 
   const values = nonLinear(place, ctype, step);
   if (code.quantity === 'velocity') return velocityAxis(place, type, values, context.corrections);
   const cunit = hdu.header.text(`CUNIT${k}`) ?? '';
-  const unit = cunit || defaultUnit(values, code, type);
+  const unit = cunit || defaultUnit(values, code, place, context);
   const where = cunit ? `CUNIT${k}` : `default unit of ${card} ${type}`;
   const axis = settleAxis(values, { name: type, quantity: code.quantity, unit, where }, context);
   return { name: type, axis, medium: code.medium ? stated(code.medium, card) : null };
@@ -80,8 +80,22 @@ function nonLinear({ hdu, k, length }: AxisPlace, ctype: string, step: Step): Fl
   );
 }
 
-/** Metres are the default, but values that cannot be metres are left to the judgement by range. */
-function defaultUnit(values: Float64Array, code: AxisCode, name: string): string {
-  if (code.quantity !== 'length') return code.unit;
-  return unitOfRange(values, name) === 'm' ? code.unit : '';
+/** 10 nm to 1 mm: wavelengths of spectra. */
+const SHORTEST_M = 1e-8;
+const LONGEST_M = 1e-3;
+
+/**
+ * The standard's own unit where CUNIT is missing. Wavelengths that cannot be metres were meant in another unit: that is asked
+ * and not guessed, for a code of Paper III promises the standard's unit.
+ */
+function defaultUnit(values: Float64Array, code: AxisCode, place: AxisPlace, context: ReadContext): string {
+  if (code.quantity !== 'length' || context.corrections.axisUnit) return code.unit;
+  const [first, last] = [values[0]!, values.at(-1)!];
+  const [min, max] = [Math.min(first, last), Math.max(first, last)];
+  if (min >= SHORTEST_M && max <= LONGEST_M) return code.unit;
+  refuse(
+    'unknown_axis_unit',
+    `CUNIT${place.k} is missing in ${place.hdu.place}. The FITS Standard means metres then, but the values from ${min} to ${max} are no wavelengths in metres${min > 900 ? '; Angstrom is likely' : ''}. Say which unit it is.`,
+    { card: `CUNIT${place.k}` },
+  );
 }

@@ -33,7 +33,13 @@ function columnInfos({ headings, sample, dialect }: Preamble): ColumnInfo[] {
   const count = Math.max(headings?.length ?? 0, cells);
   return Array.from({ length: count }, (_, i): ColumnInfo => {
     const heading = headings?.[i];
-    return { name: heading?.name || `column ${i + 1}`, unit: heading?.unit ?? '', ucd: '', utype: '', numeric: isNumeric(i) };
+    return {
+      name: heading?.name || `column ${i + 1}`,
+      unit: heading?.unit ?? '',
+      ucd: '',
+      utype: '',
+      numeric: !heading?.notNumeric && isNumeric(i),
+    };
   });
 
   function isNumeric(column: number): boolean {

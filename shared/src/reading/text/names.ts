@@ -7,6 +7,8 @@ export interface Heading {
   readonly name: string;
   /** '' when the heading has none */
   readonly unit: string;
+  /** the header of the table says that it holds no numbers, whatever its cells look like */
+  readonly notNumeric?: boolean;
 }
 
 /** Units that may follow a name without brackets: 'wave_nm', 'lambda/nm', 'wave_air_A', 'Wavelength, nm'. */

@@ -56,7 +56,14 @@ export function readPreamble(text: TextBytes, limits: ReadLimits, corrections: R
     dialect,
     remarks: [...remarks, ...above.map((line) => line.text)],
     headings:
-      headings && (ecsv ? headings.map((heading) => ({ ...heading, unit: ecsv.units.get(heading.name) ?? heading.unit })) : headings),
+      headings &&
+      (ecsv
+        ? headings.map((heading) => ({
+            ...heading,
+            unit: ecsv.units.get(heading.name) ?? heading.unit,
+            notNumeric: ecsv.notNumeric.has(heading.name),
+          }))
+        : headings),
     firstLine: content[first]!.number,
     sample: rows.slice(first),
   };
