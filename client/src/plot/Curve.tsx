@@ -9,7 +9,7 @@ import { usePalette } from './palette.js';
 import type { PlotFeature } from './plot-feature.js';
 import { nearestIndex } from './pyramid.js';
 import { valueDomain, type Base, type CurveMode } from './value-domain.js';
-import type { ViewStore } from './view.js';
+import type { Range, ViewStore } from './view.js';
 
 interface Props {
   data: CurveData;
@@ -26,15 +26,19 @@ interface Props {
   gutter: number;
   /** a click that was no drag, vacuum nm */
   onPick: (nm: number) => void;
+  /** a drag over a stretch; true when it was taken, else it zooms */
+  onDrag?: ((range: Range) => boolean) | undefined;
 }
 
 /** The main curve: light taken, continuum, a step a pixel, fits in their families' colours. Drag zooms, shift-drag pans, the wheel zooms. */
-export function Curve({ data, features, view, cursor, mode, base, emission, width, height, gutter, onPick }: Props) {
+export function Curve({ data, features, view, cursor, mode, base, emission, width, height, gutter, onPick, onDrag }: Props) {
   const holder = useRef<HTMLDivElement>(null);
   const plot = useRef<uPlot | null>(null);
   const palette = usePalette();
   const pick = useRef(onPick);
   useEffect(() => void (pick.current = onPick), [onPick]);
+  const drag = useRef(onDrag);
+  useEffect(() => void (drag.current = onDrag), [onDrag]);
   const scene = useRef<CurveScene>({ data, mode, features, palette, emission });
 
   useLayoutEffect(() => {
@@ -43,9 +47,10 @@ export function Curve({ data, features, view, cursor, mode, base, emission, widt
       const { fromNm, toNm } = view.get();
       return fromNm + (px / (width - gutter)) * (toNm - fromNm);
     };
-    const options = curveOptions(scene.current, { width, height, gutter }, (left, span) =>
-      view.show({ fromNm: toNm(left), toNm: toNm(left + span) }),
-    );
+    const options = curveOptions(scene.current, { width, height, gutter }, (left, span) => {
+      const range = { fromNm: toNm(left), toNm: toNm(left + span) };
+      if (!drag.current?.(range)) view.show(range);
+    });
     // the samples themselves are drawn from the pyramid; uPlot keeps only the abscissa's ends
     const ends = [view.whole.fromNm, view.whole.toNm];
     const u = new uPlot(options, [ends, [0, 0], [0, 0]], holder.current);

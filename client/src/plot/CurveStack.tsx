@@ -15,7 +15,8 @@ import { usePalette } from './palette.js';
 import type { DueLine, PlotFeature, Stave } from './plot-feature.js';
 import { scaledUnit } from './value-axis.js';
 import type { Base, CurveMode } from './value-domain.js';
-import { useView, type ViewStore } from './view.js';
+import { Stretches, type Stretch } from './Stretches.js';
+import { useView, type Range, type ViewStore } from './view.js';
 import classes from './plot.module.css';
 
 export interface CurveStackProps {
@@ -40,6 +41,9 @@ export interface CurveStackProps {
   onHover: (index: number | null) => void;
   onAlone: (staveId: string | null) => void;
   onPick: (nm: number) => void;
+  /** a drag over a stretch; true when it was taken, else it zooms */
+  onDrag?: (range: Range) => boolean;
+  stretches?: readonly Stretch[];
 }
 
 const NARROW_PX = 600;
@@ -83,6 +87,7 @@ export function CurveStack(props: CurveStackProps) {
               width={plotWidth + gutter}
               height={curveHeight + TOP_ROOM}
               onPick={props.onPick}
+              onDrag={props.onDrag}
             />
           </div>
           {!narrow && (
@@ -102,6 +107,9 @@ export function CurveStack(props: CurveStackProps) {
           >
             {narrow ? display.unitLabel : display.shortLabel}
           </div>
+          {props.stretches && (
+            <Stretches stretches={props.stretches} view={view} left={gutter} width={plotWidth} height={height - AXIS_HEIGHT} />
+          )}
           <Hair {...props} left={gutter} width={plotWidth} height={height - AXIS_HEIGHT} />
           {props.legend && !narrow && (
             <Legend {...props} style={emission ? { right: 12, top: curveTop + 6 } : { left: gutter + 12, top: curveBottom - 24 }} />

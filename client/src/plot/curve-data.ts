@@ -1,5 +1,6 @@
 import type { Continuum, Samples } from '@foreveil/shared';
 import { buildPyramid, columnsOf, lowerBound, type Pyramid } from './pyramid.js';
+import type { Range } from './view.js';
 import { drawnProfile, type ProfileNumbers } from './profile.js';
 
 /** All that the panels draw, one value a sample, prepared once per spectrum and analysis. */
@@ -98,10 +99,17 @@ function faceOf(wavelength: Float64Array, normalised: Pyramid): StripColumns {
 }
 
 /** Takes about 0.2 s for 200 000 samples in a cold engine; `prepareCurve` does it beside the page. */
-export function buildCurveData(samples: Samples, continuum: Continuum | null, features: readonly ProfileNumbers[]): CurveData {
+export function buildCurveData(
+  samples: Samples,
+  continuum: Continuum | null,
+  features: readonly ProfileNumbers[],
+  masks: readonly Range[] = [],
+): CurveData {
   const { wavelength, flux, sigma } = samples;
   const bad = samples.bad.slice();
   for (let i = 0; i < bad.length; i++) if (!Number.isFinite(flux[i])) bad[i] = 1;
+  for (const { fromNm, toNm } of masks)
+    for (let i = lowerBound(wavelength, fromNm); i < bad.length && wavelength[i]! <= toNm; i++) bad[i] = 1;
   const fit = continuum && continuum.sampleNm.length > 0 ? fitted({ ...samples, bad }, continuum, features) : null;
   return {
     wavelength,

@@ -17,6 +17,8 @@ const GROUPS: readonly Group[] = [
       ['[ ]', 'view before, view after'],
       ['0', 'whole spectrum'],
       ['Enter', 'select the line at the cursor'],
+      ['s e', 'mark the start, the end of a region at the cursor'],
+      ['g', 'steer the analysis'],
       ['Esc', 'leave the curve'],
     ],
   },

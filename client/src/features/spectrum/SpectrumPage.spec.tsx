@@ -1,4 +1,4 @@
-import { encodeSamples, type AnalysisSummary, type Identification, type MemberRole } from '@foreveil/shared';
+import { DEFAULT_SETTINGS, encodeSamples, type AnalysisSummary, type Identification, type MemberRole } from '@foreveil/shared';
 import { MantineProvider } from '@mantine/core';
 import { Notifications, notifications } from '@mantine/notifications';
 import { QueryClientProvider } from '@tanstack/react-query';
@@ -55,7 +55,9 @@ function serve(parts: Partial<World> = {}): World {
     if (end === '') return Promise.resolve(answer(200, { id: 'programme-1', name: 'Gas', role: world.role, members: [] }));
     if (end === '/spectra/spectrum-1') return Promise.resolve(world.spectrum());
     if (end === '/spectra/spectrum-1/samples') return Promise.resolve(new Response(bytes() as BodyInit));
-    if (end === '/spectra/spectrum-1/analyses') return Promise.resolve(answer(200, world.run ? [world.run] : []));
+    if (end === '/spectra/spectrum-1/analyses')
+      return Promise.resolve(answer(200, world.run ? [{ ...world.run, settings: DEFAULT_SETTINGS }] : []));
+    if (end === '/spectra/spectrum-1/unplaced-decisions') return Promise.resolve(answer(200, []));
     if (end === '/spectra/spectrum-1/identifications') return Promise.resolve(answer(200, world.identifications));
     if (end === '/analyses/analysis-1') return Promise.resolve(answer(200, anAnalysisDetail()));
     const [, feature] = /features\/(\d+)\/decision/.exec(end) ?? [];

@@ -1,14 +1,12 @@
-import { notifications } from '@mantine/notifications';
-import { apiPaths, roleAllows, type AnalysisDetail } from '@foreveil/shared';
-import { useMutation, useQueryClient } from '@tanstack/react-query';
-import { useMemo } from 'react';
+import { Button } from '@mantine/core';
+import { apiPaths, roleAllows, settingsInWords, type AnalysisDetail } from '@foreveil/shared';
+import { useMemo, useState } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import { ErrorNote } from '../../components/ErrorNote.js';
 import { Simulated } from '../../components/Simulated.js';
 import { isAtWork } from '../../lib/analysis-words.js';
-import { errorSentence } from '../../lib/error-sentences.js';
+import { counted } from '../../lib/number.js';
 import { pagePaths } from '../../lib/paths.js';
-import { analysisQueries, cancelAnalysis, requestAnalysis, spectrumQueries } from '../../lib/queries/spectra.js';
 import { day } from '../../lib/time.js';
 import { useNow } from '../../lib/useNow.js';
 import { lineRows } from './lines/reading.js';
@@ -18,6 +16,8 @@ import { Workbench } from './page/Workbench.js';
 import { SpectrumFacts } from './page/facts.js';
 import { useSpectrumData, type SpectrumData } from './page/use-spectrum-data.js';
 import { usePageSettings, type PageSettings } from './state/use-page-state.js';
+import { useCancel, useRun } from './steering/use-run.js';
+import { useSteering, type Steering } from './steering/use-steering.js';
 import { shortTime } from './format.js';
 import classes from './page/spectrum.module.css';
 
@@ -29,8 +29,11 @@ export default function SpectrumPage() {
 }
 
 function Page({ programmeId, spectrumId }: { programmeId: string; spectrumId: string }) {
-  const data = useSpectrumData(programmeId, spectrumId);
+  const [runId, openRun] = useState<string | null>(null);
+  const data = useSpectrumData(programmeId, spectrumId, runId);
   const settings = usePageSettings();
+  const steering = useSteering(data.analysis);
+  const run = useRun(programmeId, spectrumId);
   const { spectrum, curve, analysis, identifications } = data;
   const result = analysis?.result ?? null;
   if (!spectrum) return data.error ? <Failure data={data} /> : <Waiting what="Fetching the spectrum" />;
@@ -38,10 +41,9 @@ function Page({ programmeId, spectrumId }: { programmeId: string; spectrumId: st
     <div className={classes.page}>
       <Header data={data} settings={settings} />
       <div className={classes.notes}>
-        <Runs data={data} programmeId={programmeId} spectrumId={spectrumId} />
-        {analysis && result && (
-          <Strap data={data} analysis={analysis} cautions={result.cautions} programmeId={programmeId} spectrumId={spectrumId} />
-        )}
+        <Runs data={data} steering={steering} run={run} programmeId={programmeId} spectrumId={spectrumId} />
+        {data.isOld && analysis && <OldRun at={analysis.requestedAt} onLeave={() => openRun(null)} />}
+        {analysis && result && <Strap {...{ data, analysis, steering, run, programmeId, spectrumId }} cautions={result.cautions} />}
       </div>
       {data.error && !(curve && analysis !== undefined) ? (
         <Failure data={data} />
@@ -50,7 +52,17 @@ function Page({ programmeId, spectrumId }: { programmeId: string; spectrumId: st
       ) : curve.wavelength.length < 2 ? (
         <EmptyCurve why="The spectrum holds fewer than two samples." />
       ) : (
-        <Workbench {...{ spectrum, analysis, identifications, settings }} data={curve} role={data.role} name={data.name} />
+        <Workbench
+          {...{ spectrum, analysis, identifications, settings, steering }}
+          data={curve}
+          role={data.isOld ? 'reader' : data.role}
+          name={data.name}
+          runs={data.runs}
+          isOld={data.isOld}
+          isStarting={run.isPending}
+          onRun={() => run.mutate(steering.draft)}
+          onOpenRun={openRun}
+        />
       )}
     </div>
   );
@@ -81,27 +93,35 @@ function Header({ data, settings }: { data: SpectrumData; settings: PageSettings
   );
 }
 
-interface StrapProps {
+type Run = ReturnType<typeof useRun>;
+
+interface RunProps {
   data: SpectrumData;
-  analysis: AnalysisDetail;
-  cautions: readonly string[];
+  steering: Steering;
+  run: Run;
   programmeId: string;
   spectrumId: string;
 }
 
+interface StrapProps extends RunProps {
+  analysis: AnalysisDetail;
+  cautions: readonly string[];
+}
+
 /** Under the facts: what to be careful about, and which run all this comes from. */
-function Strap({ data, analysis, cautions, programmeId, spectrumId }: StrapProps) {
-  const run = useRun(programmeId, spectrumId);
-  const mayRun = data.role !== null && roleAllows(data.role, 'analyst') && !isAtWork(data.latest);
+function Strap({ data, analysis, cautions, steering, run, programmeId, spectrumId }: StrapProps) {
+  const mayRun = data.role !== null && roleAllows(data.role, 'analyst') && !isAtWork(data.latest) && !data.isOld;
+  const set = settingsInWords(steering.run).length;
   return (
     <div className={classes.strap}>
       <Cautions cautions={cautions} />
       <div className={classes.run}>
         <span>
           Analysed {analysis.endedAt && shortTime(analysis.endedAt)}, {analysis.lineListName} {analysis.lineListVersion}
+          {set > 0 && `, ${counted(set, 'setting')} of a person`}
         </span>
         {mayRun && (
-          <button type="button" disabled={run.isPending} onClick={() => run.mutate()}>
+          <button type="button" disabled={run.isPending} onClick={() => run.mutate(steering.run)}>
             Run again
           </button>
         )}
@@ -114,26 +134,21 @@ function Strap({ data, analysis, cautions, programmeId, spectrumId }: StrapProps
   );
 }
 
-const failed = (title: string) => (error: unknown) => void notifications.show({ title, message: errorSentence(error) });
-
-function useRun(programmeId: string, spectrumId: string) {
-  const client = useQueryClient();
-  return useMutation({
-    mutationFn: () => requestAnalysis(programmeId, spectrumId, {}),
-    onSuccess: () => client.invalidateQueries({ queryKey: analysisQueries.list(programmeId, spectrumId).queryKey }),
-    onError: failed('The analysis was not started'),
-  });
+/** An older run is looked at, not decided on. */
+function OldRun({ at, onLeave }: { at: string; onLeave: () => void }) {
+  return (
+    <div className={classes.note} role="status">
+      <b>An older run, of {shortTime(at)}.</b> <span>It can be read, not decided on: decisions belong to the newest run.</span>
+      <span className={classes.push}>
+        <Button onClick={onLeave}>Back to the newest run</Button>
+      </span>
+    </div>
+  );
 }
 
-function Runs({ data, programmeId, spectrumId }: { data: SpectrumData; programmeId: string; spectrumId: string }) {
-  const client = useQueryClient();
-  const run = useRun(programmeId, spectrumId);
+function Runs({ data, steering, run, programmeId, spectrumId }: RunProps) {
   const now = useNow();
-  const cancel = useMutation({
-    mutationFn: (analysisId: string) => cancelAnalysis(programmeId, analysisId),
-    onSuccess: () => client.invalidateQueries({ queryKey: spectrumQueries.all(programmeId, spectrumId) }),
-    onError: failed('The analysis was not cancelled'),
-  });
+  const cancel = useCancel(programmeId, spectrumId);
   if (data.analysis === undefined) return null;
   return (
     <RunNotes
@@ -142,7 +157,7 @@ function Runs({ data, programmeId, spectrumId }: { data: SpectrumData; programme
       role={data.role}
       busy={run.isPending || cancel.isPending}
       now={now}
-      onRun={() => run.mutate()}
+      onRun={() => run.mutate(steering.draft)}
       onCancel={() => data.latest && cancel.mutate(data.latest.id)}
     />
   );

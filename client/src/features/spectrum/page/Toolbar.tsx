@@ -7,6 +7,7 @@ import type { Base, CurveMode } from '../../../plot/value-domain.js';
 import type { ViewStore } from '../../../plot/view.js';
 import { useSettledView } from '../state/use-settled.js';
 import type { LineRow } from '../lines/reading.js';
+import { useRegion, type RegionStore } from '../region/region-store.js';
 import { RangeBoxes } from './RangeBoxes.js';
 import { Readout } from './Readout.js';
 import classes from './spectrum.module.css';
@@ -21,6 +22,9 @@ interface Props {
   selected: LineRow | null;
   onMode: (mode: CurveMode) => void;
   onBase: (base: Base) => void;
+  region: RegionStore;
+  isSteering: boolean;
+  onSteer: () => void;
 }
 
 const MODES: readonly { mode: CurveMode; word: string }[] = [
@@ -28,7 +32,8 @@ const MODES: readonly { mode: CurveMode; word: string }[] = [
   { mode: 'normalised', word: 'Normalised' },
 ];
 
-export function Toolbar({ data, view, cursor, choice, mode, base, selected, onMode, onBase }: Props) {
+export function Toolbar({ data, view, cursor, choice, mode, base, selected, onMode, onBase, region, isSteering, onSteer }: Props) {
+  const { dragMarks } = useRegion(region);
   return (
     <div className={classes.tools}>
       <div className={classes.tabs} role="radiogroup" aria-label="What the curve shows">
@@ -48,6 +53,20 @@ export function Toolbar({ data, view, cursor, choice, mode, base, selected, onMo
       </div>
       <RangeBoxes view={view} display={choice} />
       <ViewButtons view={view} />
+      <div className={classes.group} role="group" aria-label="Region and analysis">
+        <button
+          type="button"
+          className={classes.tool}
+          aria-pressed={dragMarks}
+          title="Mark a stretch by dragging over the curve  s e"
+          onClick={() => region.setDragMarks(!dragMarks)}
+        >
+          Mark
+        </button>
+        <button type="button" className={classes.tool} aria-pressed={isSteering} title="Steer the analysis  g" onClick={onSteer}>
+          Steer
+        </button>
+      </div>
       <div className={classes.selects}>
         <NativeSelect
           size="xs"

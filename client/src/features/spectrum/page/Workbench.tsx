@@ -1,4 +1,4 @@
-import type { AnalysisDetail, Identification, MemberRole, SpectrumDetail } from '@foreveil/shared';
+import type { AnalysisDetail, AnalysisRun, Identification, MemberRole, SpectrumDetail } from '@foreveil/shared';
 import { useMediaQuery } from '@mantine/hooks';
 import { startTransition, useCallback, useDeferredValue, useEffect, useId, useMemo, useState, type KeyboardEvent } from 'react';
 import { looksLikeEmission } from '../../../lib/emission.js';
@@ -18,6 +18,9 @@ import { LinesPanel } from '../lines/LinesPanel.js';
 import { countInView, shownRows } from '../lines/filters.js';
 import { dueLines, plotFeature, staves as stavesOf } from '../lines/plot-features.js';
 import { lineRows } from '../lines/reading.js';
+import { RegionBar } from '../region/RegionBar.js';
+import { RegionStore } from '../region/region-store.js';
+import { useStretches } from '../region/use-stretches.js';
 import { firstView } from '../state/first-view.js';
 import { summary } from '../state/spoken.js';
 import { useActing } from '../state/use-acting.js';
@@ -27,6 +30,9 @@ import { useCommands } from '../state/use-commands.js';
 import { useAddress, type PageSettings } from '../state/use-page-state.js';
 import { rowAt, useSelection } from '../state/use-selection.js';
 import { useSettledView } from '../state/use-settled.js';
+import { SteeringPanel } from '../steering/SteeringPanel.js';
+import { Unplaced } from '../steering/Unplaced.js';
+import type { Steering } from '../steering/use-steering.js';
 import { DeskLayout, PhoneLayout } from './layouts.js';
 import { Toolbar } from './Toolbar.js';
 import { FRAME_SHORT } from './facts.js';
@@ -41,11 +47,18 @@ interface Props {
   /** of the person at the screen */
   name: string;
   settings: PageSettings;
+  steering: Steering;
+  runs: readonly AnalysisRun[];
+  /** the run on the page is not the newest: to look at only */
+  isOld: boolean;
+  isStarting: boolean;
+  onRun: () => void;
+  onOpenRun: (runId: string) => void;
 }
 
 /** Curve, lines and evidence, joined by one selection, one view and one set of keys. */
 export function Workbench(props: Props) {
-  const { spectrum, data, analysis, identifications, role, name, settings } = props;
+  const { spectrum, data, analysis, identifications, role, name, settings, steering } = props;
   const { choice, mode, base, filter, opened } = settings;
   const result = analysis?.result ?? null;
   const rows = useMemo(() => (result ? lineRows(result, identifications) : []), [result, identifications]);
@@ -54,6 +67,8 @@ export function Workbench(props: Props) {
     return new ViewStore(whole, opened.range ?? firstView(data, rows, whole, window.innerWidth - 160));
   });
   const [cursor] = useState(() => new CursorStore());
+  const [region] = useState(() => new RegionStore());
+  const stretches = useStretches(region, steering);
   const settled = useSettledView(view);
   const selection = useSelection(rows, view, opened.lineNm);
   const { selected, chosen, hovered, select, hover } = selection;
@@ -71,7 +86,22 @@ export function Workbench(props: Props) {
   const remarkId = useId();
   const decisions = useDecisions({ programmeId: spectrum.programmeId, spectrumId: spectrum.id, analysisId: analysis?.id ?? '', by: name });
   const acting = useActing({ selection, decisions, rows, shown, role, display: choice, say });
-  const onKey = useCommands({ data, view, cursor, selection, acting, rows: drawnRows, staves, display: choice, remarkId, say });
+  const { isOpen, open } = steering;
+  const onSteer = useCallback(() => open(!isOpen), [isOpen, open]);
+  const onKey = useCommands({
+    data,
+    view,
+    cursor,
+    selection,
+    acting,
+    rows: drawnRows,
+    staves,
+    display: choice,
+    remarkId,
+    region,
+    onSteer,
+    say,
+  });
   useAddress(settings, settled, selected?.feature.wavelengthNm ?? null);
 
   const onPick = useCallback(
@@ -106,7 +136,8 @@ export function Workbench(props: Props) {
         onKeyDown={onKey}
       >
         <CurveStack
-          {...{ data, staves, features, due, view, cursor, mode, base, emission, fluxUnit, hovered, onPick, onAlone }}
+          {...{ data, staves, features, due, view, cursor, mode, base, emission, fluxUnit, hovered, onPick, onAlone, stretches }}
+          onDrag={(range) => region.get().dragMarks && (region.mark(range.fromNm, range.toNm), true)}
           display={choice}
           selected={selected?.feature.index ?? null}
           alone={filter.system}
@@ -152,6 +183,16 @@ export function Workbench(props: Props) {
 
   return (
     <div style={{ display: 'contents' }} onKeyDown={onUndoKey}>
+      {analysis && !props.isOld && (
+        <Unplaced
+          programmeId={spectrum.programmeId}
+          spectrumId={spectrum.id}
+          analysisId={analysis.id}
+          onShow={(nm) => view.reveal(nm)}
+          {...{ role, selected }}
+          display={choice}
+        />
+      )}
       <div className={classes.over}>
         <Overview
           {...{ data, view, emission }}
@@ -162,10 +203,12 @@ export function Workbench(props: Props) {
         />
       </div>
       <Toolbar
-        {...{ data, view, cursor, choice, mode, base, selected }}
+        {...{ data, view, cursor, choice, mode, base, selected, region, onSteer }}
+        isSteering={steering.isOpen}
         onMode={(next) => settings.set({ mode: next })}
         onBase={(next) => settings.set({ base: next })}
       />
+      <RegionBar store={region} display={choice} {...{ data, selected, steering }} />
       {isPhone ? (
         <PhoneLayout {...{ curve, lines, evidence }} claim={chosen ? claimTitle(chosen, null, choice) : ''} />
       ) : (
@@ -174,6 +217,16 @@ export function Workbench(props: Props) {
       <div className={classes.unseen} role="status" aria-live="polite">
         {message}
       </div>
+      <SteeringPanel
+        {...{ steering, analysis, role }}
+        programmeId={spectrum.programmeId}
+        runs={props.runs}
+        display={choice}
+        busy={props.isStarting}
+        onRun={props.onRun}
+        onOpenRun={props.onOpenRun}
+        onShow={(nm) => view.reveal(nm)}
+      />
       <ConflictDialog conflict={decisions.conflict} display={choice} onKeepTheirs={decisions.keepTheirs} onApplyMine={acting.insist} />
     </div>
   );

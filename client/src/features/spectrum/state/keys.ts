@@ -11,6 +11,8 @@ export type Command =
   | { do: 'whole' }
   | { do: 'history'; direction: 1 | -1 }
   | { do: 'open' }
+  | { do: 'edge'; which: 'start' | 'end' }
+  | { do: 'steer' }
   | { do: 'leave' };
 
 export interface Key {
@@ -32,6 +34,9 @@ const PLAIN: Record<string, Command> = {
   o: { do: 'act', action: 'propose' },
   b: { do: 'act', action: 'reopen' },
   r: { do: 'remark' },
+  s: { do: 'edge', which: 'start' },
+  e: { do: 'edge', which: 'end' },
+  g: { do: 'steer' },
   '+': { do: 'zoom', factor: 0.5 },
   '=': { do: 'zoom', factor: 0.5 },
   '-': { do: 'zoom', factor: 2 },

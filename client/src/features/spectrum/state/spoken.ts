@@ -37,6 +37,10 @@ export function spokenCursor(data: CurveData, sample: number, rows: readonly Lin
   return `${wavelength}, flux ${flux.replace('±', 'plus or minus')}${line}`;
 }
 
+/** 'from 589.120 to 589.180 nm' */
+export const spokenRange = ({ fromNm, toNm }: Range, display: WavelengthDisplay): string =>
+  `from ${shownWavelength(fromNm, display, 3)} to ${shownWavelength(toNm, display, 3)} ${display.unitLabel}`;
+
 /** One sentence in the place of the picture. */
 export function summary(what: string, range: Range, rows: readonly LineRow[], display: WavelengthDisplay): string {
   const inView = rows.filter(({ feature }) => feature.wavelengthNm >= range.fromNm && feature.wavelengthNm <= range.toNm);

@@ -7,8 +7,9 @@ import type { ViewStore } from '../../../plot/view.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
 import { claimTitle } from '../evidence/claim-text.js';
 import { choices, type LineRow } from '../lines/reading.js';
+import type { RegionStore } from '../region/region-store.js';
 import { commandFor, type Command } from './keys.js';
-import { spokenCursor, spokenRow } from './spoken.js';
+import { spokenCursor, spokenRange, spokenRow } from './spoken.js';
 import type { Acting } from './use-acting.js';
 import { rowAt, type Selection } from './use-selection.js';
 
@@ -23,6 +24,8 @@ interface Needs {
   staves: readonly Stave[];
   display: WavelengthDisplay;
   remarkId: string;
+  region: RegionStore;
+  onSteer: () => void;
   say: (sentence: string) => void;
 }
 
@@ -39,7 +42,7 @@ export function onNextStaff(rows: readonly LineRow[], staves: readonly Stave[], 
 
 /** Carries out the keys of curve and table. */
 export function useCommands(needs: Needs): (event: KeyboardEvent) => void {
-  const { data, view, cursor, selection, acting, rows, staves, display, remarkId, say } = needs;
+  const { data, view, cursor, selection, acting, rows, staves, display, remarkId, region, onSteer, say } = needs;
 
   const goTo = useCallback(
     (row: LineRow | null | undefined) => {
@@ -101,12 +104,21 @@ export function useCommands(needs: Needs): (event: KeyboardEvent) => void {
           if (sample === null) return;
           return goTo(rowAt(rows, data.wavelength[sample]!, (r) => r.feature.fwhmNm));
         }
+        case 'edge': {
+          const { sample } = cursor.get();
+          if (sample === null) return say('Move the cursor with the arrow keys first.');
+          region.edge(command.which, data.wavelength[sample]!);
+          const marked = region.get().region;
+          return say(marked ? `Marked ${spokenRange(marked, display)}` : 'One end is marked; mark the other one.');
+        }
+        case 'steer':
+          return onSteer();
         case 'leave':
           cursor.set(null, 'keys');
           return target.blur();
       }
     },
-    [selection, moveCursor, rows, goTo, staves, acting, remarkId, cursor, data, view, say, display],
+    [selection, moveCursor, rows, goTo, staves, acting, remarkId, region, onSteer, cursor, data, view, say, display],
   );
 
   return useCallback(
