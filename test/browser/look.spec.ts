@@ -33,6 +33,8 @@ const SUBJECTS: Subject[] = [
   { page: 'find-lines', path: () => '/search', heading: /Find lines/ },
   { page: 'line-lists', path: ({ programme }) => `/programmes/${programme.id}/line-lists`, heading: /Line lists/ },
   { page: 'line-list', path: defaultList, heading: /Foreveil default/ },
+  { page: 'file', path: (demo) => `${spectrumOf(demo, 'Tern 1')}/file`, heading: /tern-1/ },
+  { page: 'reading-recipes', path: ({ programme }) => `/programmes/${programme.id}/recipes`, heading: /Reading recipes/ },
   { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];

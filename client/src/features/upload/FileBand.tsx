@@ -8,6 +8,7 @@ import type { OffendingLine } from '../../workers/offending-lines.js';
 import { NO_CORRECTIONS } from './entries.js';
 import { verdict, type Entry, type TargetChoice, type Verdict } from './entry.js';
 import { ReadingFacts } from './ReadingFacts.js';
+import { RecipeNote } from './RecipeNote.js';
 import classes from './upload.module.css';
 import { VerdictColumn } from './VerdictColumn.js';
 
@@ -69,6 +70,7 @@ function BandMiddle({ programmeId, targets, recipes, similar, entry, ...acts }: 
   if (!read?.ok) {
     return (
       <div>
+        <RecipeNote entry={entry} recipes={recipes} onRecipe={acts.onRecipe} onUndo={acts.onCorrect} />
         {read?.problem.answers?.length ? (
           <div className={reading.read}>
             <dl>
