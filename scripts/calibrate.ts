@@ -2,7 +2,8 @@
 // shared/src/identify/reliability-data.ts, which the screens show:
 //   npm run calibrate                                  the whole run, some tens of minutes on one core
 //   npm run calibrate -- --count 2 --kinds nebula --dry    a short look that writes nothing
-import { writeFileSync } from 'node:fs';
+import { createHash } from 'node:crypto';
+import { readdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { parseArgs } from 'node:util';
 import { format, resolveConfig } from 'prettier';
 import { analyse, calibrationError, DEFAULT_SETTINGS, PROGRAM_VERSION, shareInterval, type Reliability } from '@foreveil/shared';
@@ -23,6 +24,7 @@ const { values } = parseArgs({
 });
 const seed = Number(values.seed);
 const kinds = KINDS.filter((kind) => values.kinds.split(',').includes(kind));
+const sources = sourcesOf(new URL('../shared/src/', import.meta.url).pathname);
 const { list } = matter();
 const calibration = new Calibration();
 for (const kind of kinds) {
@@ -35,11 +37,20 @@ for (const kind of kinds) {
     console.error(`${kind} ${index}: ${analysis.features.length} features; systems ${found || 'none'}; made of ${made || 'none'}`);
   }
 }
-const reliability = calibration.result({ programVersion: PROGRAM_VERSION, lineListVersion: list.version, seed });
+const reliability = calibration.result({ programVersion: PROGRAM_VERSION, lineListVersion: list.version, sources, seed });
 print(reliability);
 if (!values.dry) {
   await write(reliability);
   console.log(`written to ${OUT.slice(OUT.indexOf('shared/'))}`);
+}
+
+/** Names the method that is measured, taken before the run: what is edited meanwhile was not loaded. */
+function sourcesOf(folder: string): string {
+  const names = readdirSync(folder, { recursive: true, encoding: 'utf8' }).sort();
+  const hash = createHash('sha256');
+  for (const name of names.filter((n) => n.endsWith('.ts') && !n.endsWith('.spec.ts') && !n.endsWith('reliability-data.ts')))
+    hash.update(`${name}\n`).update(readFileSync(`${folder}${name}`));
+  return hash.digest('hex').slice(0, 12);
 }
 
 function print({ families }: Reliability): void {

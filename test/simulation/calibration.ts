@@ -62,7 +62,7 @@ export class Calibration {
     }));
   }
 
-  result(versions: Pick<Reliability, 'programVersion' | 'lineListVersion' | 'seed'>): Reliability {
+  result(versions: Pick<Reliability, 'programVersion' | 'lineListVersion' | 'sources' | 'seed'>): Reliability {
     return {
       ...versions,
       spectra: this.spectra,

@@ -6,6 +6,7 @@ import type { Reliability } from './reliability.js';
 export const RELIABILITY: Reliability = {
   programVersion: '0.1.0',
   lineListVersion: '2026.1',
+  sources: 'not recorded',
   seed: 20262,
   spectra: { nebula: 2, ultraviolet: 2, survey: 2 },
   families: [

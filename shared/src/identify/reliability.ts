@@ -26,6 +26,8 @@ export interface FamilyReliability {
 export interface Reliability {
   readonly programVersion: string;
   readonly lineListVersion: string;
+  /** of the method as it was then: the beginning of the SHA-256 of the sources of shared, tests and this result left out */
+  readonly sources: string;
   readonly seed: number;
   /** simulated spectra of each kind */
   readonly spectra: Readonly<Record<string, number>>;

@@ -12,7 +12,7 @@ export function ProbabilitiesPage() {
 }
 
 export function Tests({ reliability }: { reliability: Reliability }) {
-  const { programVersion, lineListVersion, spectra, families, seed } = reliability;
+  const { programVersion, lineListVersion, sources, spectra, families, seed } = reliability;
   const all = Object.values(spectra).reduce((a, b) => a + b, 0);
   return (
     <>
@@ -20,7 +20,7 @@ export function Tests({ reliability }: { reliability: Reliability }) {
         title="How probabilities are tested"
         sub={`Of readings given 0.9, nine in ten should be right. ${count(all)} simulated spectra with known lines were analysed as yours are, and every reported feature was counted, also those that were nothing.`}
         facts={[
-          { label: 'Program', value: programVersion },
+          { label: 'Program', value: programVersion, note: `sources ${sources}` },
           { label: 'Line list', value: lineListVersion },
           { label: 'Spectra', value: count(all), note: `seed ${seed}` },
         ]}

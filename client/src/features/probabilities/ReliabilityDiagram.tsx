@@ -7,6 +7,7 @@ const SIDE = 220;
 const LEFT = 34;
 const BELOW = 34;
 const ROOM = 10; // for marks at the edges
+const ABOVE = 18; // for the name of the axis
 const TICKS = [0, 0.25, 0.5, 0.75, 1];
 const x = (share: number) => LEFT + ROOM + share * (SIDE - 2 * ROOM);
 const y = (share: number) => SIDE - ROOM - share * (SIDE - 2 * ROOM);
@@ -17,7 +18,7 @@ export function ReliabilityDiagram({ family, first }: FamilyReliability) {
   return (
     <svg
       className={classes.diagram}
-      viewBox={`0 0 ${LEFT + SIDE} ${SIDE + BELOW}`}
+      viewBox={`0 ${-ABOVE} ${LEFT + SIDE} ${SIDE + BELOW + ABOVE}`}
       role="img"
       aria-label={`Stated probability against the share that was right, ${FAMILY_WORD[family]}; numbers in the table`}
     >
@@ -37,7 +38,7 @@ export function ReliabilityDiagram({ family, first }: FamilyReliability) {
       <text x={x(0.5)} y={SIDE + 30} textAnchor="middle">
         stated probability
       </text>
-      <text x={x(0) - 4} y={y(1) - ROOM + 12} className={classes.axisName}>
+      <text x={LEFT} y={-6}>
         share right
       </text>
       {bins.map(({ from, count, right, mean }) => {

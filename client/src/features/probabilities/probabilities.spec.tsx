@@ -7,6 +7,7 @@ import { Tests } from './ProbabilitiesPage.js';
 const reliability: Reliability = {
   programVersion: '1.2.3',
   lineListVersion: '2026.1',
+  sources: 'abc',
   seed: 5,
   spectra: { nebula: 2, 'cool-star': 3 },
   families: [

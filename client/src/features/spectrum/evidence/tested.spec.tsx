@@ -11,6 +11,7 @@ const first: Candidate = feature.candidates[0]!;
 const reliability: Reliability = {
   programVersion: '9.9.9',
   lineListVersion: '1',
+  sources: 'abc',
   seed: 1,
   spectra: { sightline: 3 },
   families: [
