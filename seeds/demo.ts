@@ -33,7 +33,7 @@ export async function seedDemo(db: Knex, config: Config): Promise<void> {
 }
 
 async function insertUsers(trx: Trx, hashes: readonly string[]): Promise<string[]> {
-  const rows = DEMO_ACCOUNTS.map(({ email, name }, i) => ({ email, name, password_hash: hashes[i] }));
+  const rows = DEMO_ACCOUNTS.map(({ email, name, administrator = false }, i) => ({ email, name, administrator, password_hash: hashes[i] }));
   const made = await trx('users').insert(rows).returning<{ id: string }[]>('id');
   return made.map(({ id }) => id);
 }

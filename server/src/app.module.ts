@@ -17,6 +17,10 @@ import { EventsModule } from './modules/events/events.module.js';
 import { HealthModule } from './modules/health/health.module.js';
 import { IdentificationsModule } from './modules/identifications/identifications.module.js';
 import { LineListsModule } from './modules/linelists/linelists.module.js';
+import { AdminModule } from './modules/admin/admin.module.js';
+import { InvitationsModule } from './modules/invitations/invitations.module.js';
+import { MembersModule } from './modules/members/members.module.js';
+import { TokensModule } from './modules/tokens/tokens.module.js';
 import { MailModule } from './modules/mail/mail.module.js';
 import { ProgrammesModule } from './modules/programmes/programmes.module.js';
 import { RecipesModule } from './modules/recipes/recipes.module.js';
@@ -66,6 +70,10 @@ const ClientModule = ServeStaticModule.forRootAsync({
     ReportsModule,
     EventsModule,
     MailModule,
+    TokensModule,
+    InvitationsModule,
+    MembersModule,
+    AdminModule,
     HealthModule,
   ],
   providers: [

@@ -19,6 +19,7 @@ import { workOnAnalysis } from './modules/analyses/work/work-on-analysis.js';
 import { workOnComparison } from './modules/comparisons/work/work-on-comparison.js';
 import { defaultLineListId, loadLineList } from './modules/linelists/line-list-store.js';
 import { keepSending } from './modules/mail/keep-sending.js';
+import { keepPurging } from './modules/programmes/keep-purging.js';
 import { stopOnSignal } from './stop.js';
 
 /** An analysis worker: takes jobs from the queue, and takes back those of workers that died. Any number may run, on any machine. */
@@ -59,6 +60,7 @@ await boss.work<CompareJob>(COMPARE_QUEUE, { pollingIntervalSeconds: 0.5 }, asyn
 });
 void sweepForever();
 const mail = keepSending(db, config, log, stopping.signal);
+void keepPurging(db, log, stopping.signal);
 stopOnSignal(stop, 15_000);
 log.info('ready');
 

@@ -1,7 +1,6 @@
 import { readFileSync, statSync } from 'node:fs';
 import { gunzipSync } from 'node:zlib';
-import { apiPaths, type ProgrammeSummary, type SpectrumSummary, type TargetSummary } from '@foreveil/shared';
-import { PASSWORD_LENGTH } from '../../server/src/common/auth/password.js';
+import { PASSWORD_LENGTH, apiPaths, type ProgrammeSummary, type SpectrumSummary, type TargetSummary } from '@foreveil/shared';
 import { DEMO_ACCOUNTS } from '../../seeds/demo-accounts.js';
 import { DEMO_SPECTRA } from '../../seeds/demo-spectra.js';
 import { seedData } from '../../seeds/line-list.js';

@@ -28,7 +28,7 @@ describe('signing in', () => {
   test('opens a session in a cookie that scripts cannot read', async () => {
     const person = await makePerson(api);
     const answer = await post(apiPaths.signIn, { email: person.email.toUpperCase(), password: PASSWORD }).expect(200);
-    expect(answer.body).toEqual({ id: person.userId, email: person.email, name: person.name });
+    expect(answer.body).toEqual({ id: person.userId, email: person.email, name: person.name, administrator: false });
     const cookie = answer.get('Set-Cookie')![0]!;
     expect(cookie).toMatch(/^foreveil=/);
     expect(cookie.split('; ').slice(1)).toEqual(expect.arrayContaining(['Path=/', 'HttpOnly', 'SameSite=Lax']));
@@ -122,7 +122,7 @@ describe('a session', () => {
     const person = await makePerson(api);
     const [header, payload, signature] = person.cookie.replace('foreveil=', '').split('.') as [string, string, string];
     const claims = JSON.parse(Buffer.from(payload, 'base64url').toString()) as Record<string, unknown>;
-    expect(Object.keys(claims).sort()).toEqual(['aud', 'exp', 'iat', 'iss', 'sid', 'sub']); // nothing that could go out of date
+    expect(Object.keys(claims).sort()).toEqual(['aud', 'exp', 'gen', 'iat', 'iss', 'sid', 'sub']); // nothing that could go out of date
     const part = (value: object) => Buffer.from(JSON.stringify(value)).toString('base64url');
     const signed = (head: object, body: object, secret = api.config.jwtSecret, algorithm = 'sha256') => {
       const text = `${part(head)}.${part(body)}`;
@@ -140,6 +140,8 @@ describe('a session', () => {
       'from another issuer': signed(HS256, { ...claims, iss: 'someone-else' }),
       'out of date': signed(HS256, { ...claims, exp: Math.floor(Date.now() / 1000) - 1 }),
       'of another person with this session': signed(HS256, { ...claims, sub: other.userId }),
+      'of a generation that never was': signed(HS256, { ...claims, gen: 2 }),
+      'without a generation': signed(HS256, { ...claims, gen: undefined }),
       'without a session': signed(HS256, { ...claims, sid: undefined }),
       'with a session that is no id': signed(HS256, { ...claims, sid: "' or true --" }),
       'with a changed payload': `${header}.${part({ ...claims, sub: other.userId })}.${signature}`,

@@ -53,7 +53,7 @@ export async function withSession<T>(send: () => Promise<T>, quiet = false): Pro
 
 async function json<T>(method: Method, path: string, body: unknown, options: RequestOptions = {}): Promise<T> {
   const response = await withSession(() => once(method, path, body, options), options.quiet);
-  if (response.status === 204) return undefined as T;
+  if (response.status === 204 || response.status === 202) return undefined as T; // done, or taken on: neither says more
   try {
     return (await response.json()) as T;
   } catch (error) {

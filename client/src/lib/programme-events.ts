@@ -18,6 +18,8 @@ export function applyEvent(client: QueryClient, programmeId: string, event: Prog
       return refetch(client, recipeQueries.list(programmeId).queryKey);
     case 'comparison':
       return refetch(client, comparisonQueries.all(programmeId));
+    case 'programme': // a role may have changed: what may be done is asked anew, and where one is
+      return refetch(client, programmeQueries.within(programmeId), programmeQueries.list().queryKey);
     case 'spectrum':
       // new, renamed, moved, read anew or removed: what hangs on it may be other, and its samples too
       refetch(

@@ -25,6 +25,13 @@ export interface Config {
   readonly passwordCost: number;
   readonly sessionIdleMinutes: number;
   readonly sessionHours: number;
+  /** a session in use gets a new cookie this often */
+  readonly sessionRotateMinutes: number;
+  /** how long links in mails are good for */
+  readonly invitationDays: number;
+  readonly resetMinutes: number;
+  /** invitations that one person may send in an hour */
+  readonly invitationsPerHour: number;
   /** addresses whose X-Forwarded-For is believed */
   readonly trustedProxies: readonly string[];
   readonly signInPerAccount: number;
@@ -95,6 +102,10 @@ export function loadConfig(env: NodeJS.ProcessEnv = process.env): Config {
     passwordCost: number('PASSWORD_COST', 12, mode === 'test' ? 4 : 12),
     sessionIdleMinutes: number('SESSION_IDLE_MINUTES', 8 * 60, 1),
     sessionHours: number('SESSION_HOURS', 7 * 24, 1),
+    sessionRotateMinutes: number('SESSION_ROTATE_MINUTES', 15, 0),
+    invitationDays: number('INVITATION_DAYS', 14, 0.0001),
+    resetMinutes: Math.min(60, number('RESET_MINUTES', 60, 0.01)),
+    invitationsPerHour: number('INVITATIONS_PER_HOUR', 60, 1),
     trustedProxies: (env.TRUSTED_PROXIES ?? '').split(',').filter(Boolean),
     signInPerAccount: number('SIGN_IN_PER_ACCOUNT', 10, 1),
     signInPerAddress: number('SIGN_IN_PER_ADDRESS', 60, 1),

@@ -10,10 +10,14 @@ export interface Me {
   id: string;
   email: string;
   name: string;
+  /** manages the accounts of the site */
+  administrator: boolean;
 }
 export interface SignIn {
   email: string;
   password: string;
+  /** of the authenticator app, or a recovery code; asked for with second_factor_needed */
+  code?: string;
 }
 
 export interface Member {
@@ -27,6 +31,7 @@ export interface ProgrammeSummary {
   description: string;
   simulated: boolean;
   role: MemberRole;
+  version: number;
   targets: number;
   spectra: number;
   accepted: number;
@@ -201,7 +206,9 @@ export type ProgrammeEvent =
   | { type: 'identification'; identification: Identification }
   | { type: 'spectrum'; spectrumId: string; targetId: string }
   | { type: 'analysis_recipes' }
-  | { type: 'comparison'; comparisonId: string };
+  | { type: 'comparison'; comparisonId: string }
+  /** the programme's name, its members or their roles changed */
+  | { type: 'programme'; programmeId: string };
 
 /** problem+json, RFC 9457. */
 export interface Problem {

@@ -5,6 +5,7 @@ export * from './files.js';
 export * from './line-lists.js';
 export * from './mail.js';
 export * from './paths.js';
+export * from './people.js';
 export * from './roles.js';
 export * from './samples.js';
 export * from './search.js';

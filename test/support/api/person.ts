@@ -1,7 +1,8 @@
-import type { MemberRole } from '@foreveil/shared';
+import type { MemberRole, TokenScope } from '@foreveil/shared';
 import { randomBytes } from 'node:crypto';
 import request, { type Test } from 'supertest';
 import { hashPassword } from '../../../server/src/common/auth/password.js';
+import { hashSecret } from '../../../server/src/common/auth/one-time.js';
 import type { Api } from './api.js';
 
 export const ROLES = ['anonymous', 'outsider', 'reader', 'analyst', 'reviewer', 'lead'] as const;
@@ -17,6 +18,8 @@ export interface Person {
   readonly email: string;
   readonly name: string;
   readonly cookie: string;
+  /** of a script, instead of a cookie */
+  readonly bearer?: string;
   get(path: string): Test;
   post(path: string, body?: object, headers?: Record<string, string>): Test;
   patch(path: string, body?: object, headers?: Record<string, string>): Test;
@@ -54,18 +57,32 @@ export async function makePerson(api: Api, role: Role = 'outsider'): Promise<Per
   return personWith(api, { role, userId: row!.id, email, name, cookie: await signIn(api, email) });
 }
 
+/** A script of a person, with an access token of theirs. */
+export async function scriptOf(api: Api, { userId, role, email, name }: Person, scope: TokenScope): Promise<Person> {
+  const bearer = `fvt_${randomBytes(32).toString('base64url')}`;
+  const row = { user_id: userId, name: 'script', scope, secret_hash: hashSecret(bearer) };
+  await api.db('access_tokens').insert({ ...row, expires_at: new Date(Date.now() + 86_400_000) });
+  return personWith(api, { role, userId, email, name, cookie: '', bearer });
+}
+
 /** @returns the session cookie, 'name=value' */
 export async function signIn(api: Api, email: string, password = PASSWORD): Promise<string> {
   const answer = await request(api.url).post('/api/auth/sign-in').set('X-Foreveil', '1').send({ email, password }).expect(200);
   return answer.get('Set-Cookie')![0]!.split(';')[0]!;
 }
 
-type Facts = Pick<Person, 'role' | 'userId' | 'email' | 'name' | 'cookie'>;
+type Facts = Pick<Person, 'role' | 'userId' | 'email' | 'name' | 'cookie' | 'bearer'>;
+
+/** What shows who a person is. */
+export const credentialsOf = ({ cookie, bearer }: Pick<Person, 'cookie' | 'bearer'>): Record<string, string> => ({
+  ...(cookie ? { Cookie: cookie } : {}),
+  ...(bearer ? { Authorization: `Bearer ${bearer}` } : {}),
+});
 
 export function personWith(api: Api, facts: Facts): Person {
   const dressed = (test: Test, headers: Record<string, string> = {}): Test => {
-    if (facts.cookie) void test.set('Cookie', facts.cookie);
-    return test.set('X-Foreveil', '1').set(headers);
+    if (!facts.bearer) void test.set('X-Foreveil', '1');
+    return test.set(credentialsOf(facts)).set(headers);
   };
   return {
     ...facts,

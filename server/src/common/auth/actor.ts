@@ -1,12 +1,16 @@
 import { createParamDecorator, type ExecutionContext } from '@nestjs/common';
+import type { TokenScope } from '@foreveil/shared';
 import type { Request } from 'express';
 
-/** The signed-in person behind a request. */
+/** The person behind a request: signed in with a browser, or a script with one of their access tokens. */
 export interface Actor {
   readonly userId: string;
   readonly name: string;
   readonly email: string;
+  readonly administrator: boolean;
+  /** '' for a script */
   readonly sessionId: string;
+  readonly token: { readonly id: string; readonly scope: TokenScope } | null;
 }
 
 export const CurrentActor = createParamDecorator(

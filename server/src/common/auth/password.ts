@@ -23,6 +23,3 @@ export const isOutdated = (hash: string, { passwordCost }: HashSettings): boolea
 
 /** A hash that no password matches, to spend the same time on accounts that do not exist. */
 export const unmatchable = (settings: HashSettings): Promise<string> => hashPassword(randomBytes(32).toString('hex'), settings);
-
-/** Passwords are the only factor, so they are long; nothing else is asked of them. Counted in code points. */
-export const PASSWORD_LENGTH = { least: 15, most: 256 };

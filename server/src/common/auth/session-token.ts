@@ -1,10 +1,11 @@
 import type { CookieOptions } from 'express';
 import type { Config } from '../../config/config.js';
 
-/** What the cookie carries: who and which session, nothing that could go out of date. */
+/** What the cookie carries: who, which session and which generation of it; nothing that could go out of date. */
 export interface Claims {
   readonly sub: string;
   readonly sid: string;
+  readonly gen: number;
 }
 
 export const ALGORITHM = 'HS256';

@@ -1,5 +1,4 @@
 import { Inject, Injectable } from '@nestjs/common';
-import { JwtService } from '@nestjs/jwt';
 import type { Me, SignIn } from '@foreveil/shared';
 import type { Knex } from 'knex';
 import type { Actor } from '../../common/auth/actor.js';
@@ -11,8 +10,9 @@ import { CONFIG } from '../../config/config.module.js';
 import { KNEX } from '../../database/knex.js';
 import { inTransaction } from '../../database/transaction.js';
 import { addAudit } from '../audit/add-audit.js';
-import { sayEvent } from '../events/say-event.js';
-import { closeSession, findActiveUser, openSession, setPasswordHash } from './accounts.repository.js';
+import { findActiveUser, openSession, setPasswordHash, type UserRow } from './accounts.repository.js';
+import { endSessions } from './end-sessions.js';
+import { SecondFactorService } from './second-factor/second-factor.service.js';
 
 @Injectable()
 export class AccountsService {
@@ -22,34 +22,39 @@ export class AccountsService {
   constructor(
     @Inject(KNEX) private readonly db: Knex,
     @Inject(CONFIG) private readonly config: Config,
-    private readonly jwt: JwtService,
+    private readonly secondFactor: SecondFactorService,
   ) {
     this.nobody = unmatchable(config);
   }
 
-  /** @returns the signed token for the cookie, always of a new session */
-  async signIn({ email, password }: SignIn): Promise<{ token: string; me: Me }> {
+  /** @param device what the browser says of itself @returns what the cookie has to carry, always of a new session */
+  async signIn({ email, password, code }: SignIn, device: string): Promise<{ claims: Claims; me: Me }> {
     const user = await findActiveUser(this.db, email);
     const right = await matchesPassword(password, user?.password_hash ?? (await this.nobody), this.config);
     if (!user || !right) {
       await addAudit(this.db, { userId: user?.id ?? null, programmeId: null, action: 'sign_in_refused', subject: 'account', facts: {} });
       throw new DomainError('wrong_credentials', 'The e-mail address or the password is not right.');
     }
+    await this.secondFactor.pass(user.id, code);
     if (isOutdated(user.password_hash, this.config)) await setPasswordHash(this.db, user.id, await hashPassword(password, this.config));
-    const sid = await inTransaction(this.db, async (trx) => {
-      await addAudit(trx, { userId: user.id, programmeId: null, action: 'sign_in', subject: user.id, facts: {} });
-      return openSession(trx, user.id, this.config.sessionHours);
+    return { claims: await this.open(user.id, device), me: meOf(user) };
+  }
+
+  /** A session for a person who has shown who they are. */
+  open(userId: string, device: string): Promise<Claims> {
+    return inTransaction(this.db, async (trx) => {
+      await addAudit(trx, { userId, programmeId: null, action: 'sign_in', subject: userId, facts: {} });
+      return { sub: userId, sid: await openSession(trx, userId, device, this.config.sessionHours), gen: 1 };
     });
-    const claims: Claims = { sub: user.id, sid };
-    return { token: await this.jwt.signAsync(claims), me: { id: user.id, email: user.email, name: user.name } };
   }
 
   /** Ends the session everywhere, open event streams included. */
-  async signOut(actor: Actor): Promise<void> {
+  async signOut({ userId, sessionId }: Actor): Promise<void> {
     await inTransaction(this.db, async (trx) => {
-      await closeSession(trx, actor.sessionId);
-      await addAudit(trx, { userId: actor.userId, programmeId: null, action: 'sign_out', subject: actor.userId, facts: {} });
-      await sayEvent(trx, { kind: 'session_ended', sessionId: actor.sessionId });
+      await endSessions(trx, userId, { only: sessionId });
+      await addAudit(trx, { userId, programmeId: null, action: 'sign_out', subject: userId, facts: {} });
     });
   }
 }
+
+const meOf = ({ id, email, name, administrator }: UserRow): Me => ({ id, email, name, administrator });

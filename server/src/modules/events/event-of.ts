@@ -19,6 +19,8 @@ export async function eventOf(db: Knex, said: Extract<Said, { programmeId: strin
       return { type: 'analysis_recipes' };
     case 'comparison':
       return { type: 'comparison', comparisonId: said.id };
+    case 'programme':
+      return { type: 'programme', programmeId: said.programmeId };
     case 'spectrum': {
       const row = await db('spectra').where({ id: said.id, programme_id: said.programmeId }).first<{ target_id: string }>('target_id');
       return row ? { type: 'spectrum', spectrumId: said.id, targetId: row.target_id } : null;

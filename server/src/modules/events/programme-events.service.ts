@@ -3,7 +3,7 @@ import type { ProgrammeEvent } from '@foreveil/shared';
 import type { Knex } from 'knex';
 import type { Actor } from '../../common/auth/actor.js';
 import { roleIn } from '../../common/auth/membership.js';
-import { sessionHolds } from '../../common/auth/sessions.js';
+import { actorHolds } from '../../common/auth/sessions.js';
 import type { Config } from '../../config/config.js';
 import { CONFIG } from '../../config/config.module.js';
 import { KNEX } from '../../database/knex.js';
@@ -54,10 +54,16 @@ export class ProgrammeEvents implements OnModuleInit, BeforeApplicationShutdown 
     const said = parseSaid(payload);
     if (said.kind === 'session_ended') return this.endWhere(({ actor }) => actor.sessionId === said.sessionId);
     if (said.kind === 'analysis_cancelled') return; // for workers
+    if (said.kind === 'programme') await this.checkOf(said.programmeId);
     const readers = [...this.subscribers].filter(({ programmeId }) => programmeId === said.programmeId);
     if (!readers.length) return;
     const event: ProgrammeEvent | null = await eventOf(this.db, said);
     if (event) readers.forEach((reader) => reader.write(`data: ${JSON.stringify(event)}\n\n`));
+  }
+
+  /** Members may have changed: who is none any more hears nothing further. */
+  private async checkOf(programmeId: string): Promise<void> {
+    await Promise.all([...this.subscribers].filter((one) => one.programmeId === programmeId).map((one) => this.check(one)));
   }
 
   private checkAll(): void {
@@ -68,7 +74,7 @@ export class ProgrammeEvents implements OnModuleInit, BeforeApplicationShutdown 
   private async check(subscriber: Subscriber): Promise<void> {
     const { actor, programmeId } = subscriber;
     const [signedIn, role] = await Promise.all([
-      sessionHolds(this.db, actor, this.config.sessionIdleMinutes),
+      actorHolds(this.db, actor, this.config.sessionIdleMinutes),
       roleIn(this.db, actor.userId, programmeId),
     ]);
     if (signedIn && role) subscriber.write(': beat\n\n');

@@ -7,6 +7,8 @@ export type Said =
   | { readonly kind: 'spectrum'; readonly programmeId: string; readonly id: string }
   | { readonly kind: 'analysis_recipes'; readonly programmeId: string }
   | { readonly kind: 'comparison'; readonly programmeId: string; readonly id: string }
+  /** the name, the members or their roles changed, or the programme was deleted */
+  | { readonly kind: 'programme'; readonly programmeId: string }
   | { readonly kind: 'session_ended'; readonly sessionId: string }
   | { readonly kind: 'analysis_cancelled'; readonly id: string };
 

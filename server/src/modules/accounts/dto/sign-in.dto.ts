@@ -1,6 +1,7 @@
 import type { SignIn } from '@foreveil/shared';
 import { ApiProperty } from '@nestjs/swagger';
 import { IsString, Length } from 'class-validator';
+import { Omittable } from '../../../common/http/omittable.js';
 
 export class SignInDto implements SignIn {
   @ApiProperty({ example: 'name@example.org', maxLength: 254 })
@@ -12,4 +13,10 @@ export class SignInDto implements SignIn {
   @IsString()
   @Length(1, 1024)
   password: string;
+
+  @ApiProperty({ required: false, maxLength: 40, description: 'of the authenticator app, or a recovery code' })
+  @Omittable()
+  @IsString()
+  @Length(6, 40)
+  code?: string;
 }
