@@ -20,6 +20,7 @@ export async function findByQuery(db: Knex, userId: string, query: PageOf): Prom
   const { limit, order = 'wavelength' } = query;
   const programmes = db('memberships')
     .where({ user_id: userId })
+    .whereExists(db('programmes').whereRaw('id = memberships.programme_id and deleted_at is null'))
     .modify((q) => void (query.programmeId && q.where({ programme_id: query.programmeId })))
     .select('programme_id');
   const found = db
