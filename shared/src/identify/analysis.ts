@@ -36,6 +36,8 @@ export interface VelocitySystem {
   readonly members: number;
   /** typical FWHM of its lines, km/s */
   readonly fwhmKmPerS: number;
+  /** z, of systems too fast for a velocity to be the usual word */
+  readonly redshift?: number;
   /** a person set it; it may have no member then */
   readonly set?: boolean;
 }

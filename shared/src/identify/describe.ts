@@ -6,7 +6,7 @@ import type { Measured } from './measure.js';
 import type { FeatureRanking, Ranked } from './rank.js';
 import { Elsewhere, settlingOf } from './settle.js';
 import { speciesOf } from './species.js';
-import { velocityOf, type Coverage, type FeatureView } from './views.js';
+import { dopplerFactor, velocityOf, type Coverage, type FeatureView } from './views.js';
 
 export interface Told {
   readonly systems: VelocitySystem[];
@@ -14,6 +14,7 @@ export interface Told {
   readonly species: SpeciesPresence[];
 }
 
+const FAST = 1500; // km/s
 const ARGUED = 4; // candidates that get their companions and what would settle them; the argument is given for all
 
 /** Turns the inner result into what is stored and shown. */
@@ -36,6 +37,7 @@ export function describe(
       members: features.filter((f) => f.candidates[0]?.systemId === system.id && f.candidates[0].probability > f.unidentifiedProbability)
         .length,
       fwhmKmPerS: Math.max(system.fwhmV, coverage.elementV),
+      ...(Math.abs(system.velocity) > FAST && { redshift: dopplerFactor(system.velocity) - 1 }),
       ...(system.set && { set: true }),
     }))
     .filter((s) => s.members > 0 || s.set);

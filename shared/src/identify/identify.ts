@@ -1,4 +1,4 @@
-import type { Family, LineList } from '../linelist/index.js';
+import type { Family, Line, LineList } from '../linelist/index.js';
 import type { Frame } from '../spectrum/index.js';
 import { C_KM_PER_S } from '../units/index.js';
 import { findAir } from './air.js';
@@ -8,6 +8,7 @@ import { findNebulae, type LogContinuum } from './nebulae.js';
 import { speciesState, type Background } from './offsets.js';
 import { populationOf } from './population.js';
 import { contendersOf, rankFeature, type FeatureRanking, type SystemState } from './rank.js';
+import { findFar } from './redshift.js';
 import { setSystem } from './set-systems.js';
 import { findStar, type TemperatureHint } from './star.js';
 import { NO_WISHES, permitted, type SystemWishes } from './steer.js';
@@ -44,11 +45,12 @@ export function identify(input: IdentifyInput): Identified {
   );
   const margin = 1 + (farthest * 1.2) / C_KM_PER_S;
   const near = list.lines.filter((l) => l.wavelengthNm > coverage.fromNm / margin && l.wavelengthNm < coverage.toNm * margin);
-  const of = (family: string) => near.filter((l) => l.settings.some((s) => s === family));
+  const of = (family: Family) => near.filter((l) => l.settings.includes(family));
+  const anywhere = (family: Family) => list.lines.filter((l) => l.settings.includes(family));
   const found = new Findings(input);
   const { systems } = found;
   const { wishes = NO_WISHES } = input;
-  const photosphere = of('stellar').filter((l) => l.logGf !== null && l.type === 'allowed');
+  const photosphere = of('stellar').filter(isPhotospheric);
   const airLines = of('telluric');
   const ground = { ...input, photosphere, interstellar: of('interstellar'), nebular: of('nebular'), telluric: airLines };
   wishes.set.forEach((wanted, n) => systems.push(setSystem(wanted, n + 1, found.scene(), ground)));
@@ -68,6 +70,15 @@ export function identify(input: IdentifyInput): Identified {
     systems.push(...findNebulae(ground.nebular, found.scene('nebular'), input.velocityRangeKmPerS, input.logContinuum));
     const glowing = findAir(airLines, 'peak', found.scene('telluric'), input.frame);
     if (glowing) systems.push(glowing);
+    if (!systems.some((s) => s.family === 'nebular') && !wishes.forbidden.some((w) => w.family === 'nebular')) {
+      const whole = {
+        ...ground,
+        nebular: anywhere('nebular'),
+        interstellar: anywhere('interstellar'),
+        photosphere: anywhere('stellar').filter(isPhotospheric),
+      };
+      systems.push(...findFar(found.scene(), whole, input.temperature, input.logContinuum, input.velocityRangeKmPerS));
+    }
   }
 
   const background = { ...found.scene().background, population: populationOf(features, systems, null, coverage) };
@@ -81,6 +92,8 @@ export function identify(input: IdentifyInput): Identified {
     settled,
   );
 }
+
+const isPhotospheric = (l: Line): boolean => l.logGf !== null && l.type === 'allowed';
 
 /** Bands without a cloud stand at no velocity of their own: they go when gas is forbidden at zero. */
 const bandsMayShow = (wishes: SystemWishes, clouds: readonly SystemModel[]): boolean =>

@@ -19,7 +19,7 @@ const MUCH_MORE_LIGHT = 30; // times the signal to noise: no proposal beyond
 
 /** Lines of each species that the data do not cover, in the order in which it would pay to observe them. Asked once a species and system. */
 export class Elsewhere {
-  readonly #uncovered = new Map<string, Line[]>();
+  readonly #bySpecies = new Map<string, Line[]>();
   readonly #asked = new Map<SpeciesState, Beyond[]>();
 
   constructor(
@@ -27,10 +27,9 @@ export class Elsewhere {
     readonly coverage: Coverage,
   ) {
     for (const l of lines) {
-      if (l.wavelengthNm >= coverage.fromNm && l.wavelengthNm <= coverage.toNm) continue;
-      const list = this.#uncovered.get(l.species);
+      const list = this.#bySpecies.get(l.species);
       if (list) list.push(l);
-      else this.#uncovered.set(l.species, [l]);
+      else this.#bySpecies.set(l.species, [l]);
     }
   }
 
@@ -38,20 +37,28 @@ export class Elsewhere {
   of({ state, system, expected }: Contender): readonly Beyond[] {
     let known = this.#asked.get(state);
     if (known) return known;
-    const lines = (this.#uncovered.get(expected.line.species) ?? []).filter((l) => l.settings.includes(system.family));
+    const factor = dopplerFactor(system.velocity);
+    const lines = (this.#bySpecies.get(expected.line.species) ?? []).filter(
+      (l) => l.settings.includes(system.family) && !this.#covers(l.wavelengthNm * factor),
+    );
     const logW = system.strengthOf?.(lines);
     known = lines
       .map((line, k) => ({ line, logW: logW?.[k] ?? NaN }))
-      .sort((a, b) => this.#worth(b) - this.#worth(a) || a.line.wavelengthNm - b.line.wavelengthNm)
+      .sort((a, b) => this.#worth(b, factor) - this.#worth(a, factor) || a.line.wavelengthNm - b.line.wavelengthNm)
       .slice(0, STRONGEST);
     this.#asked.set(state, known);
     return known;
   }
 
-  #worth({ line, logW }: Beyond): number {
+  #covers(nm: number): boolean {
+    return nm >= this.coverage.fromNm && nm <= this.coverage.toNm;
+  }
+
+  #worth({ line, logW }: Beyond, factor: number): number {
     const { fromNm, toNm } = this.coverage;
+    const nm = line.wavelengthNm * factor;
     const strength = Number.isFinite(logW) ? logW : -9 + Math.log10((line.oscillatorStrength ?? 0) + 1e-9);
-    return strength - NEARNESS * Math.max(Math.log(fromNm / line.wavelengthNm), Math.log(line.wavelengthNm / toNm));
+    return strength - NEARNESS * Math.max(Math.log(fromNm / nm), Math.log(nm / toNm));
   }
 }
 
