@@ -14,6 +14,8 @@ export interface Expected {
   readonly fwhmV: number;
   /** natural-log spread of the width about that, where it is larger than of lines at large */
   readonly widthSpread?: number;
+  /** set of lines that run into their neighbours: that none of them stands out says nothing */
+  readonly merges?: boolean;
 }
 
 /** All expected lines of one species in one system. Their strengths share an offset that the data decide. */

@@ -11,6 +11,7 @@ const FAINTEST = -2.5; // log10 intensity (H beta = 100) of lines worth listing
 const MOST_SYSTEMS = 4;
 const ENOUGH = 8;
 const SCALES = [-0.6, 0, 0.6];
+const CERTAIN_LINES = 4; // brightest hydrogen lines, whose ratios the theory of recombination fixes
 
 /** log10 of (intensity / equivalent width) up to a constant: the continuum's shape, so that ratios of intensities become ratios of widths. */
 export type LogContinuum = (wavelength: number) => number;
@@ -88,31 +89,36 @@ function settle(
 ): { weighed: Weighed; members: number } | null {
   const zero = brightnessScale(lines, logI, velocity, scene, logContinuum);
   if (zero === null) return null;
+  const byHydrogen = brightnessScale(lines, logI, velocity, scene, logContinuum, CERTAIN_LINES);
+  const scales = [...SCALES.map((s) => zero + s), ...(byHydrogen === null ? [] : [byHydrogen])];
+  const model = (v: number, sigma: number, scale: number) => nebulaModel(id, lines, logI, v, sigma, scale, scene.coverage, logContinuum);
   let best: Weighed | null = null;
-  for (const scale of SCALES) {
-    const w = weigh(
-      nebulaModel(id, lines, logI, velocity, 0.1 * scene.coverage.elementV, zero + scale, scene.coverage, logContinuum),
-      scene,
-    );
+  for (const scale of scales) {
+    const w = weigh(model(velocity, 0.1 * scene.coverage.elementV, scale), scene);
     if (!best || w.evidence > best.evidence) best = w;
   }
   const { velocity: v, sigma, members } = refinedVelocity(best!);
   if (members === 0) return null;
-  const scale = best!.system.significance;
-  const weighed = weigh(nebulaModel(id, lines, logI, v, sigma, scale, scene.coverage, logContinuum), scene);
-  return { weighed, members };
+  return { weighed: weigh(model(v, sigma, best!.system.significance), scene), members };
 }
 
-/** Median of log W - log I over the brightest listed lines that coincide with a peak; null when none does. */
+/**
+ * Median of log W - log I over the brightest listed lines that coincide with a peak; null when none does.
+ * @param hydrogen when given, only so many of the brightest hydrogen lines are asked
+ */
 function brightnessScale(
   lines: readonly Line[],
   logI: Float64Array,
   velocity: number,
   scene: Scene,
   logContinuum: LogContinuum,
+  hydrogen = 0,
 ): number | null {
   const factor = dopplerFactor(velocity);
-  const order = [...logI.keys()].sort((a, b) => logI[b]! - logI[a]!).slice(0, 60);
+  const { fromNm, toNm } = scene.coverage;
+  const covered = (l: Line) => l.wavelengthNm * factor > fromNm && l.wavelengthNm * factor < toNm;
+  const asked = [...logI.keys()].filter((k) => !hydrogen || (lines[k]!.species === 'H I' && covered(lines[k]!)));
+  const order = asked.sort((a, b) => logI[b]! - logI[a]!).slice(0, hydrogen || 60);
   const found: number[] = [];
   for (const k of order) {
     const at = lines[k]!.wavelengthNm * factor;

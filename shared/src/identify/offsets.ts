@@ -74,9 +74,9 @@ export function lineTerm(
   const logLimit = Math.log10(coverage.threshold * sigmaW);
   if (!feature) {
     const softness = Math.hypot(0.12, e.scatter);
-    const outcome = e.logW > logLimit ? 'missing' : 'below_limit';
+    const outcome = e.logW > logLimit && !e.merges ? 'missing' : 'below_limit';
     const silent = logLimit - e.logW - OFFSETS[OFFSETS.length - 1]! > 4 * softness; // invisible at any offset
-    const term = silent ? null : unseenTerm((logLimit - e.logW) / softness, softness);
+    const term = silent || e.merges ? null : unseenTerm((logLimit - e.logW) / softness, softness);
     return { expected: e, feature: null, outcome, term, logMeasured: Math.log10(sigmaW), sigmaLog: NaN };
   }
   const dv = velocityOf(feature.wavelength, e.wavelength);

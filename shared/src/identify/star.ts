@@ -79,7 +79,8 @@ function hydrogenStar(
   const series = lines.filter(
     (l) => l.element === 'H' && l.wavelengthNm > coverage.fromNm && l.wavelengthNm < coverage.toNm && (l.oscillatorStrength ?? 0) > 0.01,
   );
-  const first = series.filter((l) => (l.oscillatorStrength ?? 0) > 0.02);
+  const seen = dips.map((d) => d.logW - Math.log10(d.wavelength)).sort((a, b) => b - a)[HYDROGEN_MEMBERS - 1] ?? 0;
+  const first = series.filter((l) => (l.oscillatorStrength ?? 0) > 0.02 && wouldShow(l, seen, coverage));
   if (first.length < HYDROGEN_MEMBERS) return null;
   const step = 0.1 * coverage.elementV;
   let best: { velocity: number; members: FeatureView[]; score: number } | null = null;
@@ -102,11 +103,40 @@ function hydrogenStar(
   const index = photosphericIndex(lines, temperatureK, 14);
   const strongest = lines.reduce((top, l, k) => (l.element === 'H' && index[k]! > top ? index[k]! : top), -Infinity);
   const measured = best.members.map((f) => f.logW - Math.log10(f.wavelength)).sort((a, b) => a - b);
-  const shift = measured[measured.length - 1]! + 0.6 - strongest;
+  const top = measured[measured.length - 1]!;
+  // lines of white dwarfs grow far beyond those of common stars before they saturate
+  const knee = Math.max(HYDROGEN_KNEE, top - 0.6);
+  const shift = knee + beyondKnee(top - knee) - strongest;
   const fwhmV = Math.min(...best.members.map((f) => f.fwhmV));
   const sigma = coverage.elementV * 0.2;
   const photosphere: Photosphere = { temperatureK, logNe: 14, velocity: best.velocity, index, height: 0, significance: best.score };
-  return starModel(lines, photosphere, best.velocity, sigma, fwhmV, { shift, knee: HYDROGEN_KNEE }, coverage);
+  return starModel(lines, photosphere, best.velocity, sigma, fwhmV, { shift, knee }, coverage);
+}
+
+/** High members of a series stand closer than they are wide: they form the series' edge, not lines (Inglis & Teller 1939, ApJ 90, 439). */
+const withMergers = (series: readonly Expected[]): Expected[] =>
+  series.map((e, k) => {
+    const near = [series[k - 1], series[k + 1]].some(
+      (n) => n && Math.abs(velocityOf(n.wavelength, e.wavelength)) < 0.8 * Math.max(e.fwhmV, n.fwhmV),
+    );
+    return near ? { ...e, merges: true } : e;
+  });
+
+/** Whether a line a third as strong, for its wavelength, as the strongest dips would be seen there. */
+const wouldShow = (l: Line, strongest: number, coverage: Coverage): boolean => {
+  const width = (l.wavelengthNm * 10 ** strongest) / 3;
+  return width > coverage.threshold * coverage.sigmaW(l.wavelengthNm, width / HYDROGEN_DEPTH);
+};
+
+/** How far, in dex, the thin limit lies above the knee when the line itself does by `excess`: the inverse of `grow`. */
+function beyondKnee(excess: number): number {
+  let [low, high] = [excess - 1, excess * 4 + 4];
+  for (let i = 0; i < 40; i++) {
+    const mid = 0.5 * (low + high);
+    if (mid - 0.75 * Math.log10(1 + 10 ** mid) < excess) low = mid;
+    else high = mid;
+  }
+  return low;
 }
 
 function bestPhotosphere(
@@ -273,6 +303,8 @@ function starModel(
     if (list) list.push(e);
     else bySpecies.set(line.species, [e]);
   });
+  const hydrogen = bySpecies.get('H I');
+  if (hydrogen) bySpecies.set('H I', withMergers(hydrogen));
   const species: SpeciesModel[] = [...bySpecies].map(([name, list]) => ({
     species: name,
     lines: list,
