@@ -4,7 +4,7 @@ import type { Frame } from '../spectrum/index.js';
 import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
 import { isPermitted, refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
-import { dopplerFactor, type Coverage } from './views.js';
+import { dopplerFactor, scaleSigma, type Coverage } from './views.js';
 
 /** Largest velocity the Earth can have against the frame, km/s: its orbit and rotation, with room for the solar motion in LSR frames. */
 const REACH: Record<Frame, number> = {
@@ -39,7 +39,7 @@ export function airModel(lines: readonly Line[], kind: 'dip' | 'peak', velocity:
       // absorption saturates: strong lines grow with about the square root of their strength
       logW: sky ? SKY_LOG_W + relative : FULL_ABSORPTION_LOG_W + (relative > -1 ? 0.6 * relative : relative + 0.4),
       scatter: known ? 0.2 : 0.4,
-      sigmaV: Math.hypot(sigma, line.source.includes('memory') ? 1 : 0.25),
+      sigmaV: Math.hypot(sigma, Math.max(line.source.includes('memory') ? 1 : 0.25, scaleSigma(coverage))),
       fwhmV: coverage.elementV * 1.05,
     };
     const list = groups.get(group);

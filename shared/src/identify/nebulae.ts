@@ -3,7 +3,7 @@ import type { Line } from '../linelist/index.js';
 import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SystemModel } from './model.js';
 import { isPermitted, refinedVelocity, weigh, type Scene, type Weighed } from './search.js';
-import { dopplerFactor, type Coverage, type FeatureView } from './views.js';
+import { dopplerFactor, scaleSigma, type Coverage, type FeatureView } from './views.js';
 
 const SPECIES_SIGMA = 0.5; // dex: ionisation and abundance from nebula to nebula
 const LINE_SCATTER = 0.12; // dex: reddening, temperature and density within one ion
@@ -153,7 +153,7 @@ function nebulaModel(
       wavelength,
       logW,
       scatter: certain ? LINE_SCATTER : line.type === 'forbidden' ? 0.25 : 0.5,
-      sigmaV: Math.hypot(sigma, 0.3),
+      sigmaV: Math.hypot(sigma, Math.max(0.3, scaleSigma(coverage))),
       fwhmV: Math.hypot(coverage.elementV, 18),
     };
     const list = bySpecies.get(line.species);

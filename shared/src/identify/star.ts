@@ -4,7 +4,7 @@ import { C_KM_PER_S } from '../units/index.js';
 import { correlate, peaksOf, type VelocityGrid } from './correlate.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
 import { isPermitted, refinedVelocity, weigh, type Scene } from './search.js';
-import { dopplerFactor, velocityOf, type Coverage, type FeatureView } from './views.js';
+import { dopplerFactor, scaleSigma, velocityOf, type Coverage, type FeatureView } from './views.js';
 
 /** What the continuum says of the temperature; null when nothing. */
 export interface TemperatureHint {
@@ -294,7 +294,7 @@ function starModel(
       wavelength,
       logW,
       scatter: hydrogen ? HYDROGEN_SCATTER : LINE_SCATTER,
-      sigmaV: Math.hypot(sigma, 0.3),
+      sigmaV: Math.hypot(sigma, Math.max(0.3, scaleSigma(coverage))),
       // pressure makes hydrogen lines as wide as they are strong
       fwhmV: hydrogen ? Math.hypot(fwhmV, ((10 ** logW / wavelength) * C_KM_PER_S) / HYDROGEN_DEPTH) : fwhmV,
       ...(hydrogen && { widthSpread: HYDROGEN_WIDTH_SPREAD }),

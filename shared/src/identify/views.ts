@@ -30,6 +30,9 @@ export interface Coverage {
   sigmaW(wavelength: number, fwhmNm: number): number;
 }
 
+/** How well the wavelength scale of a reduced spectrum can be trusted, km/s: commonly to some hundredths of a resolution element. */
+export const scaleSigma = ({ elementV }: Pick<Coverage, 'elementV'>): number => 0.06 * elementV;
+
 /** Coverage of a spectrum from its normalised inverse variances. */
 export function coverageOf(wavelength: Float64Array, weight: Float64Array, resolvingPower: number, threshold: number): Coverage {
   const n = wavelength.length;
