@@ -10,7 +10,7 @@ import { populationOf } from './population.js';
 import { contendersOf, rankFeature, type FeatureRanking, type SystemState } from './rank.js';
 import { findFar } from './redshift.js';
 import { setSystem } from './set-systems.js';
-import { findStar, type TemperatureHint } from './star.js';
+import { findCompanion, findStar, type TemperatureHint } from './star.js';
 import { NO_WISHES, permitted, type SystemWishes } from './steer.js';
 import { withOwnScatter, type Scene } from './search.js';
 import type { Coverage, FeatureView } from './views.js';
@@ -65,6 +65,8 @@ export function identify(input: IdentifyInput): Identified {
   systems.push(...clouds);
   const everyCloud = [...systems.filter((s) => s.set && s.family === 'interstellar'), ...clouds];
   const bands = diffuseBands(near, everyCloud, coverage);
+  const companion = star && findCompanion(found.scene('stellar'), star, photosphere, input.temperature, input.velocityRangeKmPerS);
+  if (companion) systems.push(companion);
   if (bands && bandsMayShow(wishes, everyCloud)) addBands(systems, everyCloud, bands);
   if (features.some((f) => f.kind === 'peak')) {
     systems.push(...findNebulae(ground.nebular, found.scene('nebular'), input.velocityRangeKmPerS, input.logContinuum));

@@ -20,9 +20,11 @@ const HYDROGEN_SCATTER = 0.35;
 const HYDROGEN_DEPTH = 0.6; // area of a hydrogen line over its FWHM
 const HYDROGEN_WIDTH_SPREAD = 0.7; // natural log
 const SPECIES_SIGMA = 0.35; // dex: ionisation, non-LTE, abundance
-const SIGNIFICANT = 7; // of the correlation peak, in robust scatters of the score
+const SIGNIFICANT = 3.5; // of the correlation peak, in robust scatters of the score: broad lines make broad peaks; the evidence decides
+const OTHERS = 0.6; // dips that other systems explain so well do not speak for a star
+const NOBODY = { id: '' } as SystemModel;
 const MEMBERS = 5; // dips that the template must explain
-const ENOUGH = 8; // ln evidence, as asked of nebulae and of the air: among few dips some template fits by chance
+const ENOUGH = 12; // ln evidence: among few dips some template fits by chance
 
 interface Photosphere {
   readonly temperatureK: number;
@@ -41,7 +43,9 @@ interface Photosphere {
  */
 export function findStar(scene: Scene, lines: readonly Line[], hint: TemperatureHint | null, rangeV: number): SystemModel | null {
   const { features, coverage } = scene;
-  const dips = features.filter((f) => f.kind === 'dip' && !f.flags.includes('cosmic'));
+  const dips = features.filter(
+    (f) => f.kind === 'dip' && !f.flags.includes('cosmic') && scene.background.explained(f.index, NOBODY) < OTHERS,
+  );
   if (dips.length < MEMBERS || lines.length === 0) return null;
   const permits = (velocity: number) => isPermitted(scene, velocity);
   const best = bestPhotosphere(dips, lines, coverage, hint, rangeV, permits);
@@ -58,6 +62,28 @@ export function findStar(scene: Scene, lines: readonly Line[], hint: Temperature
   }
   const stands = permits(star.velocity) && weigh(star, scene).evidence > ENOUGH;
   return stands ? star : hydrogenStar(dips, lines, coverage, hint, rangeV, permits);
+}
+
+const COMPANION_DIPS = 15; // unexplained dips worth a second search
+const COMPANION_SHARE = 0.12; // of all dips
+const COMPANION_ENOUGH = 30; // ln evidence: lines that no list holds must not make a star
+
+/** A second star in the spectrum, from the dips that everything found so far leaves unexplained; at a velocity of its own. */
+export function findCompanion(
+  scene: Scene,
+  star: SystemModel,
+  lines: readonly Line[],
+  hint: TemperatureHint | null,
+  rangeV: number,
+): SystemModel | null {
+  const dips = scene.features.filter((f) => f.kind === 'dip');
+  const open = dips.filter((f) => scene.background.explained(f.index, NOBODY) < OTHERS).length;
+  if (open < COMPANION_DIPS || open < COMPANION_SHARE * dips.length) return null;
+  const apart = Math.max(0.8 * star.fwhmV, scene.coverage.elementV);
+  const permits = (v: number) => isPermitted(scene, v) && Math.abs(v - star.velocity) > apart;
+  const found = findStar({ ...scene, permits }, lines, hint, rangeV);
+  if (!found || weigh(found, scene).evidence < COMPANION_ENOUGH) return null;
+  return { ...found, id: 'companion' };
 }
 
 const HYDROGEN_MEMBERS = 3;
