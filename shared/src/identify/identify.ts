@@ -72,7 +72,8 @@ export function identify(input: IdentifyInput): Identified {
     systems.push(...findNebulae(ground.nebular, found.scene('nebular'), input.velocityRangeKmPerS, input.logContinuum));
     const glowing = findAir(airLines, 'peak', found.scene('telluric'), input.frame);
     if (glowing) systems.push(glowing);
-    if (!systems.some((s) => s.family === 'nebular') && !wishes.forbidden.some((w) => w.family === 'nebular')) {
+    const asUsual = input.velocityRangeKmPerS >= USUAL_RANGE; // who narrows the range wants nothing from beyond it
+    if (asUsual && !systems.some((s) => s.family === 'nebular') && !wishes.forbidden.some((w) => w.family === 'nebular')) {
       const whole = {
         ...ground,
         nebular: anywhere('nebular'),
@@ -146,6 +147,7 @@ class Findings {
   }
 }
 
+const USUAL_RANGE = 300; // km/s, the default of the settings
 const FEW_DRAWS = 120; // enough to tell what is explained; the final ranking draws more
 
 const stateOf = (system: SystemModel, { features, coverage }: IdentifyInput, background: Background): SystemState => ({
