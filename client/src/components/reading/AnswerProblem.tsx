@@ -4,7 +4,7 @@ import { parseNumber } from '../../lib/number.js';
 import { Pick } from '../Pick.js';
 import { FactRow } from './FactRow.js';
 import { placeOption } from './PlaceField.js';
-import type { Correct } from './ReadingFields.js';
+import type { Correct } from './field.js';
 import { ValueBox } from './ValueBox.js';
 import { ERROR_WORD, FLUX_WORD, MEDIUM_WORD, optionsOf, UNIT_WORD } from './words.js';
 

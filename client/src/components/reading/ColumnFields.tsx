@@ -3,7 +3,7 @@ import { fixed, parseNumber } from '../../lib/number.js';
 import { Pick } from '../Pick.js';
 import { FactRow } from './FactRow.js';
 import classes from './reading.module.css';
-import type { FieldProps } from './ReadingFields.js';
+import type { FieldProps } from './field.js';
 import { ValueBox } from './ValueBox.js';
 import { ERROR_WORD, FLUX_WORD, howKnown, optionsOf, UNIT_WORD } from './words.js';
 

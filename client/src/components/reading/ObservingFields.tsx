@@ -5,7 +5,7 @@ import { declination, parseCoordinate, rightAscension } from '../../lib/position
 import { Pick } from '../Pick.js';
 import { FactRow } from './FactRow.js';
 import classes from './reading.module.css';
-import type { FieldProps } from './ReadingFields.js';
+import type { FieldProps } from './field.js';
 import { ValueBox } from './ValueBox.js';
 import { howKnown, MARK_WORD, optionsOf, SCALE_WORD, timeWords } from './words.js';
 

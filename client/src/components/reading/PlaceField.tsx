@@ -2,7 +2,7 @@ import type { PlaceFact as Place, Reading } from '@foreveil/shared';
 import { counted } from '../../lib/number.js';
 import { Pick } from '../Pick.js';
 import { FactRow } from './FactRow.js';
-import type { FieldProps } from './ReadingFields.js';
+import type { FieldProps } from './field.js';
 
 /** Which part of the file is read, where there is more than one. */
 export function PlaceFact({ reading, correct }: FieldProps) {

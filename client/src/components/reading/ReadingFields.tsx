@@ -1,6 +1,7 @@
-import type { Reading, ReadingCorrections } from '@foreveil/shared';
+import type { Reading } from '@foreveil/shared';
 import type { ReactNode } from 'react';
 import { Pick } from '../Pick.js';
+import type { FieldProps } from './field.js';
 import { AxisFact, ErrorFact, FluxFact, MaskFact } from './ColumnFields.js';
 import { FactRow } from './FactRow.js';
 import { ExposureFact, ObjectFact, PointingFact, SiteFact, TimeFact } from './ObservingFields.js';
@@ -9,13 +10,6 @@ import classes from './reading.module.css';
 import { ValueBox } from './ValueBox.js';
 import { fixed, parseNumber } from '../../lib/number.js';
 import { FRAME_WORD, howKnown, MEDIUM_WORD, optionsOf } from './words.js';
-
-export type Correct = <K extends keyof ReadingCorrections>(field: K, value: ReadingCorrections[K] | undefined) => void;
-
-export interface FieldProps {
-  reading: Reading;
-  correct: Correct;
-}
 
 /** What was read, how that is known, and the controls that correct it. @param children rows that come before, about what is not of the file */
 export function ReadingFields({ reading, correct, children }: FieldProps & { children?: ReactNode }) {

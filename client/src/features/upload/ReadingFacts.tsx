@@ -1,7 +1,8 @@
 import { Button } from '@mantine/core';
 import type { Reading, ReadingCorrections, ReadingRecipe, TargetSummary } from '@foreveil/shared';
 import { HeaderLines } from '../../components/reading/HeaderLines.js';
-import { ReadingFields, type Correct } from '../../components/reading/ReadingFields.js';
+import type { Correct } from '../../components/reading/field.js';
+import { ReadingFields } from '../../components/reading/ReadingFields.js';
 import { withCorrection } from '../../components/reading/words.js';
 import { counted } from '../../lib/number.js';
 import { NO_CORRECTIONS } from './entries.js';

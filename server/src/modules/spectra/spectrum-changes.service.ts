@@ -13,7 +13,7 @@ import type { Config } from '../../config/config.js';
 import { CONFIG } from '../../config/config.module.js';
 import { KNEX } from '../../database/knex.js';
 import type { Trx } from '../../database/transaction.js';
-import { abortAnalysis } from '../analyses/analyses.repository.js';
+import { abortAnalysis } from '../analyses/abort-analysis.js';
 import { queueAnalysis } from '../analyses/queue-analysis.js';
 import { addAudit } from '../audit/add-audit.js';
 import { sayEvent } from '../events/say-event.js';
