@@ -44,7 +44,7 @@ console.log(
 console.log(
   `${'line'.padEnd(34)} ${'S/N'.padStart(4)} lines found  |  over stated error: centre, FWHM, width  |  over the bound: centre, FWHM, width | median pull of width`,
 );
-for (const trial of [...alone, ...blends]) {
+for (const trial of repeats > 0 ? [...alone, ...blends] : []) {
   const d = deviationsOf(trial, repeats);
   const pulls = QUANTITIES.map((q) => shown(spread(d.pulls[q]), 0.9, 1.1)).join('');
   const bounds = QUANTITIES.map((q) => (trial.blendedAt ? '-'.padStart(8) : shown(spread(d.overBound[q]), 0, 1.2))).join('');
