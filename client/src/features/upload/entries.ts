@@ -68,16 +68,24 @@ function changed(entries: readonly Entry[], change: Change): readonly Entry[] {
   return entries.map((entry) => (entry.id === change.id ? changeEntry(entry, change) : entry));
 }
 
-/** Marks each file whose bytes stand further up on the page already. */
+/** Marks each file whose bytes stand further up on the page already, or were added from it. */
 function withTwins(entries: readonly Entry[]): readonly Entry[] {
   const first = new Map<string, string>();
+  const added = new Map(
+    entries.flatMap((entry) => (entry.sha256 && entry.sending.at === 'added' ? [[entry.sha256, addedAs(entry.sending)] as const] : [])),
+  );
   return entries.map((entry) => {
     const { sha256, file } = entry;
     const twinOf = sha256 ? (first.get(sha256) ?? null) : null;
     if (sha256 && twinOf === null) first.set(sha256, file.name);
-    return twinOf === entry.twinOf ? entry : { ...entry, twinOf };
+    const known = entry.known ?? (sha256 && twinOf !== null ? (added.get(sha256) ?? null) : null);
+    return twinOf === entry.twinOf && known === entry.known ? entry : { ...entry, twinOf, known };
   });
 }
+
+const addedAs = ({ spectrum: { id, sha256, label, targetId, targetName } }: Extract<Sending, { at: 'added' }>): KnownFile => ({
+  ...{ sha256, spectrumId: id, label, targetId, targetName },
+});
 
 function changeEntry(entry: Entry, change: Exclude<Change, { type: 'chosen' | 'left_out' | 'known' }>): Entry {
   switch (change.type) {

@@ -122,6 +122,12 @@ describe('files with the same bytes', () => {
     const [left] = changeEntries(two(), { type: 'left_out', id: 1 });
     expect(verdict(left!)).toBe('ready');
   });
+  it('are known as soon as the first of them is added', () => {
+    const spectrum = aSpectrumDetail({ id: 'new-1', label: 'night 1', sha256: 'ab' });
+    const after = changeEntries(two(), { type: 'sending', id: 1, sending: { at: 'added', spectrum } });
+    expect(after.map(verdict)).toEqual(['added', 'known']);
+    expect(after[1]!.known).toMatchObject({ spectrumId: 'new-1', label: 'night 1' });
+  });
   it('are not sent at all when the programme has them', () => {
     const known = { sha256: 'ab', spectrumId: 's', label: 'night 1', targetId: 't', targetName: 'Tern' };
     expect(changeEntries(two(), { type: 'known', files: [known] }).map(verdict)).toEqual(['known', 'known']);
