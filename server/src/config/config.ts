@@ -112,7 +112,7 @@ export function loadConfig(env: NodeJS.ProcessEnv = process.env): Config {
     uploadLimitBytes: number('UPLOAD_LIMIT_MIB', 200, 0.001) * MIB,
     uploadDir: env.UPLOAD_DIR ?? join(tmpdir(), `foreveil-uploads-${process.getuid?.() ?? 0}`),
     programmeLimitBytes: number('PROGRAMME_LIMIT_MIB', 20_000, 0.001) * MIB,
-    readSeconds: number('READ_SECONDS', 30, 0.1),
+    readSeconds: number('READ_SECONDS', 60, 0.1),
     readMemoryMb: number('READ_MEMORY_MIB', 1024, 16),
     analysisSeconds: number('ANALYSIS_SECONDS', 600, 1),
     analysisMemoryMb: number('ANALYSIS_MEMORY_MIB', 2048, 16),
