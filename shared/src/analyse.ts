@@ -48,6 +48,7 @@ export function analyse(read: Spectrum, wholeList: LineList, settings: AnalysisS
     coverage,
     list,
     frame: spectrum.frame,
+    observerVelocityKmPerS: spectrum.observerVelocityKmPerS ?? null,
     temperature: hintOf(continuum, settings),
     velocityRangeKmPerS: settings.velocityRangeKmPerS,
     wishes: { set: settings.setSystems, forbidden: settings.forbiddenSystems },

@@ -42,3 +42,14 @@ export function simulate(pixels, dips, lines, seed = 7) {
   for (let i = 0; i < pixels; i++) flux[i] += sigma[i] * normal(u);
   return { wavelength, flux, sigma, bad: new Uint8Array(pixels), fluxKind: 'per_wavelength', resolvingPower, frame: 'barycentric' };
 }
+
+/** The list with invented weak photospheric lines among its own, up to a length: what a complete list of a crowded region would be like. */
+export function grown(list, length, seed = 11) {
+  const u = uniform(seed);
+  const patterns = list.lines.filter((l) => l.settings.includes('stellar') && l.type === 'allowed' && l.logGf !== null);
+  const invented = Array.from({ length: Math.max(0, length - list.lines.length) }, (_, k) => {
+    const pattern = patterns[Math.floor(u() * patterns.length)];
+    return { ...pattern, id: `invented-${k}`, wavelengthNm: 370 * (700 / 370) ** u(), logGf: pattern.logGf - 1 - 2 * u() };
+  });
+  return { ...list, lines: [...list.lines, ...invented].sort((a, b) => a.wavelengthNm - b.wavelengthNm) };
+}

@@ -65,8 +65,27 @@ export function airModel(lines: readonly Line[], kind: 'dip' | 'peak', velocity:
   };
 }
 
-/** The Earth's air, if its lines show: its velocity is what the frame took off. */
-export function findAir(lines: readonly Line[], kind: 'dip' | 'peak', scene: Scene, frame: Frame): SystemModel | null {
+const KNOWN_ENOUGH = 4; // ln evidence, where time, site and pointing say at which velocity the air must be
+const KNOWN_WITHIN = 1.5; // km/s: the wavelength scale's own error at high resolution
+
+/**
+ * The Earth's air, if its lines show: its velocity is what the frame took off. Where that is known it is looked for there first.
+ * @param known km/s; null when time, site or pointing is not known
+ */
+export function findAir(
+  lines: readonly Line[],
+  kind: 'dip' | 'peak',
+  scene: Scene,
+  frame: Frame,
+  known: number | null = null,
+): SystemModel | null {
+  if (known === null) return searchAir(lines, kind, scene, frame, ENOUGH);
+  const within = Math.max(KNOWN_WITHIN, 0.5 * scene.coverage.elementV);
+  const there: Scene = { ...scene, permits: (v) => isPermitted(scene, v) && Math.abs(v - known) < within };
+  return searchAir(lines, kind, there, frame, KNOWN_ENOUGH) ?? searchAir(lines, kind, scene, frame, ENOUGH);
+}
+
+function searchAir(lines: readonly Line[], kind: 'dip' | 'peak', scene: Scene, frame: Frame, enough: number): SystemModel | null {
   const reach = REACH[frame];
   const features = scene.features.filter((f) => f.kind === kind && f.fwhmV < 3 * scene.coverage.elementV + 5);
   const listed = lines.filter((l) => (l.type !== 'telluric') === (kind === 'peak'));
@@ -85,9 +104,12 @@ export function findAir(lines: readonly Line[], kind: 'dip' | 'peak', scene: Sce
       (1 - scene.background.explained(f.index, { id: '' } as SystemModel)),
   );
   const spread = features.map((f) => Math.hypot(f.sigmaV, 0.2 * scene.coverage.elementV));
-  const peaks = peaksOf(correlate(features, weight, spread, template, grid), grid, 0.5 * scene.coverage.elementV, 6).filter(
-    (p) => Math.abs(p.velocity) <= reach + step && isPermitted(scene, p.velocity),
-  );
+  const peaks = peaksOf(
+    correlate(features, weight, spread, template, grid),
+    grid,
+    0.5 * scene.coverage.elementV,
+    scene.permits ? 60 : 6,
+  ).filter((p) => Math.abs(p.velocity) <= reach + step && isPermitted(scene, p.velocity));
   let best: Weighed | null = null;
   for (const p of peaks) {
     const first = weigh(airModel(listed, kind, p.velocity, 0.1 * scene.coverage.elementV, scene.coverage), scene);
@@ -96,6 +118,6 @@ export function findAir(lines: readonly Line[], kind: 'dip' | 'peak', scene: Sce
     const w = weigh(airModel(listed, kind, velocity, sigma, scene.coverage), scene);
     if (!best || w.evidence > best.evidence) best = w;
   }
-  if (!best || best.evidence < ENOUGH) return null;
+  if (!best || best.evidence < enough) return null;
   return { ...best.system, significance: Math.sqrt(2 * best.evidence) };
 }

@@ -21,6 +21,8 @@ export interface IdentifyInput {
   readonly coverage: Coverage;
   readonly list: LineList;
   readonly frame: Frame;
+  /** where the Earth's air must lie, km/s; null or absent when not known */
+  readonly observerVelocityKmPerS?: number | null;
   readonly temperature: TemperatureHint | null;
   readonly velocityRangeKmPerS: number;
   readonly logContinuum: LogContinuum;
@@ -59,7 +61,9 @@ export function identify(input: IdentifyInput): Identified {
   const searched = !input.withoutStar && !hasSet('stellar'); // a star that was set is the star
   const star = searched ? findStar(found.scene('stellar'), photosphere, input.temperature, input.velocityRangeKmPerS) : null;
   if (star) systems.push(star);
-  const absorbing = hasSet('telluric') ? null : findAir(airLines, 'dip', found.scene('telluric'), input.frame);
+  const absorbing = hasSet('telluric')
+    ? null
+    : findAir(airLines, 'dip', found.scene('telluric'), input.frame, input.observerVelocityKmPerS);
   if (absorbing) systems.push(absorbing);
   const clouds = findClouds(ground.interstellar, found.scene('interstellar'), Math.min(input.velocityRangeKmPerS, 200));
   systems.push(...clouds);
@@ -70,7 +74,7 @@ export function identify(input: IdentifyInput): Identified {
   if (bands && bandsMayShow(wishes, everyCloud)) addBands(systems, everyCloud, bands);
   if (features.some((f) => f.kind === 'peak')) {
     systems.push(...findNebulae(ground.nebular, found.scene('nebular'), input.velocityRangeKmPerS, input.logContinuum));
-    const glowing = findAir(airLines, 'peak', found.scene('telluric'), input.frame);
+    const glowing = findAir(airLines, 'peak', found.scene('telluric'), input.frame, input.observerVelocityKmPerS);
     if (glowing) systems.push(glowing);
     const asUsual = input.velocityRangeKmPerS >= USUAL_RANGE; // who narrows the range wants nothing from beyond it
     if (asUsual && !systems.some((s) => s.family === 'nebular') && !wishes.forbidden.some((w) => w.family === 'nebular')) {
