@@ -12,12 +12,17 @@ const { root } = await import('./lib/paths.mjs');
 const { grown, simulate } = await import('./lib/bench/spectrum.mjs');
 
 await ensureDependencies();
-if (['errors', 'mutations', 'reading'].includes(process.argv[2])) {
+if (['errors', 'mutations'].includes(process.argv[2])) {
   const { runTracked } = await import('./lib/supervisor.mjs');
   const source = ['--import', 'tsx', '--conditions=foreveil-source', join(root, `scripts/bench-${process.argv[2]}.ts`)];
   process.exit(await runTracked(process.execPath, [...source, ...process.argv.slice(3)], { cwd: root }));
 }
 await build(['server']);
+if (process.argv[2] === 'reading') {
+  const { reportReading } = await import('./lib/bench/reading.mjs');
+  await reportReading();
+  process.exit();
+}
 const { analyse, DEFAULT_SETTINGS, parseDefaultList, readSpectrum } = await import(join(root, 'shared/dist/index.js'));
 const data = (name) => readFileSync(join(root, 'seeds/data', name), 'utf8');
 const list = parseDefaultList(data('lines.csv'), data('telluric.csv'));

@@ -34,6 +34,34 @@ describe('numbers of text tables', () => {
     expect(taken).toBeGreaterThan(1000);
   });
 
+  it('of 16 to 19 digits are rounded right, or left to the language when that is not certain', () => {
+    let taken = 0;
+    fc.assert(
+      fc.property(digits(16, 19), fc.integer({ min: -270, max: 270 }), fc.integer({ min: 0, max: 16 }), (all, power, point) => {
+        const text = `${all.slice(0, point)}.${all.slice(point)}e${power}`;
+        const value = quick(text);
+        if (Number.isNaN(value)) return;
+        taken++;
+        expect(Object.is(value, Number(text))).toBe(true);
+      }),
+      { numRuns: 30_000 },
+    );
+    // nearly all are certain
+    expect(taken).toBeGreaterThan(25_000);
+  });
+
+  it.each([
+    '9007199254740993',
+    '9007199254740992.5',
+    '1.00000000000000011102230246251565',
+    '5e-324',
+    '1.7976931348623157e308',
+    '8.5e-23',
+    '1e23',
+  ])('half way between two doubles, or at the ends of their range, are never rounded wrong: %s', (text) =>
+    expect([Number(text), NaN]).toContainEqual(quick(text)),
+  );
+
   it('are as they were printed, for every double', () => {
     fc.assert(
       fc.property(fc.double({ noNaN: true, noDefaultInfinity: true }), (value) => {

@@ -34,9 +34,7 @@ function fromUtf16(bytes: Uint8Array, label: string): TextBytes {
 const PIECE = 1 << 20;
 
 function isUtf8(bytes: Uint8Array): boolean {
-  let ascii = 0;
-  while (ascii < bytes.length && bytes[ascii]! < 0x80) ascii++;
-  if (ascii === bytes.length) return true;
+  if (isAscii(bytes)) return true;
   const strict = textDecoder('utf-8', true);
   try {
     for (let at = 0; at < bytes.length; at += PIECE) strict.decode(bytes.subarray(at, at + PIECE), { stream: true });
@@ -45,4 +43,14 @@ function isUtf8(bytes: Uint8Array): boolean {
   } catch {
     return false;
   }
+}
+
+/** Top bits of four bytes at once: most files are ASCII, and this looks at every byte of them. */
+function isAscii(bytes: Uint8Array): boolean {
+  let i = 0;
+  for (; i < bytes.length && (bytes.byteOffset + i) % 4 !== 0; i++) if (bytes[i]! > 0x7f) return false;
+  const words = new Int32Array(bytes.buffer, bytes.byteOffset + i, (bytes.length - i) >> 2);
+  for (let k = 0; k < words.length; k++) if (words[k]! & 0x80808080) return false;
+  for (i += 4 * words.length; i < bytes.length; i++) if (bytes[i]! > 0x7f) return false;
+  return true;
 }

@@ -5,7 +5,7 @@ import { quoted, refuse } from '../refusal.js';
 import type { ReadWarning } from '../types.js';
 import type { TextBytes } from './decode.js';
 import { isComment, Lines } from './lines.js';
-import { parseCell, quickNumber } from './number.js';
+import { parseCell, quickNumber, scan, scanNumber } from './number.js';
 import type { Preamble } from './preamble.js';
 
 /** Values of the wanted columns, row by row, with the line each row stands in. */
@@ -146,7 +146,7 @@ export function readRows(
 
 const MOST_REMARKS = 1000;
 
-/** No quotes: cells are found and turned into numbers byte by byte. */
+/** No quotes: cells are found and turned into numbers byte by byte, each byte looked at once where all goes well. */
 function readPlain(text: TextBytes, lines: Lines, { dialect }: Preamble, wanted: readonly number[], sink: Sink): string[] {
   const { bytes } = text;
   const remarks: string[] = [];
@@ -165,26 +165,50 @@ function readPlain(text: TextBytes, lines: Lines, { dialect }: Preamble, wanted:
     sink.startRow(lines.number);
     let at = blanks ? ink : lines.start;
     for (let column = 0; column < slots.length && at <= end; column++) {
-      let stop = at;
-      if (blanks) while (stop < end && bytes[stop] !== 0x20 && bytes[stop] !== 0x09) stop++;
-      else while (stop < end && bytes[stop] !== delimiter) stop++;
-      if (blanks && stop === at) break;
       const slot = slots[column]!;
-      if (slot >= 0) give(bytes, at, stop, slot);
-      at = stop + 1;
-      if (blanks) while (at < end && (bytes[at] === 0x20 || bytes[at] === 0x09)) at++;
+      if (slot >= 0) {
+        let from = at;
+        if (!blanks) while (from < end && isBlank(bytes[from]!) && bytes[from] !== delimiter) from++;
+        const value = scanNumber(bytes, from, end, point);
+        const stop = scan.stop;
+        if (!Number.isNaN(value) && (stop === end || bytes[stop] === delimiter || (blanks && isBlank(bytes[stop]!)))) {
+          sink.number(slot, value);
+          at = blanks ? afterBlanks(bytes, stop + 1, end) : stop + 1;
+          continue;
+        }
+      }
+      const stop = cellEnd(bytes, at, end, blanks, delimiter);
+      if (blanks && stop === at) break;
+      if (slot >= 0) giveCell(at, stop, slot);
+      at = blanks ? afterBlanks(bytes, stop + 1, end) : stop + 1;
     }
     sink.endRow();
   }
   return remarks;
 
-  function give(b: Uint8Array, from: number, to: number, slot: number) {
-    while (from < to && (b[from] === 0x20 || b[from] === 0x09)) from++;
-    while (to > from && (b[to - 1] === 0x20 || b[to - 1] === 0x09)) to--;
-    const value = quickNumber(b, from, to, point);
-    if (Number.isNaN(value)) sink.cell(slot, latin1(b, from, Math.min(to, from + 400)), dialect.decimalComma);
+  /** A cell that the quick way does not read: blanks around a number, a missing value, more digits than a double, or text. */
+  function giveCell(from: number, to: number, slot: number) {
+    while (from < to && isBlank(bytes[from]!)) from++;
+    while (to > from && isBlank(bytes[to - 1]!)) to--;
+    const value = quickNumber(bytes, from, to, point);
+    if (Number.isNaN(value)) sink.cell(slot, latin1(bytes, from, Math.min(to, from + 400)), dialect.decimalComma);
     else sink.number(slot, value);
   }
+}
+
+const isBlank = (byte: number): boolean => byte === 0x20 || byte === 0x09;
+
+function afterBlanks(bytes: Uint8Array, from: number, end: number): number {
+  let at = from;
+  while (at < end && isBlank(bytes[at]!)) at++;
+  return at;
+}
+
+function cellEnd(bytes: Uint8Array, from: number, end: number, blanks: boolean, delimiter: number): number {
+  let stop = from;
+  if (blanks) while (stop < end && !isBlank(bytes[stop]!)) stop++;
+  else while (stop < end && bytes[stop] !== delimiter) stop++;
+  return stop;
 }
 
 /** For each column of the file the place among the wanted ones, or -1; up to the last wanted. */
