@@ -7,21 +7,15 @@ import type { FieldProps } from './field.js';
 import { ValueBox } from './ValueBox.js';
 import { ERROR_WORD, FLUX_WORD, howKnown, optionsOf, UNIT_WORD } from './words.js';
 
-interface Columns {
-  readonly columns: Reading['columns'];
-  readonly columnFacts: Reading['columnFacts'];
-}
-
-/** Columns to choose from, each with its unit, once. */
-function columnOptions({ columns, columnFacts }: Columns, present: readonly (string | null)[] = []) {
-  const units = new Map(columnFacts.map(({ name, unit }) => [name, unit]));
+/** Columns to choose from, once each; their units stand beside them. */
+function columnOptions({ columns }: Reading, present: readonly (string | null)[] = []) {
   const names = [...new Set([...present.filter((name) => name !== null), ...columns])];
-  return names.map((name) => ({ value: name, label: units.get(name) ? `${name}, ${units.get(name)}` : name }));
+  return names.map((name) => ({ value: name, label: name }));
 }
 
 interface ColumnProps {
   label: string;
-  of: Columns;
+  of: Reading;
   value: string;
   onPick: (column: string) => void;
 }

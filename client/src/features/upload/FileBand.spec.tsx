@@ -1,4 +1,4 @@
-import { signatureOf, type ReadingRecipe } from '@foreveil/shared';
+import { signatureOf, type Medium, type ReadingRecipe } from '@foreveil/shared';
 import { screen, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { beforeEach, describe, expect, it, vi } from 'vitest';
@@ -146,17 +146,18 @@ describe('the band of a file', () => {
 
   it('says which recipe was applied, takes it back, and offers the others', async () => {
     const signature = signatureOf(aReading());
-    const recipe = (name: string): ReadingRecipe => ({
-      ...{ id: name, name, signature, corrections: { medium: 'air' }, createdBy: 'Ana Weir', createdAt: '2031-03-04T00:00:00Z' },
+    const recipe = (name: string, medium: Medium = 'air'): ReadingRecipe => ({
+      ...{ id: name, name, signature, corrections: { medium }, createdBy: 'Ana Weir', createdAt: '2031-03-04T00:00:00Z' },
       ...{ changedBy: 'Ana Weir', changedAt: '2031-03-04T00:00:00Z', version: 1 },
     });
     const applied = { corrections: { medium: 'air' }, recipe: { name: 'Plates', before: NO_CORRECTIONS }, signature } as const;
-    band(applied, { recipes: [recipe('Plates'), recipe('Films')] });
+    band(applied, { recipes: [recipe('Plates'), recipe('Films', 'vacuum'), recipe('The same by another name')] });
     expect(screen.getByText(/Recipe/)).toHaveTextContent('Recipe Plates applied: air.');
     await userEvent.click(screen.getByRole('button', { name: 'Undo' }));
     expect(acts.onCorrect).toHaveBeenCalledWith(NO_CORRECTIONS);
     await userEvent.click(screen.getByRole('button', { name: 'Films instead' }));
-    expect(acts.onRecipe).toHaveBeenCalledWith(recipe('Films'));
+    expect(acts.onRecipe).toHaveBeenCalledWith(recipe('Films', 'vacuum'));
+    expect(screen.queryByRole('button', { name: /another name/ })).toBeNull(); // it would change nothing
   });
 
   it('offers the target that lies where the file points, with how far away it lies, and says nothing silently', async () => {

@@ -1,5 +1,5 @@
 import { Button } from '@mantine/core';
-import type { ReadingCorrections, ReadingRecipe } from '@foreveil/shared';
+import { sameCorrections, withGeneral, type ReadingCorrections, type ReadingRecipe } from '@foreveil/shared';
 import { IconBookmark } from '@tabler/icons-react';
 import { correctionWords } from '../../components/reading/words.js';
 import { recipesOf, type Entry } from './entry.js';
@@ -16,7 +16,8 @@ interface Props {
 /** Says which recipe of the team a file was read by, with the way back; offers the others that are for files of its kind. */
 export function RecipeNote({ entry, recipes, onRecipe, onUndo }: Props) {
   const { recipe: applied } = entry;
-  const others = recipesOf(entry, recipes).filter(({ name }) => name !== applied?.name);
+  const holds = (recipe: ReadingRecipe) => sameCorrections(withGeneral(entry.corrections, recipe.corrections), entry.corrections);
+  const others = recipesOf(entry, recipes).filter((recipe) => recipe.name !== applied?.name && !holds(recipe));
   if (!applied && !others.length) return null;
   return (
     <div className={classes.recipe}>
