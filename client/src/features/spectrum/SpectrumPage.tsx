@@ -16,6 +16,7 @@ import { Workbench } from './page/Workbench.js';
 import { SpectrumFacts } from './page/facts.js';
 import { useSpectrumData, type SpectrumData } from './page/use-spectrum-data.js';
 import { usePageSettings, type PageSettings } from './state/use-page-state.js';
+import { useNextList } from './steering/ListChoice.js';
 import { useCancel, useRun } from './steering/use-run.js';
 import { useSteering, type Steering } from './steering/use-steering.js';
 import { shortTime } from './format.js';
@@ -33,7 +34,8 @@ function Page({ programmeId, spectrumId }: { programmeId: string; spectrumId: st
   const data = useSpectrumData(programmeId, spectrumId, runId);
   const settings = usePageSettings();
   const steering = useSteering(data.analysis);
-  const run = useRun(programmeId, spectrumId);
+  const { next: nextList } = useNextList(programmeId, data.analysis, steering.lineListId);
+  const run = useRun(programmeId, spectrumId, nextList?.isDefault ? undefined : nextList?.id);
   const { spectrum, curve, analysis, identifications } = data;
   const result = analysis?.result ?? null;
   if (!spectrum) return data.error ? <Failure data={data} /> : <Waiting what="Fetching the spectrum" />;

@@ -6,6 +6,7 @@ import { analysisWords, isAtWork } from '../../../lib/analysis-words.js';
 import { counted } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
 import { DraftList } from './DraftList.js';
+import { ListChoice } from './ListChoice.js';
 import { PhysicsSection } from './PhysicsSection.js';
 import { Recipes } from './Recipes.js';
 import { Runs } from './Runs.js';
@@ -67,6 +68,7 @@ export function SteeringPanel(props: Props) {
               or add a feature there. The chosen line can be split or taken out.
             </p>
           </section>
+          <ListChoice steering={steering} programmeId={programmeId} used={analysis} />
           <PhysicsSection steering={steering} />
           <SpeciesSection steering={steering} />
           <Recipes steering={steering} programmeId={programmeId} role={role} />

@@ -6,12 +6,13 @@ import { analysisQueries, cancelAnalysis, requestAnalysis, spectrumQueries } fro
 
 const failed = (title: string) => (error: unknown) => void notifications.show({ title, message: errorSentence(error) });
 
-/** Starts a run with settings; what is at its default is left out, so that it stays so. */
-export function useRun(programmeId: string, spectrumId: string) {
+/** Starts a run with settings; what is at its default is left out, so that it stays so. @param lineListId undefined: the default list */
+export function useRun(programmeId: string, spectrumId: string, lineListId?: string) {
   const client = useQueryClient();
   return useMutation({
     mutationFn: (settings: AnalysisSettings) =>
       requestAnalysis(programmeId, spectrumId, {
+        ...(lineListId === undefined ? {} : { lineListId }),
         settings: Object.fromEntries(changedSettings(settings).map((key) => [key, settings[key]])),
       }),
     onSuccess: () => client.invalidateQueries({ queryKey: analysisQueries.list(programmeId, spectrumId).queryKey }),

@@ -20,6 +20,9 @@ export interface Steering {
   readonly run: AnalysisSettings;
   /** what the next run is to use */
   readonly draft: AnalysisSettings;
+  /** line list chosen for the next run; null: as the run on the page */
+  readonly lineListId: string | null;
+  readonly chooseList: (id: string | null) => void;
   readonly isChanged: boolean;
   readonly problems: readonly SettingsProblem[];
   readonly set: (change: Partial<AnalysisSettings>) => void;
@@ -40,6 +43,7 @@ const MOST_STEPS = 100;
 export function useSteering(analysis: AnalysisDetail | null | undefined): Steering {
   const run = useMemo(() => (analysis ? completeSettings(analysis.settings) : DEFAULT_SETTINGS), [analysis]);
   const [isOpen, open] = useState(false);
+  const [lineListId, chooseList] = useState<string | null>(null);
   const [steps, setSteps] = useState<readonly AnalysisSettings[]>([]);
   const draft = steps.at(-1) ?? run;
   const push = useCallback(
@@ -71,7 +75,9 @@ export function useSteering(analysis: AnalysisDetail | null | undefined): Steeri
     open,
     run,
     draft,
-    isChanged: changedSettings(draft, run).length > 0,
+    lineListId,
+    chooseList,
+    isChanged: lineListId !== null || changedSettings(draft, run).length > 0,
     problems,
     set,
     add,
@@ -79,6 +85,9 @@ export function useSteering(analysis: AnalysisDetail | null | undefined): Steeri
     undo: useCallback(() => setSteps((old) => (old.length > 2 ? old.slice(0, -1) : [])), []),
     canUndo: steps.length > 1,
     reset: useCallback(() => push(() => DEFAULT_SETTINGS), [push]),
-    revert: useCallback(() => setSteps([]), []),
+    revert: useCallback(() => {
+      setSteps([]);
+      chooseList(null);
+    }, []),
   };
 }
