@@ -1,10 +1,19 @@
 import type { QueryClient } from '@tanstack/react-query';
+import type { ComponentType } from 'react';
 import { createBrowserRouter, type RouteObject } from 'react-router-dom';
 import { makeLoaders } from './loaders.js';
 import { FirstLoad } from './pages/FirstLoad.js';
 import { NotFoundPage } from './pages/NotFoundPage.js';
 import { RouteError } from './pages/RouteError.js';
 import { Shell } from './shell/Shell.js';
+
+/** A page for people who are not signed in. */
+const bare = (path: string, load: () => Promise<ComponentType>): RouteObject => ({
+  path,
+  HydrateFallback: FirstLoad,
+  errorElement: <RouteError bare />,
+  lazy: async () => ({ Component: await load() }),
+});
 
 export function makeRoutes(client: QueryClient): RouteObject[] {
   const loaders = makeLoaders(client);
@@ -62,15 +71,30 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
       loader: loaders.programme,
       lazy: async () => ({ Component: (await import('../features/linelists/LineListPage.js')).LineListPage }),
     },
+    {
+      path: 'account',
+      lazy: async () => ({ Component: (await import('../features/account/AccountPage.js')).AccountPage }),
+    },
+    {
+      path: 'admin',
+      lazy: async () => ({ Component: (await import('../features/admin/AdminPage.js')).AdminPage }),
+    },
+    {
+      path: 'programmes/:programmeId/members',
+      loader: loaders.programme,
+      lazy: async () => ({ Component: (await import('../features/members/MembersPage.js')).MembersPage }),
+    },
     { path: '*', element: <NotFoundPage /> },
   ];
   return [
-    {
-      path: 'sign-in',
-      HydrateFallback: FirstLoad,
-      errorElement: <RouteError bare />,
-      lazy: async () => ({ Component: (await import('../features/sign-in/SignInPage.js')).SignInPage }),
-    },
+    bare('sign-in', async () => (await import('../features/sign-in/SignInPage.js')).SignInPage),
+    bare('forgot-password', async () => (await import('../features/sign-in/ForgotPasswordPage.js')).ForgotPasswordPage),
+    bare('reset-password', async () => (await import('../features/sign-in/ResetPasswordPage.js')).ResetPasswordPage),
+    bare('join', async () => (await import('../features/sign-in/JoinPage.js')).JoinPage),
+    bare('confirm-email', async () => (await import('../features/sign-in/UseLinkPage.js')).UseLinkPage),
+    bare('mail-choice', async () => (await import('../features/sign-in/UseLinkPage.js')).UseLinkPage),
+    bare('first-administrator', async () => (await import('../features/sign-in/FirstAdministratorPage.js')).FirstAdministratorPage),
+    bare('mail', async () => (await import('../features/mail/MailPage.js')).MailPage),
     {
       id: 'shell',
       element: <Shell />,

@@ -1,6 +1,11 @@
 /** Addresses of the pages, written once: routes are made of them and links go through them. */
 export const pagePaths = {
   signIn: '/sign-in',
+  forgotPassword: '/forgot-password',
+  account: '/account',
+  admin: '/admin',
+  mail: '/mail',
+  members: (p: string) => `/programmes/${p}/members`,
   programmes: '/',
   search: '/search',
   programme: (p: string) => `/programmes/${p}`,

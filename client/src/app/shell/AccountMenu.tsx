@@ -2,7 +2,7 @@ import { Menu, UnstyledButton, useMantineColorScheme, type MantineColorScheme } 
 import { notifications } from '@mantine/notifications';
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import type { Medium } from '@foreveil/shared';
-import { useNavigate } from 'react-router-dom';
+import { Link, useNavigate } from 'react-router-dom';
 import { Initials } from '../../components/Initials.js';
 import { errorSentence } from '../../lib/error-sentences.js';
 import { pagePaths } from '../../lib/paths.js';
@@ -29,6 +29,15 @@ export function AccountMenu() {
           <b>{me.name}</b>
           <span>{me.email}</span>
         </div>
+        <Menu.Divider />
+        <Menu.Item component={Link} to={pagePaths.account}>
+          Your account
+        </Menu.Item>
+        {me.administrator && (
+          <Menu.Item component={Link} to={pagePaths.admin}>
+            Accounts of this site
+          </Menu.Item>
+        )}
         <SchemeChoice />
         <WavelengthChoice />
         <Menu.Divider />

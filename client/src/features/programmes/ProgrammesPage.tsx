@@ -10,6 +10,7 @@ import { count, counted } from '../../lib/number.js';
 import { pagePaths } from '../../lib/paths.js';
 import { programmeQueries } from '../../lib/queries/programmes.js';
 import { NewProgramme } from './NewProgramme.js';
+import { Staged } from './Staged.js';
 import classes from './programmes.module.css';
 
 export function ProgrammesPage() {
@@ -28,6 +29,7 @@ export function ProgrammesPage() {
         actions={programmes.length > 0 && act}
       />
       {programmes.length > 0 ? <ProgrammeTable programmes={programmes} /> : <NoProgramme>{act}</NoProgramme>}
+      <Staged />
       <NewProgramme opened={creating} onClose={close} />
     </>
   );

@@ -2,10 +2,13 @@ import { Button, PasswordInput, TextInput } from '@mantine/core';
 import { useForm } from '@mantine/form';
 import type { Me, SignIn } from '@foreveil/shared';
 import { useMutation } from '@tanstack/react-query';
-import { useRef } from 'react';
+import { useRef, useState } from 'react';
 import { ErrorNote } from '../../components/ErrorNote.js';
+import { isApiError } from '../../lib/api-error.js';
 import { signIn } from '../../lib/queries/account.js';
 import classes from './sign-in.module.css';
+
+const needsCode = (error: unknown) => isApiError(error, 'second_factor_needed') || isApiError(error, 'wrong_code');
 
 interface Props {
   /** whom the browser remembers here */
@@ -17,20 +20,24 @@ interface Props {
 export function SignInForm({ email = '', onSignedIn }: Props) {
   const form = useForm<SignIn>({
     mode: 'uncontrolled',
-    initialValues: { email, password: '' },
+    initialValues: { email, password: '', code: '' },
     validate: {
       email: (value) => (/^\S+@\S+$/.test(value.trim()) ? null : 'Write your e-mail address, as in name@example.org.'),
       password: (value) => (value ? null : 'Write your password.'),
     },
   });
   const password = useRef<HTMLInputElement>(null);
+  const [asksCode, setAsksCode] = useState(false);
   const send = useMutation({
     mutationFn: signIn,
     onSuccess: onSignedIn,
-    onError: () => password.current?.select(),
+    onError: (error) => {
+      if (needsCode(error)) setAsksCode(true);
+      else password.current?.select();
+    },
   });
   const submit = form.onSubmit(
-    (values) => send.mutate({ ...values, email: values.email.trim() }),
+    ({ code, ...values }) => send.mutate({ ...values, email: values.email.trim(), ...(code?.trim() ? { code: code.trim() } : {}) }),
     (errors) => form.getInputNode(Object.keys(errors)[0] ?? '')?.focus(),
   );
   return (
@@ -56,6 +63,17 @@ export function SignInForm({ email = '', onSignedIn }: Props) {
         {...form.getInputProps('password')}
         key={form.key('password')}
       />
+      {asksCode && (
+        <TextInput
+          label="Code of your authenticator app, or a recovery code"
+          name="code"
+          autoComplete="one-time-code"
+          autoFocus
+          size="lg"
+          {...form.getInputProps('code')}
+          key={form.key('code')}
+        />
+      )}
       {send.isError && <ErrorNote error={send.error} />}
       <Button type="submit" variant="filled" loading={send.isPending} className={classes.act}>
         Sign in

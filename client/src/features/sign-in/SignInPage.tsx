@@ -1,6 +1,6 @@
 import { useQueryClient } from '@tanstack/react-query';
-import { useNavigate, useSearchParams } from 'react-router-dom';
-import { safeNext } from '../../lib/paths.js';
+import { Link, useNavigate, useSearchParams } from 'react-router-dom';
+import { pagePaths, safeNext } from '../../lib/paths.js';
 import { accountQueries } from '../../lib/queries/account.js';
 import { Motif } from './Motif.js';
 import classes from './sign-in.module.css';
@@ -23,10 +23,13 @@ export function SignInPage() {
             void navigate(safeNext(search.get('next')), { replace: true });
           }}
         />
+        <p className={classes.more}>
+          <Link to={pagePaths.forgotPassword}>Forgotten your password?</Link>
+        </p>
       </div>
       <footer className={classes.foot}>
-        The light above is a simulated star, 380–680 nm; the threads are the lines of one cloud before it. Accounts are made by the people
-        who run this server.
+        The light above is a simulated star, 380–680 nm; the threads are the lines of one cloud before it. An account comes with an
+        invitation by mail.
       </footer>
     </main>
   );

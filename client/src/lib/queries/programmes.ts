@@ -2,8 +2,11 @@ import {
   apiPaths,
   type NewProgramme,
   type NewTarget,
+  type Invitation,
+  type MemberDetail,
   type Programme,
   type ProgrammeSummary,
+  type StagedProgramme,
   type Target,
   type TargetSummary,
 } from '@foreveil/shared';
@@ -22,6 +25,24 @@ export const programmeQueries = {
     queryOptions({
       queryKey: [...programmeQueries.within(programmeId), 'programme'] as const,
       queryFn: ({ signal }) => http.get<Programme>(apiPaths.programme(programmeId), { signal }),
+    }),
+};
+
+export const memberQueries = {
+  list: (programmeId: string) =>
+    queryOptions({
+      queryKey: [...programmeQueries.within(programmeId), 'members'] as const,
+      queryFn: ({ signal }) => http.get<MemberDetail[]>(apiPaths.members(programmeId), { signal }),
+    }),
+  invitations: (programmeId: string) =>
+    queryOptions({
+      queryKey: [...programmeQueries.within(programmeId), 'invitations'] as const,
+      queryFn: ({ signal }) => http.get<Invitation[]>(apiPaths.invitations(programmeId), { signal }),
+    }),
+  staged: () =>
+    queryOptions({
+      queryKey: ['programme-list', 'staged'] as const,
+      queryFn: ({ signal }) => http.get<StagedProgramme[]>(apiPaths.stagedProgrammes, { signal }),
     }),
 };
 
