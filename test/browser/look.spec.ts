@@ -35,6 +35,11 @@ const SUBJECTS: Subject[] = [
   { page: 'line-list', path: defaultList, heading: /Foreveil default/ },
   { page: 'file', path: (demo) => `${spectrumOf(demo, 'Tern 1')}/file`, heading: /tern-1/ },
   { page: 'reading-recipes', path: ({ programme }) => `/programmes/${programme.id}/recipes`, heading: /Reading recipes/ },
+  { page: 'account', path: () => '/account', heading: /Your account/, prepare: async (page) => page.getByText('Access tokens').waitFor() },
+  { page: 'members', path: ({ programme }) => `/programmes/${programme.id}/members`, heading: /Members of/ },
+  { page: 'mail', path: () => '/mail', heading: /Mail of this demonstration/ },
+  { page: 'join', path: () => '/join#none', heading: /Invitation/, prepare: async (page) => page.getByRole('alert').waitFor() },
+  { page: 'forgot-password', path: () => '/forgot-password', heading: /New password/ },
   { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];
