@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { analyse, DEFAULT_SETTINGS, readSpectrum, type LineList, type ReadingCorrections } from '@foreveil/shared';
 import { bundledList } from './headless/bundled-list.js';
+import { hintFor } from './headless/answers.js';
 import { readOptions, USAGE } from './headless/options.js';
 import { resultLine } from './headless/result.js';
 
@@ -11,7 +12,11 @@ const print = (line: object) => process.stdout.write(`${JSON.stringify(line)}\n`
 function identifyFile(file: string, corrections: ReadingCorrections, list: LineList): object {
   const began = performance.now();
   const read = readSpectrum(readFileSync(file), file, corrections);
-  if (!read.ok) throw new Error(read.problem.sentence);
+  if (!read.ok) {
+    const hint = hintFor(read.problem);
+    if (hint) say(`${file}: ${hint}`);
+    throw new Error(read.problem.sentence);
+  }
   for (const w of read.reading.warnings) say(`${file}: ${w.sentence}`);
   const analysis = analyse(read.spectrum, list, DEFAULT_SETTINGS, (step) => say(`${file}: ${step}`));
   return resultLine(file, read.reading, analysis, Number(((performance.now() - began) / 1000).toFixed(3)));

@@ -1,10 +1,12 @@
 import { parseArgs } from 'node:util';
 import type { ReadingCorrections } from '@foreveil/shared';
+import { ANSWER_OPTIONS, ANSWER_USAGE, answersOf } from './answers.js';
 
 export const USAGE = `usage: npm run --silent identify -- FILE... [--medium air|vacuum] [--frame barycentric|heliocentric|topocentric] [--resolution R]
 
 Reads each spectrum, identifies its lines against the default line list and prints one JSON object a line to standard output.
-The options overrule what the files say. Exit status: 0 all files used, 1 a file could not be used, 2 wrong arguments.`;
+The options overrule what the files say. Exit status: 0 all files used, 1 a file could not be used, 2 wrong arguments.
+${ANSWER_USAGE}`;
 
 export const COMPARE_USAGE = `usage: npm run --silent compare -- FILE_A FILE_B [--medium air|vacuum] [--frame barycentric|heliocentric|topocentric] [--resolution R]
 
@@ -28,6 +30,7 @@ export function readOptions(argv: readonly string[]): Options {
         medium: { type: 'string' },
         frame: { type: 'string' },
         resolution: { type: 'string' },
+        ...ANSWER_OPTIONS,
         help: { type: 'boolean', short: 'h' },
       },
     });
@@ -43,9 +46,11 @@ export function readOptions(argv: readonly string[]): Options {
   const resolvingPower = values.resolution === undefined ? undefined : Number(values.resolution);
   if (resolvingPower !== undefined && !(resolvingPower >= 10 && resolvingPower <= 1e7))
     return { problem: `--resolution takes lambda/FWHM between 10 and 10 000 000, not "${values.resolution}"` };
+  const answered = answersOf(values);
+  if ('problem' in answered) return answered;
   if (positionals.length === 0) return { problem: 'no file named' };
   return {
     files: positionals,
-    corrections: { ...(medium && { medium }), ...(frame && { frame }), ...(resolvingPower && { resolvingPower }) },
+    corrections: { ...(medium && { medium }), ...(frame && { frame }), ...(resolvingPower && { resolvingPower }), ...answered.corrections },
   };
 }
