@@ -1,14 +1,15 @@
 // Holds the probabilities that the program states against simulated spectra, and writes what it finds to
 // shared/src/identify/reliability-data.ts, which the screens show:
-//   npm run calibrate                                  the whole run, some tens of minutes on one core
+//   npm run calibrate -- --jobs 4                      the whole run, kinds shared out to processes; the result is the same with one
 //   npm run calibrate -- --count 2 --kinds nebula --dry    a short look that writes nothing
+import { execFile } from 'node:child_process';
 import { createHash } from 'node:crypto';
 import { readdirSync, readFileSync, writeFileSync } from 'node:fs';
-import { parseArgs } from 'node:util';
+import { parseArgs, promisify } from 'node:util';
 import { format, resolveConfig } from 'prettier';
 import { analyse, calibrationError, DEFAULT_SETTINGS, PROGRAM_VERSION, shareInterval, type Reliability } from '@foreveil/shared';
-import { Calibration } from '../test/simulation/calibration.js';
-import { KINDS, matter, sceneOf, simulate, type Trouble } from '../test/simulation/index.js';
+import { Calibration, type CalibrationCounts } from '../test/simulation/calibration.js';
+import { KINDS, matter, sceneOf, simulate, type Kind, type Trouble } from '../test/simulation/index.js';
 
 const OUT = new URL('../shared/src/identify/reliability-data.ts', import.meta.url).pathname;
 /** What half of the spectra suffer, and the other half: what archives hold, and about twice that. */
@@ -19,15 +20,23 @@ const { values } = parseArgs({
     count: { type: 'string', default: '8' },
     seed: { type: 'string', default: '20261' },
     kinds: { type: 'string', default: KINDS.join(',') },
+    jobs: { type: 'string', default: '1' },
     dry: { type: 'boolean', default: false },
+    counts: { type: 'boolean', default: false }, // print bare counts, for the process that shared the work out
   },
 });
 const seed = Number(values.seed);
+const jobs = Number(values.jobs);
 const kinds = KINDS.filter((kind) => values.kinds.split(',').includes(kind));
 const sources = sourcesOf(new URL('../shared/src/', import.meta.url).pathname);
 const { list } = matter();
 const calibration = new Calibration();
-for (const kind of kinds) {
+if (jobs > 1) for (const counts of await Promise.all(shares(kinds, jobs).map(countsElsewhere))) calibration.merge(counts);
+else kinds.forEach(measure);
+if (values.counts) console.log(JSON.stringify(calibration.counts()));
+else await finish();
+
+function measure(kind: Kind): void {
   for (let index = 0; index < Number(values.count); index++) {
     const { spectrum, truth } = simulate(sceneOf({ kind, index, seed, trouble: TROUBLES[index % TROUBLES.length]! }));
     const analysis = analyse(spectrum, list, DEFAULT_SETTINGS);
@@ -37,9 +46,23 @@ for (const kind of kinds) {
     console.error(`${kind} ${index}: ${analysis.features.length} features; systems ${found || 'none'}; made of ${made || 'none'}`);
   }
 }
-const reliability = calibration.result({ programVersion: PROGRAM_VERSION, lineListVersion: list.version, sources, seed });
-print(reliability);
-if (!values.dry) {
+
+/** Kinds dealt out like cards: neighbours in the list take about as long. */
+function shares(all: readonly Kind[], count: number): Kind[][] {
+  return Array.from({ length: count }, (_, job) => all.filter((_kind, i) => i % count === job)).filter((share) => share.length > 0);
+}
+
+async function countsElsewhere(share: readonly Kind[]): Promise<CalibrationCounts> {
+  const args = ['--kinds', share.join(','), '--count', values.count, '--seed', values.seed, '--counts'];
+  const running = promisify(execFile)(process.execPath, [...process.execArgv, process.argv[1]!, ...args], { maxBuffer: 2 ** 26 });
+  running.child.stderr?.pipe(process.stderr);
+  return JSON.parse((await running).stdout) as CalibrationCounts;
+}
+
+async function finish(): Promise<void> {
+  const reliability = calibration.result({ programVersion: PROGRAM_VERSION, lineListVersion: list.version, sources, seed });
+  print(reliability);
+  if (values.dry) return;
   await write(reliability);
   console.log(`written to ${OUT.slice(OUT.indexOf('shared/'))}`);
 }

@@ -16,6 +16,11 @@ interface Tally {
   right: number;
   sum: number;
 }
+/** What was counted, to be added to what was counted elsewhere. */
+export interface CalibrationCounts {
+  readonly spectra: Readonly<Record<string, number>>;
+  readonly tallies: readonly (readonly [string, readonly Tally[]])[];
+}
 const FAMILIES: readonly ReliabilityFamily[] = ['stellar', 'interstellar', 'nebular', 'telluric', 'unidentified'];
 const BINS = RELIABILITY_EDGES.length - 1;
 const binOf = (probability: number) =>
@@ -51,6 +56,21 @@ export class Calibration {
     tally.sum += probability;
   }
 
+  counts(): CalibrationCounts {
+    return { spectra: this.spectra, tallies: [...this.#tallies] };
+  }
+
+  merge(other: CalibrationCounts): void {
+    for (const [kind, count] of Object.entries(other.spectra)) this.spectra[kind] = (this.spectra[kind] ?? 0) + count;
+    for (const [key, tallies] of other.tallies) {
+      const own = this.#tallies.get(key) ?? tallies.map(() => ({ count: 0, right: 0, sum: 0 }));
+      this.#tallies.set(
+        key,
+        own.map((t, i) => ({ count: t.count + tallies[i]!.count, right: t.right + tallies[i]!.right, sum: t.sum + tallies[i]!.sum })),
+      );
+    }
+  }
+
   #bins(key: string): ReliabilityBin[] {
     const tallies = this.#tallies.get(key) ?? Array.from({ length: BINS }, () => ({ count: 0, right: 0, sum: 0 }));
     return tallies.map(({ count, right, sum }, i) => ({
@@ -65,7 +85,7 @@ export class Calibration {
   result(versions: Pick<Reliability, 'programVersion' | 'lineListVersion' | 'sources' | 'seed'>): Reliability {
     return {
       ...versions,
-      spectra: this.spectra,
+      spectra: Object.fromEntries(Object.entries(this.spectra).sort(([a], [b]) => (a < b ? -1 : 1))),
       families: FAMILIES.map((family) => ({
         family,
         first: this.#bins(`${family} first`),
