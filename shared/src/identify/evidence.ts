@@ -1,8 +1,14 @@
+import type { Line } from '../linelist/index.js';
 import type { Companion, EvidencePart, Settling } from './analysis.js';
 import { offsetMoments, positionSigma, widthRatio, type LineTerm, type SpeciesState } from './offsets.js';
 import type { Contender, Ranked } from './rank.js';
-import type { Beyond } from './settle.js';
 import { velocityOf, type Coverage, type FeatureView } from './views.js';
+
+/** A line of a species that the data do not cover; logW is log10 of the expected |W| in nm before the species' offset, or NaN. */
+export interface Beyond {
+  readonly line: Line;
+  readonly logW: number;
+}
 
 export const MILLI_ANGSTROM = 1e4; // per nm
 const COMPANIONS = 8;

@@ -1,6 +1,6 @@
 import { featureAt, velocityOf, type Coverage, type FeatureView } from './views.js';
 import type { Expected, SpeciesModel, SystemModel } from './model.js';
-import type { Population } from './population.js';
+import type { Population } from './at-large.js';
 import { C_KM_PER_S } from '../units/index.js';
 
 /** Offsets tried for a species, dex: wide enough for any abundance or ionisation that the strength model misses. */

@@ -1,35 +1,12 @@
+import { AT_LARGE, SETTLED, UNLISTED_SHARE, type Population } from './at-large.js';
 import type { SystemModel } from './model.js';
 import { widthRatio } from './offsets.js';
 import type { FeatureRanking } from './rank.js';
 import { median } from '../numeric/index.js';
 import type { Coverage, FeatureView } from './views.js';
 
-/** What the features of one spectrum are like as a whole: the ground that "not in the list" stands on. */
-export interface Population {
-  /** of all features, those made by lines that no list holds */
-  readonly unlistedShare: number;
-  /** typical log10 |W| in nm of features of a kind, and the spread, dex */
-  logW(kind: 'dip' | 'peak'): number;
-  readonly logWSpread: number;
-  /** how much better the feature's width suits lines of the systems found than features at large */
-  widthRatio(f: FeatureView): number;
-  /** error of a centroid from profile misfit, as a share of the feature's FWHM */
-  readonly settled: number;
-}
-
-const UNLISTED_SHARE = 0.05; // prior: lists lack a few lines in a hundred
 const PRIOR_FEATURES = 40; // features that the prior share is worth
-const SETTLED = 0.012;
 const LEAST_SPREAD = 0.45; // dex
-
-/** Before anything is known of a spectrum. */
-export const AT_LARGE: Population = {
-  unlistedShare: UNLISTED_SHARE,
-  logW: () => -2.5,
-  logWSpread: 0.8,
-  widthRatio: () => 1,
-  settled: SETTLED,
-};
 
 /** The population after a first look: strengths and widths as measured, systems as found, the share of unlisted lines as first ranked. */
 export function populationOf(

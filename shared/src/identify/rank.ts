@@ -1,7 +1,7 @@
 import { C_KM_PER_S } from '../units/index.js';
 import { normalDraws } from './draws.js';
 import type { Expected, SystemModel } from './model.js';
-import { AT_LARGE } from './population.js';
+import { AT_LARGE } from './at-large.js';
 import { offsetMoments, widthRatio, type Background, type LineTerm, type SpeciesState } from './offsets.js';
 import { featureAt, velocityOf, type Coverage, type FeatureView } from './views.js';
 

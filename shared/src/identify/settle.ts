@@ -1,15 +1,9 @@
 import type { Line } from '../linelist/index.js';
 import type { Settling } from './analysis.js';
-import { MILLI_ANGSTROM, round } from './evidence.js';
+import { MILLI_ANGSTROM, round, type Beyond } from './evidence.js';
 import { offsetMoments, type LineTerm, type SpeciesState } from './offsets.js';
 import type { Contender, Ranked } from './rank.js';
 import { dopplerFactor, type Coverage, type FeatureView } from './views.js';
-
-/** A line of a species that the data do not cover; logW is log10 of the expected |W| in nm before the species' offset, or NaN. */
-export interface Beyond {
-  readonly line: Line;
-  readonly logW: number;
-}
 
 const STRONGEST = 2;
 const NEARNESS = 2; // dex a natural-log unit of wavelength: a line next to the covered range is easier to get than one far off
