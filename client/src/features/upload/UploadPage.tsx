@@ -3,7 +3,7 @@ import { Dropzone } from '@mantine/dropzone';
 import { roleAllows } from '@foreveil/shared';
 import { IconDownload } from '@tabler/icons-react';
 import { useSuspenseQueries } from '@tanstack/react-query';
-import { useEffect, useRef, type Ref } from 'react';
+import { useEffect, useRef } from 'react';
 import { Link, useParams, useSearchParams } from 'react-router-dom';
 import { PageHead, type Fact } from '../../components/PageHead.js';
 import { roleReason } from '../../components/RoleButton.js';
@@ -128,9 +128,8 @@ const TAKES = 'FITS tables and images, CSV, plain text, gzip; to 200 MB each.';
 
 function FileDrop({ empty, onFiles }: { empty: boolean; onFiles: (files: File[]) => void }) {
   const choose = useRef<() => void>(null);
-  const folder = useRef<HTMLInputElement>(null);
   const open = () => choose.current?.();
-  const openFolder = () => folder.current?.click();
+  const openFolder = () => chooseFolder(onFiles);
   return (
     <div className={classes.dropFrame}>
       <Dropzone
@@ -171,25 +170,15 @@ function FileDrop({ empty, onFiles }: { empty: boolean; onFiles: (files: File[])
           </div>
         )}
       </Dropzone>
-      <FolderInput ref={folder} onFiles={onFiles} />
     </div>
   );
 }
 
-/** A browser's choice of a folder: all its files, those of the folders in it too. */
-function FolderInput({ ref, onFiles }: { ref: Ref<HTMLInputElement>; onFiles: (files: File[]) => void }) {
-  return (
-    <input
-      ref={ref}
-      type="file"
-      hidden
-      multiple
-      aria-label="Folder of spectrum files"
-      {...{ webkitdirectory: '' }}
-      onChange={(event) => {
-        onFiles([...(event.currentTarget.files ?? [])]);
-        event.currentTarget.value = '';
-      }}
-    />
-  );
+/** The browser's choice of a folder: all its files, those of the folders in it too. */
+function chooseFolder(onFiles: (files: File[]) => void) {
+  const input = document.createElement('input');
+  input.type = 'file';
+  input.webkitdirectory = true;
+  input.onchange = () => onFiles([...(input.files ?? [])]);
+  input.click();
 }
