@@ -56,7 +56,7 @@ const MISPLACED_WITHIN = 60;
 
 const LN10 = Math.LN10;
 /** Chance that a line which the strength model promises is not there: wrong gf, wrong level, a list's slip. */
-const PROMISE_BROKEN = 0.05;
+const PROMISE_BROKEN = 0.07;
 
 /** Student's t density with 30 degrees of freedom: somewhat more than Gaussian errors allow. */
 const heavyTail = (z: number): number => 0.3956 * (1 + (z * z) / 30) ** -15.5;
