@@ -147,11 +147,7 @@ test('an administrator closes and opens an account, and a lead deletes a program
   await signIn(lead, 'lead');
   await lead.getByRole('button', { name: 'New programme' }).click();
   await lead.getByLabel('Name', { exact: true }).fill('Short-lived');
-  await lead
-    .getByRole('dialog')
-    .getByRole('button', { name: /programme/i })
-    .last()
-    .click();
+  await lead.getByRole('button', { name: 'Start it' }).click();
   await lead.getByRole('heading', { level: 1, name: 'Short-lived' }).waitFor();
   await lead.getByRole('link', { name: /Invite, change roles/ }).click();
   await lead.getByRole('button', { name: 'Delete' }).click();

@@ -1,3 +1,4 @@
+import { UnstyledButton } from '@mantine/core';
 import { useQuery } from '@tanstack/react-query';
 import type { ReceivedMail } from '@foreveil/shared';
 import { useState } from 'react';
@@ -19,7 +20,7 @@ export function MailPage() {
   return (
     <main className={sections.page}>
       <title>Mail of the demonstration · Foreveil</title>
-      <h1>Mail of this demonstration</h1>
+      <h1 className={sections.title}>Mail of this demonstration</h1>
       <p>
         Nothing leaves this machine: what Foreveil would send arrives here. <Link to={pagePaths.programmes}>To the workbench</Link>
       </p>
@@ -29,9 +30,9 @@ export function MailPage() {
           {received.data?.map(({ id, subject, to, receivedAt }) => (
             <li key={id}>
               <span>
-                <button type="button" aria-pressed={id === chosen} onClick={() => setChosen(id)}>
+                <UnstyledButton className={sections.choice} aria-pressed={id === chosen} onClick={() => setChosen(id)}>
                   {subject}
-                </button>
+                </UnstyledButton>
                 <span className={sections.under}>
                   to {to.join(', ')}, {ago(receivedAt, now)}
                 </span>
