@@ -9,6 +9,7 @@ import { counted } from '../../lib/number.js';
 import { pagePaths } from '../../lib/paths.js';
 import { day } from '../../lib/time.js';
 import { useNow } from '../../lib/useNow.js';
+import { SpeciesSummary } from './evidence/SpeciesSummary.js';
 import { lineRows } from './lines/reading.js';
 import { HowDrawn } from './page/HowDrawn.js';
 import { Cautions, EmptyCurve, RunNotes } from './page/RunNotes.js';
@@ -45,7 +46,9 @@ function Page({ programmeId, spectrumId }: { programmeId: string; spectrumId: st
       <div className={classes.notes}>
         <Runs data={data} steering={steering} run={run} programmeId={programmeId} spectrumId={spectrumId} />
         {data.isOld && analysis && <OldRun at={analysis.requestedAt} onLeave={() => openRun(null)} />}
-        {analysis && result && <Strap {...{ data, analysis, steering, run, programmeId, spectrumId }} cautions={result.cautions} />}
+        {analysis && result && (
+          <Strap {...{ data, analysis, steering, run, settings, programmeId, spectrumId }} cautions={result.cautions} />
+        )}
       </div>
       {data.error && !(curve && analysis !== undefined) ? (
         <Failure data={data} />
@@ -108,10 +111,11 @@ interface RunProps {
 interface StrapProps extends RunProps {
   analysis: AnalysisDetail;
   cautions: readonly string[];
+  settings: PageSettings;
 }
 
 /** Under the facts: what to be careful about, and which run all this comes from. */
-function Strap({ data, analysis, cautions, steering, run, programmeId, spectrumId }: StrapProps) {
+function Strap({ data, analysis, cautions, steering, run, settings, programmeId, spectrumId }: StrapProps) {
   const mayRun = data.role !== null && roleAllows(data.role, 'analyst') && !isAtWork(data.latest) && !data.isOld;
   const set = settingsInWords(steering.run).length;
   return (
@@ -127,6 +131,7 @@ function Strap({ data, analysis, cautions, steering, run, programmeId, spectrumI
             Run again
           </button>
         )}
+        {analysis.result && <SpeciesSummary analysis={analysis.result} settings={settings} />}
         <a href={apiPaths.spectrumReport(programmeId, spectrumId)} download>
           Line report, CSV
         </a>

@@ -1,4 +1,5 @@
 import type { Candidate } from '@foreveil/shared';
+import { How } from './How.js';
 import { barLength, factorLabel, PART_WORD } from './odds.js';
 import classes from './evidence.module.css';
 
@@ -47,7 +48,9 @@ export function Argument({ candidate }: { candidate: Candidate }) {
     <ol className={classes.parts} tabIndex={0} aria-label="Evidence, as factors on the odds">
       {candidate.evidence.map(({ part, logOdds, sentence }) => (
         <li key={part} className={classes.part}>
-          <span className={classes.partName}>{PART_WORD[part]}</span>
+          <span className={classes.partName}>
+            <How of={part}>{PART_WORD[part]}</How>
+          </span>
           <span className={classes.partWords}>
             <Emphasised sentence={sentence} />
           </span>

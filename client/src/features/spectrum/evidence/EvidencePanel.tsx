@@ -10,6 +10,7 @@ import { choices, sameReading, type LineRow, type Reading } from '../lines/readi
 import { Argument } from './Argument.js';
 import { Candidates } from './Candidates.js';
 import { Companions } from './Companions.js';
+import { How } from './How.js';
 import { History } from './History.js';
 import { Tested } from './Tested.js';
 import { oddsLabel, together } from './odds.js';
@@ -48,10 +49,19 @@ export function EvidencePanel(props: EvidenceProps) {
           <Mark family={chosen.family} state={sameReading(chosen, row.reading) ? row.state : 'proposed'} size={24} spoken />
           <div className={classes.claimWords}>
             <h2 id={titleId}>{claimTitle(chosen, system?.velocityKmPerS ?? null, display)}</h2>
-            <p className={classes.measurement}>{measurement(row.feature, display)}</p>
+            <p className={classes.measurement}>
+              <How of="measurement">{measurement(row.feature, display)}</How>
+            </p>
           </div>
           <Acts {...props} />
-          <p className={classes.sentence}>{chosen.candidate ? summing(chosen.candidate) : withoutArgument(props)}</p>
+          <p className={classes.sentence}>
+            {chosen.candidate ? summing(chosen.candidate) : withoutArgument(props)} <How of="probability">How computed</How>
+          </p>
+          {chosen.candidate?.settle && (
+            <p className={classes.sentence}>
+              <b>What would settle it.</b> {chosen.candidate.settle.sentence}
+            </p>
+          )}
         </div>
         <div className={classes.argument}>
           {chosen.candidate && <Argument candidate={chosen.candidate} />}

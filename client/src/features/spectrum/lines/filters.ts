@@ -41,6 +41,8 @@ export function passes(row: LineRow, filter: LineFilter): boolean {
   if (filter.family && row.reading.family !== filter.family) return false;
   if (filter.state && row.state !== filter.state) return false;
   if (filter.system && row.staveId !== filter.system) return false;
+  const exactly = /^"(.+)"$/.exec(filter.text.trim())?.[1]; // in quotes: this species and no other
+  if (exactly !== undefined) return row.reading.species?.toLowerCase() === exactly.toLowerCase();
   const words = filter.text.toLowerCase().split(/\s+/).filter(Boolean);
   if (words.length === 0) return true;
   const text = searchText(row);
