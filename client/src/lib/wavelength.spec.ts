@@ -17,8 +17,18 @@ test('wavenumbers belong to vacuum whatever medium is chosen', () => {
 test('a hundred changes of unit and medium leave a wavelength as it was', () => {
   let nm = 656.4614;
   for (let i = 0; i < 100; i++) {
-    const display = wavelengthDisplay((['nm', 'angstrom', 'micron', 'wavenumber'] as const)[i % 4]!, i % 3 ? 'air' : 'vacuum');
+    const display = wavelengthDisplay(
+      (['nm', 'angstrom', 'micron', 'wavenumber', 'terahertz', 'electronvolt'] as const)[i % 6]!,
+      i % 3 ? 'air' : 'vacuum',
+    );
     nm = display.read(display.show(nm));
   }
   expect(Math.abs(nm - 656.4614)).toBeLessThan(1e-10); // some hundred roundings of 1e-13
+});
+
+test('frequencies and photon energies are those of the vacuum wavelength', () => {
+  // c = 299 792 458 m/s and h c = 1239.841984 eV nm, both exact in the SI
+  expect(wavelengthDisplay('terahertz', 'air').show(500)).toBeCloseTo(599.584916, 6);
+  expect(wavelengthDisplay('electronvolt', 'air').show(500)).toBeCloseTo(2.479683968, 8);
+  expect(wavelengthDisplay('electronvolt', 'air').shortLabel).toBe('eV');
 });

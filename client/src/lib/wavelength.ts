@@ -1,5 +1,6 @@
 import {
   airToVacuum,
+  hasMedium,
   vacuumToAir,
   wavelengthFrom,
   wavelengthIn,
@@ -19,20 +20,27 @@ export interface WavelengthDisplay {
   readonly show: (nm: number) => number;
   /** a shown number as vacuum nm */
   readonly read: (shown: number) => number;
-  /** 'nm', 'Å', 'µm', 'cm⁻¹' */
+  /** 'nm', 'Å', 'µm', 'cm⁻¹', 'THz', 'eV' */
   readonly unitLabel: string;
   /** 'nm vac', 'Å air', 'cm⁻¹' */
   readonly shortLabel: string;
 }
 
-export const UNIT_LABEL: Record<WavelengthUnit, string> = { nm: 'nm', angstrom: 'Å', micron: 'µm', wavenumber: 'cm⁻¹' };
+export const UNIT_LABEL: Record<WavelengthUnit, string> = {
+  nm: 'nm',
+  angstrom: 'Å',
+  micron: 'µm',
+  wavenumber: 'cm⁻¹',
+  terahertz: 'THz',
+  electronvolt: 'eV',
+};
 
 /** Decimals that show about a tenth of a milliangstrom. */
-const DECIMALS: Record<WavelengthUnit, number> = { nm: 4, angstrom: 3, micron: 7, wavenumber: 3 };
+const DECIMALS: Record<WavelengthUnit, number> = { nm: 4, angstrom: 3, micron: 7, wavenumber: 3, terahertz: 4, electronvolt: 7 };
 
-/** Wavenumbers belong to vacuum by definition, so there the medium changes nothing. */
+/** Wavenumbers, frequencies and energies belong to vacuum by definition, so there the medium changes nothing. */
 export function wavelengthDisplay(unit: WavelengthUnit, chosen: Medium): WavelengthDisplay {
-  const medium = unit === 'wavenumber' ? 'vacuum' : chosen;
+  const medium = hasMedium(unit) ? chosen : 'vacuum';
   const inAir = medium === 'air';
   return {
     unit,
@@ -43,7 +51,7 @@ export function wavelengthDisplay(unit: WavelengthUnit, chosen: Medium): Wavelen
       return inAir ? airToVacuum(nm as AirNm) : nm;
     },
     unitLabel: UNIT_LABEL[unit],
-    shortLabel: unit === 'wavenumber' ? UNIT_LABEL[unit] : `${UNIT_LABEL[unit]} ${inAir ? 'air' : 'vac'}`,
+    shortLabel: hasMedium(unit) ? `${UNIT_LABEL[unit]} ${inAir ? 'air' : 'vac'}` : UNIT_LABEL[unit],
   };
 }
 

@@ -6,7 +6,7 @@ import { axisTicks, shownPerNm, shownWavelength } from './axis-ticks.js';
 import { scaledUnit, typesetUnit, valueLabels } from './value-axis.js';
 
 const displays = fc.tuple(
-  fc.constantFrom<WavelengthUnit>('nm', 'angstrom', 'micron', 'wavenumber'),
+  fc.constantFrom<WavelengthUnit>('nm', 'angstrom', 'micron', 'wavenumber', 'terahertz', 'electronvolt'),
   fc.constantFrom<Medium>('vacuum', 'air'),
 );
 
@@ -32,7 +32,7 @@ describe('the wavelength axis', () => {
   });
 
   it('turns an error in nm into the shown unit as the scale does', () => {
-    for (const unit of ['nm', 'angstrom', 'micron', 'wavenumber'] as const) {
+    for (const unit of ['nm', 'angstrom', 'micron', 'wavenumber', 'terahertz', 'electronvolt'] as const) {
       const display = wavelengthDisplay(unit, 'vacuum');
       const slope = Math.abs(display.show(500.001) - display.show(499.999)) / 0.002;
       expect(shownPerNm(500, display) / slope).toBeCloseTo(1, 6);

@@ -1,12 +1,12 @@
-import { wavelengthIn, type VacuumNm } from '@foreveil/shared';
+import { hasMedium, wavelengthIn, type VacuumNm } from '@foreveil/shared';
 import { fixed } from '../lib/number.js';
 import type { WavelengthDisplay } from '../lib/wavelength.js';
 import { niceTicks, tickDigits } from './ticks.js';
 
 /** How much the shown number changes per nm at a wavelength, without sign: turns an error in nm into one in the shown unit. */
 export function shownPerNm(nm: number, { unit }: WavelengthDisplay): number {
-  if (unit === 'wavenumber') return 1e7 / nm ** 2;
-  return wavelengthIn(1 as VacuumNm, unit);
+  // a length is in proportion to the nm, everything else to its inverse
+  return hasMedium(unit) ? wavelengthIn(1 as VacuumNm, unit) : wavelengthIn(nm as VacuumNm, unit) / nm;
 }
 
 /** Decimals that show as much as `decimalsInNm` do in nm. */

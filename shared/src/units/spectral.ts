@@ -49,9 +49,19 @@ export function fromNm(nm: number, unit: SpectralUnit): number {
   return kind === 'proportional' ? nm / factor : factor / nm;
 }
 
-const SHOWN: Record<WavelengthUnit, SpectralUnit> = { nm: 'nm', angstrom: 'angstrom', micron: 'micron', wavenumber: 'wavenumber_per_cm' };
+const SHOWN: Record<WavelengthUnit, SpectralUnit> = {
+  nm: 'nm',
+  angstrom: 'angstrom',
+  micron: 'micron',
+  wavenumber: 'wavenumber_per_cm',
+  terahertz: 'thz',
+  electronvolt: 'ev',
+};
 
-/** A vacuum wavelength in the unit a person chose; wavenumbers in cm^-1. */
+/** Whether a person who chose this unit also has to choose between air and vacuum. */
+export const hasMedium = (unit: WavelengthUnit): boolean => isLength(SHOWN[unit]);
+
+/** A vacuum wavelength in the unit a person chose; wavenumbers in cm^-1, frequencies in THz, photon energies in eV. */
 export const wavelengthIn = (vacuum: VacuumNm, unit: WavelengthUnit): number => fromNm(vacuum, SHOWN[unit]);
 
 /** What a person typed, as vacuum nm. */

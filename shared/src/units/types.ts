@@ -10,4 +10,4 @@ export const C_KM_PER_S = 299_792.458;
 export type Medium = 'vacuum' | 'air';
 
 /** Units a spectral axis may be shown in. */
-export type WavelengthUnit = 'nm' | 'angstrom' | 'micron' | 'wavenumber';
+export type WavelengthUnit = 'nm' | 'angstrom' | 'micron' | 'wavenumber' | 'terahertz' | 'electronvolt';

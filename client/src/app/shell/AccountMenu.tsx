@@ -1,7 +1,7 @@
 import { Menu, UnstyledButton, useMantineColorScheme, type MantineColorScheme } from '@mantine/core';
 import { notifications } from '@mantine/notifications';
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
-import type { Medium } from '@foreveil/shared';
+import { hasMedium, type Medium } from '@foreveil/shared';
 import { Link, useNavigate } from 'react-router-dom';
 import { Initials } from '../../components/Initials.js';
 import { errorSentence } from '../../lib/error-sentences.js';
@@ -94,7 +94,7 @@ function WavelengthChoice() {
   return (
     <>
       <Choices label="Wavelengths shown in" words={UNIT_LABEL} value={unit} onChoose={setUnit} />
-      {unit !== 'wavenumber' && <Choices label="Wavelengths shown for" words={MEDIA} value={medium} onChoose={setMedium} />}
+      {hasMedium(unit) && <Choices label="Wavelengths shown for" words={MEDIA} value={medium} onChoose={setMedium} />}
     </>
   );
 }

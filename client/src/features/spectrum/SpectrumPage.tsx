@@ -41,7 +41,7 @@ function Page({ programmeId, spectrumId }: { programmeId: string; spectrumId: st
   const result = analysis?.result ?? null;
   if (!spectrum) return data.error ? <Failure data={data} /> : <Waiting what="Fetching the spectrum" />;
   return (
-    <div className={classes.page}>
+    <div className={classes.page} data-steering={steering.isOpen || undefined}>
       <Header data={data} settings={settings} />
       <div className={classes.notes}>
         <Runs data={data} steering={steering} run={run} programmeId={programmeId} spectrumId={spectrumId} />

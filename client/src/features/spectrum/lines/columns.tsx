@@ -35,7 +35,8 @@ function WithError({ value, sigma }: NumberParts) {
 }
 
 /** Decimals that most errors of a wavelength need, in the shown unit. */
-const wavelengthColumnDecimals = (display: WavelengthDisplay) => ({ nm: 5, angstrom: 4, micron: 8, wavenumber: 3 })[display.unit];
+const wavelengthColumnDecimals = ({ unit }: WavelengthDisplay) =>
+  ({ nm: 5, angstrom: 4, micron: 8, wavenumber: 3, terahertz: 5, electronvolt: 8 })[unit];
 
 export const COLUMNS: readonly Column[] = [
   {

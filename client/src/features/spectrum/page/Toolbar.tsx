@@ -1,5 +1,5 @@
 import { NativeSelect } from '@mantine/core';
-import type { Medium, WavelengthUnit } from '@foreveil/shared';
+import { hasMedium, type Medium, type WavelengthUnit } from '@foreveil/shared';
 import { UNIT_LABEL, type WavelengthChoice } from '../../../lib/wavelength.js';
 import type { CurveData } from '../../../plot/curve-data.js';
 import type { CursorStore } from '../../../plot/cursor.js';
@@ -75,7 +75,7 @@ export function Toolbar({ data, view, cursor, choice, mode, base, selected, onMo
           onChange={(event) => {
             const [unit, medium] = event.currentTarget.value.split(' ') as [WavelengthUnit, Medium];
             choice.setUnit(unit);
-            if (unit !== 'wavenumber') choice.setMedium(medium);
+            if (hasMedium(unit)) choice.setMedium(medium);
           }}
           data={SHOWN_IN}
         />
@@ -99,12 +99,12 @@ export function Toolbar({ data, view, cursor, choice, mode, base, selected, onMo
 }
 
 const SHOWN_IN = (Object.entries(UNIT_LABEL) as [WavelengthUnit, string][]).flatMap(([unit, label]) =>
-  unit === 'wavenumber'
-    ? [{ value: `${unit} vacuum`, label }]
-    : [
+  hasMedium(unit)
+    ? [
         { value: `${unit} vacuum`, label: `${label}, vacuum` },
         { value: `${unit} air`, label: `${label}, air` },
-      ],
+      ]
+    : [{ value: `${unit} vacuum`, label }],
 );
 
 /** History and zoom as buttons: twins of keys, wheel and drag. */

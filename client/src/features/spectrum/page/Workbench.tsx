@@ -1,7 +1,6 @@
 import type { AnalysisDetail, AnalysisRun, Identification, MemberRole, SpectrumDetail } from '@foreveil/shared';
 import { useMediaQuery } from '@mantine/hooks';
-import { startTransition, useCallback, useDeferredValue, useEffect, useId, useMemo, useState, type KeyboardEvent } from 'react';
-import { looksLikeEmission } from '../../../lib/emission.js';
+import { useCallback, useDeferredValue, useId, useMemo, useState, type KeyboardEvent } from 'react';
 import { useNow } from '../../../lib/useNow.js';
 import { CurveStack } from '../../../plot/CurveStack.js';
 import { Overview } from '../../../plot/Overview.js';
@@ -22,9 +21,11 @@ import { RegionBar } from '../region/RegionBar.js';
 import { RegionStore } from '../region/region-store.js';
 import { useStretches } from '../region/use-stretches.js';
 import { firstView } from '../state/first-view.js';
+import { isEmission } from '../state/is-emission.js';
 import { summary } from '../state/spoken.js';
 import { useActing } from '../state/use-acting.js';
 import { useFirstWeek } from '../state/use-first-week.js';
+import { useAfterFirstPaint } from '../state/use-after-first-paint.js';
 import { useAnnouncer } from '../state/use-announcer.js';
 import { useCommands } from '../state/use-commands.js';
 import { useAddress, type PageSettings } from '../state/use-page-state.js';
@@ -183,32 +184,36 @@ export function Workbench(props: Props) {
 
   return (
     <div style={{ display: 'contents' }} onKeyDown={onUndoKey}>
-      {analysis && !props.isOld && (
-        <Unplaced
-          programmeId={spectrum.programmeId}
-          spectrumId={spectrum.id}
-          analysisId={analysis.id}
-          onShow={(nm) => view.reveal(nm)}
-          {...{ role, selected }}
-          display={choice}
-        />
-      )}
-      <div className={classes.over}>
-        <Overview
-          {...{ data, view, emission }}
-          features={everyFeature}
-          display={choice}
-          preview={spectrum.preview}
-          label={`Light strip of ${spectrum.label}`}
-        />
+      <div className={classes.cell}>
+        {analysis && !props.isOld && (
+          <Unplaced
+            programmeId={spectrum.programmeId}
+            spectrumId={spectrum.id}
+            analysisId={analysis.id}
+            onShow={(nm) => view.reveal(nm)}
+            {...{ role, selected }}
+            display={choice}
+          />
+        )}
+        <div className={classes.over}>
+          <Overview
+            {...{ data, view, emission }}
+            features={everyFeature}
+            display={choice}
+            preview={spectrum.preview}
+            label={`Light strip of ${spectrum.label}`}
+          />
+        </div>
       </div>
-      <Toolbar
-        {...{ data, view, cursor, choice, mode, base, selected, region, onSteer }}
-        isSteering={steering.isOpen}
-        onMode={(next) => settings.set({ mode: next })}
-        onBase={(next) => settings.set({ base: next })}
-      />
-      <RegionBar store={region} display={choice} {...{ data, selected, steering }} />
+      <div className={classes.cell}>
+        <Toolbar
+          {...{ data, view, cursor, choice, mode, base, selected, region, onSteer }}
+          isSteering={steering.isOpen}
+          onMode={(next) => settings.set({ mode: next })}
+          onBase={(next) => settings.set({ base: next })}
+        />
+        <RegionBar store={region} display={choice} {...{ data, selected, steering }} />
+      </div>
       {isPhone ? (
         <PhoneLayout {...{ curve, lines, evidence }} claim={chosen ? claimTitle(chosen, null, choice) : ''} />
       ) : (
@@ -230,19 +235,6 @@ export function Workbench(props: Props) {
       <ConflictDialog conflict={decisions.conflict} display={choice} onKeepTheirs={decisions.keepTheirs} onApplyMine={acting.insist} />
     </div>
   );
-}
-
-/** True from the second render on: what is large and below is drawn after the curve, without holding it up. */
-function useAfterFirstPaint(): boolean {
-  const [later, setLater] = useState(false);
-  useEffect(() => startTransition(() => setLater(true)), []);
-  return later;
-}
-
-/** By its lines where they are known, else by the server's preview. */
-function isEmission({ preview }: SpectrumDetail, rows: { feature: { kind: 'dip' | 'peak' } }[]): boolean {
-  if (rows.length > 0) return rows.filter((r) => r.feature.kind === 'peak').length > rows.length / 2;
-  return preview !== null && looksLikeEmission(preview.low, preview.high);
 }
 
 function NoEvidence({ rows, hasResult }: { rows: number; hasResult: boolean }) {

@@ -18,7 +18,7 @@ export interface PageState {
 
 export const START: PageState = { unit: 'nm', medium: 'vacuum', mode: 'flux', base: 'zero', filter: NO_FILTER, lineNm: null, range: null };
 
-const UNITS = ['nm', 'angstrom', 'micron', 'wavenumber'] as const satisfies readonly WavelengthUnit[];
+const UNITS = ['nm', 'angstrom', 'micron', 'wavenumber', 'terahertz', 'electronvolt'] as const satisfies readonly WavelengthUnit[];
 const MEDIA = ['vacuum', 'air'] as const satisfies readonly Medium[];
 const MODES = ['flux', 'normalised'] as const satisfies readonly CurveMode[];
 const BASES = ['zero', 'close'] as const satisfies readonly Base[];

@@ -1,4 +1,4 @@
-import type { Medium, WavelengthUnit } from '@foreveil/shared';
+import { hasMedium, type Medium, type WavelengthUnit } from '@foreveil/shared';
 import { useEffect, useMemo, useRef, useState } from 'react';
 import { useSearchParams } from 'react-router-dom';
 import { useWavelengthDisplay, type WavelengthChoice } from '../../../lib/wavelength.js';
@@ -42,7 +42,7 @@ function useAdopted(unit: WavelengthUnit, medium: Medium, choice: WavelengthChoi
     if (adopted.current) return;
     adopted.current = true;
     if (choice.unit !== unit) choice.setUnit(unit);
-    if (choice.medium !== medium && unit !== 'wavenumber') choice.setMedium(medium);
+    if (choice.medium !== medium && hasMedium(unit)) choice.setMedium(medium);
   }, [unit, medium, choice]);
 }
 

@@ -14,7 +14,7 @@ const LAWS: readonly { value: AnalysisSettings['extinctionLaw']; label: string }
   { value: 'odonnell94', label: "O'Donnell 1994" },
   { value: 'fitzpatrick99', label: 'Fitzpatrick 1999' },
 ];
-const FROM_DATA = 'from the data';
+const FROM_DATA = 'fitted';
 const short = (value: number) => String(Number(value.toFixed(3)));
 
 /** Temperature, dust, continuum, and how far and how deep is searched. */
