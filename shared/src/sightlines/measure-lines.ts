@@ -19,7 +19,7 @@ export type Shape = (line: Line, cloud: number) => Imprint;
 const FOREIGN_DOUBT = 0.25; // of foreign light divided out: stellar profiles are not Gaussians
 const SHARE_DOUBT = 0.5; // of light within the same feature that another line is thought to make
 const BASELINE_DOUBT = 0.0015; // of the continuum, over the width of the imprint
-const HIDDEN_DOUBT = 0.35;
+const HIDDEN_SHARE = 0.5; // of a line behind which another cloud's would hide: anything from none to all of it
 const NEIGHBOUR_DOUBT = 0.02; // of another cloud's line, at one width's distance: its wings are known no better
 
 /** Measures a line in all clouds on one side; null where not covered. */
@@ -46,8 +46,9 @@ export function measureLine(
   hidden.forEach((h, k) => {
     const front = h === null ? null : out[h];
     if (!front) return;
-    const error = Math.hypot(front.error, HIDDEN_DOUBT * Math.abs(front.width));
-    out[k] = { width: 0, sigma: front.sigma, error, offset: NaN, offsetSigma: NaN, foreign: Math.abs(front.width), feature: front.feature };
+    const width = HIDDEN_SHARE * Math.max(0, front.width);
+    const error = Math.hypot(front.error, width);
+    out[k] = { width, sigma: front.sigma, error, offset: NaN, offsetSigma: NaN, foreign: Math.abs(front.width), feature: front.feature };
   });
   return out;
 }
