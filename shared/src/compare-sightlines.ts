@@ -32,7 +32,12 @@ export function compareSightlines(
   onProgress(0.7);
   const chances = cloudChances(gas);
   const gasLines = comparedGas(gas, pair, chances);
-  const lines = [...gasLines, ...comparedBands(list, gas, pair, bandChances(gasLines, chances)), ...comparedStars(pair), ...comparedAir(pair)];
+  const lines = [
+    ...gasLines,
+    ...comparedBands(list, gas, pair, bandChances(gasLines, chances)),
+    ...comparedStars(pair),
+    ...comparedAir(pair),
+  ];
   const clouds = gas.drafts.map((_, k) => cloudOf(gas, pair, k, chances[k]!));
   onProgress(0.9);
   const [sideA, sideB] = [summaryOf(pair.a), summaryOf(pair.b)];

@@ -40,6 +40,8 @@ const SUBJECTS: Subject[] = [
   { page: 'mail', path: () => '/mail', heading: /Mail of this demonstration/ },
   { page: 'join', path: () => '/join#none', heading: /Invitation/, prepare: async (page) => page.getByRole('alert').waitFor() },
   { page: 'forgot-password', path: () => '/forgot-password', heading: /New password/ },
+  { page: 'comparisons', path: ({ programme }) => `/programmes/${programme.id}/comparisons`, heading: /Comparisons/ },
+  { page: 'comparison', path: aComparison, heading: /Tern 1 and Tern 2/, prepare: (page) => page.locator('#veil').waitFor() },
   { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];
@@ -62,6 +64,18 @@ async function chooseFiles(page: Page): Promise<void> {
 async function defaultList({ programme }: Demonstration, page: Page): Promise<string> {
   const lists = (await (await page.request.get(apiPaths.programmeLineLists(programme.id))).json()) as { id: string }[];
   return `/programmes/${programme.id}/line-lists/${lists[0]!.id}`;
+}
+
+/** Two stars of the demonstration behind one cloud, compared. */
+async function aComparison({ programme, targets }: Demonstration, page: Page): Promise<string> {
+  const spectrum = (name: string) => targets.find((target) => target.name === name)!.spectra[0]!.id;
+  const path = apiPaths.comparisons(programme.id);
+  const known = (await (await page.request.get(path)).json()) as { id: string; name: string }[];
+  const id = known.find(({ name }) => name === 'Tern 1 and Tern 2')?.id;
+  if (id) return `/programmes/${programme.id}/comparisons/${id}`;
+  const data = { spectrumA: spectrum('Tern 1'), spectrumB: spectrum('Tern 2') };
+  const made = (await (await page.request.post(path, { data, headers: { 'X-Foreveil': '1' } })).json()) as { id: string };
+  return `/programmes/${programme.id}/comparisons/${made.id}`;
 }
 
 async function openKeys(page: Page): Promise<void> {

@@ -4,6 +4,7 @@ import { isApiError } from '../lib/api-error.js';
 import { pagePaths } from '../lib/paths.js';
 import { accountQueries } from '../lib/queries/account.js';
 import { fileQueries, recipeQueries } from '../lib/queries/files.js';
+import { comparisonQueries } from '../lib/queries/comparisons.js';
 import { programmeQueries, targetQueries } from '../lib/queries/programmes.js';
 import { spectrumQueries } from '../lib/queries/spectra.js';
 
@@ -62,6 +63,24 @@ export function makeLoaders(client: QueryClient) {
     target: async (args: LoaderFunctionArgs) => {
       const [p, t] = [param(args, 'programmeId'), param(args, 'targetId')];
       await Promise.all([client.ensureQueryData(programmeQueries.detail(p)), client.ensureQueryData(targetQueries.detail(p, t))]);
+      return null;
+    },
+    comparisons: async (args: LoaderFunctionArgs) => {
+      const p = param(args, 'programmeId');
+      await Promise.all([
+        client.ensureQueryData(programmeQueries.detail(p)),
+        client.ensureQueryData(targetQueries.list(p)),
+        client.ensureQueryData(comparisonQueries.list(p)),
+      ]);
+      return null;
+    },
+    comparison: async (args: LoaderFunctionArgs) => {
+      const [p, c] = [param(args, 'programmeId'), param(args, 'comparisonId')];
+      await Promise.all([
+        client.ensureQueryData(programmeQueries.detail(p)),
+        client.ensureQueryData(targetQueries.list(p)),
+        client.ensureQueryData(comparisonQueries.detail(p, c)),
+      ]);
       return null;
     },
     spectrum: async (args: LoaderFunctionArgs) => {

@@ -83,6 +83,14 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
       path: 'programmes/:programmeId/members',
       loader: loaders.programme,
       lazy: async () => ({ Component: (await import('../features/members/MembersPage.js')).MembersPage }),
+      path: 'programmes/:programmeId/comparisons',
+      loader: loaders.comparisons,
+      lazy: async () => ({ Component: (await import('../features/comparison/ComparisonsPage.js')).ComparisonsPage }),
+    },
+    {
+      path: 'programmes/:programmeId/comparisons/:comparisonId',
+      loader: loaders.comparison,
+      lazy: async () => ({ Component: (await import('../features/comparison/ComparisonPage.js')).ComparisonPage }),
     },
     { path: '*', element: <NotFoundPage /> },
   ];

@@ -17,6 +17,9 @@ export const pagePaths = {
   spectrum: (p: string, s: string) => `/programmes/${p}/spectra/${s}`,
   /** the file of a spectrum and how it was read */
   file: (p: string, s: string) => `/programmes/${p}/spectra/${s}/file`,
+  /** two sightlines set side by side; `a` is chosen already when given */
+  comparisons: (p: string, a?: string) => `/programmes/${p}/comparisons${a ? `?a=${a}` : ''}`,
+  comparison: (p: string, c: string) => `/programmes/${p}/comparisons/${c}`,
   /** reading recipes and removed spectra */
   recipes: (p: string) => `/programmes/${p}/recipes`,
 } as const;

@@ -40,6 +40,8 @@ export function useTrail({ programmeId = '', targetId, spectrumId }: Readonly<Pa
   }
   const upload = pagePaths.upload(programmeId);
   if (pathname === upload) trail.push({ label: 'Add spectra', to: upload, what: '', others: [] });
+  const comparisons = pagePaths.comparisons(programmeId);
+  if (pathname.startsWith(comparisons)) trail.push({ label: 'Comparisons', to: comparisons, what: '', others: [] });
   const recipes = pagePaths.recipes(programmeId);
   if (pathname === recipes) trail.push({ label: 'Reading recipes', to: recipes, what: '', others: [] });
   if (target && spectrumId && pathname === pagePaths.file(programmeId, spectrumId))

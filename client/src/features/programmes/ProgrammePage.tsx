@@ -22,6 +22,9 @@ export function ProgrammePage() {
   const [adding, { open, close }] = useDisclosure(false);
   const actions = (
     <>
+      <Button component={Link} to={pagePaths.comparisons(programmeId)}>
+        Comparisons
+      </Button>
       <Button component={Link} to={pagePaths.lineLists(programmeId)}>
         Line lists
       </Button>

@@ -132,6 +132,7 @@ function Strap({ data, analysis, cautions, steering, run, settings, programmeId,
           </button>
         )}
         {analysis.result && <SpeciesSummary analysis={analysis.result} settings={settings} />}
+        <Link to={pagePaths.comparisons(programmeId, spectrumId)}>Compare with another star</Link>
         <a href={apiPaths.spectrumReport(programmeId, spectrumId)} download>
           Line report, CSV
         </a>

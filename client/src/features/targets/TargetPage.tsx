@@ -36,6 +36,9 @@ export function TargetPage() {
             <RoleButton have={role} need="analyst" onClick={open}>
               Edit facts
             </RoleButton>
+            <Button component={Link} to={pagePaths.comparisons(programmeId, target.spectra[0]?.id)}>
+              Compare
+            </Button>
             <ReportLink programmeId={programmeId} target={target} />
             <RoleButton have={role} need="analyst" variant="filled" to={pagePaths.upload(programmeId, targetId)}>
               Add spectrum

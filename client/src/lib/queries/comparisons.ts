@@ -1,4 +1,12 @@
-import { apiPaths, type ComparisonDetail, type ComparisonSummary } from '@foreveil/shared';
+import {
+  apiPaths,
+  type ComparisonDetail,
+  type ComparisonSettings,
+  type ComparisonSummary,
+  type NewComparison,
+  type NewRuling,
+  type VerdictRuling,
+} from '@foreveil/shared';
 import { queryOptions } from '@tanstack/react-query';
 import { http } from '../http.js';
 
@@ -15,3 +23,14 @@ export const comparisonQueries = {
       queryFn: ({ signal }) => http.get<ComparisonDetail>(apiPaths.comparison(programmeId, comparisonId), { signal }),
     }),
 };
+
+export const createComparison = (programmeId: string, made: NewComparison) =>
+  http.post<ComparisonSummary>(apiPaths.comparisons(programmeId), made);
+export const rerunComparison = (programmeId: string, id: string, settings: Partial<ComparisonSettings>) =>
+  http.post<ComparisonSummary>(apiPaths.comparisonRerun(programmeId, id), { settings });
+/** @param version that was seen; a 412 tells that a teammate changed it */
+export const deleteComparison = (programmeId: string, id: string, version: number) =>
+  http.delete(apiPaths.comparison(programmeId, id), { ifMatch: version });
+/** @param version of the ruling that was seen; 0 when there is none yet */
+export const ruleOnLine = (programmeId: string, id: string, lineKey: string, version: number, ruling: NewRuling) =>
+  http.put<VerdictRuling>(apiPaths.comparisonRuling(programmeId, id, encodeURIComponent(lineKey)), ruling, { ifMatch: version });
