@@ -1,7 +1,7 @@
 import type { LineList } from './linelist/index.js';
 import { PROGRAM_VERSION } from './version.js';
 import { columnsOf } from './sightlines/columns.js';
-import type { ComparedCloud, ComparedLine, ComparisonSettings, Side, SightlineComparison } from './sightlines/comparison.js';
+import type { ComparedCloud, ComparisonSettings, Side, SightlineComparison } from './sightlines/comparison.js';
 import { measureGas, type Gas } from './sightlines/clouds.js';
 import { cloudChances, comparedBands, comparedGas, jointVelocity } from './sightlines/gas-lines.js';
 import type { Pair } from './sightlines/gather.js';
@@ -32,12 +32,7 @@ export function compareSightlines(
   onProgress(0.7);
   const chances = cloudChances(gas);
   const gasLines = comparedGas(gas, pair, chances);
-  const lines = [
-    ...gasLines,
-    ...comparedBands(list, gas, pair, bandChances(gasLines, chances)),
-    ...comparedStars(pair),
-    ...comparedAir(pair),
-  ];
+  const lines = [...gasLines, ...comparedBands(list, gas, pair, chances, gasLines), ...comparedStars(pair), ...comparedAir(pair)];
   const clouds = gas.drafts.map((_, k) => cloudOf(gas, pair, k, chances[k]!));
   onProgress(0.9);
   const [sideA, sideB] = [summaryOf(pair.a), summaryOf(pair.b)];
@@ -56,10 +51,6 @@ export function compareSightlines(
     cautions: cautionsOf(sideA, sideB, clouds, settings.offsetAKmPerS !== 0 || settings.offsetBKmPerS !== 0),
   };
 }
-
-/** A band is wider than clouds are apart: it is not called shared through a cloud of which no single line is. */
-const bandChances = (lines: readonly ComparedLine[], chances: readonly number[]): number[] =>
-  chances.map((chance, k) => (lines.some((l) => l.cloud === k && l.verdict === 'shared') ? chance : Math.min(chance, 0.1)));
 
 function cloudOf(gas: Gas, pair: Pair, k: number, chance: number): ComparedCloud {
   const { at } = gas.drafts[k]!;

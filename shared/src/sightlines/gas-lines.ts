@@ -16,7 +16,11 @@ const PRIOR_SHARED = 0;
 export function cloudChances(gas: Gas): number[] {
   return gas.drafts.map((d, k) => {
     let logOdds = PRIOR_SHARED;
-    if (d.found.length === 2) logOdds += velocityLogOdds(d.at.a.velocity - d.at.b.velocity, Math.hypot(d.at.a.sigma, d.at.b.sigma));
+    // each analysis has a cloud there: that both show lines is no news, whether it is one cloud is told by how near they are
+    if (d.found.length === 2) {
+      logOdds += velocityLogOdds(d.at.a.velocity - d.at.b.velocity, Math.hypot(d.at.a.sigma, d.at.b.sigma));
+      return chanceOf(Math.max(-MOST_EVIDENCE, logOdds));
+    }
     for (let i = 0; i < gas.lines.length; i++) {
       const [a, b] = [gas.measured.a[i]![k], gas.measured.b[i]![k]];
       if (a && b && (a.width > SEEN_AT * a.error || b.width > SEEN_AT * b.error)) logOdds += lineLogOdds(widthOf(a), widthOf(b));
@@ -105,11 +109,27 @@ const BAND_REST_V = 8; // km/s by which a band may stand off its listed place
 const OFF = 3;
 
 /** Diffuse bands: wider than the spacing of clouds, so each is looked at once in the cloud that holds most gas, or in one cloud a side. */
-export function comparedBands(list: LineList, gas: Gas, pair: Pair, chances: readonly number[]): ComparedLine[] {
+export function comparedBands(
+  list: LineList,
+  gas: Gas,
+  pair: Pair,
+  chances: readonly number[],
+  lines: readonly ComparedLine[],
+): ComparedLine[] {
+  const isShared = (k: number) => lines.some((l) => l.cloud === k && l.verdict === 'shared');
   const main = mainClouds(gas, chances);
   const bands = list.lines.filter((l) => l.type === 'band' && l.bandFwhmNm !== null && l.settings.includes('interstellar'));
-  return bands.flatMap((band) => main.flatMap((k) => comparedBand(band, k, gas, pair, chances[k]!) ?? []));
+  return bands.flatMap((band) =>
+    main.flatMap((k) => {
+      const made = comparedBand(band, k, gas, pair, chances[k]!);
+      return made ? [isShared(k) ? made : undecided(made)] : [];
+    }),
+  );
 }
+
+/** A band is wider than clouds are apart: it is not called shared through a cloud of which no single line is. */
+const undecided = (l: ComparedLine): ComparedLine =>
+  l.verdict === 'shared' ? { ...l, verdict: 'cannot-tell', sentence: lineSentence('cannot-tell', l.a, l.b) } : l;
 
 function comparedBand(band: Line, k: number, gas: Gas, pair: Pair, chance: number): ComparedLine | null {
   const measure = (side: 'a' | 'b') => {
