@@ -23,7 +23,9 @@ if (process.argv[2] === 'reading') {
   await reportReading();
   process.exit();
 }
-const { analyse, DEFAULT_SETTINGS, parseDefaultList, readSpectrum } = await import(join(root, 'shared/dist/index.js'));
+const { analyse, compareSightlines, DEFAULT_COMPARISON_SETTINGS, DEFAULT_SETTINGS, parseDefaultList, readSpectrum } = await import(
+  join(root, 'shared/dist/index.js')
+);
 const data = (name) => readFileSync(join(root, 'seeds/data', name), 'utf8');
 const list = parseDefaultList(data('lines.csv'), data('telluric.csv'));
 
@@ -83,4 +85,21 @@ for (const file of readdirSync(demonstration)) {
   const read = readSpectrum(readFileSync(join(demonstration, file)), file);
   if (read.ok) report(`${file}, ${read.spectrum.flux.length} pixels`, read.spectrum);
 }
+/** Two sightlines of 100 000 pixels: the comparison alone, and with the two analyses before it. */
+function reportComparison() {
+  const sides = [7, 8].map((seed) => simulate(100_000, 500, list.lines, seed));
+  const once = () => {
+    const from = performance.now();
+    const [a, b] = sides.map((spectrum) => ({ spectrum, analysis: analyse(spectrum, list, DEFAULT_SETTINGS) }));
+    const analysed = performance.now();
+    const { lines } = compareSightlines(a, b, list, DEFAULT_COMPARISON_SETTINGS);
+    return { alone: performance.now() - analysed, whole: performance.now() - from, lines: lines.length };
+  };
+  const runs = [once(), once(), once()];
+  const ms = (of) => median(runs.map(of)).toFixed(0);
+  console.log(
+    `two sightlines, 100000 pixels each: compared in ${ms((r) => r.alone)} ms, ${ms((r) => r.whole)} ms with both analyses, ${runs[0].lines} lines`,
+  );
+}
+reportComparison();
 console.log(`memory: ${megabytes(process.memoryUsage().rss)} MB resident, ${megabytes(process.resourceUsage().maxRSS * 1024)} MB at most`);

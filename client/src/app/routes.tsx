@@ -83,6 +83,8 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
       path: 'programmes/:programmeId/members',
       loader: loaders.programme,
       lazy: async () => ({ Component: (await import('../features/members/MembersPage.js')).MembersPage }),
+    },
+    {
       path: 'programmes/:programmeId/comparisons',
       loader: loaders.comparisons,
       lazy: async () => ({ Component: (await import('../features/comparison/ComparisonsPage.js')).ComparisonsPage }),
