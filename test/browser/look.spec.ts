@@ -41,7 +41,7 @@ const SUBJECTS: Subject[] = [
   { page: 'join', path: () => '/join#none', heading: /Invitation/, prepare: async (page) => page.getByRole('alert').waitFor() },
   { page: 'forgot-password', path: () => '/forgot-password', heading: /New password/ },
   { page: 'comparisons', path: ({ programme }) => `/programmes/${programme.id}/comparisons`, heading: /Comparisons/ },
-  { page: 'comparison', path: aComparison, heading: /Tern 1 and Tern 2/, prepare: (page) => page.locator('#veil').waitFor() },
+  { page: 'comparison', path: aComparison, heading: /Tern 1 and Tern 2/, prepare: compared },
   { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];
@@ -77,6 +77,9 @@ async function aComparison({ programme, targets }: Demonstration, page: Page): P
   const made = (await (await page.request.post(path, { data, headers: { 'X-Foreveil': '1' } })).json()) as { id: string };
   return `/programmes/${programme.id}/comparisons/${made.id}`;
 }
+
+/** A worker makes it; the page shows it when it hears of it. */
+const compared = (page: Page) => page.locator('#veil').waitFor({ timeout: 120_000 });
 
 async function openKeys(page: Page): Promise<void> {
   await page.keyboard.press('Shift+?'); // the button stands in a wide bar only
@@ -134,6 +137,6 @@ describe('every page, by day and by night, on a desk and on a phone', () => {
       await seen.page.waitForFunction(() => !document.querySelector('[aria-busy=true]'));
       await prepare?.(seen.page);
       await expectSound(page);
-    });
+    }, 150_000);
   });
 });

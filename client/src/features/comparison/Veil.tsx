@@ -149,7 +149,7 @@ function Clouds({ comparison, scale }: { comparison: ComparisonDetail; scale: Ve
         const x = scale.vx(c.velocityKmPerS);
         const words =
           c.verdict === 'shared' ? 'shared' : c.verdict === 'only-a' ? 'only A' : c.verdict === 'only-b' ? 'only B' : 'cannot tell';
-        const right = x > (scale.left + scale.right) / 2;
+        const right = x > (scale.left + scale.right) / 2 || x < scale.left + 130;
         return (
           <g key={i}>
             {c.verdict === 'shared' ? (
