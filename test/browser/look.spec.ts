@@ -131,12 +131,16 @@ describe('every page, by day and by night, on a desk and on a phone', () => {
       demo = await analysedDemonstration(seen.page);
     }, 200_000);
 
-    it.each(SUBJECTS)('$page', async ({ page, path, heading, prepare }) => {
-      await seen.page.goto(await path(demo, seen.page));
-      await seen.page.getByRole('heading', { level: 1, name: heading }).waitFor();
-      await seen.page.waitForFunction(() => !document.querySelector('[aria-busy=true]'));
-      await prepare?.(seen.page);
-      await expectSound(page);
-    }, 150_000);
+    it.each(SUBJECTS)(
+      '$page',
+      async ({ page, path, heading, prepare }) => {
+        await seen.page.goto(await path(demo, seen.page));
+        await seen.page.getByRole('heading', { level: 1, name: heading }).waitFor();
+        await seen.page.waitForFunction(() => !document.querySelector('[aria-busy=true]'));
+        await prepare?.(seen.page);
+        await expectSound(page);
+      },
+      150_000,
+    );
   });
 });
