@@ -79,7 +79,9 @@ async function aComparison({ programme, targets }: Demonstration, page: Page): P
 }
 
 /** A worker makes it; the page shows it when it hears of it. */
-const compared = (page: Page) => page.locator('#veil').waitFor({ timeout: 120_000 });
+async function compared(page: Page): Promise<void> {
+  await page.locator('#veil').waitFor({ timeout: 120_000 });
+}
 
 async function openKeys(page: Page): Promise<void> {
   await page.keyboard.press('Shift+?'); // the button stands in a wide bar only
