@@ -88,17 +88,23 @@ print(sorted(t)[1]*1000)`;
   }
 }
 
-/** Most memory that a fresh process held beyond the file itself and what Node holds idle, MiB. */
+/** Most memory that a fresh process held beyond what it holds with the file loaded, MiB; NaN where the system does not say (/proc). */
 function peakMiB(file) {
   const code = `import('${join(root, 'shared/dist/index.js')}').then(async ({ readSpectrum }) => {
     const { readFileSync } = await import('node:fs');
+    // the mark that getrusage gives begins at that of the parent process
+    const highest = () => Number(/VmHWM:\\s+(\\d+)/.exec(readFileSync('/proc/self/status', 'utf8'))[1]) / 1024;
     const bytes = readFileSync('${file}');
-    const before = process.resourceUsage().maxRSS;
+    const before = highest();
     const result = readSpectrum(bytes, 'x');
     if (!result.ok) throw new Error(result.problem.sentence);
-    console.log((process.resourceUsage().maxRSS - before) / 1024);
+    console.log(highest() - before);
   })`;
-  return Number(execFileSync(process.execPath, ['-e', code], { encoding: 'utf8' }));
+  try {
+    return Number(execFileSync(process.execPath, ['-e', code], { encoding: 'utf8' }));
+  } catch {
+    return NaN;
+  }
 }
 
 export async function reportReading() {
