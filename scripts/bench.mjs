@@ -10,6 +10,7 @@ const { build } = await import('./lib/build.mjs');
 const { ensureDependencies } = await import('./lib/dependencies.mjs');
 const { root } = await import('./lib/paths.mjs');
 const { grown, simulate } = await import('./lib/bench/spectrum.mjs');
+const { compareWithPython } = await import('./lib/bench/references.mjs');
 
 await ensureDependencies();
 if (['errors', 'mutations'].includes(process.argv[2])) {
@@ -23,9 +24,8 @@ if (process.argv[2] === 'reading') {
   await reportReading();
   process.exit();
 }
-const { analyse, compareSightlines, DEFAULT_COMPARISON_SETTINGS, DEFAULT_SETTINGS, parseDefaultList, readSpectrum } = await import(
-  join(root, 'shared/dist/index.js')
-);
+const shared = await import(join(root, 'shared/dist/index.js'));
+const { analyse, compareSightlines, DEFAULT_COMPARISON_SETTINGS, DEFAULT_SETTINGS, parseDefaultList, readSpectrum } = shared;
 const data = (name) => readFileSync(join(root, 'seeds/data', name), 'utf8');
 const list = parseDefaultList(data('lines.csv'), data('telluric.csv'));
 
@@ -103,3 +103,5 @@ function reportComparison() {
 }
 reportComparison();
 console.log(`memory: ${megabytes(process.memoryUsage().rss)} MB resident, ${megabytes(process.resourceUsage().maxRSS * 1024)} MB at most`);
+
+for (const line of compareWithPython(shared, simulate(100_000, 500, list.lines))) console.log(line);
