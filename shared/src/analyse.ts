@@ -8,6 +8,7 @@ import { measure, type Measured } from './identify/measure.js';
 import type { Analysis, AnalysisSettings, AnalysisStep, Region } from './identify/analysis.js';
 import { steeredList, strangers } from './identify/steer.js';
 import type { LineList } from './linelist/index.js';
+import { selectInPlace } from './numeric/select.js';
 import { estimateNoise, type NoiseModel } from './noise/index.js';
 import type { NormalisedSamples } from './profiles/index.js';
 import type { Spectrum } from './spectrum/index.js';
@@ -173,7 +174,7 @@ function logContinuumOf(spectrum: Spectrum, continuum: ContinuumFit): (wavelengt
   };
 }
 
-function medianSnr(data: NormalisedSamples): number {
-  const good = data.weight.filter((w) => w > 0).sort();
-  return good.length ? Math.sqrt(good[good.length >> 1]!) : 0;
+function medianSnr({ weight }: NormalisedSamples): number {
+  const good = weight.filter((w) => w > 0);
+  return good.length ? Math.sqrt(selectInPlace(good, good.length >> 1)) : 0;
 }

@@ -27,8 +27,8 @@ export interface DrawnProfile {
 }
 
 /** A saturated line with damping wings, from the parameters of its fit. */
-function dampedProfile({ wavelengthNm, fwhmNm }: ProfileNumbers, { tau, a, dopplerNm }: NonNullable<Feature['damped']>): DrawnProfile {
-  const table = dampedTable({ tau, a });
+function dampedProfile({ wavelengthNm, fwhmNm }: ProfileNumbers, { dopplerNm, ...shape }: NonNullable<Feature['damped']>): DrawnProfile {
+  const table = dampedTable(shape);
   return {
     reachNm: table.reach * dopplerNm,
     stretchNm: Math.min(table.reach * dopplerNm, 4 * fwhmNm),

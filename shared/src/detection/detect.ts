@@ -1,17 +1,19 @@
 import { newComponent, ROUGH, type BlendLimits, type Component, type NormalisedSamples } from '../profiles/index.js';
 import { C_KM_PER_S } from '../units/index.js';
+import { Changes } from './changes.js';
 import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
 import {
-  applyRotation,
   dropBridges,
   dropNeedless,
   findRotation,
   gatherDamped,
   mergeShreds,
   pruneWeak,
+  rotating,
   splitBlends,
   trySpecialShapes,
+  withdrawRotation,
   type Rotation,
 } from './refine.js';
 
@@ -58,38 +60,44 @@ export function detect(input: DetectionInput): Detection {
   for (let i = 0; i < n; i++) if (data.weight[i]! > 0) usable++;
   const threshold = thresholdFor(input.falseFeatures, sigmaPx, usable, (widestNm / range) * n);
 
-  let rotation: Rotation | null = null;
-  for (let round = 0; round < ROUNDS; round++) {
-    if (input.quick && round > 0) return { model, threshold };
+  const search = { instrumentSigmaPx: sigmaPx, widestNm, threshold, correlation: input.correlation };
+  const changes = new Changes(model);
+  let seen: boolean | null = null;
+  let deferred: Excess[] = [];
+  const first = findExcesses(residualOf(model, input.continuumSigma), { ...search, zeroMean: true });
+  const rotation = input.quick ? null : scoutRotation(model, first, threshold, resolvingPower);
+  for (let round = 0; round < (input.quick ? 1 : ROUNDS); round++) {
     const zeroMean = round < ROUNDS - 2;
-    const residual = residualOf(model, input.continuumSigma);
-    const excesses = findExcesses(residual, { instrumentSigmaPx: sigmaPx, widestNm, zeroMean, threshold, correlation: input.correlation });
-    const fresh = chosen(excesses, model, threshold).map((e) =>
-      newComponent(e.kind, e.centre, Math.max(e.fwhm, e.centre / resolvingPower), start(e)),
-    );
+    const only = seen === zeroMean && !rotation ? changes.since(deferred) : undefined;
+    seen = zeroMean;
+    changes.hold();
+    const excesses = round === 0 ? first : findExcesses(residualOf(model, input.continuumSigma), { ...search, zeroMean, only });
+    deferred = [];
+    const fresh = chosen(excesses, model, threshold, rotation !== null, deferred).map((e) => componentOf(e, resolvingPower, rotation));
     if (fresh.length === 0 && !zeroMean) break;
-    if (rotation) applyRotation(fresh, rotation);
     model.add(fresh);
-    model.refit(2, round === 0 ? undefined : nearTo(model, fresh), ROUGH);
+    model.refit(1, round === 0 ? undefined : nearTo(model, fresh), ROUGH);
+    if (rotation) withdrawRotation(model.components, rotation);
+    model.refit(1, round === 0 ? undefined : nearTo(model, fresh), ROUGH);
     pruneWeak(model, threshold * 0.8);
     if (round === 0 && !input.quick) {
-      rotation = findRotation(model, resolvingPower);
-      if (rotation) applyRotation(model.components, rotation);
       trySpecialShapes(model, resolvingPower, rotation);
       model.refresh();
-      gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
+      gatherDamped(model, threshold, tolerantOf(model), resolvingPower, rotation);
       dropNeedless(model, threshold, tolerantOf(model), rotation);
       model.refit(1, undefined, ROUGH);
     }
     model.refresh();
   }
+  if (input.quick) return { model, threshold };
   trySpecialShapes(model, resolvingPower, rotation);
   model.refresh();
-  gatherDamped(model, threshold, tolerantOf(model), resolvingPower);
+  gatherDamped(model, threshold, tolerantOf(model), resolvingPower, rotation);
   dropNeedless(model, threshold, tolerantOf(model), rotation);
   dropBridges(model, threshold, tolerantOf(model));
   mergeShreds(model, threshold, tolerantOf(model));
   splitBlends(model, threshold, resolvingPower);
+  if (rotation) withdrawRotation(model.components, rotation);
   model.refit(1, undefined, ROUGH);
   pruneWeak(model, threshold);
   model.refit(1);
@@ -98,7 +106,29 @@ export function detect(input: DetectionInput): Detection {
   return { model, threshold };
 }
 
-const start = (e: Excess): number => (e.kind === 'dip' ? Math.min(e.amplitude, 0.95) : e.amplitude);
+/** Of the star's width: narrower dips are those of clouds and of the air, wider ones are the star's, or a corner of one. */
+const LEAST_SHARE = 0.3;
+
+/** How the star turns, from a first fit that leaves corners of broad profiles alone; the model is empty before and after. */
+function scoutRotation(model: LineModel, excesses: readonly Excess[], threshold: number, resolvingPower: number): Rotation | null {
+  model.add(chosen(excesses, model, threshold, true, []).map((e) => componentOf(e, resolvingPower, null)));
+  model.refit(2, undefined, ROUGH);
+  pruneWeak(model, threshold * 0.8);
+  const rotation = findRotation(model, resolvingPower);
+  model.remove(new Set(model.components));
+  return rotation;
+}
+
+/** A component to begin with: of the star's profile where the width is like that of its lines. */
+function componentOf(e: Excess, resolvingPower: number, rotation: Rotation | null): Component {
+  const amplitude = e.kind === 'dip' ? Math.min(e.amplitude, 0.95) : e.amplitude;
+  if (rotation && e.kind === 'dip') {
+    const fwhm = rotation.relativeWidth * e.centre;
+    if (e.fwhm > LEAST_SHARE * fwhm && e.fwhm < 1.7 * fwhm)
+      return newComponent(e.kind, e.centre, fwhm, amplitude, rotating(rotation, rotation.relativeWidth));
+  }
+  return newComponent(e.kind, e.centre, Math.max(e.fwhm, e.centre / resolvingPower), amplitude);
+}
 
 const STEPS_EACH_SIDE = 8;
 const LEAP = 4; // a step so many times the last one leads over a gap
@@ -132,7 +162,12 @@ export function instrumentSigmaPx(wavelength: Float64Array, resolvingPower: numb
 /** The data with weights that allow for imperfect profiles beside strong lines. */
 function tolerantOf(model: LineModel): NormalisedSamples {
   const { wavelength, flux, weight } = model.data;
-  return { wavelength, flux, weight: weight.map((w, i) => (w === 0 ? 0 : 1 / (1 / w + (PROFILE_FLOOR * (1 - model.value[i]!)) ** 2))) };
+  const allowed = new Float64Array(weight.length);
+  for (let i = 0; i < weight.length; i++) {
+    const floor = PROFILE_FLOOR * (1 - model.value[i]!);
+    if (weight[i] !== 0) allowed[i] = 1 / (1 / weight[i]! + floor * floor);
+  }
+  return { wavelength, flux, weight: allowed };
 }
 
 /** Data minus model; weights carry what the model cannot be trusted with. */
@@ -150,17 +185,30 @@ function residualOf(model: LineModel, continuumSigma: number): NormalisedSamples
   return out;
 }
 
-/** Excesses to turn into components: not twice at one place and width, and on the right side of the continuum. */
-function chosen(excesses: readonly Excess[], model: LineModel, threshold: number): Excess[] {
+/**
+ * Excesses to turn into components: not twice at one place and width, and on the right side of the continuum.
+ * @param shaded leave corners of broad profiles, and narrow lines on them, for later
+ * @param deferred gets those that have to wait until a stronger one beside them is fitted
+ */
+function chosen(
+  excesses: readonly Excess[],
+  model: LineModel,
+  threshold: number,
+  shaded: boolean,
+  deferred: Excess[],
+): Excess[] {
   const out: Excess[] = [];
   for (const e of excesses) {
     const clash = (centre: number, fwhm: number): boolean => {
       const [narrow, wide] = fwhm < e.fwhm ? [fwhm, e.fwhm] : [e.fwhm, fwhm];
       return wide < 3 * narrow ? Math.abs(centre - e.centre) < 0.6 * wide : Math.abs(centre - e.centre) < 0.5 * narrow;
     };
-    if (out.some((o) => clash(o.centre, o.fwhm))) continue;
+    if (out.some((o) => clash(o.centre, o.fwhm) || (shaded && shades(o, e)))) {
+      deferred.push(e);
+      continue;
+    }
     if (
-      model.components.some(
+      centredWithin(model.components, e.centre, 1.1 * e.fwhm).some(
         (c) =>
           c.kind === e.kind &&
           clash(c.centre, c.fwhm) &&
@@ -176,6 +224,13 @@ function chosen(excesses: readonly Excess[], model: LineModel, threshold: number
   }
   return out;
 }
+
+/**
+ * Whether an excess may be the corner or the core of a stronger, broader one, whose profile is not known yet: what is a line of its own
+ * stands out again once the broad one is fitted.
+ */
+const shades = (broad: Excess, e: Excess): boolean =>
+  broad.kind === e.kind && broad.fwhm > 1.5 * e.fwhm && Math.abs(broad.centre - e.centre) < 0.75 * broad.fwhm;
 
 /** Error of the continuum's placement under a broad excess, which no number of pixels averages out. Gaps between broad lines mimic peaks. */
 function placementFloor(e: Excess): number {
@@ -209,7 +264,22 @@ function lower(x: Float64Array, value: number): number {
 /** Fresh components and all that they may push around. */
 function nearTo(model: LineModel, fresh: readonly Component[]): Set<Component> {
   const out = new Set<Component>(fresh);
-  const sorted = model.components;
-  for (const f of fresh) for (const c of sorted) if (Math.abs(c.centre - f.centre) < 1.2 * (c.fwhm + f.fwhm)) out.add(c);
+  for (const f of fresh) {
+    for (const c of model.overlapping([f])) if (Math.abs(c.centre - f.centre) < 1.2 * (c.fwhm + f.fwhm)) out.add(c);
+  }
   return out;
+}
+
+/** Of components sorted by centre those whose centre lies within a distance (nm). */
+function centredWithin(sorted: readonly Component[], centre: number, distance: number): Component[] {
+  let low = 0;
+  let high = sorted.length;
+  while (low < high) {
+    const mid = (low + high) >> 1;
+    if (sorted[mid]!.centre < centre - distance) low = mid + 1;
+    else high = mid;
+  }
+  let end = low;
+  while (end < sorted.length && sorted[end]!.centre <= centre + distance) end++;
+  return sorted.slice(low, end);
 }

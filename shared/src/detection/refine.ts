@@ -5,7 +5,8 @@ import {
   GAUSSIAN,
   newComponent,
   rangeOf,
-  rotationShape,
+  rotationOfBlur,
+  rotationOfWidth,
   ROUGH,
   settle,
   withCore,
@@ -13,6 +14,7 @@ import {
   type NormalisedSamples,
   type Shape,
 } from '../profiles/index.js';
+import { median } from '../numeric/select.js';
 import type { LineModel } from './model.js';
 
 const PASSES = 8;
@@ -43,7 +45,7 @@ export function pruneWeak(model: LineModel, threshold: number): void {
 function worthOf(c: Component, model: LineModel): number {
   const tooNarrow = c.kind === 'dip' && c.fwhm <= model.limitsAt(c.centre).narrowest * 1.001;
   const impossible = tooNarrow || c.amplitude <= 0 || !(c.sigmaAmplitude > 0);
-  return impossible || model.components.some((o) => cancels(o, c)) ? 0 : c.amplitude / c.sigmaAmplitude;
+  return impossible || model.overlapping([c]).some((o) => cancels(o, c)) ? 0 : c.amplitude / c.sigmaAmplitude;
 }
 
 /** Whether a dip and a peak of one place and width stand against each other: any amount of both fits as well. */
@@ -58,10 +60,14 @@ const SAME_WIDTH = 1.35; // lines of one rotating star agree in velocity width w
 
 /** What the broad lines of a rotating star have in common. */
 export interface Rotation {
-  /** FWHM over wavelength */
+  /** median FWHM over wavelength */
   readonly relativeWidth: number;
-  readonly shape: Shape;
+  /** v sin i over the speed of light */
+  readonly vsini: number;
 }
+
+/** The star's profile for a line of given FWHM over wavelength. */
+export const rotating = (rotation: Rotation, relativeWidth: number): Shape => rotationOfWidth(relativeWidth / rotation.vsini);
 
 /**
  * Looks for a common velocity width among broad dips and asks whether rotation fits them better than Gaussians, all together.
@@ -71,43 +77,63 @@ export function findRotation(model: LineModel, resolvingPower: number): Rotation
   const broad = model.components.filter(
     (c) => c.kind === 'dip' && c.fwhm * resolvingPower > RESOLVED * c.centre && c.amplitude / c.sigmaAmplitude > 12,
   );
-  let best: Rotation | null = null;
-  let bestGain = ROTATION_GAIN;
+  const candidates: { rotation: Rotation; gain: number }[] = [];
   for (const width of commonWidths(broad)) {
     const members = broad
       .filter((c) => near(c.fwhm / c.centre, width, SAME_WIDTH))
       .sort((a, b) => b.amplitude / b.sigmaAmplitude - a.amplitude / a.sigmaAmplitude);
-    const shapes = [GAUSSIAN, ...BLURS.map((b) => rotationOfBlur(b * blurOf(width * resolvingPower)))];
-    const gains = new Float64Array(shapes.length);
-    const widths = shapes.map((): number[] => []);
-    for (const c of members.slice(0, MEMBERS)) {
-      const others = model.overlapping([c]).filter((o) => !isShredOf(o, c));
-      const range = [c.centre - WHOLE * c.fwhm, c.centre + WHOLE * c.fwhm] as const;
-      let gaussian = 0;
-      shapes.forEach((core, k) => {
-        const trial = withCore(c, core);
-        const { chi2 } = fitBlend(model.data, [trial], others, model.limitsAt(c.centre), range);
-        if (k === 0) gaussian = chi2;
-        gains[k]! += Math.max(-ONE_VOTE, Math.min(ONE_VOTE, gaussian - chi2));
-        widths[k]!.push(trial.fwhm / trial.centre);
-      });
-    }
-    for (let k = 1; k < shapes.length; k++) {
-      const gain = gains[k]!;
-      if (gain > bestGain)
-        [best, bestGain] = [{ relativeWidth: widths[k]!.sort((a, b) => a - b)[widths[k]!.length >> 1]!, shape: shapes[k]! }, gain];
-    }
+    const gain = gainsOf(model, members.slice(0, MEMBERS));
+    candidates.push(...VSINI.map((share) => gain(share * width)));
   }
-  return best;
+  return slowestConvincing(candidates);
 }
 
+/** What rotation profiles of a v sin i gain over Gaussians in these lines, each as wide as suits it. */
+function gainsOf(model: LineModel, members: readonly Component[]): (vsini: number) => { rotation: Rotation; gain: number } {
+  const cases = members.map((c) => {
+    const others = model.overlapping([c]).filter((o) => !isShredOf(o, c));
+    const range = [c.centre - WHOLE * c.fwhm, c.centre + WHOLE * c.fwhm] as const;
+    const limits = model.limitsAt(c.centre);
+    const fit = (trial: Component): number => fitBlend(model.data, [trial], others, limits, range, ROUGH).chi2;
+    return { c, fit, gaussian: fit(withCore(c, GAUSSIAN)) };
+  });
+  return (vsini) => {
+    let gain = 0;
+    const widths: number[] = [];
+    for (const { c, fit, gaussian } of cases) {
+      const first = withCore(c, rotationOfWidth(c.fwhm / c.centre / vsini));
+      let chi2 = fit(first);
+      const suited = rotationOfWidth(first.fwhm / first.centre / vsini);
+      if (suited !== first.core) chi2 = fit(Object.assign(first, withCore(first, suited)));
+      gain += Math.max(-ONE_VOTE, Math.min(ONE_VOTE, gaussian - chi2));
+      widths.push(first.fwhm / first.centre);
+    }
+    return { rotation: { relativeWidth: median(widths), vsini }, gain };
+  };
+}
+
+/** No line of a star is narrower than its rotation: hydrogen, which is wider, does not decide where others do. */
+function slowestConvincing(candidates: readonly { rotation: Rotation; gain: number }[]): Rotation | null {
+  const most = Math.max(...candidates.map((c) => c.gain));
+  if (!(most > ROTATION_GAIN)) return null;
+  const convincing = candidates.filter((c) => c.gain > CONVINCING * most);
+  const slowest = Math.min(...convincing.map((c) => c.rotation.relativeWidth));
+  const alike = (c: { rotation: Rotation }): boolean => c.rotation.relativeWidth < 1.3 * slowest;
+  const narrower = candidates.filter((c) => c.rotation.relativeWidth < slowest / 1.3);
+  // narrower lines that agree in width and are no rotation profiles: the star turns slower, and the broad ones are blends
+  if (narrower.length && Math.max(...narrower.map((c) => c.gain)) < -AGAINST) return null;
+  return convincing.filter(alike).reduce((a, b) => (b.gain > a.gain ? b : a)).rotation;
+}
+
+const AGAINST = 30; // chi-square
+const CONVINCING = 0.5; // of the best gain
 const WHOLE = 1.8; // FWHM to either side: the corners of a rotation profile lie beyond those of a Gaussian cut too narrow
 const RESOLVED = 2.5; // resolution elements: below, a rotation profile looks like a Gaussian
-const ONE_VOTE = 30; // chi-square: hydrogen, shaped otherwise, must not outvote the rest
-const ROTATION_GAIN = 30; // chi-square over Gaussians, all members together
+const ONE_VOTE = 30; // chi-square: no line decides alone
+const ROTATION_GAIN = 250; // chi-square over Gaussians, all members together
 const MEMBERS = 30;
-/** The star's own broadening blurs its rotation profile beyond what the instrument does: tried in these ratios. */
-const BLURS = [1, 1.8, 3];
+/** v sin i over the common FWHM: 0.62 where nothing else broadens; more where that was cut short by corners fitted apart, less where it is blurred. */
+const VSINI = [0.44, 0.5, 0.55, 0.6, 0.65, 0.7, 0.76];
 
 /** Whether a weak component may be the corner of a profile whose shape was not right yet. */
 const isShredOf = (o: Component, c: Component): boolean =>
@@ -130,24 +156,16 @@ function commonWidths(broad: readonly Component[]): number[] {
   return out;
 }
 
-const made = new Map<number, Shape>();
-
 /** Instrumental sigma in units of v sin i for a FWHM given in resolution elements; a rotation profile's FWHM is 1.6 v sin i. */
 const blurOf = (elements: number): number => 1.6 / 2.3548 / Math.max(elements, 1);
 
-/** Rotation profile of a blur, to two significant digits; made once. */
-function rotationOfBlur(blur: number): Shape {
-  const key = Math.round(Math.log(Math.min(Math.max(blur, 0.02), 1)) * 8);
-  let shape = made.get(key);
-  if (!shape) made.set(key, (shape = rotationShape(Math.exp(key / 8))));
-  return shape;
-}
+const NARROWER = 0.75; // of the star's width
 
-/** Dips of the star's width take its rotation profile. */
-export function applyRotation(components: readonly Component[], rotation: Rotation): void {
+/** What turns out narrower than rotation allows is no line of the star, and does not look like one. */
+export function withdrawRotation(components: readonly Component[], rotation: Rotation): void {
   for (const c of components)
-    if (c.kind === 'dip' && !c.damped && near(c.fwhm / c.centre, rotation.relativeWidth, 1.6))
-      Object.assign(c, withCore(c, rotation.shape));
+    if (!c.damped && c.core.name === 'rotation' && c.fwhm < NARROWER * rotation.relativeWidth * c.centre)
+      Object.assign(c, withCore(c, GAUSSIAN));
 }
 
 const DAMPED_SIGNIFICANCE = 40;
@@ -170,11 +188,11 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
       withCore(
         c,
         rotation && near(c.fwhm / c.centre, rotation.relativeWidth, 1.8)
-          ? rotation.shape
+          ? rotating(rotation, c.fwhm / c.centre)
           : rotationOfBlur(blurOf((c.fwhm * resolvingPower) / c.centre)),
       ),
     ];
-    if (mayBeDamped) trials.push(c.damped ? { ...c } : asDamped(c));
+    if (mayBeDamped) trials.push(...dampedTrials(c, resolvingPower, rotation));
     const range = [c.centre - 4 * c.fwhm, c.centre + 4 * c.fwhm] as const;
     let best: Component | null = null;
     let bestChi2 = Infinity;
@@ -187,6 +205,25 @@ export function trySpecialShapes(model: LineModel, resolvingPower: number, rotat
   }
 }
 
+const SMEARED = 8; // resolution elements: the instrument hardly changes wider profiles
+const SATURATED = 0.7; // depth
+const SATURATED_START = { tau: 8, a: 1e-3 };
+
+/** Damped profiles to try for a component: as it stands where it is one, else smeared by the star's rotation or by the instrument. */
+function dampedTrials(c: Component, resolvingPower: number, rotation: Rotation | null): Component[] {
+  if (c.damped) return [{ ...c }];
+  if (c.damped) return [{ ...c }];
+  if (rotation && c.fwhm / c.centre > 1.3 * rotation.vsini)
+    return [asDamped(c, undefined, { kind: 'rotation', nm: rotation.vsini * c.centre })];
+  const trials = [asDamped(c)];
+  if (c.amplitude > SATURATED && (c.fwhm * resolvingPower) / c.centre < SMEARED)
+    trials.push(asDamped(c, SATURATED_START, { kind: 'instrument', nm: c.centre / resolvingPower / FWHM_PER_SIGMA }));
+  return trials;
+}
+
+const FWHM_PER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
+
+const SHALLOW = 0.15; // what is gathered is as deep as hydrogen lines are
 const CROWD_WIDTH = 0.18; // of the strong line's FWHM: narrower components are lines of their own
 const CROWD_REACH = 1.8; // FWHM
 const LARGEST_CROWD = 6; // refitted together before the comparison
@@ -195,10 +232,20 @@ const LARGEST_CROWD = 6; // refitted together before the comparison
  * One damped profile in place of a crowd of broad components around a strong line, where the data are content with it. Real lines that
  * go with the crowd stand out again in the next round.
  */
-export function gatherDamped(model: LineModel, threshold: number, tolerant: NormalisedSamples, resolvingPower: number): void {
+export function gatherDamped(
+  model: LineModel,
+  threshold: number,
+  tolerant: NormalisedSamples,
+  resolvingPower: number,
+  rotation: Rotation | null,
+): void {
   const strong = model.components
     .filter(
-      (c) => c.kind === 'dip' && c.fwhm * resolvingPower > 2 * BROAD * c.centre && c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE,
+      (c) =>
+        c.kind === 'dip' &&
+        c.fwhm * resolvingPower > 2 * BROAD * c.centre &&
+        (!rotation || c.amplitude > SHALLOW) &&
+        c.amplitude / c.sigmaAmplitude > DAMPED_SIGNIFICANCE,
     )
     .sort((a, b) => b.amplitude * b.area - a.amplitude * a.area || a.centre - b.centre);
   for (const c of strong) {
@@ -226,8 +273,12 @@ export function gatherDamped(model: LineModel, threshold: number, tolerant: Norm
         ROUGH,
       ).chi2,
     );
-    const one = c.damped ? { ...c } : asDamped(c);
-    const alone = fitBlend(tolerant, [one], others, limits, range).chi2;
+    let one = c;
+    let alone = Infinity;
+    for (const trial of dampedTrials(c, resolvingPower, rotation)) {
+      const { chi2 } = fitBlend(tolerant, [trial], others, limits, range);
+      if (chi2 < alone) [one, alone] = [trial, chi2];
+    }
     if (alone > now + threshold * threshold * crowd.length) continue;
     model.remove(new Set(crowd));
     Object.assign(c, one);
@@ -249,10 +300,10 @@ export function dropNeedless(model: LineModel, threshold: number, tolerant: Norm
   const gone = new Set<Component>();
   for (const c of weakFirst) {
     if (c.amplitude / c.sigmaAmplitude > NEEDED_SIGNIFICANCE) break;
-    const strong = model.components
+    const strong = model
+      .overlapping([c])
       .filter(
         (o) =>
-          o !== c &&
           !gone.has(o) &&
           o.kind === c.kind &&
           o.amplitude * o.area > 1.5 * c.amplitude * c.area &&
@@ -269,11 +320,11 @@ export function dropNeedless(model: LineModel, threshold: number, tolerant: Norm
     let alone = strong.map((o) => ({ ...o }));
     let without = fitBlend(tolerant, alone, others, limits, wide).chi2;
     if (rotation && without - withIt.chi2 > threshold * threshold) {
-      const rotating = strong.map((o) =>
-        o.damped || !near(o.fwhm / o.centre, rotation.relativeWidth, 1.8) ? { ...o } : withCore(o, rotation.shape),
+      const turned = strong.map((o) =>
+        o.damped || !near(o.fwhm / o.centre, rotation.relativeWidth, 1.8) ? { ...o } : withCore(o, rotating(rotation, o.fwhm / o.centre)),
       );
-      const chi2 = fitBlend(tolerant, rotating, others, limits, wide).chi2;
-      if (chi2 < without) [alone, without] = [rotating, chi2];
+      const chi2 = fitBlend(tolerant, turned, others, limits, wide).chi2;
+      if (chi2 < without) [alone, without] = [turned, chi2];
     }
     if (without - withIt.chi2 > threshold * threshold) continue;
     gone.add(c);
@@ -289,9 +340,9 @@ export function dropNeedless(model: LineModel, threshold: number, tolerant: Norm
 export function dropBridges(model: LineModel, threshold: number, tolerant: NormalisedSamples): void {
   const gone = new Set<Component>();
   for (const c of model.components) {
-    const inner = model.components.filter(
-      (o) => o !== c && !gone.has(o) && o.kind === c.kind && 1.3 * o.fwhm < c.fwhm && Math.abs(o.centre - c.centre) < 0.6 * c.fwhm,
-    );
+    const inner = model
+      .overlapping([c])
+      .filter((o) => !gone.has(o) && o.kind === c.kind && 1.3 * o.fwhm < c.fwhm && Math.abs(o.centre - c.centre) < 0.6 * c.fwhm);
     if (inner.length !== 2 || !inner.some((o) => o.centre < c.centre) || !inner.some((o) => o.centre > c.centre)) continue;
     const others = model.overlapping([c, ...inner]).filter((o) => !gone.has(o));
     const limits = model.limitsAt(c.centre);

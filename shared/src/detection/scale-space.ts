@@ -23,7 +23,12 @@ export interface FilterOptions {
   readonly threshold: number;
   /** autocorrelation of the noise at lags 0, 1, ... pixels */
   readonly correlation: readonly number[];
+  /** samples worth a look, as sorted [from, to) pairs; all when absent. Elsewhere nothing changed since they were last searched */
+  readonly only?: readonly Stretch[];
 }
+
+/** Samples [from, to). */
+export type Stretch = readonly [number, number];
 
 const LADDER = 1.45; // ratio of neighbouring widths; a feature between two rungs loses under 2 % of its significance
 const FWHM_PER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
@@ -64,7 +69,7 @@ export function findExcesses(data: NormalisedSamples, options: FilterOptions): E
       if (sigma * 6 > block.to - block.from) break;
       rungs.push(filter(data, block.from, block.to, sigma, options));
     }
-    rungs.forEach((_, r) => collect(rungs, r, data, block.from, options.threshold, found));
+    rungs.forEach((_, r) => collect(rungs, r, data, block.from, options, found));
   }
   return found.sort((a, b) => b.significance - a.significance || a.centre - b.centre);
 }
@@ -86,41 +91,58 @@ function filter(data: NormalisedSamples, from: number, to: number, sigmaPx: numb
     weighted[b]! += w * data.flux[i]!;
   }
   const g = Float64Array.from({ length: half + 1 }, (_, k) => Math.exp(-0.5 * (k / sigma) ** 2));
-  const gg = g.map((v) => v * v);
   const inflation = correlationInflation(g, bin, options.correlation, options.zeroMean);
   const s = new Float64Array(n);
   const amplitude = new Float64Array(n);
-  let s1 = 0; // sums over the window, kept up from bin to bin
-  let sr = 0;
-  for (let j = 0; j < 2 * half; j++) {
-    s1 += weight[j]!;
-    sr += weighted[j]!;
-  }
-  for (let i = 0; i < n; i++) {
-    const c = i + half;
-    s1 += weight[c + half]!;
-    sr += weighted[c + half]!;
-    let sg = weight[c]!;
-    let sgg = sg;
-    let sgr = weighted[c]!;
-    for (let k = 1; k <= half; k++) {
-      const w = weight[c - k]! + weight[c + k]!;
-      sg += g[k]! * w;
-      sgg += gg[k]! * w;
-      sgr += g[k]! * (weighted[c - k]! + weighted[c + k]!);
+  for (const [first, last] of options.only ? binsOf(options.only, from, to, bin, half) : [[0, n] as const]) {
+    let s1 = 0; // sums over the window, kept up from bin to bin
+    let sr = 0;
+    for (let j = first; j < first + 2 * half; j++) {
+      s1 += weight[j]!;
+      sr += weighted[j]!;
     }
-    if (sgg > 0) {
-      const top = options.zeroMean ? sgr - (sg * sr) / s1 : sgr;
-      const bottom = options.zeroMean ? sgg - (sg * sg) / s1 : sgg;
-      if (bottom > LEAST_CONTRAST * sgg) {
-        amplitude[i] = top / bottom;
-        s[i] = top / Math.sqrt(bottom) / inflation;
+    for (let i = first; i < last; i++) {
+      const c = i + half;
+      s1 += weight[c + half]!;
+      sr += weighted[c + half]!;
+      let sg = weight[c]!;
+      let sgg = sg;
+      let sgr = weighted[c]!;
+      for (let k = 1; k <= half; k++) {
+        const w = weight[c - k]! + weight[c + k]!;
+        const wg = g[k]! * w;
+        sg += wg;
+        sgg += g[k]! * wg;
+        sgr += g[k]! * (weighted[c - k]! + weighted[c + k]!);
       }
+      if (sgg > 0) {
+        const top = options.zeroMean ? sgr - (sg * sr) / s1 : sgr;
+        const bottom = options.zeroMean ? sgg - (sg * sg) / s1 : sgg;
+        if (bottom > LEAST_CONTRAST * sgg) {
+          amplitude[i] = top / bottom;
+          s[i] = top / Math.sqrt(bottom) / inflation;
+        }
+      }
+      s1 -= weight[i]!;
+      sr -= weighted[i]!;
     }
-    s1 -= weight[i]!;
-    sr -= weighted[i]!;
   }
   return { sigmaPx, bin, s, amplitude };
+}
+
+/** The bins whose filter output the samples of some stretches can have changed, merged. */
+function binsOf(stretches: readonly Stretch[], from: number, to: number, bin: number, half: number): Stretch[] {
+  const n = Math.ceil((to - from) / bin);
+  const out: [number, number][] = [];
+  for (const [a, z] of stretches) {
+    if (z <= from || a >= to) continue;
+    const first = Math.max(0, Math.floor((a - from) / bin) - half);
+    const last = Math.min(n, Math.ceil((z - from) / bin) + half);
+    const before = out[out.length - 1];
+    if (before && first <= before[1]) before[1] = Math.max(before[1], last);
+    else out.push([first, last]);
+  }
+  return out;
 }
 
 /** By how much correlated noise widens the scatter of a filter's output. */
@@ -143,12 +165,20 @@ function correlationInflation(g: Float64Array, bin: number, correlation: readonl
   return Math.sqrt(Math.max(variance, 0.25));
 }
 
-function collect(rungs: readonly Rung[], r: number, data: NormalisedSamples, from: number, threshold: number, out: Excess[]): void {
+function collect(
+  rungs: readonly Rung[],
+  r: number,
+  data: NormalisedSamples,
+  from: number,
+  { threshold, only }: FilterOptions,
+  out: Excess[],
+): void {
   const rung = rungs[r]!;
   const { s, bin } = rung;
   for (let i = 1; i < s.length - 1; i++) {
     const v = Math.abs(s[i]!);
     if (v < threshold || v < Math.abs(s[i - 1]!) || v <= Math.abs(s[i + 1]!)) continue;
+    if (only && (s[i - 1] === 0 || s[i + 1] === 0)) continue; // the end of what was looked at, no maximum
     const pixel = (i + 0.5) * bin;
     if (stronger(rungs[r - 1], pixel, s[i]!) || stronger(rungs[r + 1], pixel, s[i]!)) continue;
     const at = Math.min(data.wavelength.length - 1, from + Math.round(pixel - 0.5));

@@ -1,3 +1,4 @@
+import type { DampedShape } from '../profiles/index.js';
 import type { Frame } from '../spectrum/index.js';
 import type { Family } from '../linelist/index.js';
 import type { AnalysisSettings } from './settings.js';
@@ -146,7 +147,7 @@ export interface Feature {
   /** shape of the fitted profile: for drawing */
   readonly shape: 'gaussian' | 'voigt' | 'rotation' | 'band';
   /** of a 'voigt' shape, for drawing: central optical depth, damping in Doppler widths, Doppler width in nm */
-  readonly damped?: { readonly tau: number; readonly a: number; readonly dopplerNm: number };
+  readonly damped?: DampedShape & { readonly dopplerNm: number };
   /** matched-filter significance, sigma */
   readonly significance: number;
   /** local continuum signal to noise per pixel */

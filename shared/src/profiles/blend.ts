@@ -1,6 +1,7 @@
 import { choleskyInPlace, choleskySolve } from '../numeric/linear.js';
-import { look, settle, type Component } from './component.js';
-import { dampedInto, dampedTable, type DampedTable } from './damped.js';
+import { settle, type Component } from './component.js';
+import { dampedTable, type DampedShape } from './damped.js';
+import { DAMPED, derivativesInto, SIMPLE } from './derivatives.js';
 import { addComponent, indexAt, type NormalisedSamples } from './samples.js';
 
 export interface BlendLimits {
@@ -20,10 +21,9 @@ const FINE = 1e-3;
 /** Chi-square that a step must gain for the fit to go on, while features are still being found. */
 export const ROUGH = 0.02;
 const DAMPED_RANGE = 4; // FWHM; wings further out carry hardly any weight on the parameters
-const SIMPLE = 3; // parameters: amplitude, centre, ln scale
-const DAMPED = 5; // and ln tau, a
 const TAU_LIMITS = [0.02, 3e4] as const;
-const A_LIMITS = [0.005, 3] as const;
+const A_LIMITS = [0.02, 3] as const; // what the shapes of hydrogen lines need
+const A_LIMITS_NARROW = [1e-4, 3] as const; // and those of clouds, seen through the instrument
 
 /** Wavelengths that a set of components covers, nm. */
 export function rangeOf(components: readonly Component[]): readonly [number, number] {
@@ -41,7 +41,7 @@ export function rangeOf(components: readonly Component[]): readonly [number, num
 export function chi2Of(data: NormalisedSamples, components: readonly Component[], range: readonly [number, number]): number {
   const from = indexAt(data.wavelength, range[0]);
   const to = indexAt(data.wavelength, range[1]);
-  grow(to - from, 0);
+  growSamples(to - from, 0);
   const { base, add } = scratch;
   base.fill(1, 0, to - from);
   add.fill(0, 0, to - from);
@@ -51,39 +51,63 @@ export function chi2Of(data: NormalisedSamples, components: readonly Component[]
   return chi2;
 }
 
+const none = (): Float64Array => new Float64Array(0);
 /** Scratch of one fit, grown when needed and reused: a loop over blends allocates nothing big. */
 const scratch = {
-  base: new Float64Array(0),
-  add: new Float64Array(0),
-  normal: new Float64Array(0),
-  factor: new Float64Array(0),
-  gradient: new Float64Array(0),
-  step: new Float64Array(0),
-  derivative: new Float64Array(0),
+  // by sample
+  base: none(),
+  add: none(),
+  product: none(),
+  residual: none(),
+  // by component or parameter, and sample
+  left: none(),
+  derivative: none(),
+  // by parameter
+  normal: none(),
+  keptNormal: none(),
+  factor: none(),
+  gradient: none(),
+  keptGradient: none(),
+  step: none(),
+  kept: none(),
 };
 
-function grow(samples: number, parameters: number): void {
-  if (scratch.base.length < samples) {
-    scratch.base = new Float64Array(samples * 2);
-    scratch.add = new Float64Array(samples * 2);
-  }
-  if (scratch.gradient.length < parameters) {
-    scratch.normal = new Float64Array(parameters * parameters);
-    scratch.factor = new Float64Array(parameters * parameters);
-    scratch.gradient = new Float64Array(parameters);
-    scratch.step = new Float64Array(parameters);
-    scratch.derivative = new Float64Array(parameters);
+function growSamples(samples: number, columns: number): void {
+  if (scratch.base.length < samples)
+    for (const key of ['base', 'add', 'product', 'residual'] as const) scratch[key] = new Float64Array(samples * 2);
+  if (scratch.derivative.length < samples * columns) {
+    scratch.derivative = new Float64Array(samples * columns * 2);
+    scratch.left = new Float64Array(samples * columns * 2);
   }
 }
 
-/** A component in the fit: where its parameters stand in the normal matrix, and what limits them. */
+function growParameters(p: number): void {
+  if (scratch.gradient.length >= p) return;
+  for (const key of ['normal', 'keptNormal', 'factor'] as const) scratch[key] = new Float64Array(p * p);
+  for (const key of ['gradient', 'keptGradient', 'step', 'kept'] as const) scratch[key] = new Float64Array(p);
+}
+
+/** A component in the fit: where its parameters stand in the normal matrix, what limits them, and the samples it reaches now. */
 interface Slot {
   readonly c: Component;
   readonly at: number;
   readonly size: number;
   readonly startCentre: number;
   readonly startFwhm: number;
-  table: DampedTable | null;
+  from: number;
+  to: number;
+  keptDamped: DampedShape | null;
+}
+
+function slotsOf(free: readonly Component[]): { slots: Slot[]; parameters: number } {
+  let parameters = 0;
+  const slots = free.map((c): Slot => {
+    const size = c.damped ? DAMPED : SIMPLE;
+    const slot = { c, at: parameters, size, startCentre: c.centre, startFwhm: c.fwhm, from: 0, to: 0, keptDamped: null };
+    parameters += size;
+    return slot;
+  });
+  return { slots, parameters };
 }
 
 /**
@@ -96,7 +120,7 @@ interface Slot {
  */
 export function fitBlend(
   data: NormalisedSamples,
-  free: Component[],
+  free: readonly Component[],
   others: readonly Component[],
   limits: BlendLimits,
   range = rangeOf(free),
@@ -104,14 +128,10 @@ export function fitBlend(
 ): BlendFit {
   const from = indexAt(data.wavelength, range[0]);
   const to = indexAt(data.wavelength, range[1]);
-  let parameters = 0;
-  const slots = free.map((c): Slot => {
-    const size = c.damped ? DAMPED : SIMPLE;
-    const slot = { c, at: parameters, size, startCentre: c.centre, startFwhm: c.fwhm, table: null };
-    parameters += size;
-    return slot;
-  });
-  grow(to - from, parameters);
+  const { slots, parameters } = slotsOf(free);
+  for (const c of free) confine(c, limits);
+  growSamples(to - from, parameters);
+  growParameters(parameters);
   scratch.base.fill(1, 0, to - from);
   scratch.add.fill(0, 0, to - from);
   for (const c of others) addComponent(c, data.wavelength, from, to, scratch.base, scratch.add);
@@ -119,51 +139,73 @@ export function fitBlend(
   let damping = 1e-3;
   let chi2 = accumulate(data, slots, parameters, from, to);
   let end: BlendFit['end'] = 'iteration_limit';
-  const iterations = precision > FINE ? ROUGH_ITERATIONS : MAX_ITERATIONS;
-  for (let iteration = 0; iteration < iterations; iteration++) {
-    const kept = free.map((c) => ({
-      amplitude: c.amplitude,
-      centre: c.centre,
-      scale: c.scale,
-      damped: c.damped,
-      fwhm: c.fwhm,
-      area: c.area,
-      reach: c.reach,
-    }));
-    scratch.factor.set(scratch.normal.subarray(0, parameters * parameters));
-    for (let k = 0; k < parameters; k++) scratch.factor[k * parameters + k]! *= 1 + damping;
-    scratch.step.set(scratch.gradient.subarray(0, parameters));
-    if (!choleskyInPlace(scratch.factor, parameters)) {
+  const rough = precision > FINE;
+  for (let iteration = rough ? ROUGH_ITERATIONS : MAX_ITERATIONS; iteration > 0; iteration--) {
+    if (!solve(parameters, damping)) {
       damping *= 10;
-      if (damping > 1e6) {
-        end = 'singular';
-        break;
-      }
-      continue;
+      if (damping < 1e6) continue;
+      end = 'singular';
+      break;
     }
-    choleskySolve(scratch.factor, parameters, scratch.step);
+    keep(slots, parameters);
     for (const s of slots) move(s, scratch.step, limits);
     const next = accumulate(data, slots, parameters, from, to);
     if (next <= chi2) {
       const gain = chi2 - next;
       chi2 = next;
       damping = Math.max(damping * 0.2, 1e-9);
-      if (gain < precision + (precision > FINE ? 3e-4 : 1e-6) * chi2) {
-        end = 'converged';
-        break;
-      }
-    } else {
-      free.forEach((c, k) => Object.assign(c, kept[k]));
-      damping *= 8;
-      chi2 = accumulate(data, slots, parameters, from, to);
-      if (damping > 1e7) {
-        end = 'converged';
-        break;
-      }
+      if (gain >= precision + (rough ? 3e-4 : 1e-6) * chi2) continue;
+      end = 'converged';
+      break;
     }
+    restore(slots);
+    damping *= 8;
+    if (damping < 1e7) continue;
+    end = 'converged';
+    break;
   }
   writeErrors(slots, parameters);
   return { chi2, end };
+}
+
+/** The damped step that the normal matrix asks for, to `scratch.step`; false where the matrix is singular. */
+function solve(p: number, damping: number): boolean {
+  const { normal, factor, gradient, step } = scratch;
+  for (let k = p * p - 1; k >= 0; k--) factor[k] = normal[k]!;
+  for (let k = 0; k < p; k++) {
+    factor[k * p + k]! *= 1 + damping;
+    step[k] = gradient[k]!;
+  }
+  if (!choleskyInPlace(factor, p)) return false;
+  choleskySolve(factor, p, step);
+  return true;
+}
+
+/** Holds parameters, matrix and gradient, for the case that the step makes things worse. */
+function keep(slots: readonly Slot[], p: number): void {
+  const { kept } = scratch;
+  for (const s of slots) {
+    kept[s.at] = s.c.amplitude;
+    kept[s.at + 1] = s.c.centre;
+    kept[s.at + 2] = s.c.scale;
+    s.keptDamped = s.c.damped;
+  }
+  [scratch.normal, scratch.keptNormal] = [scratch.keptNormal, scratch.normal];
+  [scratch.gradient, scratch.keptGradient] = [scratch.keptGradient, scratch.gradient];
+  if (scratch.gradient.length < p) throw new RangeError('scratch grew during a fit');
+}
+
+function restore(slots: readonly Slot[]): void {
+  const { kept } = scratch;
+  for (const { c, at, keptDamped } of slots) {
+    c.amplitude = kept[at]!;
+    c.centre = kept[at + 1]!;
+    c.scale = kept[at + 2]!;
+    c.damped = keptDamped;
+    settle(c);
+  }
+  [scratch.normal, scratch.keptNormal] = [scratch.keptNormal, scratch.normal];
+  [scratch.gradient, scratch.keptGradient] = [scratch.keptGradient, scratch.gradient];
 }
 
 const clamp = (x: number, limit: number): number => Math.max(-limit, Math.min(limit, x));
@@ -172,129 +214,133 @@ const within = (x: number, [low, high]: readonly [number, number]): number => Ma
 function move({ c, at, startCentre, startFwhm }: Slot, step: Float64Array, limits: BlendLimits): void {
   c.amplitude = Math.min(Math.max(c.amplitude + clamp(step[at]!, Math.max(0.5 * c.amplitude, 0.2)), 0), c.kind === 'dip' ? 1 : Infinity);
   c.centre = startCentre + clamp(c.centre + clamp(step[at + 1]! * c.scale, 0.5 * c.fwhm) - startCentre, startFwhm);
-  const factor = Math.exp(clamp(step[at + 2]!, 0.4));
-  c.scale *= factor;
-  if (c.damped)
+  stretch(c, Math.exp(clamp(step[at + 2]!, 0.4)));
+  if (c.damped) {
+    const limitsOfA = c.damped.smear?.kind === 'instrument' ? A_LIMITS_NARROW : A_LIMITS;
     c.damped = {
+      ...c.damped,
       tau: within(c.damped.tau * Math.exp(clamp(step[at + 3]!, 0.7)), TAU_LIMITS),
-      a: within(c.damped.a + clamp(step[at + 4]!, 0.3), A_LIMITS),
+      a: within(c.damped.a * Math.exp(clamp(step[at + 4]!, 0.7)), limitsOfA),
     };
-  settle(c);
-  const allowed = within(c.fwhm, [limits.narrowest, limits.widest]) / c.fwhm;
-  if (allowed !== 1) {
-    c.scale *= allowed;
-    settle(c);
   }
+  settle(c);
+  confine(c, limits);
 }
 
-const damped4 = new Float64Array(4);
+/** Keeps the width of a component within its limits. */
+function confine(c: Component, limits: BlendLimits): void {
+  const allowed = within(c.fwhm, [limits.narrowest, limits.widest]) / c.fwhm;
+  if (allowed === 1) return;
+  stretch(c, allowed);
+  settle(c);
+}
+
+/** Changes the scale of a component; what smears it keeps its width in wavelength. */
+function stretch(c: Component, factor: number): void {
+  c.scale *= factor;
+  const smear = c.damped?.smear;
+  if (c.damped && smear) c.damped = { ...c.damped, smear: { kind: smear.kind, width: smear.width / factor } };
+}
 
 /** Fills normal matrix and gradient at the present parameters; returns chi-square over the range. */
 function accumulate(data: NormalisedSamples, slots: readonly Slot[], p: number, from: number, to: number): number {
-  const { normal, gradient, base, add, derivative } = scratch;
-  normal.fill(0, 0, p * p);
-  gradient.fill(0, 0, p);
-  for (const s of slots) s.table = s.c.damped ? dampedTable(s.c.damped) : null;
-  const active: Slot[] = new Array(slots.length);
-  const clear = new Float64Array(slots.length);
+  const { base, add, product, residual, left, derivative, normal, gradient } = scratch;
+  const { wavelength, flux, weight } = data;
+  const samples = to - from;
+  for (let i = 0; i < samples; i++) {
+    product[i] = base[i]!;
+    residual[i] = add[i]!; // holds the peaks' sum until the model is complete
+  }
+  for (let s = 0; s < slots.length; s++) {
+    const slot = slots[s]!;
+    const { c } = slot;
+    slot.from = Math.max(from, indexAt(wavelength, c.centre - c.reach)) - from;
+    slot.to = Math.max(slot.from, Math.min(to, indexAt(wavelength, c.centre + c.reach)) - from);
+    derivativesInto(derivative, c, wavelength, from, slot.from, slot.to, slot.at * samples, samples);
+    const row = slot.at * samples;
+    if (c.kind === 'dip') {
+      const clear = s * samples;
+      for (let i = slot.from; i < slot.to; i++) {
+        const l = Math.max(1 - c.amplitude * derivative[row + i]!, 1e-4);
+        left[clear + i] = l;
+        product[i]! *= l;
+      }
+    } else for (let i = slot.from; i < slot.to; i++) residual[i]! += c.amplitude * derivative[row + i]!;
+  }
   let chi2 = 0;
-  for (let i = from; i < to; i++) {
-    const w = data.weight[i]!;
-    if (w === 0) continue;
-    const x = data.wavelength[i]!;
-    let product = base[i - from]!;
-    let sum = add[i - from]!;
-    let count = 0;
-    for (const slot of slots) {
-      const { c, at } = slot;
-      const dx = x - c.centre;
-      if (dx >= c.reach || dx <= -c.reach) continue;
-      const value = derivatives(slot, dx, derivative, at);
-      if (c.kind === 'dip') {
-        const left = Math.max(1 - c.amplitude * value, 1e-4);
-        clear[count] = left;
-        product *= left;
-      } else sum += c.amplitude * value;
-      active[count++] = slot;
-    }
-    const residual = data.flux[i]! - product - sum;
-    chi2 += w * residual * residual;
-    for (let a = 0; a < count; a++) {
-      const { c, at, size } = active[a]!;
-      const factor = c.kind === 'dip' ? -product / clear[a]! : 1;
-      for (let q = 0; q < size; q++) {
-        const d = (derivative[at + q]! *= factor);
-        if (d === 0) continue;
-        const wd = w * d;
-        gradient[at + q]! += wd * residual;
-        const row = (at + q) * p;
-        for (let b = 0; b < a; b++) {
-          const { at: bt, size: bs } = active[b]!;
-          for (let r = 0; r < bs; r++) normal[row + bt + r]! += wd * derivative[bt + r]!;
-        }
-        for (let r = 0; r <= q; r++) normal[row + at + r]! += wd * derivative[at + r]!;
+  for (let i = 0; i < samples; i++) {
+    const r = flux[from + i]! - product[i]! - residual[i]!;
+    const wr = weight[from + i]! * r;
+    chi2 += wr * r;
+    residual[i] = wr;
+  }
+  for (let s = 0; s < slots.length; s++) {
+    const { c, at, size, from: a, to: z } = slots[s]!;
+    if (c.kind === 'dip') {
+      const clear = s * samples;
+      for (let i = a; i < z; i++) {
+        const factor = -product[i]! / left[clear + i]!;
+        for (let q = 0, k = at * samples + i; q < size; q++, k += samples) derivative[k]! *= factor;
       }
     }
+    for (let q = 0; q < size; q++) {
+      const row = (at + q) * samples;
+      let sum = 0;
+      for (let i = a; i < z; i++) sum += derivative[row + i]! * residual[i]!;
+      gradient[at + q] = sum;
+    }
+    for (let other = 0; other <= s; other++) multiply(slots[s]!, slots[other]!, weight, from, samples, p);
   }
-  for (let k = 0; k < p; k++) {
-    if (normal[k * p + k]! === 0) normal[k * p + k] = 1; // a parameter off the data is held
-    for (let q = k + 1; q < p; q++) normal[k * p + q] = normal[q * p + k]!;
-  }
+  for (let k = 0; k < p; k++) if (normal[k * p + k] === 0) normal[k * p + k] = 1; // a parameter off the data is held
   return chi2;
 }
 
-/** phi at a distance; derivatives of amplitude * phi by amplitude, centre (in scales), ln scale (and ln tau, a) go to `out` from `at`. */
-function derivatives({ c, table }: Slot, dx: number, out: Float64Array, at: number): number {
-  const u = Math.abs(dx) / c.scale;
-  let value: number;
-  let slope: number;
-  if (table) {
-    dampedInto(damped4, table, u);
-    value = damped4[0]!;
-    slope = damped4[1]!;
-    out[at + 3] = c.amplitude * damped4[2]!;
-    out[at + 4] = c.amplitude * damped4[3]!;
-  } else {
-    value = look(c.core.value, c.core, u);
-    slope = look(c.core.slope, c.core, u);
+/** The normal matrix's rows of one component by the columns of another (or its own), into the lower triangle. */
+function multiply(one: Slot, other: Slot, weight: Float64Array, from: number, samples: number, p: number): void {
+  const { derivative: d, normal } = scratch;
+  const a = Math.max(one.from, other.from);
+  const z = Math.min(one.to, other.to);
+  for (let q = 0; q < one.size; q++) {
+    const x = (one.at + q) * samples;
+    const last = one === other ? q + 1 : other.size;
+    for (let r = 0; r < last; r++) {
+      const y = (other.at + r) * samples;
+      let sum = 0;
+      for (let i = a; i < z; i++) sum += weight[from + i]! * d[x + i]! * d[y + i]!;
+      normal[(one.at + q) * p + other.at + r] = sum;
+    }
   }
-  out[at] = value;
-  out[at + 1] = dx < 0 ? c.amplitude * slope : -c.amplitude * slope;
-  out[at + 2] = -c.amplitude * slope * u;
-  return value;
 }
 
 function writeErrors(slots: readonly Slot[], p: number): void {
-  scratch.factor.set(scratch.normal.subarray(0, p * p));
-  for (let k = 0; k < p; k++) scratch.factor[k * p + k]! *= 1 + 1e-9;
-  const good = choleskyInPlace(scratch.factor, p);
+  const good = factorAgain(p);
   const column = scratch.step;
   /** variance of a linear combination of a slot's parameters */
-  const variance = (slot: Slot, weights: readonly number[]): number => {
+  const variance = (slot: Slot, q: number, weights: readonly number[]): number => {
     if (!good) return NaN;
     column.fill(0, 0, p);
-    weights.forEach((w, q) => (column[slot.at + q] = w));
+    for (let k = 0; k < weights.length; k++) column[slot.at + q + k] = weights[k]!;
     choleskySolve(scratch.factor, p, column);
-    return weights.reduce((sum, w, q) => sum + w * column[slot.at + q]!, 0);
+    let sum = 0;
+    for (let k = 0; k < weights.length; k++) sum += weights[k]! * column[slot.at + q + k]!;
+    return sum;
   };
   for (const slot of slots) {
     const { c } = slot;
-    const shape = shapeDerivatives(c);
-    c.sigmaAmplitude = Math.sqrt(variance(slot, [1]));
-    c.sigmaCentre = Math.sqrt(variance(slot, [0, 1])) * c.scale;
-    c.sigmaLogFwhm = Math.sqrt(variance(slot, [0, 0, 1, ...shape.fwhm]));
-    c.sigmaEquivalentWidth = Math.sqrt(
-      variance(slot, [c.area, 0, c.amplitude * c.area, ...shape.area.map((d) => d * c.amplitude * c.area)]),
-    );
+    const strength = c.amplitude * c.area;
+    const byShape = c.damped ? dampedTable(c.damped).byShape : FIXED;
+    c.sigmaAmplitude = Math.sqrt(variance(slot, 0, ONE));
+    c.sigmaCentre = Math.sqrt(variance(slot, 1, ONE)) * c.scale;
+    c.sigmaLogFwhm = Math.sqrt(variance(slot, 2, byShape.fwhm));
+    c.sigmaEquivalentWidth = Math.sqrt(variance(slot, 0, [c.area, 0, ...byShape.area.map((d) => d * strength)]));
   }
 }
 
-/** Derivatives of ln FWHM and ln area by ln tau and a, by differences; none for fixed shapes. */
-function shapeDerivatives(c: Component): { fwhm: number[]; area: number[] } {
-  if (!c.damped) return { fwhm: [], area: [] };
-  const { tau, a } = c.damped;
-  const h = 0.01;
-  const here = dampedTable(c.damped);
-  const there = [dampedTable({ tau: tau * Math.exp(h), a }), dampedTable({ tau, a: a + h })];
-  return { fwhm: there.map((t) => Math.log(t.fwhm / here.fwhm) / h), area: there.map((t) => Math.log(t.area / here.area) / h) };
+const ONE = [1];
+const FIXED = { fwhm: ONE, area: ONE };
+
+function factorAgain(p: number): boolean {
+  for (let k = p * p - 1; k >= 0; k--) scratch.factor[k] = scratch.normal[k]!;
+  for (let k = 0; k < p; k++) scratch.factor[k * p + k]! *= 1 + 1e-9;
+  return choleskyInPlace(scratch.factor, p);
 }

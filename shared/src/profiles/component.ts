@@ -1,5 +1,6 @@
 import { dampedTable, dampedValue, type DampedShape } from './damped.js';
 import { GAUSSIAN, type Shape } from './shapes.js';
+import type { Smear } from './smear.js';
 
 /**
  * One profile of a blend. Dips multiply the light, (1 - amplitude * phi); peaks add amplitude * phi, in units of the continuum.
@@ -63,13 +64,27 @@ export function settle(c: Component): void {
   }
 }
 
-/** A copy with a damped profile of about the same FWHM: moderately saturated, moderately winged. */
-export function asDamped(c: Component): Component {
-  const shape = { tau: 4, a: 0.6 };
-  const out: Component = { ...c, damped: shape, scale: c.fwhm / dampedTable(shape).fwhm };
+/**
+ * A copy with a damped profile of about the same FWHM.
+ * @param shape what to start from; by default moderately saturated, moderately winged
+ * @param smear what smears the line, its width in nm; null where that does not matter
+ */
+export function asDamped(
+  c: Component,
+  shape: { readonly tau: number; readonly a: number } = { tau: 4, a: 0.6 },
+  smear: { readonly kind: Smear['kind']; readonly nm: number } | null = null,
+): Component {
+  const { tau, a } = shape;
+  const smearFwhm = smear ? smear.nm * (smear.kind === 'rotation' ? ROTATION_FWHM : FWHM_PER_SIGMA) : 0;
+  const own = Math.sqrt(Math.max(c.fwhm ** 2 - smearFwhm ** 2, (0.3 * c.fwhm) ** 2));
+  const scale = own / dampedTable({ tau, a }).fwhm;
+  const out: Component = { ...c, damped: smear ? { tau, a, smear: { kind: smear.kind, width: smear.nm / scale } } : { tau, a }, scale };
   settle(out);
   return out;
 }
+
+const FWHM_PER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
+const ROTATION_FWHM = 1.6; // v sin i, for a rotation profile that nothing else broadens
 
 /** A copy with a fixed shape of the same FWHM. */
 export function withCore(c: Component, core: Shape): Component {

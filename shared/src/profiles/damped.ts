@@ -1,80 +1,125 @@
 import { faddeevaInto } from '../numeric/faddeeva.js';
+import { quadratureOf, smearReach, type Smear } from './smear.js';
 
 /**
- * Saturated line with damping wings: phi(u) = (1 - exp(-tau H(a, u))) / (1 - exp(-tau H(a, 0))), H the Voigt function, u in Doppler
- * widths. Times a depth it describes hydrogen lines, whose cores level off at the flux of the highest layers, and damped absorbers.
+ * Saturated line with damping wings: phi(u) = F(u) / F(0), F = 1 - exp(-tau H(a, u)), H the Voigt function, u in Doppler widths; F is
+ * smeared by the instrument or by the star's rotation where these matter. Times a depth it describes hydrogen lines, whose cores level
+ * off at the flux of the highest layers, and saturated or damped absorbers.
  */
 export interface DampedShape {
   readonly tau: number;
   readonly a: number;
+  readonly smear?: Smear;
 }
 
-const held = new Float64Array(2);
-const TWO_OVER_SQRT_PI = 2 / Math.sqrt(Math.PI);
-
-/** phi and its derivatives with respect to u, ln tau and a, written to out[0..3]. */
-function exactInto(out: Float64Array, shape: DampedShape, u: number, peak: DampedPeak): void {
-  const { tau, a } = shape;
-  faddeevaInto(held, u, a);
-  const h = held[0]!;
-  const im = held[1]!;
-  const slopeU = -2 * (u * h - a * im);
-  const slopeA = 2 * (u * im + a * h) - TWO_OVER_SQRT_PI;
-  const left = Math.exp(-tau * h);
-  const phi = (1 - left) / peak.norm;
-  out[0] = phi;
-  out[1] = (tau * slopeU * left) / peak.norm;
-  out[2] = (tau * h * left - phi * peak.byLogTau) / peak.norm;
-  out[3] = (tau * slopeA * left - phi * peak.byA) / peak.norm;
-}
-
-/** What normalises a damped shape: 1 - exp(-tau H(a, 0)) and its derivatives. */
-interface DampedPeak {
-  readonly norm: number;
-  readonly byLogTau: number;
-  readonly byA: number;
-}
-
-function dampedPeak({ tau, a }: DampedShape): DampedPeak {
-  faddeevaInto(held, 0, a);
-  const h = held[0]!;
-  const left = Math.exp(-tau * h);
-  const slopeA = 2 * a * h - TWO_OVER_SQRT_PI;
-  return { norm: -Math.expm1(-tau * h), byLogTau: tau * h * left, byA: tau * slopeA * left };
-}
-
-const TAIL = 7e-4;
-
-/** Distance beyond which less than TAIL of the peak is left, in Doppler widths; at least the core, at most 80 Doppler widths. */
-function reachOf({ tau, a }: DampedShape, norm: number): number {
-  const wing = (tau * a) / Math.sqrt(Math.PI) / norm; // phi tends to wing / u^2
-  const core = Math.sqrt(Math.max(1, Math.log(Math.max(tau, 1) / TAIL)));
-  return Math.min(Math.max(core, Math.sqrt(wing / TAIL)), Math.max(core, 80));
-}
-
+/** Columns of a table: phi and its derivatives by u, ln tau, ln a, and by ln of the Doppler width with what smears held in wavelength. */
+export const DAMPED_COLUMNS = 5;
 const NODES = 384;
-const COLUMNS = 4;
+const TAIL = 7e-4;
+const LONGEST = 2000; // Doppler widths
 
-/** phi and its three derivatives at nodes that crowd towards the centre, u = reach (k / NODES)^2. */
+/** phi and its derivatives at nodes that crowd towards the centre, u = reach (k / NODES)^2. */
 export interface DampedTable {
   readonly reach: number;
   readonly fwhm: number;
   readonly area: number;
+  /** derivatives of ln FWHM and of ln area, both in wavelength, by ln of the Doppler width, ln tau and ln a */
+  readonly byShape: { readonly fwhm: readonly number[]; readonly area: readonly number[] };
   readonly values: Float64Array;
 }
 
-/** FWHM and area from the nodes; what the wings hold beyond the table, phi u^2 being constant there, is added to the area. */
-function extentOf(values: Float64Array, reach: number): { fwhm: number; area: number } {
-  const node = (k: number): number => reach * (k / NODES) ** 2;
-  const last = NODES - 1;
-  let half = last;
-  let area = 0;
-  for (let k = 0; k < last; k++) {
-    const [now, next] = [values[k * COLUMNS]!, values[(k + 1) * COLUMNS]!];
-    area += 0.5 * (now + next) * (node(k + 1) - node(k));
-    if (half === last && next < 0.5) half = k + (now - 0.5) / (now - next);
+const held = new Float64Array(2);
+
+/** Distance beyond which less than TAIL of the peak is left, in Doppler widths; at least the core. */
+function reachOf({ tau, a, smear }: DampedShape): number {
+  faddeevaInto(held, 0, a);
+  const wing = (tau * a) / Math.sqrt(Math.PI) / -Math.expm1(-tau * held[0]!); // phi tends to wing / u^2
+  const core = Math.sqrt(Math.max(1, Math.log(Math.max(tau, 1) / TAIL)));
+  return Math.min(Math.max(core, Math.sqrt(wing / TAIL)), Math.max(core, LONGEST)) + (smear ? smearReach(smear) : 0);
+}
+
+const TWO_OVER_SQRT_PI = 2 / Math.sqrt(Math.PI);
+
+/** Fills a table's columns with F and its derivatives, not normalised, before anything smears it. */
+function formInto(values: Float64Array, { tau, a }: DampedShape, reach: number): void {
+  for (let k = 0, at = 0; k < NODES; k++, at += DAMPED_COLUMNS) {
+    const u = reach * (k / NODES) ** 2;
+    faddeevaInto(held, u, a);
+    const h = held[0]!;
+    const im = held[1]!;
+    const slope = tau * Math.exp(-tau * h); // dF / dH
+    values[at] = -Math.expm1(-tau * h);
+    values[at + 1] = -2 * (u * h - a * im) * slope;
+    values[at + 2] = h * slope;
+    values[at + 3] = a * (2 * (u * im + a * h) - TWO_OVER_SQRT_PI) * slope;
+    values[at + 4] = -u * values[at + 1]!;
   }
-  return { fwhm: 2 * node(half), area: 2 * (area + values[last * COLUMNS]! * node(last)) };
+}
+
+const formed = new Float64Array((NODES + 2) * DAMPED_COLUMNS);
+const picked = new Float64Array(DAMPED_COLUMNS);
+
+/** `values` smeared, in place: what lies within the smear's reach of each node, weighted. */
+function smearInto(values: Float64Array, smear: Smear, reach: number): void {
+  formed.set(values);
+  const { at, weight } = quadratureOf(smear);
+  for (let k = 0, row = 0; k < NODES; k++, row += DAMPED_COLUMNS) {
+    const u = reach * (k / NODES) ** 2;
+    values.fill(0, row, row + DAMPED_COLUMNS);
+    for (let j = 0; j < at.length; j++) {
+      const t = u - at[j]! * smear.width;
+      pick(picked, formed, reach, t < 0 ? -t : t);
+      const w = weight[j]!;
+      values[row]! += w * picked[0]!;
+      values[row + 1]! += t < 0 ? -w * picked[1]! : w * picked[1]!;
+      values[row + 2]! += w * picked[2]!;
+      values[row + 3]! += w * picked[3]!;
+      values[row + 4]! += w * picked[4]!;
+    }
+  }
+}
+
+/** From F to phi: everything over the value at the centre, whose own derivatives count. */
+function normalise(values: Float64Array): void {
+  const peak = values.slice(0, DAMPED_COLUMNS);
+  const inverse = 1 / peak[0]!;
+  for (let k = 0, at = 0; k < NODES; k++, at += DAMPED_COLUMNS) {
+    const phi = values[at]! * inverse;
+    values[at] = phi;
+    values[at + 1]! *= inverse;
+    for (let q = 2; q < DAMPED_COLUMNS; q++) values[at + q] = (values[at + q]! - phi * peak[q]!) * inverse;
+  }
+}
+
+/** FWHM, area and their derivatives from the nodes; what the wings hold beyond the table, phi u^2 being constant there, is added. */
+function extentOf(values: Float64Array, reach: number): Pick<DampedTable, 'fwhm' | 'area' | 'byShape'> {
+  const last = NODES - 1;
+  let half = 0;
+  const area = new Float64Array(DAMPED_COLUMNS);
+  for (let k = 0; k < last; k++) {
+    const step = (reach * (2 * k + 1)) / (NODES * NODES);
+    const at = k * DAMPED_COLUMNS;
+    for (let q = 0; q < DAMPED_COLUMNS; q++) area[q]! += 0.5 * step * (values[at + q]! + values[at + DAMPED_COLUMNS + q]!);
+    if (half === 0 && values[at + DAMPED_COLUMNS]! < 0.5) half = reach * ((k + 0.5) / NODES) ** 2;
+  }
+  if (half === 0) half = reach;
+  // two steps of Newton from the middle of the step that crosses one half
+  for (let k = 0; k < 2; k++) {
+    pick(picked, values, reach, half);
+    if (picked[1]! < 0) half = Math.min(reach, Math.max(0, half + (0.5 - picked[0]!) / picked[1]!));
+  }
+  pick(picked, values, reach, half);
+  const end = reach * (last / NODES) ** 2;
+  for (let q = 0; q < DAMPED_COLUMNS; q++) if (q !== 1) area[q]! += values[last * DAMPED_COLUMNS + q]! * end;
+  const whole = area[0]!;
+  return {
+    fwhm: 2 * half,
+    area: 2 * whole,
+    byShape: {
+      fwhm: [4, 2, 3].map((q) => (picked[1]! < 0 ? -picked[q]! / (picked[1]! * half) : 0)),
+      area: [4, 2, 3].map((q) => area[q]! / whole),
+    },
+  };
 }
 
 const tables = new WeakMap<DampedShape, DampedTable>();
@@ -83,32 +128,32 @@ const tables = new WeakMap<DampedShape, DampedTable>();
 export function dampedTable(shape: DampedShape): DampedTable {
   let table = tables.get(shape);
   if (!table) {
-    const peak = dampedPeak(shape);
-    const reach = reachOf(shape, peak.norm);
-    const values = new Float64Array((NODES + 2) * COLUMNS);
-    const row = new Float64Array(COLUMNS);
-    for (let k = 0; k < NODES; k++) {
-      exactInto(row, shape, reach * (k / NODES) ** 2, peak);
-      values.set(row, k * COLUMNS);
-    }
+    const reach = reachOf(shape);
+    const values = new Float64Array((NODES + 2) * DAMPED_COLUMNS);
+    formInto(values, shape, reach);
+    if (shape.smear) smearInto(values, shape.smear, reach);
+    normalise(values);
     table = { reach, values, ...extentOf(values, reach) };
     tables.set(shape, table);
   }
   return table;
 }
 
-/** phi and its derivatives with respect to u, ln tau and a, to out[0..3]: linear in the square root of u between nodes, good to 2e-4. */
-export function dampedInto(out: Float64Array, table: DampedTable, u: number): void {
-  const t = NODES * Math.sqrt(u / table.reach);
+function pick(out: Float64Array, values: Float64Array, reach: number, u: number): void {
+  const t = NODES * Math.sqrt(u / reach);
   const k = t | 0;
   if (k >= NODES) {
     out.fill(0);
     return;
   }
   const w = t - k;
-  const at = k * COLUMNS;
-  const { values } = table;
-  for (let q = 0; q < COLUMNS; q++) out[q] = values[at + q]! + w * (values[at + COLUMNS + q]! - values[at + q]!);
+  const at = k * DAMPED_COLUMNS;
+  for (let q = 0; q < DAMPED_COLUMNS; q++) out[q] = values[at + q]! + w * (values[at + DAMPED_COLUMNS + q]! - values[at + q]!);
+}
+
+/** phi and its derivatives (see {@link DAMPED_COLUMNS}) to `out`: linear in the square root of u between nodes, good to 2e-4. */
+export function dampedInto(out: Float64Array, table: DampedTable, u: number): void {
+  pick(out, table.values, table.reach, u);
 }
 
 /** phi alone. */
@@ -116,6 +161,6 @@ export function dampedValue(table: DampedTable, u: number): number {
   const t = NODES * Math.sqrt(u / table.reach);
   const k = t | 0;
   if (k >= NODES) return 0;
-  const a = table.values[k * COLUMNS]!;
-  return a + (t - k) * (table.values[(k + 1) * COLUMNS]! - a);
+  const a = table.values[k * DAMPED_COLUMNS]!;
+  return a + (t - k) * (table.values[(k + 1) * DAMPED_COLUMNS]! - a);
 }

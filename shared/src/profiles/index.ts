@@ -1,3 +1,4 @@
+export * from './smear.js';
 export * from './shapes.js';
 export * from './damped.js';
 export * from './component.js';

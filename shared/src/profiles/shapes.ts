@@ -9,6 +9,8 @@ export interface Shape {
   readonly slope: Float64Array;
   /** table steps per unit of u */
   readonly perUnit: number;
+  /** rotation only: FWHM over v sin i */
+  readonly fwhmPerVsini?: number;
 }
 
 const STEPS = 2048;
@@ -32,7 +34,7 @@ export const GAUSSIAN: Shape = tabulate('gaussian', 1.8, gauss, GAUSSIAN_AREA);
 const LIMB_DARKENING = 0.6; // linear coefficient, common practice for optical spectra of stars
 
 /** Line profile of a rotating sphere with linear limb darkening, argument x = v / (v sin i), unit peak not enforced. */
-function rotationKernel(x: number): number {
+export function rotationKernel(x: number): number {
   const q = 1 - x * x;
   if (q <= 0) return 0;
   return 2 * (1 - LIMB_DARKENING) * Math.sqrt(q) + (Math.PI / 2) * LIMB_DARKENING * q;
@@ -43,7 +45,7 @@ function rotationKernel(x: number): number {
  * @param blur Gaussian sigma of instrument and thermal broadening in units of v sin i; above about 1 the shape is a Gaussian
  */
 export function rotationShape(blur: number): Shape {
-  const s = Math.max(blur, 0.02);
+  const s = Math.max(blur, LEAST_BLUR);
   const points = 201;
   const blurred = (x: number): number => {
     let sum = 0;
@@ -75,5 +77,35 @@ export function rotationShape(blur: number): Shape {
   };
   let area = 0;
   for (let i = 0; i < grid; i++) area += (coarse[i]! + coarse[i + 1]!) * (reach / grid);
-  return tabulate('rotation', reach, interpolate, area);
+  return { ...tabulate('rotation', reach, interpolate, area), fwhmPerVsini: fwhm };
+}
+
+const LEAST_BLUR = 0.02;
+const PER_FOLD = 8; // shapes a factor e of blur
+const held = new Map<number, Shape>();
+
+function shapeOfKey(key: number): Shape {
+  let shape = held.get(key);
+  if (!shape) held.set(key, (shape = rotationShape(Math.exp(key / PER_FOLD))));
+  return shape;
+}
+
+/** Rotation profile of a blur between 0.02 and 1, to an eighth of a fold; each made once. */
+export const rotationOfBlur = (blur: number): Shape => shapeOfKey(Math.round(Math.log(Math.min(Math.max(blur, LEAST_BLUR), 1)) * PER_FOLD));
+
+/**
+ * The profile of a line of given width in a star of given v sin i: what is wider than rotation alone makes it was blurred by heat,
+ * turbulence and the instrument, and looks the more like a Gaussian.
+ * @param fwhmPerVsini FWHM over v sin i
+ */
+export function rotationOfWidth(fwhmPerVsini: number): Shape {
+  let low = Math.round(Math.log(LEAST_BLUR) * PER_FOLD);
+  let high = 0;
+  if (fwhmPerVsini > 1.02 * shapeOfKey(high).fwhmPerVsini!) return GAUSSIAN;
+  while (low < high) {
+    const mid = (low + high) >> 1;
+    if (shapeOfKey(mid).fwhmPerVsini! < fwhmPerVsini) low = mid + 1;
+    else high = mid;
+  }
+  return shapeOfKey(low);
 }
