@@ -1,5 +1,4 @@
-import { fitContinuum, moveContinuum, type ContinuumFit } from './continuum/index.js';
-import { detect, editByHand, type Detection, type EditedByHand, type HandEdits } from './detection/index.js';
+import { detect, editByHand, thin, type Detection, type EditedByHand, type HandEdits } from './detection/index.js';
 import { coverageOf, type FeatureView } from './identify/views.js';
 import { cautionsOf } from './identify/cautions.js';
 import { describe } from './identify/describe.js';
@@ -27,14 +26,15 @@ export function analyse(read: Spectrum, wholeList: LineList, settings: AnalysisS
   const noise = estimateNoise(spectrum);
   const continuum = moveContinuum(fitContinuum(spectrum, noise, settings), spectrum.wavelength, settings.continuumMoves);
   onProgress('noise', 0.15);
-  const data = normalise(spectrum, continuum, noise);
-  const resolution = resolvingPowerOf(spectrum, data);
+  const sampled = normalise(spectrum, continuum, noise);
+  const resolution = resolvingPowerOf(spectrum, sampled);
+  const { data, correlation } = thin(sampled, resolution.value, noise.correlation);
   onProgress('detection', 0.2);
   const placement = placementError(continuum);
   const detection = detect({
     data,
     resolvingPower: resolution.value,
-    correlation: noise.correlation,
+    correlation,
     falseFeatures: settings.falseFeatures,
     continuumSigma: placement,
   });
@@ -68,7 +68,7 @@ export function analyse(read: Spectrum, wholeList: LineList, settings: AnalysisS
     frame: spectrum.frame,
     resolvingPower: resolution.value,
     resolvingPowerHow: resolution.how,
-    snr: medianSnr(data),
+    snr: medianSnr(sampled),
     noiseHow: noise.how,
     continuum: continuum.summary,
     systems: told.systems,

@@ -190,13 +190,7 @@ function residualOf(model: LineModel, continuumSigma: number): NormalisedSamples
  * @param shaded leave corners of broad profiles, and narrow lines on them, for later
  * @param deferred gets those that have to wait until a stronger one beside them is fitted
  */
-function chosen(
-  excesses: readonly Excess[],
-  model: LineModel,
-  threshold: number,
-  shaded: boolean,
-  deferred: Excess[],
-): Excess[] {
+function chosen(excesses: readonly Excess[], model: LineModel, threshold: number, shaded: boolean, deferred: Excess[]): Excess[] {
   const out: Excess[] = [];
   for (const e of excesses) {
     const clash = (centre: number, fwhm: number): boolean => {

@@ -2,6 +2,7 @@ import {
   asDamped,
   chi2Of,
   fitBlend,
+  indexAt,
   GAUSSIAN,
   newComponent,
   rangeOf,
@@ -211,8 +212,8 @@ const SATURATED_START = { tau: 8, a: 1e-3 };
 
 /** Damped profiles to try for a component: as it stands where it is one, else smeared by the star's rotation or by the instrument. */
 function dampedTrials(c: Component, resolvingPower: number, rotation: Rotation | null): Component[] {
-  if (c.damped) return [{ ...c }];
-  if (c.damped) return [{ ...c }];
+  if (c.damped) return [{ ...c }, asDamped(c)];
+  if (c.damped) return [{ ...c }, asDamped(c)];
   if (rotation && c.fwhm / c.centre > 1.3 * rotation.vsini)
     return [asDamped(c, undefined, { kind: 'rotation', nm: rotation.vsini * c.centre })];
   const trials = [asDamped(c)];
@@ -229,7 +230,8 @@ const CROWD_REACH = 1.8; // FWHM
 const LARGEST_CROWD = 6; // refitted together before the comparison
 
 /**
- * One damped profile in place of a crowd of broad components around a strong line, where the data are content with it. Real lines that
+ * One damped profile in place of a crowd of broad components around a strong line, where the data are content with it: where it costs less
+ * chi-square than three parameters a component are worth (Schwarz 1978, Ann. Stat. 6, 461: ln n each). Real lines that
  * go with the crowd stand out again in the next round.
  */
 export function gatherDamped(
@@ -279,7 +281,8 @@ export function gatherDamped(
       const { chi2 } = fitBlend(tolerant, [trial], others, limits, range);
       if (chi2 < alone) [one, alone] = [trial, chi2];
     }
-    if (alone > now + threshold * threshold * crowd.length) continue;
+    const samples = indexAt(tolerant.wavelength, range[1]) - indexAt(tolerant.wavelength, range[0]);
+    if (alone > now + Math.max(threshold * threshold, 3 * Math.log(Math.max(samples, 1))) * crowd.length) continue;
     model.remove(new Set(crowd));
     Object.assign(c, one);
     model.reshaped();

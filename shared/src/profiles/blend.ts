@@ -17,6 +17,8 @@ export interface BlendFit {
 
 const MAX_ITERATIONS = 14;
 const ROUGH_ITERATIONS = 7;
+/** Depth, width and damping of a damped profile stand for each other over some range: the way is longer. */
+const DAMPED_PATIENCE = 2.5;
 const FINE = 1e-3;
 /** Chi-square that a step must gain for the fit to go on, while features are still being found. */
 export const ROUGH = 0.02;
@@ -140,7 +142,8 @@ export function fitBlend(
   let chi2 = accumulate(data, slots, parameters, from, to);
   let end: BlendFit['end'] = 'iteration_limit';
   const rough = precision > FINE;
-  for (let iteration = rough ? ROUGH_ITERATIONS : MAX_ITERATIONS; iteration > 0; iteration--) {
+  const most = (rough ? ROUGH_ITERATIONS : MAX_ITERATIONS) * (parameters > SIMPLE * slots.length ? DAMPED_PATIENCE : 1);
+  for (let iteration = most; iteration > 0; iteration--) {
     if (!solve(parameters, damping)) {
       damping *= 10;
       if (damping < 1e6) continue;
