@@ -1,3 +1,4 @@
+import { fitContinuum, moveContinuum, type ContinuumFit } from './continuum/index.js';
 import { detect, editByHand, thin, type Detection, type EditedByHand, type HandEdits } from './detection/index.js';
 import { coverageOf, type FeatureView } from './identify/views.js';
 import { cautionsOf } from './identify/cautions.js';
