@@ -71,6 +71,22 @@ test('companions are lines of the same target at about the same velocity', async
   expect(await wavelengths('species=Na%20I&withoutSpecies=K%20I')).toEqual([588, 589.5]);
 });
 
+test('a removed spectrum takes its lines out of the search, as rows and as companions, until it is put back', async () => {
+  const other = await newPlace(team, 'Star');
+  await decided(api, team, [line('Na I', 589.1, -12), { ...line('K I', 766.7, -12), ...other }]);
+  const remove = (removed: boolean) =>
+    api
+      .db('spectra')
+      .where({ id: other.spectrumId })
+      .update({ removed_at: removed ? new Date() : null, removed_by: removed ? team.lead.userId : null });
+  await remove(true);
+  expect(await wavelengths('')).toEqual([589.1]);
+  expect(await wavelengths('withSpecies=K%20I')).toEqual([]);
+  await remove(false);
+  expect(await wavelengths('')).toEqual([589.1, 766.7]);
+  expect(await wavelengths('withSpecies=K%20I')).toEqual([589.1]);
+});
+
 test.each(['wavelength', 'velocity', 'width'] as const)(
   'pages by %s neither repeat nor leave out a row, also among equals',
   async (order) => {

@@ -48,6 +48,7 @@ function firstOf(db: Knex, query: PageOf, column: string): Knex.QueryBuilder {
     .select('n.*', db.raw('n.?? as key', [column]))
     .where('n.programme_id', db.ref('m.programme_id'))
     .where('n.state', query.state ?? 'accepted')
+    .whereNotExists(removedSpectrum(db, 'n.spectrum_id'))
     .orderBy(`n.${column}`)
     .orderBy('n.id')
     .limit(query.limit + 1);
@@ -73,12 +74,16 @@ function between(rows: Knex.QueryBuilder, column: string, from: number | undefin
   if (to !== undefined) rows.where(column, '<=', to);
 }
 
+const removedSpectrum = (db: Knex, id: string): Knex.QueryBuilder =>
+  db('spectra as r').select(db.raw('1')).where('r.id', db.ref(id)).whereNotNull('r.removed_at');
+
 const companion = (db: Knex, species: string, nearKmPerS: number): Knex.QueryBuilder =>
   db('identifications as c')
     .select(db.raw('1'))
     .where('c.target_id', db.ref('n.target_id'))
     .where('c.species', species)
     .where('c.state', 'accepted')
+    .whereNotExists(removedSpectrum(db, 'c.spectrum_id'))
     .whereRaw('c.id <> n.id and c.velocity_km_s between n.velocity_km_s - ? and n.velocity_km_s + ?', [nearKmPerS, nearKmPerS]);
 
 const COLUMNS: Record<keyof FoundIdentification, string> = {
