@@ -1,5 +1,5 @@
 import { faddeevaInto } from '../numeric/faddeeva.js';
-import { quadratureOf, smearReach, type Smear } from './smear.js';
+import { quadraturesOf, smearReach, type Smear } from './smear.js';
 
 /**
  * Saturated line with damping wings: phi(u) = F(u) / F(0), F = 1 - exp(-tau H(a, u)), H the Voigt function, u in Doppler widths; F is
@@ -56,26 +56,42 @@ function formInto(values: Float64Array, { tau, a }: DampedShape, reach: number):
   }
 }
 
+/** Beyond so many reaches of the smear a line is smooth on its scale. */
+const FAR = 4;
+
 const formed = new Float64Array((NODES + 2) * DAMPED_COLUMNS);
 const picked = new Float64Array(DAMPED_COLUMNS);
 
-/** `values` smeared, in place: what lies within the smear's reach of each node, weighted. */
+/** `values` smeared, in place: what lies within the smear's reach of each node, weighted. The inner loop is where fits of such lines live. */
 function smearInto(values: Float64Array, smear: Smear, reach: number): void {
   formed.set(values);
-  const { at, weight } = quadratureOf(smear);
+  const { near, far } = quadraturesOf(smear);
+  const farFrom = FAR * smearReach(smear);
   for (let k = 0, row = 0; k < NODES; k++, row += DAMPED_COLUMNS) {
     const u = reach * (k / NODES) ** 2;
-    values.fill(0, row, row + DAMPED_COLUMNS);
+    const { at, weight } = u > farFrom ? far : near;
+    let [f, byU, byTau, byA, byScale] = [0, 0, 0, 0, 0];
     for (let j = 0; j < at.length; j++) {
       const t = u - at[j]! * smear.width;
-      pick(picked, formed, reach, t < 0 ? -t : t);
-      const w = weight[j]!;
-      values[row]! += w * picked[0]!;
-      values[row + 1]! += t < 0 ? -w * picked[1]! : w * picked[1]!;
-      values[row + 2]! += w * picked[2]!;
-      values[row + 3]! += w * picked[3]!;
-      values[row + 4]! += w * picked[4]!;
+      const place = NODES * Math.sqrt(Math.abs(t) / reach);
+      const node = place | 0;
+      if (node >= NODES) continue;
+      const above = weight[j]! * (place - node);
+      const below = weight[j]! - above;
+      const p = node * DAMPED_COLUMNS;
+      const q = p + DAMPED_COLUMNS;
+      f += below * formed[p]! + above * formed[q]!;
+      const slope = below * formed[p + 1]! + above * formed[q + 1]!;
+      byU += t < 0 ? -slope : slope;
+      byTau += below * formed[p + 2]! + above * formed[q + 2]!;
+      byA += below * formed[p + 3]! + above * formed[q + 3]!;
+      byScale += below * formed[p + 4]! + above * formed[q + 4]!;
     }
+    values[row] = f;
+    values[row + 1] = byU;
+    values[row + 2] = byTau;
+    values[row + 3] = byA;
+    values[row + 4] = byScale;
   }
 }
 
