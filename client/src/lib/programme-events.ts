@@ -49,8 +49,9 @@ function applyAnalysis(client: QueryClient, programmeId: string, spectrumId: str
   client.setQueryData(analysisQueries.list(programmeId, spectrumId).queryKey, (old) =>
     old?.map((one) => (one.id === analysis.id ? { ...one, ...analysis } : one)),
   );
-  const known = client.getQueryData(analysisQueries.list(programmeId, spectrumId).queryKey)?.some(({ id }) => id === analysis.id);
-  if (!known) refetch(client, analysisQueries.list(programmeId, spectrumId).queryKey); // its settings are told only there
+  const listed = client.getQueryData(analysisQueries.list(programmeId, spectrumId).queryKey);
+  const isNew = listed !== undefined && !listed.some(({ id }) => id === analysis.id);
+  if (isNew) refetch(client, analysisQueries.list(programmeId, spectrumId).queryKey); // its settings are told only there
   client.setQueryData(analysisQueries.detail(programmeId, analysis.id).queryKey, (old) => old && { ...old, ...analysis });
   if (!ENDED.has(analysis.phase)) return;
   // counts, the strip's continuum and the result came with it
