@@ -11,6 +11,7 @@ import { CONFIG, ConfigModule } from './config/config.module.js';
 import { DatabaseModule } from './database/database.module.js';
 import { AccountsModule } from './modules/accounts/accounts.module.js';
 import { AnalysesModule } from './modules/analyses/analyses.module.js';
+import { CloudsModule } from './modules/clouds/clouds.module.js';
 import { ComparisonsModule } from './modules/comparisons/comparisons.module.js';
 import { AnalysisRecipesModule } from './modules/analysisrecipes/analysis-recipes.module.js';
 import { EventsModule } from './modules/events/events.module.js';
@@ -64,6 +65,7 @@ const ClientModule = ServeStaticModule.forRootAsync({
     SearchModule,
     AnalysesModule,
     ComparisonsModule,
+    CloudsModule,
     AnalysisRecipesModule,
     IdentificationsModule,
     UnplacedModule,

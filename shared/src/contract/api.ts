@@ -207,6 +207,7 @@ export type ProgrammeEvent =
   | { type: 'spectrum'; spectrumId: string; targetId: string }
   | { type: 'analysis_recipes' }
   | { type: 'comparison'; comparisonId: string }
+  | { type: 'cloud'; cloudId: string }
   /** the programme's name, its members or their roles changed */
   | { type: 'programme'; programmeId: string };
 

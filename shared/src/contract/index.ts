@@ -1,4 +1,5 @@
 export * from './api.js';
+export * from './clouds.js';
 export * from './comparisons.js';
 export * from './errors.js';
 export * from './files.js';

@@ -70,6 +70,9 @@ export const apiPaths = {
   comparisonReport: (p: string, c: string) => `/api/programmes/${p}/comparisons/${c}/report.csv`,
   /** `lineKey` already percent-encoded, since keys hold blanks */
   comparisonRuling: (p: string, c: string, lineKey: string) => `/api/programmes/${p}/comparisons/${c}/lines/${lineKey}/ruling`,
+  clouds: (p: string) => `/api/programmes/${p}/clouds`,
+  cloud: (p: string, c: string) => `/api/programmes/${p}/clouds/${c}`,
+  cloudSightline: (p: string, c: string, s: string) => `/api/programmes/${p}/clouds/${c}/sightlines/${s}`,
   receivedMails: '/api/mail/received',
   receivedMail: (m: string) => `/api/mail/received/${m}`,
   searchIdentifications: '/api/search/identifications',

@@ -19,6 +19,8 @@ export async function eventOf(db: Knex, said: Extract<Said, { programmeId: strin
       return { type: 'analysis_recipes' };
     case 'comparison':
       return { type: 'comparison', comparisonId: said.id };
+    case 'cloud':
+      return { type: 'cloud', cloudId: said.id };
     case 'programme':
       return { type: 'programme', programmeId: said.programmeId };
     case 'spectrum': {

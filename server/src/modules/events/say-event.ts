@@ -7,6 +7,7 @@ export type Said =
   | { readonly kind: 'spectrum'; readonly programmeId: string; readonly id: string }
   | { readonly kind: 'analysis_recipes'; readonly programmeId: string }
   | { readonly kind: 'comparison'; readonly programmeId: string; readonly id: string }
+  | { readonly kind: 'cloud'; readonly programmeId: string; readonly id: string }
   /** the name, the members or their roles changed, or the programme was deleted */
   | { readonly kind: 'programme'; readonly programmeId: string }
   | { readonly kind: 'session_ended'; readonly sessionId: string }
