@@ -11,6 +11,8 @@ export const roleReason = (have: MemberRole, need: MemberRole) =>
 interface Props extends ButtonProps {
   have: MemberRole;
   need: MemberRole;
+  /** why it is closed to every role now */
+  closed?: string;
   /** a page to go to, instead of onClick */
   to?: string;
   onClick?: () => void;
@@ -18,9 +20,10 @@ interface Props extends ButtonProps {
 }
 
 /** A button that a role may not use stays in its place, can be reached by keyboard, does nothing, and says why. */
-export function RoleButton({ have, need, to, onClick, children, ...look }: Props) {
+export function RoleButton({ have, need, closed, to, onClick, children, ...look }: Props) {
   const id = useId();
-  if (roleAllows(have, need)) {
+  const reason = roleAllows(have, need) ? closed : roleReason(have, need);
+  if (reason === undefined) {
     return to === undefined ? (
       <Button {...look} onClick={onClick}>
         {children}
@@ -31,7 +34,6 @@ export function RoleButton({ have, need, to, onClick, children, ...look }: Props
       </Button>
     );
   }
-  const reason = roleReason(have, need);
   return (
     <>
       <Tooltip label={reason}>

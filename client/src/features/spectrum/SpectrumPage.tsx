@@ -60,7 +60,7 @@ function Page({ programmeId, spectrumId }: { programmeId: string; spectrumId: st
         <Workbench
           {...{ spectrum, analysis, identifications, settings, steering }}
           data={curve}
-          role={data.isOld ? 'reader' : data.role}
+          role={data.role}
           name={data.name}
           runs={data.runs}
           isOld={data.isOld}

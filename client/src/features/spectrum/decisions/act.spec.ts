@@ -47,6 +47,7 @@ describe('what is not offered', () => {
     expect(refusal('reject', 'accepted', 'lead')).toMatch(/accepted is put back to proposed first/);
     expect(refusal('reopen', 'accepted', 'lead')).toBeNull();
     expect(refusal('propose', 'proposed', 'reader')).toMatch(/analyst/);
+    expect(refusal('accept', 'proposed', 'lead', true)).toMatch(/older run/);
   });
 });
 

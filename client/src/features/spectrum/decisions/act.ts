@@ -35,8 +35,12 @@ export const decisionOf = ({ action, reading, remark }: Act): Decision => ({
   ...(remark ? { remark } : {}),
 });
 
-/** Why an action is not offered; null when it is. */
-export function refusal(action: ReviewAction, state: ReviewState, role: MemberRole | null): string | null {
+/** Why an older run is looked at only. */
+export const OLD_RUN = 'This is an older run: go back to the newest run first.';
+
+/** Why an action is not offered; null when it is. `isOld`: the line belongs to a run that is not the newest. */
+export function refusal(action: ReviewAction, state: ReviewState, role: MemberRole | null, isOld = false): string | null {
+  if (isOld) return OLD_RUN;
   if (role === null) return 'Your role in this programme is not known yet.';
   if (!roleAllows(role, ROLE_FOR[action])) return `This needs the role ${ROLE_FOR[action]}; yours is ${role}.`;
   if (nextState(state, action) === null) return `A line that is ${state} is put back to proposed first.`;

@@ -27,6 +27,8 @@ export interface EvidenceProps {
   display: WavelengthDisplay;
   frameName: string;
   role: MemberRole | null;
+  /** the run on the page is not the newest: nothing is decided on it */
+  isOld: boolean;
   busy: boolean;
   remark: string;
   /** of the input, so that a key can bring the focus there */
@@ -137,15 +139,15 @@ const ACTS: readonly { action: ReviewAction; word: string; key: string; when: (r
 ];
 
 /** Buttons for what can be done now. What the role forbids stays visible, greyed, with the reason. */
-function Acts({ row, chosen, role, busy, onAct }: EvidenceProps) {
+function Acts({ row, chosen, role, isOld, busy, onAct }: EvidenceProps) {
   const offered = ACTS.filter(
     ({ when, action }) =>
-      when(row) && (action !== 'propose' || !sameReading(chosen, row.reading) || refusal('accept', row.state, role) !== null),
+      when(row) && (action !== 'propose' || !sameReading(chosen, row.reading) || refusal('accept', row.state, role, isOld) !== null),
   );
   return (
     <div className={classes.acts}>
       {offered.map(({ action, word, key, main }) => {
-        const why = refusal(action, row.state, role);
+        const why = refusal(action, row.state, role, isOld);
         return (
           <Button
             key={action}

@@ -27,6 +27,7 @@ function panel(parts: Partial<EvidenceProps> = {}) {
     display,
     frameName: 'baryc.',
     role: 'reviewer',
+    isOld: false,
     busy: false,
     remark: '',
     remarkId: 'remark',

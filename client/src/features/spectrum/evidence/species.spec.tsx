@@ -61,7 +61,7 @@ it('says what would settle a reading', () => {
     <EvidencePanel
       {...{ row, ...nothing, chosen: fromCandidate(row.feature.candidates[0]!), analysis: result, analysedAt: null, busy: false }}
       {...{ data: buildCurveData(someSamples(), result.continuum, result.features), display: wavelengthDisplay('nm', 'vacuum') }}
-      {...{ frameName: 'baryc.', role: 'reviewer', remark: '', remarkId: 'remark' }}
+      {...{ frameName: 'baryc.', role: 'reviewer', isOld: false, remark: '', remarkId: 'remark' }}
     />,
   );
   expect(screen.getByText('What would settle it.').parentElement).toHaveTextContent(settle.sentence);

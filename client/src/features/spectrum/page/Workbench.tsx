@@ -59,7 +59,7 @@ interface Props {
 
 /** Curve, lines and evidence, joined by one selection, one view and one set of keys. */
 export function Workbench(props: Props) {
-  const { spectrum, data, analysis, identifications, role, name, settings, steering } = props;
+  const { spectrum, data, analysis, identifications, role, name, settings, steering, isOld } = props;
   const { choice, mode, base, filter, opened } = settings;
   const result = analysis?.result ?? null;
   const rows = useMemo(() => (result ? lineRows(result, identifications) : []), [result, identifications]);
@@ -86,7 +86,7 @@ export function Workbench(props: Props) {
   const { message, say } = useAnnouncer();
   const remarkId = useId();
   const decisions = useDecisions({ programmeId: spectrum.programmeId, spectrumId: spectrum.id, analysisId: analysis?.id ?? '', by: name });
-  const acting = useActing({ selection, decisions, rows, shown, role, display: choice, say });
+  const acting = useActing({ selection, decisions, rows, shown, role, isOld, display: choice, say });
   const { isOpen, open } = steering;
   const onSteer = useCallback(() => open(!isOpen), [isOpen, open]);
   const onKey = useCommands({
@@ -170,6 +170,7 @@ export function Workbench(props: Props) {
       display={choice}
       frameName={FRAME_SHORT[result.frame]}
       role={role}
+      isOld={isOld}
       busy={decisions.pending.has(selected.feature.index)}
       remark={acting.remark}
       remarkId={remarkId}
@@ -185,7 +186,7 @@ export function Workbench(props: Props) {
   return (
     <div style={{ display: 'contents' }} onKeyDown={onUndoKey}>
       <div className={classes.cell}>
-        {analysis && !props.isOld && (
+        {analysis && !isOld && (
           <Unplaced
             programmeId={spectrum.programmeId}
             spectrumId={spectrum.id}
@@ -223,7 +224,7 @@ export function Workbench(props: Props) {
         {message}
       </div>
       <SteeringPanel
-        {...{ steering, analysis, role }}
+        {...{ steering, analysis, role, isOld }}
         programmeId={spectrum.programmeId}
         runs={props.runs}
         display={choice}

@@ -19,6 +19,8 @@ interface Needs {
   rows: readonly LineRow[];
   shown: readonly LineRow[];
   role: MemberRole | null;
+  /** the run on the page is not the newest */
+  isOld: boolean;
   display: WavelengthDisplay;
   say: (sentence: string) => void;
 }
@@ -35,7 +37,7 @@ export interface Acting {
 }
 
 /** Deciding on the chosen line: shown at once, then on to the next undecided one; a remark stays with its line until it was sent. */
-export function useActing({ selection, decisions, rows, shown, role, display, say }: Needs): Acting {
+export function useActing({ selection, decisions, rows, shown, role, isOld, display, say }: Needs): Acting {
   const [remarks, setRemarks] = useState<Readonly<Record<number, string>>>({});
   const { selected, chosen, select } = selection;
   const at = selected?.feature.index ?? -1;
@@ -67,7 +69,7 @@ export function useActing({ selection, decisions, rows, shown, role, display, sa
   const act = useCallback(
     (action: ReviewAction) => {
       if (!selected || !chosen) return;
-      const why = refusal(action, selected.state, role);
+      const why = refusal(action, selected.state, role, isOld);
       if (why) {
         say(why);
         notifications.show({ message: why });
@@ -93,7 +95,7 @@ export function useActing({ selection, decisions, rows, shown, role, display, sa
         },
       );
     },
-    [selected, chosen, role, shown, rows, display, remark, decisions, select, say, undo],
+    [selected, chosen, role, isOld, shown, rows, display, remark, decisions, select, say, undo],
   );
 
   const insist = useCallback(() => {

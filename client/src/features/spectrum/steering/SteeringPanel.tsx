@@ -5,6 +5,7 @@ import { RoleButton } from '../../../components/RoleButton.js';
 import { analysisWords, isAtWork } from '../../../lib/analysis-words.js';
 import { counted } from '../../../lib/number.js';
 import type { WavelengthDisplay } from '../../../lib/wavelength.js';
+import { OLD_RUN } from '../decisions/act.js';
 import { DraftList } from './DraftList.js';
 import { ListChoice } from './ListChoice.js';
 import { PhysicsSection } from './PhysicsSection.js';
@@ -22,6 +23,8 @@ interface Props {
   analysis: AnalysisDetail | null;
   runs: readonly AnalysisRun[];
   role: MemberRole | null;
+  /** the run on the page is not the newest */
+  isOld: boolean;
   display: WavelengthDisplay;
   busy: boolean;
   onRun: () => void;
@@ -83,7 +86,7 @@ export function SteeringPanel(props: Props) {
 }
 
 /** What will change, in words, and the way to it. */
-function Foot({ steering, runs, role, display, busy, onRun }: Props) {
+function Foot({ steering, runs, role, isOld, display, busy, onRun }: Props) {
   const { fresh, gone } = settingsDifference(steering.run, steering.draft, printerFor(display));
   const latest = runs[0] ?? null;
   const atWork = isAtWork(latest);
@@ -104,6 +107,7 @@ function Foot({ steering, runs, role, display, busy, onRun }: Props) {
           <RoleButton
             have={role}
             need="analyst"
+            closed={isOld ? OLD_RUN : undefined}
             variant="filled"
             loading={busy}
             disabled={atWork || steering.problems.length > 0}

@@ -215,7 +215,7 @@ describe('steering', () => {
 
 describe('the runs of a spectrum', () => {
   it('say what each set, how two differ, and open an older one to be read only', async () => {
-    const { panel } = await steer();
+    const { world, panel } = await steer();
     await userEvent.click(panel.getByRole('tab', { name: 'Runs' }));
     const list = within(panel.getByRole('region', { name: 'Runs of this spectrum' }));
     expect(list.getByText(/590.200 nm to 590.400 nm is masked/)).toBeInTheDocument();
@@ -225,6 +225,10 @@ describe('the runs of a spectrum', () => {
     expect(changes).toHaveTextContent('1 gained, 1 lost, 0 read otherwise, 4 as they were.');
     await userEvent.click(list.getByRole('button', { name: 'Open' }));
     expect(await screen.findByText(/An older run, of/)).toBeInTheDocument();
+    const run = panel.getByRole('button', { name: 'Run with these settings' });
+    expect(run).toHaveAccessibleDescription('This is an older run: go back to the newest run first.');
+    await userEvent.click(run);
+    expect(world.sent).toEqual([]);
     await press('Back to the newest run');
     await waitFor(() => expect(screen.queryByText(/An older run, of/)).toBeNull());
   });
