@@ -53,47 +53,44 @@ export function Overview({ data, features, view, display, emission, preview, lab
   const canvas = useCanvas(draw);
   const lanesTop = STRIP_HEIGHT + 5;
   const drawnHeight = lanes.length * LANE_HEIGHT + 3 + CURVE_HEIGHT;
-  const narrow = width < 600;
 
   return (
-    <div
-      className={classes.overview}
-      style={{ marginLeft: narrow ? 0 : 'var(--gutter, 112px)', height: lanesTop + drawnHeight + AXIS_HEIGHT - 2 }}
-      ref={ref}
-    >
-      <LightStrip
-        wavelengthFromNm={whole.fromNm}
-        wavelengthToNm={whole.toNm}
-        low={face?.low ?? NONE}
-        high={face?.high ?? NONE}
-        height={STRIP_HEIGHT}
-        emission={emission}
-        label={label}
-      />
-      {whole.fromNm < UV_NM && (
-        <span className={classes.beyond} style={{ left: 4, height: STRIP_HEIGHT }} aria-hidden="true">
-          <b>UV</b>
-        </span>
-      )}
-      {whole.toNm > IR_NM && (
-        <span className={classes.beyond} style={{ right: 4, height: STRIP_HEIGHT }} aria-hidden="true">
-          <b>IR</b>
-        </span>
-      )}
-      <canvas ref={canvas} className={classes.overviewCurve} style={{ top: lanesTop, height: drawnHeight }} aria-hidden="true" />
-      <div style={{ position: 'absolute', top: lanesTop + drawnHeight }}>
-        {width > 0 && <AxisTicks range={whole} width={width} display={display} spacingPx={82} />}
+    <div className={classes.overviewRoom}>
+      <div className={classes.overview} style={{ height: lanesTop + drawnHeight + AXIS_HEIGHT - 2 }} ref={ref}>
+        <LightStrip
+          wavelengthFromNm={whole.fromNm}
+          wavelengthToNm={whole.toNm}
+          low={face?.low ?? NONE}
+          high={face?.high ?? NONE}
+          height={STRIP_HEIGHT}
+          emission={emission}
+          label={label}
+        />
+        {whole.fromNm < UV_NM && (
+          <span className={classes.beyond} style={{ left: 4, height: STRIP_HEIGHT }} aria-hidden="true">
+            <b>UV</b>
+          </span>
+        )}
+        {whole.toNm > IR_NM && (
+          <span className={classes.beyond} style={{ right: 4, height: STRIP_HEIGHT }} aria-hidden="true">
+            <b>IR</b>
+          </span>
+        )}
+        <canvas ref={canvas} className={classes.overviewCurve} style={{ top: lanesTop, height: drawnHeight }} aria-hidden="true" />
+        <div style={{ position: 'absolute', top: lanesTop + drawnHeight }}>
+          {width > 0 && <AxisTicks range={whole} width={width} display={display} spacingPx={82} />}
+        </div>
+        <div className={classes.lanes} style={{ top: lanesTop - 1 }}>
+          {lanes.map(({ family, word }) => (
+            <div key={family} className={classes.lane}>
+              <Mark family={family} state="accepted" size={11} />
+              {word}
+              <b>{features.filter((f) => f.family === family).length}</b>
+            </div>
+          ))}
+        </div>
+        {width > 0 && <WindowFrame view={view} display={display} width={width} height={lanesTop + drawnHeight} />}
       </div>
-      <div style={{ position: 'absolute', right: '100%', top: lanesTop - 1, width: 100, marginRight: 12 }} hidden={narrow}>
-        {lanes.map(({ family, word }) => (
-          <div key={family} className={classes.lane}>
-            <Mark family={family} state="accepted" size={11} />
-            {word}
-            <b>{features.filter((f) => f.family === family).length}</b>
-          </div>
-        ))}
-      </div>
-      {width > 0 && <WindowFrame view={view} display={display} width={width} height={lanesTop + drawnHeight} />}
     </div>
   );
 }

@@ -1,8 +1,11 @@
 import { ActionIcon, AppShell } from '@mantine/core';
 import { IconSearch } from '@tabler/icons-react';
+import { useQuery } from '@tanstack/react-query';
 import { useEffect, useRef } from 'react';
 import { Link, Outlet, ScrollRestoration, useLocation, useParams } from 'react-router-dom';
+import { ApiError } from '../../lib/api-error.js';
 import { pagePaths } from '../../lib/paths.js';
+import { programmeQueries } from '../../lib/queries/programmes.js';
 import { useProgrammeEvents } from '../../lib/useProgrammeEvents.js';
 import { AccountMenu } from './AccountMenu.js';
 import { Brand } from './Brand.js';
@@ -17,6 +20,7 @@ import { SignInAgain } from './SignInAgain.js';
 export function Shell() {
   const { programmeId } = useParams();
   const liveness = useProgrammeEvents(programmeId);
+  const isGone = useIsGone(programmeId);
   const main = useFocusOnNewPage();
   return (
     <AppShell header={{ height: 44 }} padding={0}>
@@ -34,13 +38,19 @@ export function Shell() {
         <Pending />
       </AppShell.Header>
       <AppShell.Main id="content" ref={main} tabIndex={-1} className={classes.page}>
-        <ConnectionNote liveness={liveness} />
+        <ConnectionNote liveness={isGone ? 'live' : liveness} />
         <Outlet />
       </AppShell.Main>
       <SignInAgain />
       <ScrollRestoration />
     </AppShell>
   );
+}
+
+/** Whether the page under the bar already says that there is no such programme: its stream is refused, not cut. Asks nothing itself. */
+function useIsGone(programmeId = ''): boolean {
+  const { error } = useQuery({ ...programmeQueries.detail(programmeId), enabled: false });
+  return error instanceof ApiError && error.code === 'not_found';
 }
 
 function FindLines() {

@@ -44,6 +44,10 @@ export function useTrail({ programmeId = '', targetId, spectrumId }: Readonly<Pa
   if (pathname.startsWith(comparisons)) trail.push({ label: 'Comparisons', to: comparisons, what: '', others: [] });
   const recipes = pagePaths.recipes(programmeId);
   if (pathname === recipes) trail.push({ label: 'Reading recipes', to: recipes, what: '', others: [] });
+  const lineLists = pagePaths.lineLists(programmeId);
+  if (pathname.startsWith(lineLists)) trail.push({ label: 'Line lists', to: lineLists, what: '', others: [] });
+  const members = pagePaths.members(programmeId);
+  if (pathname === members) trail.push({ label: 'Members', to: members, what: '', others: [] });
   if (target && spectrumId && pathname === pagePaths.file(programmeId, spectrumId))
     trail.push({ label: 'File', to: pathname, what: '', others: [] });
   return trail;
