@@ -48,9 +48,10 @@ it('gives every equivalent width to 1e-4, from the thin limit to the square-root
   for (const c of cases) expect(Math.abs(absorbedWidth(line(c.line), 10 ** c.log10_N_cm2, c.b_km_s) / c.EW_nm - 1)).toBeLessThan(1e-4);
 });
 
-it('gives them to 3e-3 from a table', () => {
+// straight lines between the table's rows: at most 1.4e-3 too wide, where the damping wings of a saturated line take over
+it('gives them to 2e-3 from a table', () => {
   for (const c of of<Case>('cog'))
-    expect(Math.abs(tabledWidth(line(c.line), 10 ** c.log10_N_cm2, c.b_km_s) / c.EW_nm - 1)).toBeLessThan(3e-3);
+    expect(Math.abs(tabledWidth(line(c.line), 10 ** c.log10_N_cm2, c.b_km_s) / c.EW_nm - 1)).toBeLessThan(2e-3);
 });
 
 it('turns the width of a thin line into its column', () => {

@@ -38,7 +38,7 @@ export function compareRuns(before: Pick<Analysis, 'features'>, after: Pick<Anal
   };
 }
 
-/** Features of both, nearest first, each once; both lists ascend in wavelength. */
+/** Features of both, each once, the nearest two together; in and out, all ascend in wavelength. */
 function pairsOf(before: readonly Feature[], after: readonly Feature[]): [Feature, Feature][] {
   const near: { a: Feature; b: Feature; distance: number }[] = [];
   let start = 0;
@@ -57,5 +57,5 @@ function pairsOf(before: readonly Feature[], after: readonly Feature[]): [Featur
     taken.add(a).add(b);
     pairs.push([a, b]);
   }
-  return pairs;
+  return pairs.sort(([p], [q]) => p.wavelengthNm - q.wavelengthNm);
 }
