@@ -56,7 +56,7 @@ export interface VerdictRuling {
   history: { verdict: Verdict | null; remark: string; by: string; at: Iso }[];
 }
 
-/** POST comparisons. Re-run is the same address below the comparison, with settings alone. */
+/** POST comparisons. Re-run is the address below the comparison, with settings and name alone; what is left out stays as it was. */
 export interface NewComparison {
   spectrumA: string;
   spectrumB: string;
@@ -64,6 +64,7 @@ export interface NewComparison {
   settings?: Partial<ComparisonSettings>;
 }
 export interface ComparisonRerun {
+  name?: string;
   settings?: Partial<ComparisonSettings>;
 }
 

@@ -13,6 +13,7 @@ import { comparisonQueries, deleteComparison, rerunComparison } from '../../lib/
 import { programmeQueries, targetQueries } from '../../lib/queries/programmes.js';
 import classes from './comparison.module.css';
 import { saveFigure } from './export-figure.js';
+import { SettingsPanel } from './SettingsPanel.js';
 import { Sightlines } from './Sightlines.js';
 
 /** Two sightlines side by side. Its address is what one shares. */
@@ -42,6 +43,7 @@ export function ComparisonPage() {
       />
       <div className={classes.page}>
         <Notes programmeId={programmeId} comparison={comparison} />
+        <SettingsPanel key={`settings of ${comparison.id}`} programmeId={programmeId} comparison={comparison} role={programme.role} />
         {comparison.result && a && b && (
           <Sightlines key={comparison.id} programmeId={programmeId} role={programme.role} comparison={comparison} a={a} b={b} />
         )}
@@ -144,7 +146,7 @@ function Notes({ programmeId, comparison: c }: { programmeId: string; comparison
   return (
     <>
       {(c.phase === 'QUEUED' || c.phase === 'EXECUTING') && (
-        <p role="status">Being compared; this page shows the result when it is there.</p>
+        <p role="status">Being compared; this page shows the result when it is there. Delete, above, stops it.</p>
       )}
       {c.phase === 'ERROR' && <p role="alert">{c.error} Compare again, above.</p>}
       {c.supersededBy && (

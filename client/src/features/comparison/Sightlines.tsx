@@ -4,13 +4,14 @@ import type { ComparisonDetail, MemberRole, SpectrumSummary, VelocityProfile } f
 import { useMemo, useState } from 'react';
 import { Link } from 'react-router-dom';
 import { usePalette } from '../../plot/palette.js';
-import { fixed, percent, signed } from '../../lib/number.js';
+import { counted, fixed, percent, signed } from '../../lib/number.js';
 import { pagePaths } from '../../lib/paths.js';
 import { CloudColumns } from './CloudColumns.js';
 import classes from './comparison.module.css';
 import { Profiles, type VelocityWindow } from './Profiles.js';
 import { Ruling } from './Ruling.js';
 import { Veil } from './Veil.js';
+import { stackOf, toggled } from './stack.js';
 import { VerdictTable, type Filter } from './VerdictTable.js';
 import { judgedLines, lineName, VERDICT_WORD, type JudgedLine } from './verdicts.js';
 
@@ -35,6 +36,9 @@ export function Sightlines({ programmeId, role, comparison, a, b }: Props) {
   const [filter, setFilter] = useState<Filter>({ verdict: 'all', family: 'interstellar' });
   const clouds = result.clouds;
   const [picked, setPicked] = useState<number | null>(null);
+  const [stack, setStack] = useState<ReadonlySet<string>>(new Set());
+  const [layout, setLayout] = useState<Layout>('panels');
+  const drawn = useMemo(() => new Set(result.profiles.map((p) => p.lineId)), [result.profiles]);
   const line = lines.find((l) => l.key === chosen) ?? null;
   const cloud =
     picked ??
@@ -53,7 +57,16 @@ export function Sightlines({ programmeId, role, comparison, a, b }: Props) {
       <p className={classes.teach}>
         Each thread crosses the axis at its line’s measured velocity; where threads from both sides meet, the gas is shared.
       </p>
-      <VelocityPart comparison={comparison} line={line} lines={lines} onChoose={setChosen} />
+      <VelocityPart
+        comparison={comparison}
+        line={line}
+        lines={lines}
+        onChoose={setChosen}
+        layout={layout}
+        onLayout={setLayout}
+        stack={stack}
+        onClear={() => setStack(new Set())}
+      />
       <div className={classes.low}>
         <VerdictTable
           lines={lines}
@@ -61,6 +74,9 @@ export function Sightlines({ programmeId, role, comparison, a, b }: Props) {
           onFilter={setFilter}
           chosen={chosen}
           onChoose={(key) => (setPicked(null), setChosen(key))}
+          drawn={drawn}
+          stack={stack}
+          onStack={(lineId) => (setStack(toggled(stack, lineId)), setLayout('stack'))}
         />
         <div className={classes.side}>
           {clouds.length > 0 && (
@@ -75,7 +91,8 @@ export function Sightlines({ programmeId, role, comparison, a, b }: Props) {
             <CloudColumns cloud={clouds[cloud]} />
           ) : (
             <p className={classes.note}>
-              Neither spectrum shows a cloud. Name its velocity in the settings and compare again to get limits.
+              Neither spectrum shows a cloud. Name its velocity under Settings, above, as one of more clouds, and compare again to get
+              limits.
             </p>
           )}
           {line && <Ruling programmeId={programmeId} comparisonId={comparison.id} role={role} line={line} />}
@@ -101,17 +118,25 @@ function VelocityPart({
   line,
   lines,
   onChoose,
+  layout,
+  onLayout,
+  stack,
+  onClear,
 }: {
   comparison: ComparisonDetail;
   line: JudgedLine | null;
   lines: readonly JudgedLine[];
   onChoose: (key: string) => void;
+  layout: Layout;
+  onLayout: (layout: Layout) => void;
+  /** lines that stand one above the other; empty: all */
+  stack: ReadonlySet<string>;
+  onClear: () => void;
 }) {
   const result = comparison.result!;
   const whole = useMemo(() => wholeWindow(comparison), [comparison]);
   const [window, setWindow] = useState<VelocityWindow>(whole);
   const [cursor, setCursor] = useState<number | null>(null);
-  const [layout, setLayout] = useState<Layout>('panels');
   const [which, setWhich] = useState<Which>('ab');
   const profiles = useMemo(() => ordered(result.profiles, line), [result.profiles, line]);
   if (profiles.length === 0) return null;
@@ -131,7 +156,7 @@ function VelocityPart({
         <NativeSelect
           aria-label="Arrangement"
           value={layout}
-          onChange={(e) => setLayout(e.currentTarget.value as Layout)}
+          onChange={(e) => onLayout(e.currentTarget.value as Layout)}
           data={[
             { value: 'panels', label: 'Side by side' },
             { value: 'stack', label: 'One above the other' },
@@ -150,6 +175,7 @@ function VelocityPart({
         <Button onClick={() => zoom(0.5)}>Closer</Button>
         <Button onClick={() => zoom(2)}>Wider</Button>
         <Button onClick={() => setWindow(whole)}>All</Button>
+        {layout === 'stack' && stack.size > 0 && <Button onClick={onClear}>Stack every line, not {counted(stack.size, 'line')}</Button>}
         <p className={classes.read}>
           {line && <b>{lineName(line)}</b>}{' '}
           {cursor === null ? `${fixed(window.from, 0)} to ${fixed(window.to, 0)} km/s` : `${signed(cursor, 1)} km/s`}
@@ -157,7 +183,7 @@ function VelocityPart({
       </div>
       <Profiles
         result={result}
-        profiles={layout === 'panels' ? profiles.slice(0, MOST_PANELS) : profiles}
+        profiles={layout === 'panels' ? profiles.slice(0, MOST_PANELS) : stackOf(profiles, stack)}
         sides={which === 'ab' ? ['a', 'b'] : [which]}
         window={window}
         chosenLine={line?.lineId ?? null}

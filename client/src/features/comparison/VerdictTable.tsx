@@ -1,6 +1,6 @@
 import { NativeSelect } from '@mantine/core';
 import { VERDICTS, type Family, type Verdict } from '@foreveil/shared';
-import { useRef, type KeyboardEvent } from 'react';
+import { useRef, type KeyboardEvent, type ReactNode } from 'react';
 import { Mark } from '../../plot/Mark.js';
 import { errorParts, MILLIANGSTROM_PER_NM, NO_NUMBER } from '../../lib/number.js';
 import classes from './comparison.module.css';
@@ -20,19 +20,24 @@ interface Props {
   onFilter: (filter: Filter) => void;
   chosen: string | null;
   onChoose: (key: string) => void;
+  /** lines whose profiles can be drawn, and those that stand in the stack */
+  drawn: ReadonlySet<string>;
+  stack: ReadonlySet<string>;
+  onStack: (lineId: string) => void;
 }
 
 const MOST_ROWS = 400;
 
 /** Every line with its verdict. Arrow keys go from line to line; the chosen one is shown everywhere on the page. */
-export function VerdictTable({ lines, filter, onFilter, chosen, onChoose }: Props) {
+export function VerdictTable({ lines, filter, onFilter, chosen, onChoose, drawn, stack, onStack }: Props) {
   const rows = filtered(lines, filter).slice(0, MOST_ROWS);
   const body = useRef<HTMLTableSectionElement>(null);
   const onKeyDown = (event: KeyboardEvent) => {
+    const at = rows.findIndex((r) => r.key === chosen);
+    if (event.key === 's' && rows[at] && drawn.has(rows[at].lineId)) return onStack(rows[at].lineId);
     const step = { ArrowDown: 1, j: 1, ArrowUp: -1, k: -1 }[event.key];
     if (!step || !rows.length) return;
     event.preventDefault();
-    const at = rows.findIndex((r) => r.key === chosen);
     const next = rows[Math.min(rows.length - 1, Math.max(0, at + step))]!;
     onChoose(next.key);
     body.current?.querySelector<HTMLElement>(`[data-key="${CSS.escape(next.key)}"]`)?.scrollIntoView({ block: 'nearest' });
@@ -63,11 +68,18 @@ export function VerdictTable({ lines, filter, onFilter, chosen, onChoose }: Prop
         </p>
       </div>
       {/* the whole table takes the focus, so that arrow keys go from line to line in it */}
-      <div className={classes.scroll} tabIndex={0} onKeyDown={onKeyDown} role="group" aria-label="Lines; arrow keys choose one">
+      <div
+        className={classes.scroll}
+        tabIndex={0}
+        onKeyDown={onKeyDown}
+        role="group"
+        aria-label="Lines; arrow keys choose one, s puts it into the stack"
+      >
         <table>
           <thead>
             <tr>
               <th scope="col">Line, nm</th>
+              <th scope="col">Stack</th>
               <th scope="col">W in A, mÅ</th>
               <th scope="col">W in B, mÅ</th>
               <th scope="col">B / A</th>
@@ -80,7 +92,17 @@ export function VerdictTable({ lines, filter, onFilter, chosen, onChoose }: Prop
           </thead>
           <tbody ref={body}>
             {rows.map((l) => (
-              <Row key={l.key} line={l} chosen={l.key === chosen} onChoose={onChoose} />
+              <Row key={l.key} line={l} chosen={l.key === chosen} onChoose={onChoose}>
+                {drawn.has(l.lineId) && (
+                  <input
+                    type="checkbox"
+                    aria-label={`${lineName(l)} into the stack of profiles`}
+                    checked={stack.has(l.lineId)}
+                    onChange={() => onStack(l.lineId)}
+                    onClick={(e) => e.stopPropagation()}
+                  />
+                )}
+              </Row>
             ))}
           </tbody>
         </table>
@@ -90,7 +112,14 @@ export function VerdictTable({ lines, filter, onFilter, chosen, onChoose }: Prop
   );
 }
 
-function Row({ line, chosen, onChoose }: { line: JudgedLine; chosen: boolean; onChoose: (key: string) => void }) {
+interface RowProps {
+  line: JudgedLine;
+  chosen: boolean;
+  onChoose: (key: string) => void;
+  children: ReactNode;
+}
+
+function Row({ line, chosen, onChoose, children }: RowProps) {
   return (
     <tr data-key={line.key} aria-current={chosen || undefined} onClick={() => onChoose(line.key)}>
       <th scope="row">
@@ -99,6 +128,7 @@ function Row({ line, chosen, onChoose }: { line: JudgedLine; chosen: boolean; on
           {lineName(line)}
         </button>
       </th>
+      <td>{children}</td>
       <Width m={line.a} />
       <Width m={line.b} />
       <Num value={line.ratio} sigma={line.ratioSigma} />

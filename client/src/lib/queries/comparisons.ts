@@ -26,8 +26,8 @@ export const comparisonQueries = {
 
 export const createComparison = (programmeId: string, made: NewComparison) =>
   http.post<ComparisonSummary>(apiPaths.comparisons(programmeId), made);
-export const rerunComparison = (programmeId: string, id: string, settings: Partial<ComparisonSettings>) =>
-  http.post<ComparisonSummary>(apiPaths.comparisonRerun(programmeId, id), { settings });
+export const rerunComparison = (programmeId: string, id: string, settings: Partial<ComparisonSettings>, name?: string) =>
+  http.post<ComparisonSummary>(apiPaths.comparisonRerun(programmeId, id), { settings, name });
 /** @param version that was seen; a 412 tells that a teammate changed it */
 export const deleteComparison = (programmeId: string, id: string, version: number) =>
   http.delete(apiPaths.comparison(programmeId, id), { ifMatch: version });

@@ -51,14 +51,15 @@ export class ComparisonsService {
     return asMember(this.db, actor, scope.programmeId, 'analyst', (trx) => this.queue(trx, actor, scope, wanted));
   }
 
-  rerun(actor: Actor, scope: Scope, id: string, { settings }: ComparisonRerun): Promise<ComparisonSummary> {
+  rerun(actor: Actor, scope: Scope, id: string, asked: ComparisonRerun): Promise<ComparisonSummary> {
     return asMember(this.db, actor, scope.programmeId, 'analyst', async (trx) => {
       const before = await lockComparison(trx, scope, id);
       if (!before) throw notFound();
       if (before.phase === 'QUEUED' || before.phase === 'EXECUTING')
         throw new DomainError('bad_transition', 'This comparison is still at work. Wait for it before comparing again.');
-      const { name, spectrumA, spectrumB } = before;
-      const wanted = { name, spectrumA, spectrumB, settings: { ...before.settings, ...onlySet(settings ?? {}) }, supersedes: id };
+      const { spectrumA, spectrumB } = before;
+      const name = asked.name ?? before.name;
+      const wanted = { name, spectrumA, spectrumB, settings: { ...before.settings, ...onlySet(asked.settings ?? {}) }, supersedes: id };
       return this.queue(trx, actor, scope, wanted);
     });
   }

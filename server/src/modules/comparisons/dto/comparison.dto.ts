@@ -74,6 +74,14 @@ export class ComparisonRerunDto implements ComparisonRerun {
   @ValidateNested()
   @Type(() => ComparisonSettingsDto)
   settings?: ComparisonSettingsDto;
+
+  @ApiProperty({ required: false, minLength: 1, maxLength: 200 })
+  @Tidy()
+  @Omittable()
+  @IsString()
+  @MinLength(1)
+  @MaxLength(200)
+  name?: string;
 }
 
 export class NewComparisonDto extends ComparisonRerunDto implements NewComparison {
@@ -84,14 +92,6 @@ export class NewComparisonDto extends ComparisonRerunDto implements NewCompariso
   @ApiProperty({ format: 'uuid' })
   @IsUUID()
   spectrumB!: string;
-
-  @ApiProperty({ required: false, minLength: 1, maxLength: 200 })
-  @Tidy()
-  @Omittable()
-  @IsString()
-  @MinLength(1)
-  @MaxLength(200)
-  name?: string;
 }
 
 export class RulingDto implements NewRuling {
