@@ -121,7 +121,10 @@ test('serves on after the database cut all its connections', async () => {
 
 test('logs who did what, one JSON line each, and no secret', async () => {
   const cookie = await signIn();
-  await fetch(`${url}${apiPaths.me}`, { headers: { Cookie: cookie, Authorization: 'Bearer canary-bearer-5521' } });
+  await fetch(`${url}${apiPaths.me}`, { headers: { Cookie: cookie } });
+  // a token in the header counts, whatever the cookie says
+  const unknown = await fetch(`${url}${apiPaths.me}`, { headers: { Cookie: cookie, Authorization: 'Bearer canary-bearer-5521' } });
+  expect(unknown.status).toBe(401);
   await fetch(`${url}${apiPaths.signIn}`, {
     method: 'POST',
     headers: { 'Content-Type': 'application/json', 'X-Foreveil': '1' },
@@ -130,7 +133,7 @@ test('logs who did what, one JSON line each, and no secret', async () => {
   await fetch(`${url}/api/nowhere%0a{"level":60}`);
   const logged = () => log.join('').split('\n').filter(Boolean);
   await until(
-    () => logged().filter((line) => line.includes('"statusCode"')).length >= 4,
+    () => logged().filter((line) => line.includes('"statusCode"')).length >= 5,
     5_000,
     () => log.join(''),
   );

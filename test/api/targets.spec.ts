@@ -22,7 +22,7 @@ test('whoever starts a programme leads it, and nobody else sees it', async () =>
   const programme = made.body as Programme;
   expect(programme).toEqual({
     ...{ id: programme.id, name: 'Dust  lanes', description: 'Rims.', simulated: false, role: 'lead' },
-    ...{ targets: 0, spectra: 0, accepted: 0, open: 0 },
+    ...{ targets: 0, spectra: 0, accepted: 0, open: 0, version: 1 },
     members: [{ userId: founder.userId, name: founder.name, role: 'lead' }],
   });
   const { members: _, ...summary } = programme;
