@@ -203,3 +203,21 @@ describe('odd spectra', () => {
     expect(summary.sampleNm).toHaveLength(summary.sampleFlux.length);
   });
 });
+
+describe('flux that the file states as uncalibrated', () => {
+  const { spectrum } = noisySpectrum({ ...RECIPE, signalToNoise: 500 });
+
+  it('gives a temperature that describes the shape only, on the same level', () => {
+    const [relative, uncalibrated] = (['relative', 'uncalibrated'] as const).map((fluxCalibration) =>
+      fit({ ...spectrum, fluxCalibration }),
+    );
+    expect(relative!.summary.statement).not.toMatch(/uncalibrated/);
+    expect(relative!.summary.constrained).toBe(true);
+    expect(uncalibrated!.summary).toMatchObject({
+      ...{ constrained: false, lowerBoundK: null, upperBoundK: null },
+      temperatureK: relative!.summary.temperatureK,
+      statement: expect.stringMatching(/states its flux as uncalibrated: .* the shape of the curve only/) as string,
+    });
+    expect(uncalibrated!.level).toEqual(relative!.level);
+  });
+});

@@ -14,7 +14,7 @@ import { refine, type Refined } from './refine.js';
 import { ANY_SHAPE, calibratedOver } from './robust-fit.js';
 import { LN_PER_MAG, makeSmoothModel } from './smooth-model.js';
 import { looksNormalised, startPlanck, startValues, type PlanckStart, type Start } from './start.js';
-import { verdictOn, type Verdict } from './statement.js';
+import { asShapeOnly, verdictOn, type Verdict } from './statement.js';
 import { judgeTemperature } from './temperature.js';
 
 /** Chebyshev orders of the smooth part: features narrower than about a twentieth of the range do not pull it. */
@@ -85,7 +85,8 @@ function fitPlanckModel(
   const extinction = given === null ? beliefInExtinction(spectrum, refined.space, placement) : NO_EXTINCTION;
   const belief = judgeTemperature(blocks, model, refined, extinction, known);
   const verdict = verdictOn(belief, quality, { fromNm: blocks.edgeNm[0]!, toNm: blocks.edgeNm[blocks.count]!, givenAv: given });
-  return assemble('planck', refined, blocks, quality, placement, verdict);
+  const trusted = spectrum.fluxCalibration === 'uncalibrated' ? asShapeOnly(verdict) : verdict;
+  return assemble('planck', refined, blocks, quality, placement, trusted);
 }
 
 const givenTemperature = (temperatureK: number): Verdict => ({

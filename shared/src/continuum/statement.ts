@@ -102,6 +102,15 @@ function cautionsFor(temperatureK: number, { fromNm, toNm }: FittedRange): strin
   return cautions;
 }
 
+/** The same temperature where the file says that its flux was never calibrated: told as the shape of a curve, trusted for nothing. */
+export function asShapeOnly(verdict: Verdict): Verdict {
+  const { temperatureK } = verdict;
+  if (temperatureK === null) return verdict;
+  const said =
+    'The file states its flux as uncalibrated: the temperature describes the shape of the curve only and is not that of the source.';
+  return { ...verdict, constrained: false, statement: said, lowerBoundK: null, upperBoundK: null };
+}
+
 /** A temperature rounded to two digits of its error. */
 function kelvin(value: number, sigma: number): string {
   const step = 10 ** Math.max(0, Math.floor(Math.log10(Math.max(1, sigma))) - 1);
