@@ -50,8 +50,28 @@ export async function down(db: Knex): Promise<void> {
     t.dropColumn('reading_revision');
   });
   await db.raw('drop index spectra_file_once');
+  await deleteSecondCopies(db);
   await db.schema.alterTable('spectra', (t) => {
     t.dropColumns('version', 'reading_revision', 'recipe_name', 'removed_at', 'removed_by');
     t.unique(['programme_id', 'sha256'], { indexName: 'spectra_file_once' });
   });
+}
+
+/**
+ * Without removals a file is there once: of several copies the one that is not removed stays, else the last one that was. The others go, with
+ * their decisions and the history of these, which otherwise only grows.
+ */
+async function deleteSecondCopies(db: Knex): Promise<void> {
+  await db.raw(`
+    create temporary table second_copies on commit drop as
+    select id from (
+      select id, row_number() over (partition by programme_id, sha256 order by removed_at desc nulls first, id) as copy from spectra
+    ) as copies where copy > 1`);
+  await db.raw('alter table identification_events disable trigger identification_events_only_grow');
+  await db.raw(`
+    delete from identification_events where identification_id in
+      (select id from identifications where spectrum_id in (select id from second_copies))`);
+  await db.raw('alter table identification_events enable trigger identification_events_only_grow');
+  await db.raw('delete from identifications where spectrum_id in (select id from second_copies)');
+  await db.raw('delete from spectra where id in (select id from second_copies)');
 }

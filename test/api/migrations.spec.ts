@@ -22,6 +22,13 @@ async function shapeOf(db: Knex): Promise<string[]> {
   return rows.map(({ thing }) => thing).filter((thing) => !thing.includes('knex_migrations'));
 }
 
+const spectrumRow = (changes: object = {}) => ({
+  ...{ label: 's', file_name: 's.csv', size_bytes: 3, sha256: 'a'.repeat(64), points: 2, from_nm: 500, to_nm: 501 },
+  ...{ flux_kind: 'unknown', frame: 'unknown', reading: '{}', corrections: '{}', original: Buffer.from('abc') },
+  ...{ wavelength: Buffer.alloc(16), flux: Buffer.alloc(16), bad: Buffer.alloc(2), ...changes },
+});
+const analysisRow = (changes: object = {}) => ({ settings: '{}', program_version: '0', ...changes });
+
 async function withDatabase(database: TestDatabase, work: (db: Knex) => Promise<void>): Promise<void> {
   const db = createKnex(database.url, { pool: 2 });
   try {
@@ -44,6 +51,30 @@ test('run up, down and up again, and end where they were', async () => {
     expect(await shapeOf(db)).toEqual([]);
     await command(database.url, 'migrate');
     expect(await shapeOf(db)).toEqual(first);
+  });
+});
+
+test('run down although a removed spectrum was uploaded again and has decisions', async () => {
+  const database = await makeDatabase();
+  await withDatabase(database, async (db) => {
+    const one = async (table: string, values: object) => (await db(table).insert(values).returning<{ id: string }[]>('id'))[0]!.id;
+    const user = await one('users', { email: 'a@example.org', name: 'A', password_hash: '-' });
+    const programme = await one('programmes', { name: 'P', created_by: user });
+    const target = await one('targets', { programme_id: programme, name: 'T', kind: 'star', created_by: user });
+    const file = { programme_id: programme, target_id: target, created_by: user };
+    const removed = await one('spectra', spectrumRow({ ...file, removed_at: new Date(), removed_by: user }));
+    await one('spectra', spectrumRow(file));
+    const list = (await db('line_lists').first<{ id: string }>('id')).id;
+    await one('analyses', analysisRow({ programme_id: programme, spectrum_id: removed, line_list_id: list, requested_by: user }));
+    const decision = await one('identifications', {
+      ...{ programme_id: programme, target_id: target, spectrum_id: removed, line_list_id: list, kind: 'dip', flags: [] },
+      ...{ wavelength_nm: 500, wavelength_sigma_nm: 0.001, equivalent_width_nm: 0.01, equivalent_width_sigma_nm: 0.001, fwhm_nm: 0.01 },
+      ...{ depth: 0.4, snr: 100, probability: 0.9, state: 'accepted', decided_by: user },
+    });
+    await db('identification_events').insert({
+      ...{ identification_id: decision, user_id: user, action: 'accept', from_state: 'none', to_state: 'accepted', reading: 'none' },
+    });
+    expect(await command(database.url, 'rollback')).toBe(`${FILES.length} migrations rolled back\n`);
   });
 });
 
@@ -81,12 +112,6 @@ describe('the tables refuse', () => {
     await database.drop();
   });
 
-  const spectrumRow = (changes: object = {}) => ({
-    ...{ label: 's', file_name: 's.csv', size_bytes: 3, sha256: 'a'.repeat(64), points: 2, from_nm: 500, to_nm: 501 },
-    ...{ flux_kind: 'unknown', frame: 'unknown', reading: '{}', corrections: '{}', original: Buffer.from('abc') },
-    ...{ wavelength: Buffer.alloc(16), flux: Buffer.alloc(16), bad: Buffer.alloc(2), ...changes },
-  });
-  const analysisRow = (changes: object = {}) => ({ settings: '{}', program_version: '0', ...changes });
   const ours = () => ({ programme_id: ids.programme, target_id: ids.target, created_by: ids.user, sha256: 'b'.repeat(64) });
   const featureRow = () => ({
     ...{ analysis_id: ids.analysis, feature_index: 0, kind: 'dip', wavelength_nm: 500, wavelength_sigma_nm: 0, equivalent_width_nm: -1 },
