@@ -10,6 +10,7 @@ import {
   type SpectrumDetail,
   type Target,
 } from '@foreveil/shared';
+import { purgeRemovedSpectra } from '../../server/src/modules/spectra/purge-removed.js';
 import { analysisOf, complete, feature } from '../support/api/analyses.js';
 import { startApi, type Api } from '../support/api/api.js';
 import { makeTeam, type Person, type Team } from '../support/api/person.js';
@@ -186,6 +187,32 @@ describe('a removed spectrum', () => {
     expect(again.status).toBe(201);
     const answer = await restore(team.analyst, spectrum.id);
     expect([answer.status, (answer.body as Problem).code]).toEqual([409, 'duplicate_spectrum']);
+  });
+
+  test('goes for good after 30 days with its decisions, not before, and only the trail stays', async () => {
+    const [gone, kept, present] = [await decidedSpectrum(), await decidedSpectrum(), await decidedSpectrum()];
+    for (const [spectrum, days] of [
+      [gone, 30.01],
+      [kept, 29.9],
+    ] as const) {
+      expect((await remove(team.lead, spectrum)).status).toBe(204);
+      const removedAt = api.db.raw(`now() - ? * interval '1 day'`, [days]);
+      await api.db('spectra').where({ id: spectrum.id }).update({ removed_at: removedAt });
+    }
+    expect(await purgeRemovedSpectra(api.db)).toBe(1);
+    expect(await purgeRemovedSpectra(api.db)).toBe(0);
+    const ids = (table: string, column: string) => api.db(table).where({ programme_id: team.programmeId }).distinct(column).pluck(column);
+    for (const [table, column] of [
+      ['spectra', 'id'],
+      ['analyses', 'spectrum_id'],
+      ['identifications', 'spectrum_id'],
+    ] as const)
+      expect((await ids(table, column)).sort()).toEqual([kept.id, present.id].sort());
+    expect((await restore(team.lead, gone.id)).status).toBe(404);
+    expect((await restore(team.lead, kept.id)).status).toBe(200);
+    const trail = await api.db('audit').where({ subject: gone.id }).orderBy('id').pluck('action');
+    expect(trail.slice(-2)).toEqual(['spectrum_removed', 'spectrum_purged']);
+    await expect(api.db('identification_events').delete()).rejects.toThrow(/only grows/); // the gate is shut again
   });
 });
 

@@ -1,3 +1,4 @@
+import { PURGE_AFTER_DAYS } from '@foreveil/shared';
 import { Button } from '@mantine/core';
 import { useSuspenseQueries } from '@tanstack/react-query';
 import { Link, useParams } from 'react-router-dom';
@@ -53,11 +54,17 @@ export function RecipesPage() {
           Removed spectra <span>{removed.length ? counted(removed.length, 'spectrum', 'spectra') : 'none'}</span>
         </h2>
         {removed.length > 0 && (
-          <ul className={classes.list} aria-label="Removed spectra">
-            {removed.map((spectrum) => (
-              <RemovedRow key={spectrum.id} {...{ programmeId, role, spectrum }} />
-            ))}
-          </ul>
+          <>
+            <p className={classes.quiet}>
+              Each can be put back for {PURGE_AFTER_DAYS} days after it was removed; then it is gone for good, with its analyses,
+              comparisons and decisions.
+            </p>
+            <ul className={classes.list} aria-label="Removed spectra">
+              {removed.map((spectrum) => (
+                <RemovedRow key={spectrum.id} {...{ programmeId, role, spectrum }} />
+              ))}
+            </ul>
+          </>
         )}
       </section>
     </>
