@@ -201,7 +201,8 @@ describe('a removed spectrum', () => {
     }
     expect(await purgeRemovedSpectra(api.db)).toBe(1);
     expect(await purgeRemovedSpectra(api.db)).toBe(0);
-    const ids = (table: string, column: string) => api.db(table).where({ programme_id: team.programmeId }).distinct(column).pluck(column);
+    const ids = async (table: string, column: string) =>
+      (await api.db(table).where({ programme_id: team.programmeId }).distinct(column).pluck(column)) as string[];
     for (const [table, column] of [
       ['spectra', 'id'],
       ['analyses', 'spectrum_id'],

@@ -11,8 +11,8 @@ const files = expected.good.filter((good) => !good.generated);
 
 /**
  * Both programs read the same binary or decimal numbers and do the same few operations in double precision, so no file needs a wider
- * tolerance than this: not float32 columns (exact in double precision), nor scaled integers, nor air wavelengths turned into vacuum. What the
- * list allows in tol_relative is wider.
+ * tolerance than this: not float32 columns (exact in double precision), nor scaled integers, nor air wavelengths turned into vacuum. What
+ * the list allows in tol_relative is wider.
  */
 const SAME = 1e-12;
 
