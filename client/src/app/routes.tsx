@@ -94,6 +94,16 @@ export function makeRoutes(client: QueryClient): RouteObject[] {
       loader: loaders.comparison,
       lazy: async () => ({ Component: (await import('../features/comparison/ComparisonPage.js')).ComparisonPage }),
     },
+    {
+      path: 'programmes/:programmeId/clouds',
+      loader: loaders.programme,
+      lazy: async () => ({ Component: (await import('../features/clouds/CloudsPage.js')).CloudsPage }),
+    },
+    {
+      path: 'programmes/:programmeId/clouds/:cloudId',
+      loader: loaders.programme,
+      lazy: async () => ({ Component: (await import('../features/clouds/CloudPage.js')).CloudPage }),
+    },
     { path: '*', element: <NotFoundPage /> },
   ];
   return [

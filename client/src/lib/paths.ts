@@ -20,6 +20,8 @@ export const pagePaths = {
   /** two sightlines set side by side; `a` is chosen already when given */
   comparisons: (p: string, a?: string) => `/programmes/${p}/comparisons${a ? `?a=${a}` : ''}`,
   comparison: (p: string, c: string) => `/programmes/${p}/comparisons/${c}`,
+  clouds: (p: string) => `/programmes/${p}/clouds`,
+  cloud: (p: string, c: string) => `/programmes/${p}/clouds/${c}`,
   /** reading recipes and removed spectra */
   recipes: (p: string) => `/programmes/${p}/recipes`,
 } as const;

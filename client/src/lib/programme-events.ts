@@ -1,5 +1,6 @@
 import type { AnalysisSummary, Identification, ProgrammeEvent, SpectrumSummary, Target, TargetSummary } from '@foreveil/shared';
 import type { QueryClient } from '@tanstack/react-query';
+import { cloudQueries } from './queries/clouds.js';
 import { comparisonQueries } from './queries/comparisons.js';
 import { programmeQueries, targetQueries } from './queries/programmes.js';
 import { recipeQueries, unplacedQueries } from './queries/steering.js';
@@ -17,7 +18,10 @@ export function applyEvent(client: QueryClient, programmeId: string, event: Prog
     case 'analysis_recipes':
       return refetch(client, recipeQueries.list(programmeId).queryKey);
     case 'comparison':
-      return refetch(client, comparisonQueries.all(programmeId));
+      // the columns of clouds come from comparisons
+      return refetch(client, comparisonQueries.all(programmeId), cloudQueries.all(programmeId));
+    case 'cloud':
+      return refetch(client, cloudQueries.all(programmeId));
     case 'programme': // a role may have changed: what may be done is asked anew, and where one is
       return refetch(client, programmeQueries.within(programmeId), programmeQueries.list().queryKey);
     case 'spectrum':
@@ -25,6 +29,7 @@ export function applyEvent(client: QueryClient, programmeId: string, event: Prog
       refetch(
         client,
         targetQueries.all(programmeId),
+        cloudQueries.all(programmeId),
         programmeQueries.detail(programmeId).queryKey,
         spectrumQueries.all(programmeId, event.spectrumId),
         spectrumQueries.samples(programmeId, event.spectrumId).queryKey,

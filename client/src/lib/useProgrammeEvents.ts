@@ -65,6 +65,7 @@ const KNOWN: ReadonlySet<string> = new Set<ProgrammeEvent['type']>([
   'spectrum',
   'analysis_recipes',
   'comparison',
+  'cloud',
   'programme',
 ]);
 

@@ -42,6 +42,8 @@ export function useTrail({ programmeId = '', targetId, spectrumId }: Readonly<Pa
   if (pathname === upload) trail.push({ label: 'Add spectra', to: upload, what: '', others: [] });
   const comparisons = pagePaths.comparisons(programmeId);
   if (pathname.startsWith(comparisons)) trail.push({ label: 'Comparisons', to: comparisons, what: '', others: [] });
+  const clouds = pagePaths.clouds(programmeId);
+  if (pathname.startsWith(clouds)) trail.push({ label: 'Clouds', to: clouds, what: '', others: [] });
   const recipes = pagePaths.recipes(programmeId);
   if (pathname === recipes) trail.push({ label: 'Reading recipes', to: recipes, what: '', others: [] });
   const lineLists = pagePaths.lineLists(programmeId);

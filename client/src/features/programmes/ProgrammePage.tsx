@@ -25,6 +25,9 @@ export function ProgrammePage() {
       <Button component={Link} to={pagePaths.comparisons(programmeId)}>
         Comparisons
       </Button>
+      <Button component={Link} to={pagePaths.clouds(programmeId)}>
+        Clouds
+      </Button>
       <Button component={Link} to={pagePaths.lineLists(programmeId)}>
         Line lists
       </Button>
