@@ -48,6 +48,7 @@ const MODEL_ERROR = 0.14; // natural log: profile misfit and blending at the 14 
 const BLEND_PULL = 0.35; // of the spread of blended lines: how far a single profile's centroid strays from theirs
 const NEGLIGIBLE = 1.5; // dex: a line that is this much too weak even at 2 sigma takes no part
 const LEAST = 0.002; // candidates below this chance are not listed
+const TAKES_PART = 0.05; // of the feature: a line that cannot be the main one is told all the same, for it changes the width
 const MOST = 8;
 const LEAST_UNLISTED = 0.25; // of the feature: what a line that no list holds must add to be worth a hypothesis
 const UNRESOLVED = 0.7; // of the feature's FWHM: further apart, two lines would be two features
@@ -219,7 +220,7 @@ function draw(
   if (!(total > 0)) return { ranked: [], unidentified: 1 };
   const ranked = contenders
     .map((contender, k) => ({ contender, probability: wins[k]! / total, share: shares[k]! / total }))
-    .filter((r) => r.probability >= LEAST)
+    .filter((r) => r.probability >= LEAST || r.share >= TAKES_PART)
     .sort(
       (a, b) => b.probability - a.probability || b.share - a.share || a.contender.expected.wavelength - b.contender.expected.wavelength,
     );
