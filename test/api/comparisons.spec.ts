@@ -2,12 +2,13 @@ import {
   apiPaths,
   DEFAULT_COMPARISON_SETTINGS,
   type ComparisonDetail,
+  type ComparisonSettings,
   type ComparisonSummary,
   type NewRuling,
   type SpectrumDetail,
   type VerdictRuling,
 } from '@foreveil/shared';
-import { analysisOf, complete, feature } from '../support/api/analyses.js';
+import { analysisOf, candidate, complete, feature } from '../support/api/analyses.js';
 import { startApi, type Api } from '../support/api/api.js';
 import { aComparison, anotherSpectrum, comparedLine, comparisonOf } from '../support/api/comparisons.js';
 import { makeTeam, type Person, type Team } from '../support/api/person.js';
@@ -39,6 +40,8 @@ const read = async ({ team }: Stage, id: string, person = team.reader) =>
   (await person.get(apiPaths.comparison(team.programmeId, id)).expect(200)).body as ComparisonDetail;
 const list = async ({ team }: Stage) =>
   (await team.reader.get(apiPaths.comparisons(team.programmeId)).expect(200)).body as ComparisonSummary[];
+const rerun = ({ team }: Stage, from: string, settings: Partial<ComparisonSettings> = {}) =>
+  team.analyst.post(apiPaths.comparisonRerun(team.programmeId, from), { settings });
 
 const KEY = comparedLine().key;
 const rule = (person: Person, { team }: Stage, id: string, version: number, ruling: Partial<NewRuling> = {}, key = KEY) =>
@@ -150,16 +153,62 @@ describe('a ruling', () => {
 test('a re-run is a new comparison: the old address stays, the list shows the new one, a second re-run of the old one is refused', async () => {
   const stage = await makeStage();
   const id = await aComparison(api, stage.team, stage.a, stage.b);
-  const rerun = (from: string) =>
-    stage.team.analyst.post(apiPaths.comparisonRerun(stage.team.programmeId, from), { settings: { offsetBKmPerS: 2 } });
-  const next = (await rerun(id).expect(201)).body as ComparisonSummary;
+  const next = (await rerun(stage, id, { offsetBKmPerS: 2 }).expect(201)).body as ComparisonSummary;
   expect(next.id).not.toBe(id);
   expect(await read(stage, next.id)).toMatchObject({ settings: { offsetBKmPerS: 2 }, phase: 'QUEUED', name: 'Star and other star' });
   expect((await read(stage, id)).supersededBy).toBe(next.id);
   expect((await list(stage)).map((c) => c.id)).toEqual([next.id]);
-  expect((await rerun(id).expect(409)).body).toMatchObject({ code: 'bad_transition' });
-  expect((await rerun(next.id).expect(409)).body).toMatchObject({ code: 'bad_transition' }); // still at work
+  expect((await rerun(stage, id, { offsetBKmPerS: 2 }).expect(409)).body).toMatchObject({ code: 'bad_transition' });
+  expect((await rerun(stage, next.id).expect(409)).body).toMatchObject({ code: 'bad_transition' }); // still at work
 });
+
+test('a re-run keeps the rulings whose lines still stand, with who ruled and why, and leaves the others with the old one', async () => {
+  const stage = await makeStage();
+  const { team } = stage;
+  const again = await team.analyst.post(apiPaths.analyses(team.programmeId, stage.a.id), {}).expect(201);
+  const ofStar = candidate({ lineId: 'star line', restNm: 500.5, family: 'stellar' });
+  await complete(api, (again.body as { id: string }).id, analysisOf([feature(0, 500.5, { candidates: [ofStar] })]));
+  const id = await aComparison(api, team, stage.a, stage.b);
+  const first = (await rerun(stage, id).expect(201)).body as ComparisonSummary;
+  const worker = await startWorker(api);
+  const done = (wanted: string) =>
+    until(
+      async () => (await read(stage, wanted)).phase === 'COMPLETED',
+      60_000,
+      () => worker.log.join(''),
+    );
+  try {
+    await done(first.id);
+    const stands = (await read(stage, first.id)).result!.lines[0]!;
+    const gone = comparedLine({ key: 'gone cloud9', lineId: 'gone' });
+    await api
+      .db('comparisons')
+      .where({ id: first.id })
+      .update({ result: JSON.stringify(comparisonOf([stands, gone])) });
+    const [moved] = await Promise.all([
+      rule(team.reviewer, stage, first.id, 0, { verdict: 'cannot-tell', remark: 'blended' }, stands.key).expect(200),
+      rule(team.lead, stage, first.id, 0, { verdict: 'only-b', remark: 'of a cloud that will go' }, gone.key).expect(200),
+    ]);
+    const second = (await rerun(stage, first.id).expect(201)).body as ComparisonSummary;
+    await done(second.id);
+    const { rulings, result } = await read(stage, second.id);
+    const ruled = moved.body as VerdictRuling;
+    expect(rulings).toMatchObject([
+      {
+        lineKey: stands.key,
+        verdict: 'cannot-tell',
+        remark: 'blended',
+        by: team.reviewer.name,
+        at: ruled.at,
+        history: [{ remark: 'blended' }],
+      },
+    ]);
+    expect(result!.lines.map((l) => l.key)).toContain(stands.key);
+    expect((await read(stage, first.id)).rulings).toHaveLength(2);
+  } finally {
+    await worker.end();
+  }
+}, 180_000);
 
 test('is called outdated once one of its spectra has a newer analysis', async () => {
   const stage = await makeStage();
