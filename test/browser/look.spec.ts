@@ -1,5 +1,5 @@
 import { randomUUID } from 'node:crypto';
-import { apiPaths } from '@foreveil/shared';
+import { apiPaths, type NewCloud } from '@foreveil/shared';
 import type { Browser, Page } from 'playwright-core';
 import { startFleet, type Fleet } from '../support/browser/fleet.js';
 import { analysedDemonstration, signIn, type Demonstration } from '../support/browser/people.js';
@@ -42,6 +42,8 @@ const SUBJECTS: Subject[] = [
   { page: 'forgot-password', path: () => '/forgot-password', heading: /New password/ },
   { page: 'comparisons', path: ({ programme }) => `/programmes/${programme.id}/comparisons`, heading: /Comparisons/ },
   { page: 'comparison', path: aComparison, heading: /Tern 1 and Tern 2/, prepare: compared },
+  { page: 'clouds', path: ({ programme }) => `/programmes/${programme.id}/clouds`, heading: /Clouds/ },
+  { page: 'cloud', path: newCloud, heading: /Dunlin rim/ },
   { page: 'keys', path: () => '/', heading: /Your programmes/, prepare: openKeys },
   { page: 'nothing-here', path: () => '/no/such/page', heading: /Nothing here/ },
 ];
@@ -86,6 +88,18 @@ async function compared(page: Page): Promise<void> {
 async function openKeys(page: Page): Promise<void> {
   await page.keyboard.press('Shift+?'); // the button stands in a wide bar only
   await page.getByRole('dialog').waitFor();
+}
+
+/** A cloud with every spectrum of the demonstration that looks at a target of its own. */
+async function newCloud({ programme, targets }: Demonstration, page: Page): Promise<string> {
+  const cloud: NewCloud = {
+    ...{ name: `Dunlin rim ${randomUUID()}`, fromKmPerS: -20, toKmPerS: 0, frame: 'barycentric', notes: 'Simulated.' },
+    spectrumIds: targets.flatMap(({ spectra }) => spectra.slice(0, 1).map(({ id }) => id)),
+  };
+  const headers = { origin: new URL(page.url()).origin };
+  const answer = await page.request.post(apiPaths.clouds(programme.id), { data: cloud, headers });
+  if (!answer.ok()) throw new Error(await answer.text());
+  return `/programmes/${programme.id}/clouds/${((await answer.json()) as { id: string }).id}`;
 }
 
 async function newProgramme(page: Page): Promise<string> {

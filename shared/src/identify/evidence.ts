@@ -61,7 +61,7 @@ export function argue(r: Ranked, f: FeatureView, rivals: readonly Contender[], u
     {
       part: 'width',
       logOdds: width,
-      sentence: `${f.fwhmV.toFixed(1)} km/s wide; lines of the system are ${Math.max(e.fwhmV, coverage.elementV).toFixed(1)} km/s here`,
+      sentence: `${f.fwhmV.toFixed(1)} km/s wide; lines of this system would be ${Math.max(e.fwhmV, coverage.elementV).toFixed(1)} km/s here`,
     },
     { part: 'chance', logOdds: chance, sentence: chanceSentence(f, rivals, unidentified) },
   ];

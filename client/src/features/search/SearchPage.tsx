@@ -56,8 +56,9 @@ function Found({ query }: { query: IdentificationQuery }) {
   if (rows.length === 0) {
     return (
       <p className={classes.answer} role="status">
-        Nothing found. Widen a range, take out a companion, or look at proposed lines too: only accepted ones are looked at unless you
-        choose another state.
+        {searchText(query) === ''
+          ? 'No line is accepted yet in your programmes. Lines appear here as your teams accept them.'
+          : 'Nothing found. Widen a range, take out a companion, or choose another state: unless you do, only accepted lines are looked at.'}
       </p>
     );
   }
