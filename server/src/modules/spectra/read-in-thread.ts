@@ -1,7 +1,7 @@
 import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
-import { Worker } from 'node:worker_threads';
 import type { Reading, ReadingCorrections, ReadResult, Spectrum, SpectrumSummary } from '@foreveil/shared';
+import { inThread, type ThreadDeath } from '../../common/in-thread.js';
 
 /** The bytes of a file, or where they lie: then the thread fetches them itself, and they never pass through this one. */
 export type ReadJob = ({ readonly bytes: Uint8Array } | { readonly path: string }) & {
@@ -31,27 +31,20 @@ export async function readInThread(
   onFailure: (error: unknown) => void = () => undefined,
   script: string | URL = READER_THREAD,
 ): Promise<ThreadResult> {
-  const resourceLimits = { maxOldGenerationSizeMb: readMemoryMb };
-  const thread = new Worker(script, { workerData: job, resourceLimits, execArgv: [] });
-  let timer: NodeJS.Timeout | undefined;
-  try {
-    return await new Promise<ThreadResult>((resolve) => {
-      const unreadable = (code: string, sentence: string) => resolve({ ok: false, problem: { code, sentence } });
-      timer = setTimeout(
-        () => unreadable('too_slow', `Reading the file took more than ${readSeconds} s and was stopped.`),
-        readSeconds * 1000,
-      );
-      thread.once('message', (result: ThreadResult) => resolve(result));
-      thread.once('error', (error: NodeJS.ErrnoException) => {
-        onFailure(error);
-        if (error.code === 'ERR_WORKER_OUT_OF_MEMORY') {
-          unreadable('too_much_memory', `Reading the file took more than ${readMemoryMb} MiB of memory and was stopped.`);
-        } else unreadable('reader_failed', 'The reader failed on this file. It may be damaged, or of a kind that is not supported.');
-      });
-      thread.once('exit', () => unreadable('reader_failed', 'The reader stopped without an answer.'));
-    });
-  } finally {
-    clearTimeout(timer);
-    await thread.terminate();
+  const result = await inThread<ThreadResult>(script, job, { seconds: readSeconds, memoryMb: readMemoryMb });
+  if ('answer' in result) return result.answer;
+  if (result.error !== undefined) onFailure(result.error);
+  return { ok: false, problem: problemOf(result, { readSeconds, readMemoryMb }) };
+}
+
+function problemOf({ death, error }: { death: ThreadDeath; error?: unknown }, { readSeconds, readMemoryMb }: Limits) {
+  if (death === 'too_slow') return { code: death, sentence: `Reading the file took more than ${readSeconds} s and was stopped.` };
+  if (death === 'too_much_memory') {
+    return { code: death, sentence: `Reading the file took more than ${readMemoryMb} MiB of memory and was stopped.` };
   }
+  const sentence =
+    error === undefined
+      ? 'The reader stopped without an answer.'
+      : 'The reader failed on this file. It may be damaged, or of a kind that is not supported.';
+  return { code: 'reader_failed', sentence };
 }
