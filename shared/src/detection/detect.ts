@@ -3,19 +3,9 @@ import { C_KM_PER_S } from '../units/index.js';
 import { Changes } from './changes.js';
 import { LineModel } from './model.js';
 import { findExcesses, thresholdFor, type Excess } from './scale-space.js';
-import {
-  dropBridges,
-  dropNeedless,
-  findRotation,
-  gatherDamped,
-  mergeShreds,
-  pruneWeak,
-  rotating,
-  splitBlends,
-  trySpecialShapes,
-  withdrawRotation,
-  type Rotation,
-} from './refine.js';
+import { dropBridges, dropNeedless, mergeShreds, pruneWeak, splitBlends } from './refine.js';
+import { findRotation, rotating, withdrawRotation, type Rotation } from './rotation.js';
+import { gatherDamped, trySpecialShapes } from './special-shapes.js';
 
 export interface DetectionInput {
   /** flux over continuum, inverse variances */
